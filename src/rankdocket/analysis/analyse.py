@@ -1,0 +1,181 @@
+"""The walk of a study through the engine; this file is its table of contents."""
+
+from collections.abc import Callable
+from typing import Final
+
+import numpy as np
+
+from rankdocket.analysis.check import direction_of
+from rankdocket.analysis.checks import CHECKS
+from rankdocket.analysis.decide import decide
+from rankdocket.analysis.family import family_of
+from rankdocket.analysis.results import (
+    Analysis,
+    AssociationAnalysis,
+    CheckOutcome,
+    Comparisons,
+    Estimate,
+    NotEstimable,
+    RankTest,
+    Screened,
+    Withheld,
+)
+from rankdocket.analysis.screen import screen_association
+from rankdocket.errors import InputError
+from rankdocket.stats.adjustment import AdjustmentRule
+from rankdocket.stats.adjustments import ADJUSTMENTS
+from rankdocket.stats.attainable import smallest_attainable_p
+from rankdocket.stats.choose_null import NullChoice, choose_null, count_tails
+from rankdocket.stats.coefficient import Coefficient
+from rankdocket.stats.comparisons import pearson_r, t_value_p
+from rankdocket.stats.draws import stream
+from rankdocket.stats.interval import IntervalQuestion, NoInterval
+from rankdocket.stats.intervals import interval_of
+from rankdocket.stats.nulls.monte_carlo import Draws
+from rankdocket.stats.ranks import Codes
+from rankdocket.stats.rho import rho, short_form, tie_corrected_rho
+from rankdocket.stats.tau import tau_b
+from rankdocket.study.messages import Message, fault
+from rankdocket.study.spec import StudySpec
+from rankdocket.study.table import StudyData
+
+FEWEST_ROWS: Final = 3
+"""With fewer rows every untied pairing agrees or disagrees perfectly: a coefficient says nothing."""
+
+
+def analyse(spec: StudySpec, data: StudyData, progress: Callable[[str], None] = lambda _: None) -> Analysis:
+    """Do everything the spec asks, and nothing else.
+
+    Parameters
+    ----------
+    progress
+        Told the name of each association when it is done.
+
+    Raises
+    ------
+    InputError
+        If permutations must be drawn and the plan states no seed; nothing joint has been computed then.
+    """
+    screened = {name: screen_association(association, spec, data) for name, association in spec.associations.items()}
+    require_seed(spec, screened)
+    results = {}
+    for name, rows in screened.items():
+        results[name] = analyse_association(rows, spec)
+        progress(name)
+    findings = decide(results, spec, adjustment_of(spec))
+    return Analysis(spec, data, results, findings, family_of(spec))
+
+
+def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnalysis:
+    """Check, estimate, test and compare one association."""
+    checks = tuple(check.examine(screened, spec) for check in CHECKS)
+    x, y = _rank_codes(screened)
+    estimate = _estimate(screened, checks, x, y)
+    direction = direction_of(screened, spec)
+    if isinstance(estimate, NotEstimable):
+        return AssociationAnalysis(
+            screened, checks, estimate, estimate, NoInterval(estimate.reason), Comparisons(None, None, None), None
+        )
+    smallest = smallest_attainable_p(screened.spec.coefficient, screened.x_ties, screened.y_ties, direction)
+    if isinstance(estimate, Withheld):
+        return AssociationAnalysis(
+            screened, checks, estimate, estimate, NoInterval(estimate.reason), Comparisons(None, None, None), smallest
+        )
+    test = _test(screened, spec, checks, estimate.coefficient)
+    interval = interval_of(
+        IntervalQuestion(estimate.coefficient, x, y, spec.inference.confidence_level, direction)
+    )
+    comparisons = Comparisons(
+        t_value_p=t_value_p(estimate.coefficient, direction)
+        if screened.spec.coefficient == "Spearman rho" and isinstance(test, RankTest)
+        else None,
+        pearson=_pearson(screened, spec),
+        doubled_p=test.tails.doubled if isinstance(test, RankTest) and direction == "two-sided" else None,
+    )
+    return AssociationAnalysis(screened, checks, estimate, test, interval, comparisons, smallest)
+
+
+def adjustment_of(spec: StudySpec) -> AdjustmentRule:
+    """Return the adjustment that the plan names."""
+    return next(rule for rule in ADJUSTMENTS if rule.key == spec.inference.several_tests.adjust)
+
+
+def null_choice(screened: Screened, spec: StudySpec) -> NullChoice:
+    """Return which null the number of rows, the ties and the plan allow; no joint result is looked at."""
+    return choose_null(screened.spec.coefficient, screened.x_ties, screened.y_ties, spec.inference.p_value.by)
+
+
+def require_seed(spec: StudySpec, screened: dict[str, Screened]) -> None:
+    """Refuse a plan that needs draws and states no seed, naming every association concerned."""
+    if spec.inference.p_value.seed is not None:
+        return
+    drawn = [
+        name
+        for name, rows in screened.items()
+        if min(rows.x_ties.distinct, rows.y_ties.distinct) > 1 and null_choice(rows, spec).needs_draws
+    ]
+    if drawn:
+        raise InputError(
+            (
+                fault(
+                    spec.inference.place,
+                    "inference.p_value",
+                    Message.SEED_MISSING,
+                    f"the p-value of {', '.join(drawn)} needs drawn permutations and the plan states no seed.",
+                    "Write, with a number of your own: p_value: {by: exact when possible, seed: 417}. Nothing was computed.",
+                ),
+            )
+        )
+
+
+def _rank_codes(screened: Screened) -> tuple[Codes, Codes]:
+    x = np.array([row.x_doubled_rank for row in screened.rows], dtype=np.int64)
+    y = np.array([row.y_doubled_rank for row in screened.rows], dtype=np.int64)
+    return x, y
+
+
+def _estimate(
+    screened: Screened, checks: tuple[CheckOutcome, ...], x: Codes, y: Codes
+) -> Estimate | Withheld | NotEstimable:
+    if len(screened.rows) < FEWEST_ROWS:
+        return NotEstimable("fewer than three complete rows")
+    constant = [ties.distinct < 2 for ties in (screened.x_ties, screened.y_ties)]
+    if any(constant):
+        which = "both variables have" if all(constant) else "the first variable has" if constant[0] else "the second variable has"
+        return NotEstimable(f"{which} one value in all complete rows")
+    for outcome in checks:
+        if outcome.withholds == "all":
+            return Withheld(outcome.reason)
+    if screened.spec.coefficient == "Kendall tau-b":
+        return Estimate(tau_b(x, y), None, None, None)
+    coefficient, corrected = rho(x, y), tie_corrected_rho(x, y)
+    differences = corrected.squared_differences
+    return Estimate(coefficient, differences, corrected, short_form(coefficient.n, differences))
+
+
+def _test(
+    screened: Screened, spec: StudySpec, checks: tuple[CheckOutcome, ...], observed: Coefficient
+) -> RankTest | Withheld:
+    for outcome in checks:
+        if outcome.withholds != "nothing":
+            return Withheld(outcome.reason)
+    x, y = _rank_codes(screened)
+    choice = null_choice(screened, spec)
+    rule = spec.inference.p_value
+    draws = None
+    if choice.needs_draws and rule.seed is not None:
+        draws = Draws(rule.permutations, stream(rule.seed, spec.study.number, screened.spec.name, "permutations"))
+    tails = count_tails(choice, x, y, observed=observed, draws=draws)
+    direction = direction_of(screened, spec)
+    return RankTest(
+        direction, choice, tails, tails.p(direction), tails.interval(direction, spec.inference.confidence_level)
+    )
+
+
+def _pearson(screened: Screened, spec: StudySpec) -> float | None:
+    scales = {spec.variables[screened.spec.x].scale, spec.variables[screened.spec.y].scale}
+    if scales & {"ordered", "already ranked"}:
+        return None  # labels and places have no distances
+    x = np.array([float(row.x) for row in screened.rows])
+    y = np.array([float(row.y) for row in screened.rows])
+    return pearson_r(x, y)

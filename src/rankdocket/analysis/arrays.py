@@ -1,0 +1,261 @@
+"""The answer for people who have two sequences and no spec: :func:`associate`."""
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+from decimal import Decimal
+from fractions import Fraction
+from functools import lru_cache
+from math import isfinite
+from typing import Final, TypeAlias
+
+import numpy as np
+
+from rankdocket.stats.attainable import tails_at_limit
+from rankdocket.stats.choose_null import NullChoice, choose_null, count_tails
+from rankdocket.stats.coefficient import Coefficient
+from rankdocket.stats.comparisons import pearson_r, t_value_p
+from rankdocket.stats.draws import stream
+from rankdocket.stats.interval import Interval, IntervalQuestion, NoInterval
+from rankdocket.stats.intervals import interval_of
+from rankdocket.stats.null import TailCounts
+from rankdocket.stats.nulls.monte_carlo import Draws
+from rankdocket.stats.ranks import Codes, TieGroups, dense_codes, tie_groups
+from rankdocket.stats.rho import rho, short_form, squared_differences
+from rankdocket.stats.tau import tau_b
+
+Exact: TypeAlias = int | Fraction | Decimal
+
+FEWEST_ROWS: Final = 3
+"""With two rows the coefficient could only be 1 or −1."""
+
+TAILS_KEPT: Final = 8
+"""Results whose tails are remembered."""
+
+
+@dataclass(frozen=True, slots=True)
+class ArrayAssociation:
+    """How two sequences are associated.
+
+    Attributes
+    ----------
+    n_rows, n
+        Positions given; positions at which both values are present.
+    reason
+        Why there is no coefficient, as a sentence; ``None`` when there is one.
+    coefficient
+        Spearman rho as integers.
+    tau
+        Kendall tau-b as integers.
+    x_codes, y_codes
+        The complete values as codes in their order.
+    pearson_r
+        Product-moment correlation of the values, for comparison; ``None`` when undefined.
+    level, permutations, seed
+        As asked.
+    """
+
+    n_rows: int
+    n: int
+    reason: str | None
+    coefficient: Coefficient
+    tau: Coefficient
+    x_codes: tuple[int, ...]
+    y_codes: tuple[int, ...]
+    pearson_r: float | None
+    level: Decimal
+    permutations: int
+    seed: int
+
+    @property
+    def rho(self) -> float | None:
+        """Spearman rho as the nearest double."""
+        return None if self.reason else self.coefficient.value
+
+    @property
+    def rho_text(self) -> str | None:
+        """Spearman rho with twelve significant digits, half to even."""
+        return None if self.reason else self.coefficient.decimal_text()
+
+    @property
+    def tau_b(self) -> float | None:
+        """Kendall tau-b as the nearest double."""
+        return None if self.reason else self.tau.value
+
+    @property
+    def x_has_ties(self) -> bool:
+        """Whether two complete rows share a value of x."""
+        return self._x_groups.has_ties
+
+    @property
+    def y_has_ties(self) -> bool:
+        """Whether two complete rows share a value of y."""
+        return self._y_groups.has_ties
+
+    @property
+    def sum_squared_differences(self) -> Fraction:
+        """Sum of squared differences between the midranks."""
+        return squared_differences(_array(self.x_codes), _array(self.y_codes))
+
+    @property
+    def short_form(self) -> Fraction | None:
+        """The formula that is rho only without ties, for comparison."""
+        return None if self.reason else short_form(self.n, self.sum_squared_differences)
+
+    @property
+    def p_t(self) -> float | None:
+        """Two-sided p-value of the t approximation, for comparison."""
+        return None if self.reason else t_value_p(self.coefficient, "two-sided")
+
+    @property
+    def exact(self) -> TailCounts | None:
+        """Exact tails of rho; ``None`` when there is no rho or a complete count is beyond the budget."""
+        return None if self.reason else _exact_tails(self)
+
+    @property
+    def null_choice(self) -> NullChoice:
+        """Which null would be used, and why; data at a limit of the attainable range need none."""
+        return choose_null("Spearman rho", self._x_groups, self._y_groups, "exact when possible")
+
+    @property
+    def tails(self) -> TailCounts | None:
+        """The tails of rho: exact when possible, drawn otherwise; ``None`` when there is no rho."""
+        return None if self.reason else self.exact or _drawn_tails(self)
+
+    @property
+    def p(self) -> Fraction | None:
+        """Two-sided p-value from :attr:`tails`."""
+        tails = self.tails
+        return None if tails is None else tails.p("two-sided")
+
+    @property
+    def interval(self) -> Interval | NoInterval:
+        """Two-sided interval for rho at ``level``, or why there is none."""
+        return interval_of(
+            IntervalQuestion(self.coefficient, _array(self.x_codes), _array(self.y_codes), self.level, "two-sided")
+        )
+
+    @property
+    def _x_groups(self) -> TieGroups:
+        return tie_groups(_array(self.x_codes))
+
+    @property
+    def _y_groups(self) -> TieGroups:
+        return tie_groups(_array(self.y_codes))
+
+
+def associate(
+    x: Iterable[object],
+    y: Iterable[object],
+    *,
+    level: Decimal | str | float = 0.95,
+    permutations: int = 20_000,
+    seed: int = 0,
+) -> ArrayAssociation:
+    """Return how two sequences of numbers are associated by rank.
+
+    Rows with a missing value (``None`` or not-a-number) are left out first, ranks are taken second.  Values are
+    ordered by their exact worth: a float by its binary value, a ``Decimal`` by its decimal one.
+
+    Parameters
+    ----------
+    x, y
+        Lists, arrays, series: numbers in the same order of rows.
+    level
+        Of the interval, above 0, below 1; a float is read as the shortest decimal that means it.
+    permutations, seed
+        For a null that has to be drawn.
+
+    Raises
+    ------
+    ValueError
+        If the lengths differ, a value is infinite, or an option is out of range.
+    TypeError
+        If a value is no number.
+    """
+    chosen_level = Decimal(str(level))
+    if not 0 < chosen_level < 1:
+        raise ValueError(f"level must lie between 0 and 1, not be {level}")
+    if permutations < 1 or seed < 0:
+        raise ValueError("permutations must be at least 1 and seed at least 0")
+    left, right = _numbers(x, "x"), _numbers(y, "y")
+    if len(left) != len(right):
+        raise ValueError(f"x has {len(left)} values and y has {len(right)}")
+    rows = [(a, b) for a, b in zip(left, right, strict=True) if a is not None and b is not None]
+    x_values, y_values = [a for a, _ in rows], [b for _, b in rows]
+    x_codes, y_codes = dense_codes(x_values), dense_codes(y_values)
+    coefficient = rho(x_codes, y_codes)
+    return ArrayAssociation(
+        n_rows=len(left),
+        n=len(rows),
+        reason=_reason(coefficient),
+        coefficient=coefficient,
+        tau=tau_b(x_codes, y_codes),
+        x_codes=tuple(x_codes.tolist()),
+        y_codes=tuple(y_codes.tolist()),
+        pearson_r=pearson_r(np.array(x_values, dtype=np.float64), np.array(y_values, dtype=np.float64)),
+        level=chosen_level,
+        permutations=permutations,
+        seed=seed,
+    )
+
+
+@lru_cache(maxsize=TAILS_KEPT)
+def _exact_tails(result: ArrayAssociation) -> TailCounts | None:
+    x_codes, y_codes = _array(result.x_codes), _array(result.y_codes)
+    choice = result.null_choice
+    if choice.needs_draws:
+        return tails_at_limit(tie_groups(x_codes), tie_groups(y_codes), result.coefficient)
+    return count_tails(choice, x_codes, y_codes, observed=result.coefficient, draws=None)
+
+
+@lru_cache(maxsize=TAILS_KEPT)
+def _drawn_tails(result: ArrayAssociation) -> TailCounts:
+    return count_tails(
+        result.null_choice,
+        _array(result.x_codes),
+        _array(result.y_codes),
+        observed=result.coefficient,
+        draws=Draws(result.permutations, stream(result.seed, "arrays", "rho", "null")),
+    )
+
+
+def _reason(coefficient: Coefficient) -> str | None:
+    if coefficient.n < FEWEST_ROWS:
+        return "There are fewer than three complete rows."
+    if coefficient.x_square == 0 and coefficient.y_square == 0:
+        return "Neither variable varies among the complete rows."
+    if coefficient.x_square == 0:
+        return "The first variable does not vary among the complete rows."
+    if coefficient.y_square == 0:
+        return "The second variable does not vary among the complete rows."
+    return None
+
+
+def _array(codes: tuple[int, ...]) -> Codes:
+    return np.asarray(codes, dtype=np.int64)
+
+
+def _numbers(values: Iterable[object], name: str) -> list[Exact | None]:
+    return [_number(value, f"the value at position {position} of {name}") for position, value in enumerate(values)]
+
+
+def _number(value: object, where: str) -> Exact | None:
+    """Return a number at its exact worth, ``None`` for a missing one."""
+    plain = value.item() if isinstance(value, np.generic) else value
+    if plain is None or _differs_from_itself(plain):
+        return None
+    if isinstance(plain, (int, Fraction)):
+        return int(plain) if isinstance(plain, int) else plain
+    if isinstance(plain, (Decimal, float)):
+        if not (plain.is_finite() if isinstance(plain, Decimal) else isfinite(plain)):
+            raise ValueError(f"{where} is infinite")
+        return plain if isinstance(plain, Decimal) else Fraction(plain)
+    raise TypeError(f"{where} is {plain!r}, not a number")
+
+
+def _differs_from_itself(value: object) -> bool:
+    """Whether it is not-a-number; a missing-value mark that refuses to say counts as such."""
+    try:
+        return bool(value != value)  # noqa: PLR0124
+    except TypeError:
+        return True

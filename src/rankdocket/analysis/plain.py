@@ -1,0 +1,278 @@
+"""Analysis to plain data: what analysis.json holds, and the addresses that every printed number points to.
+
+Whole numbers below 2**53 are JSON numbers, larger ones and every exact value are text; a value that is not
+whole is filed with 12 significant digits (:mod:`rankdocket.analysis.filing`).  An absent value has no key, or the
+key ``reason`` beside a ``state``; nothing is ever NaN or null.
+"""
+
+from collections import Counter
+from fractions import Fraction
+from typing import Final
+
+from rankdocket.analysis.filing import exact_decimal, filed, half
+from rankdocket.analysis.results import (
+    Analysis,
+    AssociationAnalysis,
+    CheckOutcome,
+    Estimate,
+    Finding,
+    NotEstimable,
+    RankTest,
+    Screened,
+    Withheld,
+)
+from rankdocket.analysis.variables import VariableSummary, summarise
+from rankdocket.canonical import Plain
+from rankdocket.stats.interval import Interval
+from rankdocket.stats.ranks import TieGroups
+from rankdocket.study.spec import StudySpec
+from rankdocket.study.table import StudyData, Table
+
+SCHEMA: Final = "urn:rankdocket:analysis:1"
+
+
+def analysis_to_plain(analysis: Analysis) -> dict[str, Plain]:
+    """Return the whole analysis as plain data."""
+    words = Counter(finding.word or "no finding" for finding in analysis.findings.values())
+    return {
+        **data_to_plain(analysis.spec, analysis.data),
+        "schema": SCHEMA,
+        "inference": {
+            **_inference(analysis.spec),
+            "family": list(analysis.family),
+            "family_size": len(analysis.family),
+        },
+        "associations": {
+            name: _association(result, analysis.findings[name]) for name, result in analysis.results.items()
+        },
+        "tally": {
+            "associations": len(analysis.results),
+            "findings": dict(words),
+            "estimates": sum(isinstance(result.estimate, Estimate) for result in analysis.results.values()),
+            "tests": sum(isinstance(result.test, RankTest) for result in analysis.results.values()),
+        },
+    }
+
+
+def data_to_plain(spec: StudySpec, data: StudyData) -> dict[str, Plain]:
+    """Return what is known before anything joint is computed: the study, its tables, each variable alone."""
+    return {
+        "study": {"number": spec.study.number, "title": spec.study.title},
+        "requirements": {
+            "fewest_complete_rows": spec.requirements.fewest_complete_rows,
+            "most_missing": str(spec.requirements.most_missing),
+            "most_tied": str(spec.requirements.most_tied),
+            "if_not_met": spec.requirements.if_not_met,
+        },
+        "tables": {name: _table(table) for name, table in data.tables.items()},
+        "variables": {
+            name: _variable(summarise(variable, spec, data)) for name, variable in data.variables.items()
+        },
+    }
+
+
+def screened_to_plain(screened: Screened, outcomes: tuple[CheckOutcome, ...]) -> dict[str, Plain]:
+    """Return an association's rows and checks: the part of its analysis that shows nothing joint."""
+    flow = screened.flow
+    return {
+        "x": screened.spec.x,
+        "y": screened.spec.y,
+        "rows": {
+            "read": flow.read,
+            "left_out": len(flow.left_out),
+            "left_out_lines": [left.row for left in flow.left_out],
+            "missing_x": flow.missing_x,
+            "missing_y": flow.missing_y,
+            "missing_both": flow.missing_both,
+            "complete": flow.complete,
+        },
+        "ties_x": _ties(screened.x_ties),
+        "ties_y": _ties(screened.y_ties),
+        "checks": {outcome.key: _check(outcome) for outcome in outcomes},
+    }
+
+
+def _inference(spec: StudySpec) -> dict[str, Plain]:
+    inference = spec.inference
+    smallest = {
+        name: str(association.hypothesis.smallest_of_interest)
+        for name, association in spec.associations.items()
+        if association.hypothesis.smallest_of_interest is not None
+    }
+    seed: dict[str, Plain] = {} if inference.p_value.seed is None else {"seed": str(inference.p_value.seed)}
+    return {
+        "alpha": str(inference.alpha),
+        "sidedness": inference.sidedness,
+        "confidence_level": str(inference.confidence_level),
+        "adjust": inference.several_tests.adjust,
+        "among": inference.several_tests.among,
+        "p_by": inference.p_value.by,
+        "permutations": inference.p_value.permutations,
+        "smallest_of_interest": smallest,
+        **seed,
+    }
+
+
+def _table(table: Table) -> dict[str, Plain]:
+    received = {"received_on": table.spec.received_on, "received_from": table.spec.received_from}
+    return {
+        "file": table.source.path,
+        "size": table.source.size,
+        "digest": table.source.digest,
+        "values_digest": table.source.values_digest,
+        "rows": len(table.row_numbers),
+        "columns": list(table.columns),
+        "first_line": table.row_numbers[0] if table.row_numbers else 0,
+        "last_line": table.row_numbers[-1] if table.row_numbers else 0,
+        **{key: value for key, value in received.items() if value is not None},
+    }
+
+
+def _variable(summary: VariableSummary) -> dict[str, Plain]:
+    names = ("smallest", "lower_quartile", "median", "upper_quartile", "largest")
+    return {
+        "n": summary.n,
+        "missing": [{"meaning": meaning, "rows": rows} for meaning, rows in summary.missing.items()],
+        "missing_total": sum(summary.missing.values()),
+        "distinct": summary.distinct,
+        "largest_tie": summary.largest_tie,
+        "tied_rows": summary.tied_rows,
+        "levels": [{"label": label, "rows": rows} for label, rows in summary.levels.items()],
+        **dict(zip(names, summary.five, strict=False)),
+    }
+
+
+def _ties(ties: TieGroups) -> dict[str, Plain]:
+    share: dict[str, Plain] = {"share": f"{ties.tied_rows}/{ties.n}"} if ties.n else {}
+    return {
+        "distinct": ties.distinct,
+        "groups": ties.groups,
+        "largest": ties.largest,
+        "tied_rows": ties.tied_rows,
+        "cube_sum": str(ties.cube_sum),
+        "sizes": [size for size in ties.sizes if size > 1],
+        **share,
+    }
+
+
+def _check(outcome: CheckOutcome) -> dict[str, Plain]:
+    limit: dict[str, Plain] = {} if outcome.limit is None else {"limit": outcome.limit.exact}
+    found: dict[str, Plain] = {} if outcome.found is None else {"found": outcome.found.exact}
+    return {"state": outcome.state, "reason": outcome.reason, "withholds": outcome.withholds, **limit, **found}
+
+
+def _association(result: AssociationAnalysis, finding: Finding) -> dict[str, Plain]:
+    smallest: dict[str, Plain] = {}
+    if result.smallest_attainable_p is not None:
+        smallest = {"smallest_attainable_p": filed(result.smallest_attainable_p)}
+    return {
+        **screened_to_plain(result.screened, result.checks),
+        "coefficient": result.screened.spec.coefficient,
+        "estimate": _estimate(result),
+        "test": _test(result),
+        "interval": _interval(result),
+        "comparisons": _comparisons(result),
+        "finding": _finding(finding),
+        "worksheet": _worksheet(result.screened),
+        **smallest,
+    }
+
+
+def _estimate(result: AssociationAnalysis) -> dict[str, Plain]:
+    estimate = result.estimate
+    match estimate:
+        case NotEstimable(reason):
+            return {"state": "not estimable", "reason": reason}
+        case Withheld(reason):
+            return {"state": "withheld", "reason": reason}
+        case Estimate():
+            coefficient = estimate.coefficient
+            plain: dict[str, Plain] = {
+                "state": "estimated",
+                "n": coefficient.n,
+                "value": coefficient.decimal_text(),
+                "numerator": str(coefficient.numerator),
+                "x_square": str(coefficient.x_square),
+                "y_square": str(coefficient.y_square),
+            }
+            if estimate.corrected is not None and estimate.squared_differences is not None:
+                plain["squared_differences"] = exact_decimal(estimate.squared_differences)
+                plain["x_term"] = exact_decimal(estimate.corrected.x_term)
+                plain["y_term"] = exact_decimal(estimate.corrected.y_term)
+                plain["corrected_form"] = estimate.corrected.decimal_text
+            return plain
+
+
+def _test(result: AssociationAnalysis) -> dict[str, Plain]:
+    test = result.test
+    match test:
+        case NotEstimable(reason):
+            return {"state": "not estimable", "reason": reason}
+        case Withheld(reason):
+            return {"state": "withheld", "reason": reason}
+        case RankTest():
+            tails = test.tails
+            plain: dict[str, Plain] = {
+                "state": "tested",
+                "method": tails.method,
+                "why": test.choice.reason,
+                "direction": test.direction,
+                "count": str(tails.count(test.direction)),
+                "of": str(tails.of),
+                "count_greater": str(tails.greater),
+                "count_less": str(tails.less),
+                "p": filed(test.p),
+                "p_greater": filed(tails.p("greater")),
+                "p_less": filed(tails.p("less")),
+            }
+            if test.p_interval is not None:
+                plain["p_low"], plain["p_high"] = filed(test.p_interval[0]), filed(test.p_interval[1])
+            return plain
+
+
+def _interval(result: AssociationAnalysis) -> dict[str, Plain]:
+    interval = result.interval
+    if not isinstance(interval, Interval):
+        return {"state": "none", "reason": interval.reason}
+    return {
+        "state": "given",
+        "low": filed(interval.low),
+        "high": filed(interval.high),
+        "level": str(interval.level),
+        "by": interval.method,
+        "cap_binds": interval.cap_binds,
+    }
+
+
+def _comparisons(result: AssociationAnalysis) -> dict[str, Plain]:
+    plain: dict[str, Plain] = {}
+    comparisons = result.comparisons
+    if comparisons.t_value_p is not None:
+        plain["t_value_p"] = filed(comparisons.t_value_p)
+    if comparisons.pearson is not None:
+        plain["pearson"] = filed(comparisons.pearson)
+    if comparisons.doubled_p is not None:
+        plain["doubled_p"] = filed(comparisons.doubled_p)
+    if isinstance(result.estimate, Estimate) and result.estimate.short_form is not None:
+        plain["short_form"] = filed(result.estimate.short_form)
+    return plain
+
+
+def _finding(finding: Finding) -> dict[str, Plain]:
+    plain: dict[str, Plain] = {"word": finding.word or "no finding", "basis": finding.basis}
+    if finding.p_adjusted is not None:
+        plain["p_adjusted"] = filed(finding.p_adjusted)
+    return plain
+
+
+def _worksheet(screened: Screened) -> dict[str, Plain]:
+    differences = [row.x_doubled_rank - row.y_doubled_rank for row in screened.rows]
+    return {
+        "row": [row.row for row in screened.rows],
+        "x": [row.x_literal for row in screened.rows],
+        "y": [row.y_literal for row in screened.rows],
+        "rank_x": [half(row.x_doubled_rank) for row in screened.rows],
+        "rank_y": [half(row.y_doubled_rank) for row in screened.rows],
+        "difference": [half(difference) for difference in differences],
+        "squared": [exact_decimal(Fraction(difference * difference, 4)) for difference in differences],
+    }

@@ -1,0 +1,212 @@
+"""The truth of a run: everything the engine found, at full precision, as frozen values.
+
+An association that cannot be estimated or tested keeps its place: the part that is missing is a value of its
+own type with the reason in words, so that forgetting the case is a type error.
+"""
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from decimal import Decimal
+from fractions import Fraction
+from typing import Literal, TypeAlias
+
+from rankdocket.stats.choose_null import NullChoice
+from rankdocket.stats.coefficient import Coefficient
+from rankdocket.stats.interval import Interval, NoInterval
+from rankdocket.stats.null import TailCounts
+from rankdocket.stats.ranks import TieGroups
+from rankdocket.stats.rho import TieCorrectedForm
+from rankdocket.study.spec import AssociationSpec, StudySpec
+from rankdocket.study.table import StudyData
+from rankdocket.vocabulary import CheckState, Direction, FindingWord
+
+
+@dataclass(frozen=True, slots=True)
+class NotEstimable:
+    """No coefficient exists for these rows; ``reason`` says why, as a sentence part without digits."""
+
+    reason: str
+
+
+@dataclass(frozen=True, slots=True)
+class Withheld:
+    """Something could be computed and the plan does not allow it to be given; ``reason`` says why."""
+
+    reason: str
+
+
+@dataclass(frozen=True, slots=True)
+class LeftOutRow:
+    """A row that the plan leaves out: its line in the file and the plan's reason."""
+
+    row: int
+    reason: str
+
+
+@dataclass(frozen=True, slots=True)
+class RowFlow:
+    """From the rows read to the rows used.
+
+    ``read`` = len(``left_out``) + ``missing_x`` + ``missing_y`` + ``missing_both`` + ``complete``; the three missing
+    counts concern rows not left out and exclude one another.
+    """
+
+    read: int
+    left_out: tuple[LeftOutRow, ...]
+    missing_x: int
+    missing_y: int
+    missing_both: int
+    complete: int
+
+
+@dataclass(frozen=True, slots=True)
+class CompleteRow:
+    """One complete row: its line in the file, both cells as received, both exact values, both doubled midranks."""
+
+    row: int
+    x_literal: str
+    y_literal: str
+    x: Decimal
+    y: Decimal
+    x_doubled_rank: int
+    y_doubled_rank: int
+
+
+@dataclass(frozen=True, slots=True)
+class Screened:
+    """An association's rows, selected first and ranked second, before anything joint is computed."""
+
+    spec: AssociationSpec
+    flow: RowFlow
+    rows: tuple[CompleteRow, ...]
+    x_ties: TieGroups
+    y_ties: TieGroups
+
+
+@dataclass(frozen=True, slots=True)
+class Measure:
+    """A figure of a requirement: its exact value as text and how it is printed."""
+
+    exact: str
+    kind: Literal["count", "share", "percent", "p"]
+
+
+@dataclass(frozen=True, slots=True)
+class CheckOutcome:
+    """What one requirement check found for one association.
+
+    Attributes
+    ----------
+    key
+        The check.
+    state
+        met, doubtful, not met or not examined.
+    limit, found
+        The plan's limit and the figure that was held against it, where there are such figures.
+    reason
+        A sentence part in words, without digits.
+    withholds
+        What the plan withholds because of it: nothing, the test, or the estimate and the test.
+    """
+
+    key: str
+    state: CheckState
+    limit: Measure | None
+    found: Measure | None
+    reason: str
+    withholds: Literal["nothing", "test", "all"] = "nothing"
+
+
+@dataclass(frozen=True, slots=True)
+class Estimate:
+    """A coefficient with what a second person needs to recompute it.
+
+    ``squared_differences``, ``corrected`` and ``short_form`` belong to Spearman's rho and are ``None`` for tau-b.
+    """
+
+    coefficient: Coefficient
+    squared_differences: Fraction | None
+    corrected: TieCorrectedForm | None
+    short_form: Fraction | None
+
+
+@dataclass(frozen=True, slots=True)
+class RankTest:
+    """A test against the null that rows of x and y are unrelated.
+
+    Attributes
+    ----------
+    direction
+        The tail or tails that the plan asks for.
+    tails
+        Counts in all of them.
+    p
+        The exact value ``count/of``, or (b + 1)/(B + 1) from drawn permutations.
+    p_interval
+        For drawn permutations the interval of p at the study's confidence level, else ``None``.
+    """
+
+    direction: Direction
+    choice: NullChoice
+    tails: TailCounts
+    p: Fraction
+    p_interval: tuple[float, float] | None
+
+
+@dataclass(frozen=True, slots=True)
+class Comparisons:
+    """Values that other habits would have given; no finding rests on them.
+
+    ``pearson`` is ``None`` unless both variables are numbers.
+    """
+
+    t_value_p: float | None
+    pearson: float | None
+    doubled_p: Fraction | None
+
+
+@dataclass(frozen=True, slots=True)
+class AssociationAnalysis:
+    """Everything found for one association."""
+
+    screened: Screened
+    checks: tuple[CheckOutcome, ...]
+    estimate: Estimate | Withheld | NotEstimable
+    test: RankTest | Withheld | NotEstimable
+    interval: Interval | NoInterval
+    comparisons: Comparisons
+    smallest_attainable_p: Fraction | None
+
+
+FindingBasis: TypeAlias = Literal["family", "own p-value", "outside the family"]
+
+
+@dataclass(frozen=True, slots=True)
+class Finding:
+    """What the plan's rule makes of one association.
+
+    Attributes
+    ----------
+    word
+        One of the fixed list, or ``None`` for an association outside the family, for which no finding is stated.
+    basis
+        Whether the adjusted p of the family decided, the association's own p, or nothing did.
+    p_adjusted
+        The adjusted p of a family member whose p is given.
+    """
+
+    word: FindingWord | None
+    basis: FindingBasis
+    p_adjusted: Fraction | None
+
+
+@dataclass(frozen=True, slots=True)
+class Analysis:
+    """A whole run."""
+
+    spec: StudySpec
+    data: StudyData
+    results: Mapping[str, AssociationAnalysis]
+    findings: Mapping[str, Finding]
+    family: tuple[str, ...]
+    """Names of the associations whose p-values are adjusted together, in plan order."""

@@ -1,0 +1,57 @@
+"""The command ``rankdocket``: which command, which exit status; the work is done in the workflow."""
+
+import os
+import sys
+from typing import Final, NoReturn
+
+import click
+
+from rankdocket.cli.help import OfficeCommand, OfficeGroup
+from rankdocket.cli.issue import issue_command
+from rankdocket.cli.output import EXIT_USAGE, fail_usage
+from rankdocket.cli.schema import schema_command
+from rankdocket.cli.screen import screen_command
+from rankdocket.cli.verify import verify_command
+
+EXIT_INTERRUPTED: Final = 130
+
+COMMANDS: Final[tuple[OfficeCommand, ...]] = (screen_command, issue_command, verify_command, schema_command)
+
+
+@click.group(
+    cls=OfficeGroup,
+    example='rankdocket issue studies/first-look --reason "first issue"',
+    invoke_without_command=True,
+    context_settings={"help_option_names": ["--help"]},
+)
+@click.option("--version", is_flag=True, help="Print the version and stop.")
+@click.pass_context
+def rankdocket(context: click.Context, version: bool) -> None:
+    """Rank correlation studies: from one spec file to a numbered report that stands up to a recheck."""
+    if version:
+        from importlib.metadata import version as version_of
+
+        click.echo(f"rankdocket {version_of('rankdocket')}")
+    elif context.invoked_subcommand is None:
+        click.echo(context.get_help())
+
+
+for _command in COMMANDS:
+    rankdocket.add_command(_command)
+
+
+def main() -> NoReturn:
+    """Run the command line and end the process with its exit status."""
+    try:
+        status = rankdocket.main(standalone_mode=False, prog_name="rankdocket")
+    except click.UsageError as error:
+        fail_usage(error)
+        status = EXIT_USAGE
+    except (KeyboardInterrupt, click.Abort):
+        click.echo("Interrupted: nothing was sealed.", err=True)
+        status = EXIT_INTERRUPTED
+    except BrokenPipeError:
+        # The reader of our output has gone; Python would complain again while closing it.
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        status = 0
+    sys.exit(status if isinstance(status, int) else 0)

@@ -1,0 +1,26 @@
+"""What a command refuses although the command line could be read."""
+
+from rankdocket.errors import InputError, Place
+from rankdocket.study.messages import Message, fault
+
+
+def require_reason(reason: str) -> None:
+    """Refuse a blank reason: it is printed on the control page and filed.
+
+    Raises
+    ------
+    InputError
+        If the reason holds no word.
+    """
+    if not reason.strip():
+        raise InputError(
+            (
+                fault(
+                    Place("--reason"),
+                    "",
+                    Message.NOTHING_WRITTEN,
+                    "an edition needs a reason, and this one is blank.",
+                    'Write: --reason "first issue". Nothing was computed.',
+                ),
+            )
+        )

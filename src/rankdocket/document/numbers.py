@@ -1,0 +1,175 @@
+"""Value to printed number: the only rounding in the house.
+
+Every number of a report is looked up by its address in the plain analysis and rounded once, half to even, from
+the value filed there, so that what is printed and what is filed cannot part.  A display never changes the side
+of alpha on which a p-value lies.
+"""
+
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
+from decimal import ROUND_HALF_EVEN, Context, Decimal
+from fractions import Fraction
+from typing import Final
+
+from rankdocket.canonical import Plain
+from rankdocket.document.model import Number
+from rankdocket.vocabulary import NumberStyle
+
+MINUS: Final = "\u2212"
+NARROW_SPACE: Final = "\u202f"
+MOST_DECIMALS: Final = 15
+"""A filed value has 12 significant digits; more decimals than this never separate two of them in print."""
+
+NEAR_ONE: Final = Decimal("0.95")
+"""From here on a coefficient gets one more decimal (JCGM 100:2008, 7.2.6: three digits near unity)."""
+
+FEW_ROWS: Final = 100
+"""Below this many rows a share is printed without decimals (AMA Manual of Style, 11th edition, from memory)."""
+
+_WIDE: Final = Context(prec=400, rounding=ROUND_HALF_EVEN)
+
+
+def look_up(plain: Plain, key: str) -> Plain:
+    """Return the value at the address ``key`` (keys and list positions joined by ``/``).
+
+    Raises
+    ------
+    KeyError
+        If nothing stands there.
+    """
+    found = plain
+    for step in key.split("/"):
+        if isinstance(found, Mapping):
+            found = found[step]
+        elif isinstance(found, Sequence) and not isinstance(found, str):
+            found = found[int(step)]
+        else:
+            raise KeyError(key)
+    return found
+
+
+@dataclass(frozen=True, slots=True)
+class Numbers:
+    """Makes :class:`Number` values from one plain analysis in one printing style.
+
+    Attributes
+    ----------
+    plain
+        The analysis as filed.
+    coefficient_decimals, p_value_decimals
+        Decimals of the study's report.
+    style
+        Whether a zero stands before the decimal point of coefficients and p-values.
+    alpha
+        The level of the study's decision rule.
+    """
+
+    plain: Plain
+    coefficient_decimals: int
+    p_value_decimals: int
+    style: NumberStyle
+    alpha: Decimal
+
+    def _exact(self, key: str) -> str:
+        value = look_up(self.plain, key)
+        if isinstance(value, bool) or not isinstance(value, (str, int)):
+            raise TypeError(f"{key} holds no number: {value!r}")
+        return str(value)
+
+    def whole(self, key: str) -> Number:
+        """Return a count, with commas from a thousand on."""
+        exact = self._exact(key)
+        return Number(key, exact, _signed(f"{int(exact):,}"))
+
+    def label(self, key: str) -> Number:
+        """Return a whole number that names something (a line of a file, a seed): no separators."""
+        exact = self._exact(key)
+        return Number(key, exact, exact)
+
+    def as_filed(self, key: str) -> Number:
+        """Return a decimal with all its digits (a rank, a level, a limit of the plan)."""
+        exact = self._exact(key)
+        return Number(key, exact, _signed(_plain_text(Decimal(exact))))
+
+    def share(self, key: str) -> Number:
+        """Return a filed fraction ``a/b`` as a percentage; fewer than a hundred rows get no decimals."""
+        exact = self._exact(key)
+        value = Fraction(exact)
+        of = int(exact.partition("/")[2] or FEW_ROWS)
+        decimals = 0 if of < FEW_ROWS else 1
+        return Number(key, exact, f"{_rounded(_decimal(value) * 100, decimals)}%")
+
+    def percent(self, key: str) -> Number:
+        """Return a filed decimal between 0 and 1 as a percentage with the digits that it has."""
+        exact = self._exact(key)
+        return Number(key, exact, f"{_plain_text(Decimal(exact) * 100)}%")
+
+    def decimals_for(self, key: str) -> int:
+        """Return the decimals of the coefficient at ``key``, which its interval shares."""
+        more = abs(Decimal(self._exact(key))) >= NEAR_ONE
+        return max(self.coefficient_decimals, 3) if more else self.coefficient_decimals
+
+    def coefficient(self, key: str, decimals: int | None = None) -> Number:
+        """Return a coefficient or a limit of its interval.
+
+        Digits are added until a value that is not 0 or 1 in size is not printed as if it were.
+        """
+        exact = self._exact(key)
+        value = Decimal(exact)
+        places = self.decimals_for(key) if decimals is None else decimals
+        while places < MOST_DECIMALS and _rounded(value, places).copy_abs() in (0, 1) and abs(value) not in (0, 1):
+            places += 1
+        return Number(key, exact, self._styled(_rounded(value, places)))
+
+    def p_value(self, key: str) -> Number:
+        """Return a p-value: never 0, never on the other side of alpha, "(exactly)" when it equals alpha."""
+        exact = self._exact(key)
+        value = Decimal(exact)
+        smallest = Decimal(1).scaleb(-self.p_value_decimals)
+        if value == self.alpha:
+            return Number(key, exact, f"{self._styled(self.alpha)} (exactly)")
+        if value == 1:
+            return Number(key, exact, "1")
+        if value < smallest <= self.alpha:
+            return Number(key, exact, f"<{NARROW_SPACE}{self._styled(smallest)}")
+        places = self.p_value_decimals
+        while places < MOST_DECIMALS and self._misleads(_rounded(value, places), value):
+            places += 1
+        return Number(key, exact, self._styled(_rounded(value, places)))
+
+    def comparison_p(self, key: str) -> Number:
+        """Return an approximate p-value that no finding rests on: four decimals, or a power of ten when smaller."""
+        exact = self._exact(key)
+        value = Decimal(exact)
+        places = self.p_value_decimals + 1
+        if value and _rounded(value, places) == 0:
+            return Number(key, exact, f"<{NARROW_SPACE}{self._styled(Decimal(1).scaleb(-places))}")
+        return Number(key, exact, self._styled(_rounded(value, places)))
+
+    def _misleads(self, printed: Decimal, value: Decimal) -> bool:
+        crossed = (printed <= self.alpha) != (value <= self.alpha) or printed == self.alpha
+        return crossed or printed == 0 or printed == 1
+
+    def _styled(self, value: Decimal) -> str:
+        text = f"{value:f}"
+        if self.style == "no leading zero" and abs(value) < 1:
+            text = text.replace("0.", ".", 1)
+        return _signed(text)
+
+
+def _rounded(value: Decimal, places: int) -> Decimal:
+    quantised = value.quantize(Decimal(1).scaleb(-places), context=_WIDE)
+    return quantised.copy_abs() if quantised == 0 else quantised
+
+
+def _decimal(value: Fraction) -> Decimal:
+    return _WIDE.divide(Decimal(value.numerator), Decimal(value.denominator))
+
+
+def _plain_text(value: Decimal) -> str:
+    text = f"{value:f}"
+    return text.rstrip("0").rstrip(".") if "." in text else text
+
+
+def _signed(text: str) -> str:
+    return text.replace("-", MINUS)

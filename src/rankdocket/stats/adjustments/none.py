@@ -1,0 +1,17 @@
+"""No adjustment: each p-value stands for its own question."""
+
+from fractions import Fraction
+from typing import Final
+
+from rankdocket.references import Description
+from rankdocket.stats.adjustment import AdjustmentRule
+
+
+def unadjusted(p_values: tuple[Fraction, ...]) -> tuple[Fraction, ...]:
+    """Return the p-values as they are."""
+    return p_values
+
+
+NONE: Final = AdjustmentRule(
+    "none", "none", unadjusted, Description("The p-values were not adjusted for the number of associations.")
+)

@@ -1,0 +1,43 @@
+"""The closed lists of the house: each word that a spec, a record and a report may use, once.
+
+A ``Literal`` is the list for the type checker; the tuple beside it is the same list, in report order, for
+schemas and messages.
+"""
+
+from typing import Final, Literal, TypeAlias, get_args
+
+Scale: TypeAlias = Literal["measured", "count", "ordered", "already ranked", "two-valued"]
+Role: TypeAlias = Literal["primary", "secondary", "exploratory"]
+ExpectedSign: TypeAlias = Literal["positive", "negative", "either"]
+CoefficientName: TypeAlias = Literal["Spearman rho", "Kendall tau-b"]
+Sidedness: TypeAlias = Literal["two-sided", "one-sided"]
+Adjustment: TypeAlias = Literal["Holm", "none"]
+Family: TypeAlias = Literal["primary", "primary and secondary", "all", "none"]
+PBy: TypeAlias = Literal["exact when possible", "permutation"]
+IfNotMet: TypeAlias = Literal["estimate without test", "withhold all", "test with caveat"]
+Reader: TypeAlias = Literal["client", "reviewer", "regulator", "court"]
+Signature: TypeAlias = Literal["prepared", "checked", "released"]
+NumberStyle: TypeAlias = Literal["leading zero", "no leading zero"]
+
+CheckState: TypeAlias = Literal["met", "doubtful", "not met", "not examined"]
+FindingWord: TypeAlias = Literal["shown", "shown, opposite sign", "not shown", "withheld", "not estimable"]
+Status: TypeAlias = Literal["draft", "for review", "issued", "superseded", "withdrawn"]
+Direction: TypeAlias = Literal["greater", "less", "two-sided"]
+
+SCALES: Final = get_args(Scale)
+ROLES: Final = get_args(Role)
+EXPECTED_SIGNS: Final = get_args(ExpectedSign)
+COEFFICIENTS: Final = get_args(CoefficientName)
+SIDEDNESS: Final = get_args(Sidedness)
+ADJUSTMENTS: Final = get_args(Adjustment)
+FAMILIES: Final = get_args(Family)
+P_BY: Final = get_args(PBy)
+IF_NOT_MET: Final = get_args(IfNotMet)
+READERS: Final = get_args(Reader)
+SIGNATURES: Final = get_args(Signature)
+NUMBER_STYLES: Final = get_args(NumberStyle)
+CHECK_STATES: Final = get_args(CheckState)
+FINDINGS: Final = get_args(FindingWord)
+
+NOT_APPLICABLE: Final = "not applicable"
+"""What a spec writes where a question about the rows does not arise; it is an answer, silence is not."""

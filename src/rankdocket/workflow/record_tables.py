@@ -1,0 +1,112 @@
+"""The tables of a record copy that a stranger's spreadsheet opens: rows used, ranks, results."""
+
+import csv
+import io
+from collections.abc import Iterable, Mapping
+from decimal import Decimal, InvalidOperation
+from typing import Final
+
+from rankdocket.analysis.filing import filed
+from rankdocket.analysis.results import Analysis, AssociationAnalysis, Estimate, RankTest
+from rankdocket.canonical import Plain
+from rankdocket.document.numbers import look_up
+from rankdocket.stats.interval import Interval
+
+_FORMULA_SIGNS: Final = ("=", "+", "-", "@", "\t", "\r")
+_ABSENT: Final = ""
+
+
+def record_tables(analysis: Analysis, plain: Mapping[str, Plain]) -> dict[str, bytes]:
+    """Return file name → CSV bytes (RFC 4180 with LF, UTF-8)."""
+    tables = {"rows.csv": _rows(analysis), "results.csv": _results(analysis, plain)}
+    for name, result in analysis.results.items():
+        tables[f"ranks-{name}.csv"] = _ranks(name, result, plain)
+    return tables
+
+
+def _rows(analysis: Analysis) -> bytes:
+    head = ("association", "row", "x", "y", "x_value", "y_value")
+    return _csv(
+        head,
+        (
+            (name, str(row.row), row.x_literal, row.y_literal, filed_value(row.x), filed_value(row.y))
+            for name, result in analysis.results.items()
+            for row in result.screened.rows
+        ),
+    )
+
+
+def filed_value(value: Decimal) -> str:
+    """Return an exact value in full, never in exponent form, as a stranger's program reads it."""
+    return f"{value:f}"
+
+
+def _ranks(name: str, result: AssociationAnalysis, plain: Mapping[str, Plain]) -> bytes:
+    columns = ("rank_x", "rank_y", "difference", "squared")
+    at = f"associations/{name}/worksheet"
+    return _csv(
+        ("row", "x", "y", *columns),
+        (
+            (
+                str(row.row),
+                row.x_literal,
+                row.y_literal,
+                *(str(look_up(plain, f"{at}/{column}/{position}")) for column in columns),
+            )
+            for position, row in enumerate(result.screened.rows)
+        ),
+    )
+
+
+def _results(analysis: Analysis, plain: Mapping[str, Plain]) -> bytes:
+    head = (
+        "association", "x", "y", "n", "coefficient", "value", "interval_low", "interval_high", "interval_by",
+        "p", "sidedness", "p_by", "p_adjusted", "finding",
+    )  # fmt: skip
+    return _csv(head, (_result(name, result, analysis, plain) for name, result in analysis.results.items()))
+
+
+def _result(
+    name: str, result: AssociationAnalysis, analysis: Analysis, plain: Mapping[str, Plain]
+) -> tuple[str, ...]:
+    at = f"associations/{name}"
+    spec, finding = result.screened.spec, analysis.findings[name]
+    interval = result.interval if isinstance(result.interval, Interval) else None
+    tested = isinstance(result.test, RankTest)
+    return (
+        name,
+        spec.x,
+        spec.y,
+        str(result.screened.flow.complete),
+        spec.coefficient,
+        str(look_up(plain, f"{at}/estimate/value")) if isinstance(result.estimate, Estimate) else _ABSENT,
+        filed(interval.low) if interval else _ABSENT,
+        filed(interval.high) if interval else _ABSENT,
+        interval.method if interval else _ABSENT,
+        str(look_up(plain, f"{at}/test/p")) if tested else _ABSENT,
+        analysis.spec.inference.sidedness,
+        str(look_up(plain, f"{at}/test/method")) if tested else _ABSENT,
+        filed(finding.p_adjusted) if finding.p_adjusted is not None else _ABSENT,
+        finding.word or "no finding",
+    )
+
+
+def _csv(head: tuple[str, ...], rows: Iterable[tuple[str, ...]]) -> bytes:
+    text = io.StringIO()
+    writer = csv.writer(text, lineterminator="\n")
+    writer.writerow(head)
+    for row in rows:
+        writer.writerow([_defused(cell) for cell in row])
+    return text.getvalue().encode("utf-8")
+
+
+def _defused(cell: str) -> str:
+    """Text that a spreadsheet would run as a formula gets an apostrophe; a number never does."""
+    if not cell.startswith(_FORMULA_SIGNS):
+        return cell
+    try:
+        Decimal(cell)
+    except InvalidOperation:
+        return f"'{cell}"
+    return cell
+

@@ -1,0 +1,123 @@
+"""A screening as numbered sentences for a terminal, in our own order."""
+
+from collections.abc import Iterator
+
+from rankdocket.analysis.checks import CHECKS
+from rankdocket.analysis.results import CheckOutcome, Measure
+from rankdocket.analysis.variables import VariableSummary, summarise
+from rankdocket.document.numbers import Numbers
+from rankdocket.workflow.screen import Screening
+
+_LABELS = {check.key: check.label for check in CHECKS}
+
+
+def screening_text(screening: Screening) -> str:
+    """Return the screening page."""
+    sections = (
+        ("What arrived", _arrived(screening)),
+        ("How it was read", _read(screening)),
+        ("Each variable alone", _variables(screening)),
+        ("Keys and partners", iter(("No table is joined with another in this study.",))),
+        ("Questions to the client", _questions(screening)),
+        ("What this sample could show", _could_show(screening)),
+    )
+    lines: list[str] = [f"Screening of {screening.study.spec.study.number}: no joint result is shown."]
+    number = 0
+    for title, sentences in sections:
+        lines += ["", title]
+        for sentence in sentences:
+            number += 1
+            lines.append(f"  {number}. {sentence}")
+    return "\n".join(lines)
+
+
+def _arrived(screening: Screening) -> Iterator[str]:
+    for name, table in screening.study.data.tables.items():
+        received = f", received {table.spec.received_on}" if table.spec.received_on else ""
+        yield (
+            f"Table {name}: {table.source.path}, {table.source.size:,} bytes{received}, SHA-256 {table.source.digest[:12]}…, "
+            f"{len(table.row_numbers):,} rows."
+        )
+
+
+def _read(screening: Screening) -> Iterator[str]:
+    for name, table in screening.study.data.tables.items():
+        codes = ", ".join(f"{code or 'blank'!s} ({meaning})" for code, meaning in table.spec.missing_codes.items())
+        yield (
+            f"Table {name}: {table.spec.text_encoding}, decimal mark {table.spec.decimal_mark}, names from line "
+            f"{table.spec.column_names_in_row}, missing: {codes or 'no code declared'}."
+        )
+    rows = screening.study.spec.rows
+    yield f"One row is {rows.one_row_is}. Repeated within: {rows.repeated_within or 'not stated'}. Time order: {rows.time_order or 'not stated'}."
+
+
+def _variables(screening: Screening) -> Iterator[str]:
+    for variable in screening.study.data.variables.values():
+        found = summarise(variable, screening.study.spec, screening.study.data)
+        yield f"{variable.spec.label}: {_summary(found, variable.spec.unit)}"
+
+
+def _summary(found: VariableSummary, unit: str | None) -> str:
+    missing = ", ".join(f"{meaning} {rows}" for meaning, rows in found.missing.items()) or "none declared"
+    in_unit = f" {unit}" if unit and unit != "1" else ""
+    spread = (
+        f" Smallest, quartiles, largest: {' · '.join(found.five)}{in_unit}." if found.five else " No value is present."
+    )
+    return f"n {found.n}; missing: {missing}; {found.distinct} distinct values, largest tie group {found.largest_tie}.{spread}"
+
+
+def _questions(screening: Screening) -> Iterator[str]:
+    asked = False
+    for name, outcomes in screening.outcomes.items():
+        for outcome in outcomes:
+            if outcome.state in ("not met", "doubtful"):
+                asked = True
+                yield f"{name}: {_LABELS[outcome.key].lower()} is {outcome.state}: {outcome.reason}{_figures(screening, name, outcome)}."
+    if not asked:
+        yield "None: every requirement that can be looked at now is met."
+
+
+def _could_show(screening: Screening) -> Iterator[str]:
+    for name, outcomes in screening.outcomes.items():
+        rows = screening.screened[name].flow.complete
+        attainable = next((item for item in outcomes if item.key == "attainable_p" and item.found is not None), None)
+        if attainable is None:
+            yield f"{name}: {rows} complete rows; no rank correlation exists for them."
+        else:
+            yield (
+                f"{name}: {rows} complete rows; the smallest possible p is "
+                f"{_printed(screening, name, attainable, attainable.found)}."
+            )
+
+
+def _figures(screening: Screening, name: str, outcome: CheckOutcome) -> str:
+    if outcome.found is None or outcome.limit is None:
+        return ""
+    return (
+        f" (found {_printed(screening, name, outcome, outcome.found)}, "
+        f"limit {_printed(screening, name, outcome, outcome.limit)})"
+    )
+
+
+def _printed(screening: Screening, name: str, outcome: CheckOutcome, measure: Measure | None) -> str:
+    if measure is None:
+        return ""
+    spec = screening.study.spec
+    numbers = Numbers(
+        screening.plain,
+        spec.report.coefficient_decimals,
+        spec.report.p_value_decimals,
+        spec.report.number_style,
+        spec.inference.alpha,
+    )
+    side = "found" if measure is outcome.found else "limit"
+    key = f"associations/{name}/checks/{outcome.key}/{side}"
+    match measure.kind:
+        case "count":
+            return numbers.whole(key).text
+        case "share":
+            return numbers.share(key).text
+        case "percent":
+            return numbers.percent(key).text
+        case "p":
+            return numbers.p_value(key).text if side == "found" else numbers.as_filed(key).text

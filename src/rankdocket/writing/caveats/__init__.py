@@ -1,0 +1,36 @@
+"""The catalogue of caveats, in the order in which a report numbers them."""
+
+from typing import Final
+
+from rankdocket.document.model import CaveatBlock
+from rankdocket.writing.caveat import CaveatRule
+from rankdocket.writing.caveats import requirements, results, study
+from rankdocket.writing.section import NumberedCaveat, Story
+
+CAVEATS: Final[tuple[CaveatRule, ...]] = (
+    requirements.DEPENDENT_ROWS,
+    study.SUPPLIED_WORDS,
+    results.NOT_ESTIMABLE,
+    requirements.REQUIREMENTS,
+    results.STRADDLES_ALPHA,
+    results.TWO_SIDED_RULE,
+    results.TEST_AND_INTERVAL,
+    results.PERFECT,
+    results.SMALL_SAMPLE,
+    study.LEFT_OUT_ROWS,
+    study.INCOMPLETE_ROWS,
+    study.NO_INTERVAL,
+    study.INTERVAL_BASIS,
+    study.ASSOCIATION_ONLY,
+    study.INDEPENDENCE_NULL,
+    study.DECISION,
+)
+
+
+def find_caveats(story: Story) -> tuple[NumberedCaveat, ...]:
+    """Return every caveat of the study, numbered through the report."""
+    found = [(rule, caveat) for rule in CAVEATS for caveat in rule.find(story)]
+    return tuple(
+        NumberedCaveat(CaveatBlock(f"caveat-{number}", number, caveat.prose), caveat.about, rule.weight)
+        for number, (rule, caveat) in enumerate(found, start=1)
+    )

@@ -1,0 +1,88 @@
+"""Requirements that were not met or are doubtful, each with what follows from it."""
+
+from rankdocket.analysis.checks import CHECKS
+from rankdocket.analysis.results import CheckOutcome
+from rankdocket.document.model import Number, Prose
+from rankdocket.document.prose import only, prose
+from rankdocket.writing.caveat import CaveatRule, FoundCaveat
+from rankdocket.writing.phrases import address, pointer
+from rankdocket.writing.section import Story
+
+_SHARED = "independence"
+"""The one check whose outcome is the same for every association: it gets a single caveat of its own."""
+
+
+def measure(story: Story, name: str, outcome: CheckOutcome, side: str) -> Number | None:
+    """Return the limit or the found figure of a check as a printed number."""
+    filed = outcome.limit if side == "limit" else outcome.found
+    if filed is None:
+        return None
+    key = address(name, "checks", outcome.key, side)
+    match filed.kind:
+        case "count":
+            return story.numbers.whole(key)
+        case "share":
+            return story.numbers.share(key)
+        case "percent":
+            return story.numbers.percent(key)
+        case "p":
+            return story.numbers.p_value(key) if side == "found" else story.numbers.as_filed(key)
+
+
+def _find(story: Story) -> tuple[FoundCaveat, ...]:
+    found = []
+    for name, result in story.analysis.results.items():
+        for outcome in result.checks:
+            if outcome.state in ("not met", "doubtful") and outcome.key not in (_SHARED, "not_constant"):
+                found.append(FoundCaveat(name, _words(story, name, outcome)))
+    return tuple(found)
+
+
+def _words(story: Story, name: str, outcome: CheckOutcome) -> Prose:
+    check = next(check for check in CHECKS if check.key == outcome.key)
+    limit, figure = measure(story, name, outcome, "limit"), measure(story, name, outcome, "found")
+    held = (
+        prose(" (found {found}, limit {limit})", found=figure, limit=limit)
+        if figure is not None and limit is not None
+        else only("")
+    )
+    match outcome.withholds:
+        case "nothing":
+            after = "The result stands with this reservation."
+        case "test":
+            after = "The estimate is given without a test."
+        case "all":
+            after = "Neither an estimate nor a test is given."
+    return prose(
+        "{name}: the requirement “{label}” is {state}: {reason}{held}. {after}",
+        name=pointer(name),
+        label=check.label.lower(),
+        state=outcome.state,
+        reason=outcome.reason,
+        held=held,
+        after=after,
+    )
+
+
+def _find_shared(story: Story) -> tuple[FoundCaveat, ...]:
+    outcomes = {
+        outcome.reason: outcome
+        for result in story.analysis.results.values()
+        for outcome in result.checks
+        if outcome.key == _SHARED and outcome.state == "not met"
+    }
+    return tuple(
+        FoundCaveat(
+            None,
+            prose(
+                "Every test is withheld: {reason}. Rows that belong together, treated as if they did not, "
+                "give false findings far more often than alpha says.",
+                reason=reason,
+            ),
+        )
+        for reason in outcomes
+    )
+
+
+DEPENDENT_ROWS = CaveatRule("dependent_rows", 100, _find_shared)
+REQUIREMENTS = CaveatRule("requirements", 60, _find)

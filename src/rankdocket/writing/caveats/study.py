@@ -1,0 +1,164 @@
+"""Caveats about the whole study: supplied words, rows left out, what an interval rests on, and the usual cautions."""
+
+from rankdocket.analysis.results import Estimate
+from rankdocket.document.model import Emphasis, Link, Supplied
+from rankdocket.document.prose import lint, listed, only, prose
+from rankdocket.stats.interval import Interval
+from rankdocket.writing.caveat import CaveatRule, FoundCaveat
+from rankdocket.writing.citations import cite
+from rankdocket.writing.phrases import address, pointer
+from rankdocket.writing.section import Story
+
+
+def supplied_texts(story: Story) -> tuple[tuple[str, str], ...]:
+    """Return where each supplied text stands in the spec, and the text."""
+    spec = story.analysis.spec
+    texts = [("study.title", spec.study.title), ("study.question", spec.study.question)]
+    texts += [(f"associations.{name}.question", association.question) for name, association in spec.associations.items()]
+    texts += [(f"variables.{name}.label", variable.label) for name, variable in spec.variables.items()]
+    if spec.rows.independent_because is not None:
+        texts.append(("rows.independent_because", spec.rows.independent_because))
+    texts.append(("the reason for this edition", story.facts.reason))
+    return tuple(texts)
+
+
+def _supplied(story: Story) -> tuple[FoundCaveat, ...]:
+    found = []
+    for where, text in supplied_texts(story):
+        hits = lint(text)
+        if hits:
+            found.append(
+                FoundCaveat(
+                    None,
+                    prose(
+                        "The words supplied at {where} say {phrases}. That is more than a rank correlation can support; "
+                        "they are printed as supplied and are not a result.",
+                        where=Emphasis(where, "code"),
+                        phrases=listed(tuple(prose("“{phrase}”", phrase=Supplied(hit.phrase)) for hit in hits)),
+                    ),
+                )
+            )
+    return tuple(found)
+
+
+def _incomplete(story: Story) -> tuple[FoundCaveat, ...]:
+    names = tuple(
+        name
+        for name, result in story.analysis.results.items()
+        if result.screened.flow.missing_x + result.screened.flow.missing_y + result.screened.flow.missing_both
+    )
+    if not names:
+        return ()
+    parts = tuple(
+        prose(
+            "{name} {lost} of {rows}",
+            name=pointer(name),
+            lost=story.numbers.share(address(name, "checks", "missing_share", "found")),
+            rows=story.numbers.whole(address(name, "rows", "read")),
+        )
+        for name in names
+        if any(outcome.key == "missing_share" and outcome.found for outcome in story.analysis.results[name].checks)
+    )
+    return (
+        FoundCaveat(
+            None,
+            prose(
+                "Rows lacking a value were set aside for the association concerned ({parts} rows read). That is harmless "
+                "only if values are missing for reasons that have nothing to do with what would have been observed.",
+                parts=listed(parts),
+            ),
+        ),
+    )
+
+
+def _left_out(story: Story) -> tuple[FoundCaveat, ...]:
+    for name, result in story.analysis.results.items():
+        if result.screened.flow.left_out:
+            return (
+                FoundCaveat(
+                    None,
+                    prose(
+                        "The plan leaves out {count} of {read} rows; each is listed with its reason in section {section}.",
+                        count=story.numbers.whole(address(name, "rows", "left_out")),
+                        read=story.numbers.whole(address(name, "rows", "read")),
+                        section=Link("data", "2"),
+                    ),
+                ),
+            )
+    return ()
+
+
+def _interval_rests_on(story: Story) -> tuple[FoundCaveat, ...]:
+    if not any(isinstance(result.interval, Interval) for result in story.analysis.results.values()):
+        return ()
+    return (
+        FoundCaveat(
+            None,
+            prose(
+                "The intervals rest on a variance that holds for normal-type dependence {cite}. Where the spread of one "
+                "variable changes with the other, or nearly perfect order comes with a few gross errors, or values are "
+                "coarsely tied, they cover the true value less often than their level says.",
+                cite=cite("bonett2000"),
+            ),
+        ),
+    )
+
+
+def _no_interval_for_tau(story: Story) -> tuple[FoundCaveat, ...]:
+    return tuple(
+        FoundCaveat(name, prose("{name}: {reason}.", name=pointer(name), reason=result.interval.reason))
+        for name, result in story.analysis.results.items()
+        if isinstance(result.estimate, Estimate) and not isinstance(result.interval, Interval)
+    )
+
+
+def _association_only(story: Story) -> tuple[FoundCaveat, ...]:
+    del story  # holds for every rank correlation
+    return (
+        FoundCaveat(
+            None,
+            only(
+                "A rank correlation says that two variables tended to move together in these rows. It does not say why, "
+                "and a third quantity that moves with both can bring it about."
+            ),
+        ),
+    )
+
+
+def _independence_null(story: Story) -> tuple[FoundCaveat, ...]:
+    if not story.analysis.results:
+        return ()
+    return (
+        FoundCaveat(
+            None,
+            prose(
+                "The test is one of independence: under dependence without a common direction it can reject more often "
+                "than alpha says {cite}. The plots are there to be looked at.",
+                cite=cite("diciccio2017"),
+            ),
+        ),
+    )
+
+
+def _decision(story: Story) -> tuple[FoundCaveat, ...]:
+    del story  # holds for every report
+    return (
+        FoundCaveat(
+            None,
+            only(
+                "The statistics here support a decision and do not make it. Decisions about health, safety or law belong "
+                "to those licensed to take them and to the codes that hold locally."
+            ),
+        ),
+    )
+
+
+SUPPLIED_WORDS = CaveatRule("supplied_words", 90, _supplied)
+INCOMPLETE_ROWS = CaveatRule("incomplete_rows", 40, _incomplete)
+LEFT_OUT_ROWS = CaveatRule("left_out_rows", 45, _left_out)
+INTERVAL_BASIS = CaveatRule("interval_basis", 30, _interval_rests_on)
+NO_INTERVAL = CaveatRule("no_interval", 35, _no_interval_for_tau)
+ASSOCIATION_ONLY = CaveatRule("association_only", 20, _association_only)
+INDEPENDENCE_NULL = CaveatRule("independence_null", 15, _independence_null)
+DECISION = CaveatRule("decision", 10, _decision)
+

@@ -1,0 +1,111 @@
+"""Findings in words: what the plan's rule made of an association, claiming no more than the evidence."""
+
+from rankdocket.analysis.results import Estimate, Finding, NotEstimable, RankTest, Withheld
+from rankdocket.document.model import Number, Prose
+from rankdocket.document.prose import only, prose
+from rankdocket.stats.interval import Interval
+from rankdocket.vocabulary import ExpectedSign
+from rankdocket.writing.phrases import address, coefficient_symbol, interval_range, p_equals
+from rankdocket.writing.section import Story
+
+
+def finding_word(finding: Finding) -> str:
+    """Return the finding as it stands in a table."""
+    return finding.word or "no finding stated"
+
+
+def finding_sentence(story: Story, name: str) -> Prose:
+    """Return what the plan's rule makes of an association, as one sentence."""
+    result, finding = story.analysis.results[name], story.analysis.findings[name]
+    if isinstance(result.estimate, NotEstimable):
+        return prose("No rank correlation could be computed: {reason}.", reason=result.estimate.reason)
+    if isinstance(result.estimate, Withheld):
+        return prose("The plan withholds the estimate and the test: {reason}.", reason=result.estimate.reason)
+    if isinstance(result.test, (Withheld, NotEstimable)):
+        return prose("The test is withheld: {reason}. The estimate stands without one.", reason=result.test.reason)
+    if finding.word is None:
+        return only("The plan places this association outside the family, so that no finding is stated for it.")
+    expected = result.screened.spec.hypothesis.expected_sign
+    deciding = deciding_p(story, name)
+    rule = "the adjusted {p} lay {side} alpha, {alpha}" if finding.basis == "family" and _is_adjusted(story) else "{p} lay {side} alpha, {alpha}"
+    alpha = story.numbers.as_filed("inference/alpha")
+    if finding.word == "not shown":
+        return prose(
+            "By the rule of the plan {what} was not shown: " + rule.replace("{side}", "above") + ".{open}",
+            what=_what(expected),
+            p=deciding,
+            alpha=alpha,
+            open=_still_open(story, name),
+        )
+    if finding.word == "shown, opposite sign":
+        return prose(
+            "By the rule of the plan an association was shown, with the sign opposite to the one expected: "
+            + rule.replace("{side}", "at or below") + ".",
+            p=deciding,
+            alpha=alpha,
+        )
+    return prose(
+        "By the rule of the plan {what} was shown: " + rule.replace("{side}", "at or below") + ".",
+        what=_what(expected),
+        p=deciding,
+        alpha=alpha,
+    )
+
+
+def deciding_p(story: Story, name: str) -> Prose:
+    """Return the p-value that decided: the adjusted one of a family member, else the association's own."""
+    key = address(name, "finding", "p_adjusted")
+    if story.analysis.findings[name].p_adjusted is None:
+        key = address(name, "test", "p")
+    return p_equals(story, key)
+
+
+def smallest_of_interest(story: Story, name: str) -> Number | None:
+    """Return the smallest size that the plan calls of interest, where it names one."""
+    if story.analysis.spec.associations[name].hypothesis.smallest_of_interest is None:
+        return None
+    return story.numbers.as_filed(f"inference/smallest_of_interest/{name}")
+
+
+def size_sentence(story: Story, name: str) -> Prose:
+    """Return what the interval says about the smallest size of interest; empty where the plan names none."""
+    result = story.analysis.results[name]
+    size = smallest_of_interest(story, name)
+    if size is None or not isinstance(result.estimate, Estimate) or not isinstance(result.interval, Interval):
+        return only("")
+    limit = float(size.exact)
+    low, high = result.interval.low, result.interval.high
+    symbol = coefficient_symbol(result.screened.spec)
+    if low > limit or high < -limit:
+        template = "The whole interval lies beyond the smallest size of interest, {size}."
+    elif -limit < low and high < limit:
+        template = "The whole interval lies within plus or minus the smallest size of interest, {size}."
+    else:
+        template = "The interval holds values of {symbol} on both sides of the smallest size of interest, {size}."
+        return prose(template, symbol=symbol, size=size)
+    return prose(template, size=size)
+
+
+def _what(expected: ExpectedSign) -> str:
+    match expected:
+        case "positive":
+            return "the expected positive association"
+        case "negative":
+            return "the expected negative association"
+        case "either":
+            return "an association"
+
+
+def _is_adjusted(story: Story) -> bool:
+    return story.analysis.spec.inference.several_tests.adjust != "none"
+
+
+def _still_open(story: Story, name: str) -> Prose:
+    result = story.analysis.results[name]
+    if not isinstance(result.interval, Interval) or not isinstance(result.test, RankTest):
+        return only(" That does not show that there is none.")
+    return prose(
+        " That does not show that there is none: the interval still holds values of {symbol} from {range}.",
+        symbol=coefficient_symbol(result.screened.spec),
+        range=interval_range(story, name),
+    )

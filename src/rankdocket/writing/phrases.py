@@ -1,0 +1,143 @@
+"""Turns of phrase that several sections share: names of variables, an estimate with its interval, a p with its count."""
+
+from rankdocket.analysis.results import AssociationAnalysis, Estimate, RankTest
+from rankdocket.document.model import Emphasis, Link, Prose, Supplied
+from rankdocket.document.prose import joined, listed, only, prose
+from rankdocket.stats.interval import Interval
+from rankdocket.study.spec import AssociationSpec, VariableSpec
+from rankdocket.writing.section import Story
+
+N = Emphasis("n", "italic")
+P = Emphasis("p", "italic")
+EN_DASH_CELL = only("–")
+
+
+def label(variable: VariableSpec) -> Supplied:
+    """Return a variable's label as supplied, to be read inside a sentence."""
+    return Supplied(variable.label)
+
+
+def label_head(variable: VariableSpec) -> Supplied:
+    """Return a variable's label at the head of a cell, a title or an axis."""
+    return Supplied(capitalised(variable.label))
+
+
+def label_with_unit(variable: VariableSpec) -> Supplied:
+    """Return "Clamp load (N)"; a pure number and a variable without unit get the label alone."""
+    if variable.unit is None or variable.unit == "1":
+        return label_head(variable)
+    return Supplied(f"{capitalised(variable.label)} ({variable.unit})")
+
+
+def capitalised(text: str) -> str:
+    """Return text with a capital at its head, unless it begins like "pH" or "mRNA"."""
+    return text[:1].upper() + text[1:] if text[:2].isalpha() and text[:2].islower() else text
+
+
+def variables_of(story: Story, association: AssociationSpec) -> tuple[VariableSpec, VariableSpec]:
+    """Return the two variables of an association, horizontal axis first."""
+    variables = story.analysis.spec.variables
+    return variables[association.x], variables[association.y]
+
+
+def pointer(name: str) -> Link:
+    """Return a link to an association's spread."""
+    return Link(f"association-{name}", name)
+
+
+def pointers(names: tuple[str, ...]) -> Prose:
+    """Return "A1, A2 and A3" as links."""
+    return listed(tuple(only(pointer(name)) for name in names))
+
+
+def coefficient_symbol(association: AssociationSpec) -> str:
+    """Return the coefficient as it stands in a sentence."""
+    return "rho" if association.coefficient == "Spearman rho" else "tau-b"
+
+
+def address(name: str, *steps: str) -> str:
+    """Return the address of something in an association's part of analysis.json."""
+    return "/".join(("associations", name, *steps))
+
+
+def estimate_with_interval(story: Story, name: str) -> Prose:
+    """Return "0.85 (95% interval 0.27 to 0.98)", or the reason why no interval stands there."""
+    result = story.analysis.results[name]
+    numbers = story.numbers
+    if not isinstance(result.estimate, Estimate):
+        return only(state_word(result))
+    value = address(name, "estimate", "value")
+    estimate = numbers.coefficient(value)
+    if not isinstance(result.interval, Interval):
+        return prose("{estimate} (no interval: {why})", estimate=estimate, why=result.interval.reason)
+    return prose("{estimate} ({level} interval {range})", estimate=estimate, level=level(story), range=interval_range(story, name))
+
+
+def interval_range(story: Story, name: str) -> Prose:
+    """Return "0.27 to 0.98"; both limits have the decimals of the estimate, or more where they need them."""
+    decimals = story.numbers.decimals_for(address(name, "estimate", "value"))
+    return prose(
+        "{low} to {high}",
+        low=story.numbers.coefficient(address(name, "interval", "low"), decimals),
+        high=story.numbers.coefficient(address(name, "interval", "high"), decimals),
+    )
+
+
+def level(story: Story) -> Prose:
+    """Return the confidence level as a percentage."""
+    return only(story.numbers.percent("inference/confidence_level"))
+
+
+def state_word(result: AssociationAnalysis) -> str:
+    """Return "not estimable: …" or "withheld: …" for an association without an estimate."""
+    estimate = result.estimate
+    if isinstance(estimate, Estimate):
+        raise TypeError("this association has an estimate")
+    return f"{'withheld' if type(estimate).__name__ == 'Withheld' else 'not estimable'}: {estimate.reason}"
+
+
+def p_equals(story: Story, key: str) -> Prose:
+    """Return "p = 0.024" or "p < 0.001"."""
+    number = story.numbers.p_value(key)
+    return prose("{p}\u00a0{number}" if number.text.startswith("<") else "{p}\u00a0=\u00a0{number}", p=P, number=number)
+
+
+def p_with_count(story: Story, name: str) -> Prose:
+    """Return the p-value of an association with the count it comes from."""
+    result = story.analysis.results[name]
+    if not isinstance(result.test, RankTest):
+        return only("")
+    count, of = address(name, "test", "count"), address(name, "test", "of")
+    template = (
+        "{p}, {count} of {of} orderings of the rows"
+        if result.test.tails.is_exact
+        else "{p}, {count} of {of} drawn orderings of the rows"
+    )
+    return prose(
+        template,
+        p=p_equals(story, address(name, "test", "p")),
+        count=story.numbers.whole(count),
+        of=story.numbers.whole(of),
+    )
+
+
+def direction_sentence(story: Story, name: str) -> Prose:
+    """Return which way the two variables went together in these rows, without a word about size."""
+    result = story.analysis.results[name]
+    x, y = variables_of(story, result.screened.spec)
+    if not isinstance(result.estimate, Estimate):
+        return only("")
+    numerator = result.estimate.coefficient.numerator
+    if numerator == 0:
+        return prose("In these rows {x} and {y} leaned in neither direction together", x=label(x), y=label(y))
+    template = (
+        "In these rows higher values of {x} went with higher values of {y}"
+        if numerator > 0
+        else "In these rows higher values of {x} went with lower values of {y}"
+    )
+    return prose(template, x=label(x), y=label(y))
+
+
+def sentences(*parts: Prose) -> Prose:
+    """Return several sentences as one paragraph, empty ones left out."""
+    return joined(tuple(part for part in parts if part.pieces))

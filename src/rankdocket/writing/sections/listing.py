@@ -1,0 +1,79 @@
+"""Appendix B: the data as received, the columns that the plan uses."""
+
+from typing import Final
+
+from rankdocket.document.model import Block, Column, Emphasis, Paragraph, Prose, Section, Supplied, TableBlock
+from rankdocket.document.prose import only, prose
+from rankdocket.study.table import Table
+from rankdocket.writing.phrases import EN_DASH_CELL
+from rankdocket.writing.section import SectionRule, Story
+
+MOST_ROWS: Final = 200
+"""A longer listing is printed up to here; the file itself lies in the record copy."""
+
+
+def write(story: Story) -> Section:
+    """Return one listing a table."""
+    blocks: list[Block] = [
+        Paragraph(only("Cells are printed as received; the columns are those that the plan uses."))
+    ]
+    blocks += [
+        _listing(story, name, table, position)
+        for position, (name, table) in enumerate(story.analysis.data.tables.items(), start=1)
+    ]
+    return Section("listing", "B", only("Data listing"), tuple(blocks), opens="page")
+
+
+def _listing(story: Story, name: str, table: Table, position: int) -> TableBlock:
+    columns = _used_columns(story, name)
+    reasons = {
+        left.row: left.reason
+        for result in story.analysis.results.values()
+        if story.analysis.spec.variables[result.screened.spec.x].table == name
+        for left in result.screened.flow.left_out
+    }
+    notes = (
+        (
+            prose(
+                "The first rows are printed; all {rows} stand in {file} of the record copy.",
+                rows=story.numbers.whole(f"tables/{name}/rows"),
+                file=Emphasis(table.source.path, "code"),
+            ),
+        )
+        if len(table.row_numbers) > MOST_ROWS
+        else ()
+    )
+    return TableBlock(
+        key=f"listing-{name}",
+        number=f"B.{position}",
+        caption=prose("Table {name} as received", name=Emphasis(name, "code")),
+        columns=(
+            Column(only("Line"), "line", "right", share=2),
+            *(Column(only(Supplied(column)), column, share=4) for column in columns),
+            Column(only("Left out by the plan"), "left_out", share=4),
+        ),
+        rows=tuple(
+            (
+                only(Supplied(str(row))),
+                *(_cell(table.columns[column][line]) for column in columns),
+                only(Supplied(reasons[row])) if row in reasons else EN_DASH_CELL,
+            )
+            for line, row in enumerate(table.row_numbers[:MOST_ROWS])
+        ),
+        notes=notes,
+    )
+
+
+def _cell(literal: str) -> Prose:
+    return only(Supplied(literal)) if literal.strip() else only("blank")
+
+
+def _used_columns(story: Story, name: str) -> tuple[str, ...]:
+    spec = story.analysis.spec
+    used = {variable.column for variable in spec.variables.values() if variable.table == name}
+    used |= {answer for answer in (spec.rows.repeated_within, spec.rows.time_order) if answer is not None}
+    used |= {column for left in spec.rows.leave_out for column in left.where}
+    return tuple(column for column in story.analysis.data.tables[name].columns if column in used)
+
+
+SECTION = SectionRule("listing", write)

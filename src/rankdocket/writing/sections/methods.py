@@ -1,0 +1,174 @@
+"""Section 4: what was done, gathered from the rules that ran, and deviations under their own heading."""
+
+from typing import Final
+
+from rankdocket.analysis.analyse import adjustment_of
+from rankdocket.analysis.checks import CHECKS
+from rankdocket.analysis.results import Estimate, RankTest
+from rankdocket.document.model import Block, Emphasis, Link, Number, Paragraph, Prose, Section, Supplied
+from rankdocket.document.prose import joined, only, prose
+from rankdocket.references import Description
+from rankdocket.stats.interval import Interval
+from rankdocket.stats.intervals import INTERVAL_METHODS
+from rankdocket.stats.null import MONTE_CARLO_INTERVAL, NULL_DESCRIPTIONS, TWO_SIDED
+from rankdocket.stats.rho import RHO
+from rankdocket.stats.tau import TAU_B
+from rankdocket.vocabulary import COEFFICIENTS, CoefficientName
+from rankdocket.writing.citations import cite
+from rankdocket.writing.phrases import address, pointers
+from rankdocket.writing.section import SectionRule, Story
+
+
+def write(story: Story) -> Section:
+    """Return the methods text; a rule that did not run is not described."""
+    blocks: list[Block] = [Paragraph(text) for text in method_paragraphs(story)]
+    return Section(
+        "methods",
+        "4",
+        only("Methods"),
+        tuple(blocks),
+        (
+            Section(
+                "deviations",
+                "4.1",
+                only("Deviations from the plan"),
+                (
+                    Paragraph(
+                        only(
+                            "The plan printed in the appendix is the one that was run. Whether it was fixed before the data "
+                            "were seen is not recorded: no plan was locked."
+                        )
+                    ),
+                ),
+            ),
+        ),
+    )
+
+
+def method_paragraphs(story: Story) -> tuple[Prose, ...]:
+    """Return the paragraphs of the methods text in the order in which the work was done."""
+    return tuple(
+        part
+        for part in (_ranking(story), _checks(), _coefficients(story), _nulls(story), _sides(story), _family(story), _intervals(story), _comparisons(story))
+        if part.pieces
+    )
+
+
+def described(description: Description, **slots: Number | Prose | Emphasis | Supplied | str) -> Prose:
+    """Return what a rule says of itself, its works in brackets."""
+    sentence = prose(description.sentence, **slots)
+    if not description.cites:
+        return sentence
+    body, last = sentence.pieces[:-1], sentence.pieces[-1]
+    if not isinstance(last, str) or not last.endswith("."):
+        return joined((sentence, cite(*description.cites)))
+    return joined((Prose((*body, last[:-1])), joined((cite(*description.cites), only(".")), "")))
+
+
+def _ranking(story: Story) -> Prose:
+    missing = any(table.spec.missing_codes for table in story.analysis.data.tables.values())
+    return joined(
+        (
+            only(
+                "Cells were read as exact decimals, or as labels in the order that the plan states. A cell was taken as "
+                "missing only where it held a code that the plan names."
+                if missing
+                else "Cells were read as exact decimals, or as labels in the order that the plan states; no cell was missing."
+            ),
+            only(
+                "For each association the complete rows were selected first; each variable was then ranked among them, equal "
+                "values sharing the mean of the places they fill."
+            ),
+        )
+    )
+
+
+def _checks() -> Prose:
+    return joined(tuple(described(check.demand) for check in CHECKS))
+
+
+def _coefficients(story: Story) -> Prose:
+    ran = {
+        result.screened.spec.coefficient
+        for result in story.analysis.results.values()
+        if isinstance(result.estimate, Estimate)
+    }
+    return joined(tuple(described(_COEFFICIENTS[name]) for name in COEFFICIENTS if name in ran))
+
+
+def _nulls(story: Story) -> Prose:
+    parts = []
+    for method, description in NULL_DESCRIPTIONS.items():
+        names = tuple(
+            name
+            for name, result in story.analysis.results.items()
+            if isinstance(result.test, RankTest) and result.test.tails.method == method
+        )
+        if not names:
+            continue
+        if method == "drawn permutations":
+            draws = story.numbers.whole(address(names[0], "test", "of"))
+            seed = story.numbers.label("inference/seed")
+            parts.append(described(description, associations=pointers(names), draws=draws, seed=seed))
+            parts.append(described(MONTE_CARLO_INTERVAL, level=story.numbers.percent("inference/confidence_level")))
+        else:
+            parts.append(described(description, associations=pointers(names)))
+    return joined(tuple(parts))
+
+
+def _sides(story: Story) -> Prose:
+    inference = story.analysis.spec.inference
+    if not any(isinstance(result.test, RankTest) for result in story.analysis.results.values()):
+        return only("")
+    alpha = story.numbers.as_filed("inference/alpha")
+    if inference.sidedness == "two-sided":
+        sides = described(TWO_SIDED)
+    else:
+        sides = only(
+            "Tests were one-sided in the direction that the plan expects: orderings whose coefficient lay at least as far "
+            "in that direction were counted, comparing whole numbers; the interval is the matching one-sided bound."
+        )
+    return joined((sides, prose("Alpha was {alpha}; a p-value at or below it, compared as fractions, decided.", alpha=alpha)))
+
+
+def _family(story: Story) -> Prose:
+    inference = story.analysis.spec.inference
+    rule = adjustment_of(story.analysis.spec)
+    if not story.analysis.family:
+        return prose(
+            "The plan declares no family: each primary and secondary association is its own decision. Reason given: {reason}",
+            reason=Supplied(inference.several_tests.reason or "none"),
+        )
+    members = prose(
+        "The family of {size} associations ({among}) holds {names}; an association that is not estimable or whose test is "
+        "withheld stays in it.",
+        size=story.numbers.whole("inference/family_size"),
+        among=inference.several_tests.among,
+        names=pointers(story.analysis.family),
+    )
+    if inference.several_tests.reason is not None:
+        members = joined((members, prose("Reason given: {reason}", reason=Supplied(inference.several_tests.reason))))
+    if rule.key == "none":
+        return joined((members, described(rule.describe)))
+    return joined((members, described(rule.describe, family=story.numbers.whole("inference/family_size"))))
+
+
+def _intervals(story: Story) -> Prose:
+    ran = {
+        result.interval.method for result in story.analysis.results.values() if isinstance(result.interval, Interval)
+    }
+    return joined(tuple(described(method.describe) for method in INTERVAL_METHODS if method.key in ran))
+
+
+def _comparisons(story: Story) -> Prose:
+    if not any(isinstance(result.test, RankTest) for result in story.analysis.results.values()):
+        return only("")
+    return prose(
+        "For comparison only, {table} gives what other habits would have said; no finding rests on it.",
+        table=Link("comparisons", "Table 6"),
+    )
+
+
+_COEFFICIENTS: Final[dict[CoefficientName, Description]] = {"Spearman rho": RHO, "Kendall tau-b": TAU_B}
+
+SECTION = SectionRule("methods", write)

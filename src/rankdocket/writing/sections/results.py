@@ -1,0 +1,288 @@
+"""Section 6: one master table, planned against found, then one spread an association."""
+
+from rankdocket.analysis.results import AssociationAnalysis, Estimate, RankTest
+from rankdocket.document.model import Block, Column, FieldList, Link, Paragraph, Prose, Section, Supplied, TableBlock
+from rankdocket.document.prose import joined, only, prose
+from rankdocket.stats.interval import Interval
+from rankdocket.writing.figures import interval_strip, rank_plot, raw_plot
+from rankdocket.writing.findings import finding_sentence, finding_word, size_sentence, smallest_of_interest
+from rankdocket.writing.phrases import (
+    EN_DASH_CELL,
+    N,
+    P,
+    address,
+    coefficient_symbol,
+    direction_sentence,
+    estimate_with_interval,
+    interval_range,
+    label,
+    label_head,
+    label_with_unit,
+    level,
+    p_with_count,
+    pointer,
+    sentences,
+    state_word,
+    variables_of,
+)
+from rankdocket.writing.section import SectionRule, Story
+
+
+def write(story: Story) -> Section:
+    """Return the results: master table, strip, comparisons, spreads."""
+    blocks: list[Block] = [master_table(story), interval_strip(story), _planned_and_found(story)]
+    comparisons = _comparisons(story)
+    if comparisons is not None:
+        blocks.append(comparisons)
+    spreads = tuple(_spread(story, name, position) for position, name in enumerate(story.analysis.results, start=1))
+    return Section("results-section", "6", only("Results"), tuple(blocks), spreads, opens="page")
+
+
+def master_table(story: Story) -> TableBlock:
+    """Return one row an association; heads say which interval and which p."""
+    sided = story.analysis.spec.inference.sidedness
+    adjusted = story.analysis.spec.inference.several_tests.adjust
+    return TableBlock(
+        key="results",
+        number="5",
+        caption=only("Results, one row an association"),
+        columns=(
+            Column(only("Association"), "association", share=2),
+            Column(only("x"), "x", share=4),
+            Column(only("y"), "y", share=4),
+            Column(only(N), "n", "right", share=2),
+            Column(only("Tied x, y"), "tied", "right", share=3),
+            Column(only("Coefficient"), "coefficient", share=3),
+            Column(only("Estimate"), "estimate", "decimal", share=3),
+            Column(prose("{level} interval", level=level(story)), "interval", "right", share=4),
+            Column(prose("{p}, {sided}", p=P, sided=sided), "p", "decimal", share=3),
+            Column(prose("{p}, adjusted ({rule})", p=P, rule=adjusted), "p_adjusted", "decimal", share=3),
+            Column(only("Expected"), "expected_sign", share=3),
+            Column(only("Finding"), "finding", share=4),
+            Column(only("Caveats"), "caveats", share=2),
+        ),
+        rows=tuple(_master_row(story, name, result) for name, result in story.analysis.results.items()),
+        notes=_master_notes(story),
+        landscape=True,
+    )
+
+
+def _master_row(story: Story, name: str, result: AssociationAnalysis) -> tuple[Prose, ...]:
+    spec, numbers = result.screened.spec, story.numbers
+    x, y = variables_of(story, spec)
+    has_rows = bool(result.screened.rows)
+    tied = (
+        prose(
+            "{x}, {y}",
+            x=numbers.share(address(name, "ties_x", "share")),
+            y=numbers.share(address(name, "ties_y", "share")),
+        )
+        if has_rows
+        else EN_DASH_CELL
+    )
+    estimated = isinstance(result.estimate, Estimate)
+    return (
+        only(pointer(name)),
+        only(label_head(x)),
+        only(label_head(y)),
+        only(numbers.whole(address(name, "rows", "complete"))),
+        tied,
+        only(spec.coefficient),
+        only(numbers.coefficient(address(name, "estimate", "value"))) if estimated else EN_DASH_CELL,
+        interval_range(story, name) if isinstance(result.interval, Interval) else EN_DASH_CELL,
+        only(numbers.p_value(address(name, "test", "p"))) if isinstance(result.test, RankTest) else EN_DASH_CELL,
+        _adjusted(story, name),
+        only(spec.hypothesis.expected_sign),
+        only(finding_word(story.analysis.findings[name])),
+        _caveat_numbers(story, name),
+    )
+
+
+def _adjusted(story: Story, name: str) -> Prose:
+    if story.analysis.findings[name].p_adjusted is None:
+        return EN_DASH_CELL
+    return only(story.numbers.p_value(address(name, "finding", "p_adjusted")))
+
+
+def _caveat_numbers(story: Story, name: str) -> Prose:
+    links = tuple(only(Link(caveat.block.key, str(caveat.block.number))) for caveat in story.caveats_about(name))
+    return joined(links, ", ") if links else EN_DASH_CELL
+
+
+def _master_notes(story: Story) -> tuple[Prose, ...]:
+    notes = [
+        only(
+            "Every association of the plan has its row, whatever became of it. Caveats that concern the whole study are "
+            "not repeated here."
+        )
+    ]
+    if any(finding.word is None for finding in story.analysis.findings.values()):
+        notes.append(only("No finding is stated for an association outside the family; its p-value is not adjusted."))
+    return tuple(notes)
+
+
+def _planned_and_found(story: Story) -> FieldList:
+    rows = []
+    for name, result in story.analysis.results.items():
+        hypothesis = result.screened.spec.hypothesis
+        size = smallest_of_interest(story, name)
+        planned = (
+            prose("expected {sign}, size of interest {size}", sign=hypothesis.expected_sign, size=size)
+            if size is not None
+            else prose("expected {sign}", sign=hypothesis.expected_sign)
+        )
+        rows.append(
+            (
+                name,
+                prose(
+                    "{planned}; found {estimate}; finding: {word}",
+                    planned=planned,
+                    estimate=estimate_with_interval(story, name),
+                    word=finding_word(story.analysis.findings[name]),
+                ),
+            )
+        )
+    return FieldList(tuple(rows), key="planned-and-found", caption=only("Planned against found"))
+
+
+def _comparisons(story: Story) -> TableBlock | None:
+    rows = []
+    for name, result in story.analysis.results.items():
+        if not isinstance(result.estimate, Estimate):
+            continue
+        comparisons, numbers = result.comparisons, story.numbers
+        rows.append(
+            (
+                only(pointer(name)),
+                only(numbers.p_value(address(name, "test", "p"))) if isinstance(result.test, RankTest) else EN_DASH_CELL,
+                EN_DASH_CELL if comparisons.t_value_p is None else only(numbers.comparison_p(address(name, "comparisons", "t_value_p"))),
+                EN_DASH_CELL if comparisons.doubled_p is None else only(numbers.comparison_p(address(name, "comparisons", "doubled_p"))),
+                EN_DASH_CELL if comparisons.pearson is None else only(numbers.coefficient(address(name, "comparisons", "pearson"))),
+                EN_DASH_CELL if result.estimate.short_form is None else only(numbers.coefficient(address(name, "comparisons", "short_form"))),
+            )
+        )
+    if not rows:
+        return None
+    return TableBlock(
+        key="comparisons",
+        number="6",
+        caption=only("What other habits would have said; no finding rests on these values"),
+        columns=(
+            Column(only("Association"), "association", share=2),
+            Column(prose("{p}, as used", p=P), "p", "decimal", share=3),
+            Column(prose("{p} from the t value", p=P), "p_t", "decimal", share=3),
+            Column(prose("{p} by doubling the smaller tail", p=P), "p_doubled", "decimal", share=4),
+            Column(only("Product-moment coefficient of the values (Pearson)"), "pearson", "decimal", share=5),
+            Column(only("Short form without tie terms"), "short_form", "decimal", share=4),
+        ),
+        rows=tuple(rows),
+        notes=(
+            only(
+                "The t value approximates the null and gives too small a p-value in small samples; the short form is wrong "
+                "where there are ties; the product-moment coefficient answers another question."
+            ),
+        ),
+    )
+
+
+def _spread(story: Story, name: str, position: int) -> Section:
+    result = story.analysis.results[name]
+    spec = result.screened.spec
+    x, y = variables_of(story, spec)
+    title = prose("{name}: {x} and {y}", name=Supplied(name), x=label_head(x), y=label(y))
+    blocks: list[Block] = [Paragraph(only(Supplied(spec.question)))]
+    if isinstance(result.estimate, Estimate):
+        blocks += [raw_plot(story, name), rank_plot(story, name), FieldList(_numbers(story, name), key=f"numbers-{name}")]
+        blocks.append(
+            Paragraph(
+                sentences(
+                    prose("{direction}: {symbol} {estimate}.", direction=direction_sentence(story, name), symbol=coefficient_symbol(spec), estimate=estimate_with_interval(story, name)),
+                    finding_sentence(story, name),
+                    size_sentence(story, name),
+                ),
+                "answer",
+            )
+        )
+    else:
+        blocks.append(Paragraph(finding_sentence(story, name), "answer"))
+        blocks.append(FieldList(_numbers(story, name), key=f"numbers-{name}"))
+    blocks.append(Paragraph(_caveats(story, name), "note"))
+    return Section(f"association-{name}", f"6.{position}", title, tuple(blocks), opens="page")
+
+
+def _numbers(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
+    result, numbers = story.analysis.results[name], story.numbers
+    x, y = variables_of(story, result.screened.spec)
+    rows: list[tuple[str, Prose]] = [
+        ("x", only(label_with_unit(x))),
+        ("y", only(label_with_unit(y))),
+        (
+            "Rows",
+            prose(
+                "{complete} complete of {read} read",
+                complete=numbers.whole(address(name, "rows", "complete")),
+                read=numbers.whole(address(name, "rows", "read")),
+            ),
+        ),
+    ]
+    if result.screened.rows:
+        rows += [("Ties in x", _ties(story, name, "ties_x")), ("Ties in y", _ties(story, name, "ties_y"))]
+    if not isinstance(result.estimate, Estimate):
+        rows.append(("Estimate", only(state_word(result))))
+        return tuple(rows)
+    rows.append((result.screened.spec.coefficient, estimate_with_interval(story, name)))
+    if isinstance(result.test, RankTest):
+        rows += [
+            ("Null", prose("{method}; {why}", method=result.test.tails.method, why=result.test.choice.reason)),
+            ("Test", p_with_count(story, name)),
+            (
+                "Both tails",
+                prose(
+                    "at least as large: {greater}; at least as small: {less}",
+                    greater=numbers.p_value(address(name, "test", "p_greater")),
+                    less=numbers.p_value(address(name, "test", "p_less")),
+                ),
+            ),
+        ]
+        if result.test.p_interval is not None:
+            rows.append(
+                (
+                    "Error of the draws",
+                    prose(
+                        "{level} interval of p over all orderings: {low} to {high}",
+                        level=level(story),
+                        low=numbers.p_value(address(name, "test", "p_low")),
+                        high=numbers.p_value(address(name, "test", "p_high")),
+                    ),
+                )
+            )
+    else:
+        rows.append(("Test", prose("withheld: {reason}", reason=result.test.reason)))
+    if result.smallest_attainable_p is not None:
+        rows.append(("Smallest attainable p", only(numbers.p_value(address(name, "smallest_attainable_p")))))
+    if story.analysis.findings[name].p_adjusted is not None:
+        rows.append(("p, adjusted", _adjusted(story, name)))
+    rows.append(("Finding", only(finding_word(story.analysis.findings[name]))))
+    return tuple(rows)
+
+
+def _ties(story: Story, name: str, side: str) -> Prose:
+    numbers = story.numbers
+    return prose(
+        "{tied} of rows in {groups} tie groups, the largest of {largest}; {distinct} distinct values",
+        tied=numbers.share(address(name, side, "share")),
+        groups=numbers.whole(address(name, side, "groups")),
+        largest=numbers.whole(address(name, side, "largest")),
+        distinct=numbers.whole(address(name, side, "distinct")),
+    )
+
+
+def _caveats(story: Story, name: str) -> Prose:
+    links = tuple(only(Link(caveat.block.key, str(caveat.block.number))) for caveat in story.caveats_about(name))
+    general = Link("requirements", "5")
+    if not links:
+        return prose("No caveat concerns this association alone; those of the study stand in section {section}.", section=general)
+    return prose("Caveats about this association: {numbers}; those of the study stand in section {section}.", numbers=joined(links, ", "), section=general)
+
+
+SECTION = SectionRule("results-section", write)

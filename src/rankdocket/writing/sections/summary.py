@@ -1,0 +1,120 @@
+"""Page 2: question, answer, main number, caveats, in words for somebody with three minutes."""
+
+from typing import Final
+
+from rankdocket.analysis.results import Estimate
+from rankdocket.document.model import Block, FieldList, Items, Link, Paragraph, Prose, Section, Supplied
+from rankdocket.document.prose import joined, only, prose
+from rankdocket.vocabulary import FINDINGS
+from rankdocket.writing.findings import finding_sentence, finding_word
+from rankdocket.writing.phrases import (
+    N,
+    address,
+    coefficient_symbol,
+    direction_sentence,
+    estimate_with_interval,
+    state_word,
+)
+from rankdocket.writing.section import NumberedCaveat, Story
+
+MOST_ASSOCIATIONS: Final = 3
+"""So many associations fit on one page; the rest is pointed to."""
+
+MOST_CAVEATS: Final = 3
+
+
+def summary(story: Story) -> Section:
+    """Return the one-page summary: primary associations first."""
+    names = _in_order(story)
+    shown, more = names[:MOST_ASSOCIATIONS], names[MOST_ASSOCIATIONS:]
+    blocks: list[Block] = [
+        Paragraph(prose("Question. {question}", question=Supplied(story.analysis.spec.study.question))),
+        Paragraph(_tally(story)),
+    ]
+    for name in shown:
+        blocks.append(FieldList(_answer(story, name), key=f"summary-{name}"))
+    if more:
+        blocks.append(
+            Paragraph(
+                prose(
+                    "The other associations of the plan stand in {table}.",
+                    table=Link("results", "Table 5"),
+                ),
+                "note",
+            )
+        )
+    heaviest = _heaviest(story)
+    blocks.append(Paragraph(prose("To be read with the result (all caveats: section {section}):", section=Link("requirements", "5"))))
+    blocks.append(Items(tuple(caveat.block.prose for caveat in heaviest)))
+    blocks.append(Paragraph(_changes(story), "note"))
+    return Section("summary", "", only("Summary"), tuple(blocks), opens="page")
+
+
+def _heaviest(story: Story) -> tuple[NumberedCaveat, ...]:
+    """Return the heaviest caveats, one of each kind, so that one kind does not crowd out the others."""
+    chosen: dict[int, NumberedCaveat] = {}
+    for caveat in sorted(story.caveats, key=lambda caveat: -caveat.weight):
+        chosen.setdefault(caveat.weight, caveat)
+    return tuple(chosen.values())[:MOST_CAVEATS]
+
+
+def _in_order(story: Story) -> tuple[str, ...]:
+    order = {"primary": 0, "secondary": 1, "exploratory": 2}
+    associations = story.analysis.spec.associations
+    return tuple(sorted(associations, key=lambda name: order[associations[name].role]))
+
+
+def _tally(story: Story) -> Prose:
+    total = story.numbers.whole("tally/associations")
+    if len(story.analysis.results) == 1:
+        return prose("The plan names {total} association.", total=total)
+    findings = [finding.word for finding in story.analysis.findings.values()]
+    counts = tuple(
+        prose("{word}: {count}", word=word, count=story.numbers.whole(f"tally/findings/{word}"))
+        for word in FINDINGS
+        if word in findings
+    )
+    if None in findings:
+        counts += (prose("no finding stated: {count}", count=story.numbers.whole("tally/findings/no finding")),)
+    return prose(
+        "The plan names {total} associations. Findings by its rule: {counts}.", total=total, counts=joined(counts, "; ")
+    )
+
+
+def _answer(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
+    result = story.analysis.results[name]
+    spec = result.screened.spec
+    rows: list[tuple[str, Prose]] = [(f"{name}, {spec.role}", only(Supplied(spec.question)))]
+    if isinstance(result.estimate, Estimate):
+        rows.append(
+            (
+                "Answer",
+                prose("{direction}. {finding}", direction=direction_sentence(story, name), finding=finding_sentence(story, name)),
+            )
+        )
+        rows.append(
+            (
+                "Main number",
+                prose(
+                    "{symbol} {estimate}, {n}\u00a0=\u00a0{rows} complete rows",
+                    symbol=coefficient_symbol(spec),
+                    estimate=estimate_with_interval(story, name),
+                    n=N,
+                    rows=story.numbers.whole(address(name, "rows", "complete")),
+                ),
+            )
+        )
+    else:
+        rows.append(("Answer", prose("{state}.", state=state_word(result).capitalize())))
+        rows.append(("Finding", only(finding_word(story.analysis.findings[name]))))
+    return tuple(rows)
+
+
+def _changes(story: Story) -> Prose:
+    if story.facts.replaces is None:
+        return only("Changes: this is the first edition.")
+    return prose(
+        "Changes: this edition replaces {old}. Reason: {reason}",
+        old=Supplied(story.facts.replaces),
+        reason=Supplied(story.facts.reason),
+    )
