@@ -14,6 +14,10 @@ if TYPE_CHECKING:
     from rankdocket.stats.intervals.bonett_wright import bonett_wright_limits as bonett_wright_limits
     from rankdocket.stats.tables import critical_value as critical_value
     from rankdocket.stats.tables import null_counts as null_counts
+    from rankdocket.workflow.issue import issue as issue
+    from rankdocket.workflow.report import report as report
+    from rankdocket.workflow.screen import screen as screen
+    from rankdocket.workflow.verify import verify as verify
 
 _HOME: Final = MappingProxyType(
     {
@@ -21,11 +25,26 @@ _HOME: Final = MappingProxyType(
         "associate": "rankdocket.analysis.arrays",
         "bonett_wright_limits": "rankdocket.stats.intervals.bonett_wright",
         "critical_value": "rankdocket.stats.tables",
+        "issue": "rankdocket.workflow.issue",
         "null_counts": "rankdocket.stats.tables",
+        "report": "rankdocket.workflow.report",
+        "screen": "rankdocket.workflow.screen",
+        "verify": "rankdocket.workflow.verify",
     }
 )
 
-__all__ = ["__version__", "adjusted", "associate", "bonett_wright_limits", "critical_value", "null_counts"]
+__all__ = [
+    "__version__",
+    "adjusted",
+    "associate",
+    "bonett_wright_limits",
+    "critical_value",
+    "issue",
+    "null_counts",
+    "report",
+    "screen",
+    "verify",
+]
 
 
 def __getattr__(name: str) -> object:

@@ -11,7 +11,7 @@ from collections.abc import Mapping, Sequence
 from pathlib import Path
 from typing import Final, TypeAlias
 
-Plain: TypeAlias = "str | int | bool | None | Mapping[str, Plain] | Sequence[Plain]"
+Plain: TypeAlias = "str | int | bool | Mapping[str, Plain] | Sequence[Plain] | None"
 """Data that has a canonical form: text, whole numbers below 2**53, true, false, null, lists and objects."""
 
 LARGEST_INTEGER: Final = 2**53 - 1
@@ -65,6 +65,6 @@ def _ordered(data: Plain) -> Plain:
                 raise TypeError(f"{key!r} is not a text key")
         # RFC 8785 sorts by UTF-16 code units, which differs from code points beyond the basic plane.
         return {key: _ordered(data[key]) for key in sorted(data, key=lambda text: text.encode("utf-16-be"))}
-    if isinstance(data, Sequence) and not isinstance(data, (bytes, bytearray)):
+    if isinstance(data, (list, tuple)):
         return [_ordered(item) for item in data]
     raise TypeError(f"{type(data).__name__} has no canonical form: {data!r}")

@@ -26,7 +26,7 @@ from rankdocket.document.model import (
     Verbatim,
 )
 
-ROWS = 46
+ROWS = 61
 """Rows of the worksheet: enough for a table that runs over a page."""
 
 
@@ -59,7 +59,7 @@ LOW = number("associations/A1/interval/low", "0.38", "0.381234567891")
 HIGH = number("associations/A1/interval/high", "0.77", "0.768123456789")
 TAU = number("associations/A2/coefficient/tau", "\u22120.24", "-0.241379310345")
 P = number("associations/A1/test/p", "< 0.001", "0.000012345679")
-N = number("associations/A1/n", "46")
+N = number("associations/A1/n", "61")
 
 
 def control() -> tuple[Block, ...]:
@@ -168,10 +168,10 @@ def variables_table() -> TableBlock:
     )
     aligns = ("left", *("right",) * 5, *("decimal",) * 5, "left")
     values = {
-        "Shade": ("46", "0", "0", "3", "31", "5.0", "22.5", "41.25", "60", "88.5", "%"),
-        "Watering": ("44", "2", "1", "4", "27", "0.5", "1.75", "2.5", "3.25", "6", "litres a week"),
-        "Vigour": ("46", "0", "0", "17", "5", "1", "2", "3", "4", "5", "step"),
-        "Height": ("46", "0", "0", "1", "46", "103.25", "140.5", "155", "171.125", "212.5", "mm"),
+        "Shade": ("61", "0", "0", "3", "44", "5.0", "22.5", "41.25", "60", "88.5", "%"),
+        "Watering": ("59", "2", "1", "4", "27", "0.5", "1.75", "2.5", "3.25", "6", "litres a week"),
+        "Vigour": ("61", "0", "0", "17", "5", "1", "2", "3", "4", "5", "step"),
+        "Height": ("61", "0", "0", "1", "61", "103.25", "140.5", "155", "171.125", "212.5", "mm"),
     }
     rows = tuple(
         (
@@ -200,14 +200,14 @@ def data_section() -> Section:
     flow = TableBlock(
         "rows",
         "1",
-        prose("From 49 rows read to 46 rows used"),
+        prose("From 64 rows read to 61 rows used"),
         (Column(prose("Step"), "step", share=3), Column(prose("Rows"), "rows", "right")),
         (
-            (prose("Read from ", Emphasis("beds.csv", "code")), prose(number("rows/read", "49"))),
+            (prose("Read from ", Emphasis("beds.csv", "code")), prose(number("rows/read", "64"))),
             (prose("Left out: label lost"), prose(number("rows/left_out/0", "\u22122"))),
             (prose("Left out: not complete"), prose(number("rows/left_out/1", "\u22121"))),
         ),
-        foot=((prose("Used"), prose(number("rows/used", "46"))),),
+        foot=((prose("Used"), prose(number("rows/used", "61"))),),
     )
     return Section(
         "data",
@@ -217,7 +217,7 @@ def data_section() -> Section:
             paragraph(
                 "One row is one seedling. The file was received on 2026-01-12 from ",
                 Supplied("E. Lindqvist"),
-                " and has 49 rows; ",
+                " and has 64 rows; ",
                 Link("rows", "Table 1"),
                 " accounts for them.",
             ),
@@ -264,7 +264,7 @@ def requirements_table() -> TableBlock:
             (
                 prose("Enough complete rows"),
                 prose("at least ", number("requirements/fewest", "12")),
-                prose(number("requirements/A1/rows", "46")),
+                prose(number("requirements/A1/rows", "61")),
                 prose("met"),
                 prose("none"),
             ),
@@ -352,7 +352,7 @@ def results_table() -> TableBlock:
                 prose("A2"),
                 prose("Watering"),
                 prose("Vigour"),
-                prose(number("associations/A2/n", "44")),
+                prose(number("associations/A2/n", "59")),
                 prose("Kendall’s τ-b"),
                 prose(TAU),
                 prose(
@@ -369,7 +369,7 @@ def results_table() -> TableBlock:
                 prose("A3"),
                 prose("Row order"),
                 prose("Vigour"),
-                prose(number("associations/A3/n", "46")),
+                prose(number("associations/A3/n", "61")),
                 prose("Spearman’s ρ"),
                 prose("withheld"),
                 prose("withheld"),
@@ -393,8 +393,8 @@ def raw_plot() -> FigureBlock:
         "A1-raw",
         "1",
         "raw-plot",
-        prose("Shade and vigour as received, 46 seedlings; area grows with the rows at a place."),
-        "Raw plot of shade against vigour: 46 rows, vigour in five steps.",
+        prose("Shade and vigour as received, 61 seedlings; area grows with the rows at a place."),
+        "Raw plot of shade against vigour: 61 rows, vigour in five steps.",
         {
             "x": {"label": "Shade, part of full sun kept off", "unit": "%", "ticks": []},
             "y": {
@@ -409,14 +409,14 @@ def raw_plot() -> FigureBlock:
 
 def rank_plot() -> FigureBlock:
     points = [
-        {"x": str(i + 1), "y": str(1 + (i * 7) % 23 * 2) + ".5", "count": 1 + (i % 11 == 0) * 2} for i in range(ROWS)
+        {"x": str(i + 1), "y": str(1 + (i * 7) % 31 * 2) + ".5", "count": 1 + (i % 11 == 0) * 2} for i in range(ROWS)
     ]
     return FigureBlock(
         "A1-rank",
         "2",
         "rank-plot",
         prose("Midranks of shade and vigour; tied rows stand in lines."),
-        "Rank plot: midranks of 46 rows; Spearman’s ρ is 0.61.",
+        "Rank plot: midranks of 61 rows; Spearman’s ρ is 0.61.",
         {"x_label": "Midrank of shade", "y_label": "Midrank of vigour", "n": ROWS, "points": points},
     )
 
@@ -443,7 +443,7 @@ def ordered_plot() -> FigureBlock:
                 "ticks": [{"at": str(i), "label": text} for i, text in enumerate(labels, 1)],
             },
             "y": {"label": "Height & cost, $ per $", "unit": "mm", "ticks": []},
-            "points": [{"x": str(1 + i % 6), "y": f"{103.25 + i * 2.5}", "count": 1} for i in range(44)],
+            "points": [{"x": str(1 + i % 6), "y": f"{103.25 + i * 2.5}", "count": 1} for i in range(59)],
         },
     )
 
@@ -558,12 +558,12 @@ def worksheet() -> Section:
             prose(number(f"ranks/A1/{i}/row", str(i + 2))),
             prose(number(f"ranks/A1/{i}/x", f"{5 + (i * 37 % 84)}.5")),
             prose(number(f"ranks/A1/{i}/rank_x", f"{i + 1}" if i % 3 else f"{i + 1}.5")),
-            prose(number(f"ranks/A1/{i}/rank_y", f"{46 - i}" if i % 2 else f"{46 - i}.5")),
+            prose(number(f"ranks/A1/{i}/rank_y", f"{ROWS - i}" if i % 2 else f"{ROWS - i}.5")),
             prose(
                 number(
                     f"ranks/A1/{i}/product",
-                    f"{(2 * i - 45) * (45 - 2 * i):,}".replace("-", "\u2212"),
-                    str((2 * i - 45) * (45 - 2 * i)),
+                    f"{-((2 * i - 60) ** 2):,}".replace("-", "\u2212"),
+                    str(-((2 * i - 60) ** 2)),
                 )
             ),
         )
@@ -588,9 +588,9 @@ def worksheet() -> Section:
             (
                 prose("Sum"),
                 prose(""),
-                prose(number("ranks/A1/sum_x", "1081")),
-                prose(number("ranks/A1/sum_y", "1081")),
-                prose(number("ranks/A1/A", "\u221232,430", "-32430")),
+                prose(number("ranks/A1/sum_x", "1891")),
+                prose(number("ranks/A1/sum_y", "1891")),
+                prose(number("ranks/A1/A", "\u221275,640", "-75640")),
             ),
         ),
         notes=(prose("Rows are numbered as in the file, the head line counted as row 1."),),

@@ -93,7 +93,7 @@ def test_nothing_bears_an_address_but_numbers_of_the_document(screen: Reader) ->
 
 
 def test_a_cell_that_is_one_number_bears_the_address_itself(rendition: Rendition) -> None:
-    assert re.search(r'<td class="right whole" data-key="rows/used">46</td>', rendition.html.decode())
+    assert re.search(r'<td class="right whole" data-key="rows/used">61</td>', rendition.html.decode())
 
 
 def test_every_element_is_closed_in_order(screen: Reader) -> None:

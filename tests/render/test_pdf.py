@@ -97,6 +97,12 @@ def test_only_a_wide_table_has_a_landscape_page_and_the_text_after_it_an_upright
     assert wide.count(True) == 1
 
 
+def test_the_heading_above_a_wide_table_goes_with_it(pages: list[str]) -> None:
+    page_of_table = next(text for text in pages if "Table 3." in text)
+    assert "Screening" in page_of_table
+    assert "Each variable was looked at alone." in page_of_table
+
+
 def test_a_table_over_a_page_repeats_its_head_and_says_continued(pages: list[str]) -> None:
     holding = [text for text in pages if "Product of doubled centred ranks" in text]
     assert len(holding) == 2

@@ -60,7 +60,7 @@ def test_a_csv_file_has_names_rows_and_sums_and_ends_its_lines_with_a_line_feed(
     document = sample()
     table = next(block for block in all_blocks(document) if isinstance(block, TableBlock) and block.key == "rows")
     assert csv_bytes(table) == (
-        b"step,rows\nRead from beds.csv,49\nLeft out: label lost,-2\nLeft out: not complete,-1\nUsed,46\n"
+        b"step,rows\nRead from beds.csv,64\nLeft out: label lost,-2\nLeft out: not complete,-1\nUsed,61\n"
     )
 
 
@@ -83,7 +83,7 @@ def test_a_section_as_text_holds_its_blocks_in_order() -> None:
     text = section_text(summary())
     assert (
         text.index("Do seedlings")
-        < text.index("ρ = 0.61 (95% interval 0.38 to 0.77; n = 46)")
+        < text.index("ρ = 0.61 (95% interval 0.38 to 0.77; n = 61)")
         < text.index("Caveat 1.")
     )
     assert "Caveat 2. The rows of A3 stand in time order; its test was withheld (see 6.3)." in text

@@ -90,8 +90,10 @@ def test_a_leading_zero_is_kept_in_text_and_refused_in_a_number() -> None:
     """Station 007 stays 007; a row number 010 could be 8 or 10 and is refused."""
     assert read_spec(PANEL, "s.yaml").rows.leave_out[0].where == {"taster": "007", "booth": "NO"}
     assert spec_messages(changed(PLANKTON, ("    file:", "    column_names_in_row: 010\n    file:"))) == [
-        "s.yaml:8:26: data.survey.column_names_in_row: 010 begins with 0 and is read by some as a number to another "
-        "base than ten. Write 10. (message 16)"
+        (
+            "s.yaml:8:26: data.survey.column_names_in_row: 010 begins with 0 and is read by some as a number to another "
+            "base than ten. Write 10. (message 16)"
+        )
     ]
 
 
@@ -118,6 +120,8 @@ def test_a_bent_word_as_a_key_is_named_as_such() -> None:
     """The key on, which others read as true, is refused as that trap."""
     found = spec_messages(changed(PLANKTON, ("  one_row_is:", "  on: 2026-04-09\n  one_row_is:")))
     assert found == [
-        's.yaml:11:3: rows.on: "on" is a word that YAML reads as true, false or nothing, and not a key of rows. '
-        "(message 16)"
+        (
+            's.yaml:11:3: rows.on: "on" is a word that YAML reads as true, false or nothing, and not a key of rows. '
+            "(message 16)"
+        )
     ]

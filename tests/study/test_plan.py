@@ -42,7 +42,7 @@ def test_what_is_not_planned_leaves_the_plan_alone(old: str, new: str) -> None:
         ("[Poor, Fair, Good]", "[Fair, Poor, Good]"),
         ("[colour, liking]", "[liking, colour]"),
         ("seed: 9223372036854775807", "seed: 9223372036854775806"),
-        ("decimal_mark: \",\"\n    thousands_mark: \".\"", "decimal_mark: \".\""),
+        ('decimal_mark: ","\n    thousands_mark: "."', 'decimal_mark: "."'),
         ("most_tied: 0.6", "most_tied: 0.61"),
         ("repeated_within: booth", "repeated_within: table"),
     ],

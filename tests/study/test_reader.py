@@ -18,20 +18,26 @@ TAKEN_AWAY = (
     (
         "alpha: 0.05",
         "alpha: 0.7",
-        "s.yaml:32:10: inference.alpha: 0.7 is not possible here. Write a number more than 0 and at most 0.5. "
-        "(message 31)",
+        (
+            "s.yaml:32:10: inference.alpha: 0.7 is not possible here. Write a number more than 0 and at most 0.5. "
+            "(message 31)"
+        ),
     ),
     (
         "alpha: 0.05",
         "alpha: [0.05]",
-        "s.yaml:32:3: inference.alpha: a list stands here; one value is expected. Write one value after the colon. "
-        "(message 28)",
+        (
+            "s.yaml:32:3: inference.alpha: a list stands here; one value is expected. Write one value after the colon. "
+            "(message 28)"
+        ),
     ),
     (
         "alpha: 0.05",
         "alpha:",
-        "s.yaml:32:3: inference.alpha: nothing is written after alpha. Write a value, or leave the key out. "
-        "(message 26)",
+        (
+            "s.yaml:32:3: inference.alpha: nothing is written after alpha. Write a value, or leave the key out. "
+            "(message 26)"
+        ),
     ),
     (
         "inference:\n  alpha: 0.05",
@@ -46,20 +52,26 @@ TAKEN_AWAY = (
     (
         "expected_sign: negative",
         "expected_sign: upwards",
-        's.yaml:30:33: associations.A1.hypothesis.expected_sign: "upwards" is not in the list. Write one of: '
-        "positive, negative, either. (message 29)",
+        (
+            's.yaml:30:33: associations.A1.hypothesis.expected_sign: "upwards" is not in the list. Write one of: '
+            "positive, negative, either. (message 29)"
+        ),
     ),
     (
         "{expected_sign: negative}",
         "upwards",
-        "s.yaml:30:17: associations.A1.hypothesis: keys are expected here. Write the keys below this line, indented. "
-        "(message 28)",
+        (
+            "s.yaml:30:17: associations.A1.hypothesis: keys are expected here. Write the keys below this line, indented. "
+            "(message 28)"
+        ),
     ),
     (
         "[chlorophyll, clarity]",
         "[chlorophyl, clarity]",
-        's.yaml:27:15: associations.A1.between: "chlorophyl" is not an entry of variables. nearest: chlorophyll. '
-        "(message 36)",
+        (
+            's.yaml:27:15: associations.A1.between: "chlorophyl" is not an entry of variables. nearest: chlorophyll. '
+            "(message 36)"
+        ),
     ),
     (
         "[chlorophyll, clarity]",
@@ -74,44 +86,58 @@ TAKEN_AWAY = (
     (
         "[chlorophyll, clarity]",
         "clarity",
-        "s.yaml:27:14: associations.A1.between: a list is expected here. Write it in square brackets: "
-        "[first, second]. (message 28)",
+        (
+            "s.yaml:27:14: associations.A1.between: a list is expected here. Write it in square brackets: "
+            "[first, second]. (message 28)"
+        ),
     ),
     (
         "  A1:",
         "  1A:",
-        's.yaml:26:3: associations: "1A" cannot be a name. Write letters a to z, digits, _ and -, and begin with a '
-        "letter. (message 32)",
+        (
+            's.yaml:26:3: associations: "1A" cannot be a name. Write letters a to z, digits, _ and -, and begin with a '
+            "letter. (message 32)"
+        ),
     ),
     (
         "received/survey.csv",
         "../survey.csv",
-        's.yaml:8:11: data.survey.file: "../survey.csv" is not a plain path inside the study folder. Write the path '
-        "from the folder of the spec, such as received/zinc.csv. (message 33)",
+        (
+            's.yaml:8:11: data.survey.file: "../survey.csv" is not a plain path inside the study folder. Write the path '
+            "from the folder of the spec, such as received/zinc.csv. (message 33)"
+        ),
     ),
     (
         "received/survey.csv",
         "/data/survey.csv",
-        's.yaml:8:11: data.survey.file: "/data/survey.csv" does not begin at the folder of the spec. Write the path '
-        "from the folder of the spec, such as received/zinc.csv. (message 33)",
+        (
+            's.yaml:8:11: data.survey.file: "/data/survey.csv" does not begin at the folder of the spec. Write the path '
+            "from the folder of the spec, such as received/zinc.csv. (message 33)"
+        ),
     ),
     (
         "received/survey.csv",
         "C:\\survey.csv",
-        's.yaml:8:11: data.survey.file: "C:\\survey.csv" does not begin at the folder of the spec. Write the path '
-        "from the folder of the spec, such as received/zinc.csv. (message 33)",
+        (
+            's.yaml:8:11: data.survey.file: "C:\\survey.csv" does not begin at the folder of the spec. Write the path '
+            "from the folder of the spec, such as received/zinc.csv. (message 33)"
+        ),
     ),
     (
         "received/survey.csv",
         "received\\survey.csv",
-        's.yaml:8:11: data.survey.file: "received\\survey.csv" holds a backslash. Write received/survey.csv. '
-        "(message 33)",
+        (
+            's.yaml:8:11: data.survey.file: "received\\survey.csv" holds a backslash. Write received/survey.csv. '
+            "(message 33)"
+        ),
     ),
     (
         '["", "n/a"]',
         "n/a",
-        's.yaml:9:20: data.survey.missing_codes: one value stands here; a list of codes is expected. Write ["n/a"], '
-        "or [] when no code is used. (message 28)",
+        (
+            's.yaml:9:20: data.survey.missing_codes: one value stands here; a list of codes is expected. Write ["n/a"], '
+            "or [] when no code is used. (message 28)"
+        ),
     ),
     (
         '["", "n/a"]',
@@ -121,86 +147,114 @@ TAKEN_AWAY = (
     (
         "    file:",
         "    received_on: 9.4.2026\n    file:",
-        's.yaml:8:18: data.survey.received_on: "9.4.2026" is not a date. Write year-month-day, such as 2026-04-09. '
-        "(message 34)",
+        (
+            's.yaml:8:18: data.survey.received_on: "9.4.2026" is not a date. Write year-month-day, such as 2026-04-09. '
+            "(message 34)"
+        ),
     ),
     (
         "    file:",
         "    received_on: 2026-02-30\n    file:",
-        's.yaml:8:18: data.survey.received_on: "2026-02-30" is not in the calendar. Write year-month-day, such as '
-        "2026-04-09. (message 34)",
+        (
+            's.yaml:8:18: data.survey.received_on: "2026-02-30" is not in the calendar. Write year-month-day, such as '
+            "2026-04-09. (message 34)"
+        ),
     ),
     (
         "    file:",
         "    units_in_row: 1\n    file:",
-        "s.yaml:8:19: data.survey.units_in_row: names and units cannot both stand in row 1. Write the row of the "
-        "units, or leave the key out. (message 43)",
+        (
+            "s.yaml:8:19: data.survey.units_in_row: names and units cannot both stand in row 1. Write the row of the "
+            "units, or leave the key out. (message 43)"
+        ),
     ),
     (
         "    file:",
         "    first_data_row: 1\n    file:",
-        "s.yaml:8:21: data.survey.first_data_row: data cannot begin in row 1 when names or units stand in row 1. "
-        "Write 2 or a later row. (message 43)",
+        (
+            "s.yaml:8:21: data.survey.first_data_row: data cannot begin in row 1 when names or units stand in row 1. "
+            "Write 2 or a later row. (message 43)"
+        ),
     ),
     (
         "    file:",
         "    last_data_row: 1\n    file:",
-        "s.yaml:8:20: data.survey.last_data_row: data cannot end in row 1 when they begin in row 2. Write 2 or a "
-        "later row. (message 43)",
+        (
+            "s.yaml:8:20: data.survey.last_data_row: data cannot end in row 1 when they begin in row 2. Write 2 or a "
+            "later row. (message 43)"
+        ),
     ),
     (
         "    file:",
         "    thousands_mark: .\n    file:",
-        's.yaml:8:21: data.survey.thousands_mark: thousands_mark and decimal_mark are both ".". Write two different '
-        "marks, or leave thousands_mark out. (message 40)",
+        (
+            's.yaml:8:21: data.survey.thousands_mark: thousands_mark and decimal_mark are both ".". Write two different '
+            "marks, or leave thousands_mark out. (message 40)"
+        ),
     ),
     (
         "    file:",
         '    comment_mark: ","\n    file:',
-        's.yaml:8:19: data.survey.comment_mark: a comment would begin with the separator ",". Write another mark. '
-        "(message 40)",
+        (
+            's.yaml:8:19: data.survey.comment_mark: a comment would begin with the separator ",". Write another mark. '
+            "(message 40)"
+        ),
     ),
     (
         "    file:",
         '    comment_mark: "a b"\n    file:',
-        's.yaml:8:19: data.survey.comment_mark: "a b" cannot mark a comment. Write one to three characters, such as '
-        '"#". (message 29)',
+        (
+            's.yaml:8:19: data.survey.comment_mark: "a b" cannot mark a comment. Write one to three characters, such as '
+            '"#". (message 29)'
+        ),
     ),
     (
         "    file:",
         '    thousands_mark: "_"\n    file:',
-        's.yaml:8:21: data.survey.thousands_mark: "_" is not such a mark. Write one of: "," "." " " "\'" "’" '
-        '"\\u00A0" "\\u202F" (message 29)',
+        (
+            's.yaml:8:21: data.survey.thousands_mark: "_" is not such a mark. Write one of: "," "." " " "\'" "’" '
+            '"\\u00A0" "\\u202F" (message 29)'
+        ),
     ),
     (
         "    unit: m\n",
         "",
-        's.yaml:20:3: variables.clarity: unit is missing; a measured variable has one. Write unit: mg/L, or unit: "1" '
-        "for a pure number. (message 41)",
+        (
+            's.yaml:20:3: variables.clarity: unit is missing; a measured variable has one. Write unit: mg/L, or unit: "1" '
+            "for a pure number. (message 41)"
+        ),
     ),
     (
         "column: secchi",
         "column: surveys / secchi",
-        's.yaml:21:13: variables.clarity.column: "surveys" is not a table of data. nearest: survey. For a column of '
-        'that whole name write {name: "surveys / secchi"}. (message 36)',
+        (
+            's.yaml:21:13: variables.clarity.column: "surveys" is not a table of data. nearest: survey. For a column of '
+            'that whole name write {name: "surveys / secchi"}. (message 36)'
+        ),
     ),
     (
         "scale: measured",
         "scale: measured\n    lowest_to_highest: [a, b]",
-        "s.yaml:20:5: variables.chlorophyll.lowest_to_highest: the scale measured has numbers, not labels. Leave "
-        "lowest_to_highest out, or write scale: ordered. (message 42)",
+        (
+            "s.yaml:20:5: variables.chlorophyll.lowest_to_highest: the scale measured has numbers, not labels. Leave "
+            "lowest_to_highest out, or write scale: ordered. (message 42)"
+        ),
     ),
     (
         "scale: measured",
         "scale: ordered\n    other_spellings: {a: b}",
-        "s.yaml:20:5: variables.chlorophyll.other_spellings: other spellings belong to labels, and lowest_to_highest "
-        "is not written. Write lowest_to_highest, or leave other_spellings out. (message 42)",
+        (
+            "s.yaml:20:5: variables.chlorophyll.other_spellings: other spellings belong to labels, and lowest_to_highest "
+            "is not written. Write lowest_to_highest, or leave other_spellings out. (message 42)"
+        ),
     ),
     (
         "scale: measured",
         "scale: two-valued\n    lowest_to_highest: [a, b, c]",
-        "s.yaml:20:5: variables.chlorophyll.lowest_to_highest: 3 labels stand here; the scale two-valued has two "
-        "labels. Write [lowest, highest]. (message 28)",
+        (
+            "s.yaml:20:5: variables.chlorophyll.lowest_to_highest: 3 labels stand here; the scale two-valued has two "
+            "labels. Write [lowest, highest]. (message 28)"
+        ),
     ),
     (
         "scale: measured",
@@ -210,14 +264,18 @@ TAKEN_AWAY = (
     (
         "scale: measured",
         "scale: ordered\n    lowest_to_highest: [Low, High]\n    other_spellings: {Hi: Higg}",
-        's.yaml:21:27: variables.chlorophyll.other_spellings: "Higg" is not in lowest_to_highest. nearest: High. '
-        "(message 4)",
+        (
+            's.yaml:21:27: variables.chlorophyll.other_spellings: "Higg" is not in lowest_to_highest. nearest: High. '
+            "(message 4)"
+        ),
     ),
     (
         "scale: measured",
         "scale: ordered\n    lowest_to_highest: [Low, n/a]",
-        's.yaml:9:5: data.survey.missing_codes: "n/a" is a code for missing here and a label of '
-        "variables.chlorophyll. Strike it here or there. (message 40)",
+        (
+            's.yaml:9:5: data.survey.missing_codes: "n/a" is a code for missing here and a label of '
+            "variables.chlorophyll. Strike it here or there. (message 40)"
+        ),
     ),
 )
 
@@ -232,20 +290,26 @@ FOUND_IN_PANEL = (
     (
         "column: tasting / visits",
         "column: loaves / visits",
-        "s.yaml:69:23: associations.A2.between: visits stands in table loaves, liking in table tasting. Write two "
-        "variables of one table; join the files before the study. (message 38)",
+        (
+            "s.yaml:69:23: associations.A2.between: visits stands in table loaves, liking in table tasting. Write two "
+            "variables of one table; join the files before the study. (message 38)"
+        ),
     ),
     (
         "column: tasting / visits",
         "column: visits",
-        "s.yaml:53:13: variables.visits.column: the table is not named and data has several. Write tasting / visits, "
-        "or another table before the slash. (message 41)",
+        (
+            "s.yaml:53:13: variables.visits.column: the table is not named and data has several. Write tasting / visits, "
+            "or another table before the slash. (message 41)"
+        ),
     ),
     (
         "sidedness: two-sided",
         "sidedness: one-sided",
-        "s.yaml:72:33: associations.A2.hypothesis.expected_sign: either gives no side, and inference.sidedness is "
-        "one-sided. Write positive or negative, or sidedness: two-sided. (message 39)",
+        (
+            "s.yaml:72:33: associations.A2.hypothesis.expected_sign: either gives no side, and inference.sidedness is "
+            "one-sided. Write positive or negative, or sidedness: two-sided. (message 39)"
+        ),
     ),
     (
         ", reason: One primary question",
@@ -255,14 +319,18 @@ FOUND_IN_PANEL = (
     (
         ", seed: 9223372036854775807",
         "",
-        "s.yaml:78:3: inference.p_value: seed is missing; by: permutation draws at random. Write seed: and a whole "
-        "number chosen before the data are seen. (message 41)",
+        (
+            "s.yaml:78:3: inference.p_value: seed is missing; by: permutation draws at random. Write seed: and a whole "
+            "number chosen before the data are seen. (message 41)"
+        ),
     ),
     (
         "9223372036854775807",
         "9223372036854775808",
-        "s.yaml:78:57: inference.p_value.seed: 9223372036854775808 is not possible here. Write 0 to "
-        "9223372036854775807. (message 31)",
+        (
+            "s.yaml:78:57: inference.p_value.seed: 9223372036854775808 is not possible here. Write 0 to "
+            "9223372036854775807. (message 31)"
+        ),
     ),
     (
         "[client, court]",
@@ -282,8 +350,10 @@ FOUND_IN_PANEL = (
     (
         "  time_order: hour",
         "  time_order: not applicable\n  independent_because: drawn by lot",
-        's.yaml:34:3: rows.independent_because: rows are said to be independent, but repeated_within names the '
-        'column "booth". Write repeated_within: not applicable, or leave independent_because out. (message 40)',
+        (
+            "s.yaml:34:3: rows.independent_because: rows are said to be independent, but repeated_within names the "
+            'column "booth". Write repeated_within: not applicable, or leave independent_because out. (message 40)'
+        ),
     ),
     (
         "  A2:",
@@ -293,32 +363,42 @@ FOUND_IN_PANEL = (
     (
         "most_missing: 0.1",
         "most_missing: 20",
-        "s.yaml:81:17: requirements.most_missing: 20 is not possible here. Write a number at least 0 and at most 1. "
-        "A share is written from 0 to 1: 20 percent is 0.20. (message 31)",
+        (
+            "s.yaml:81:17: requirements.most_missing: 20 is not possible here. Write a number at least 0 and at most 1. "
+            "A share is written from 0 to 1: 20 percent is 0.20. (message 31)"
+        ),
     ),
     (
         "permutations: 20000",
         "permutations: 2e4",
-        's.yaml:78:44: inference.p_value.permutations: "2e4" is not a whole number. Write digits only, 999 to '
-        "10000000. (message 30)",
+        (
+            's.yaml:78:44: inference.p_value.permutations: "2e4" is not a whole number. Write digits only, 999 to '
+            "10000000. (message 30)"
+        ),
     ),
     (
         "decimals: {coefficient: 3",
         "decimals: {coeficient: 3",
-        's.yaml:86:14: report.decimals.coeficient: "coeficient" is not a key of report.decimals. nearest: '
-        "coefficient. (message 15)",
+        (
+            's.yaml:86:14: report.decimals.coeficient: "coeficient" is not a key of report.decimals. nearest: '
+            "coefficient. (message 15)"
+        ),
     ),
     (
-        "missing_codes: [\"?\"]",
+        'missing_codes: ["?"]',
         "missing_codes: [Poor]",
-        's.yaml:46:5: variables.liking.missing_codes: "Poor" is a code for missing here and a label of '
-        "variables.liking. Strike it here or there. (message 40)",
+        (
+            's.yaml:46:5: variables.liking.missing_codes: "Poor" is a code for missing here and a label of '
+            "variables.liking. Strike it here or there. (message 40)"
+        ),
     ),
     (
         '{"Gd.": Good}',
         "{Fair: Good}",
-        's.yaml:45:29: variables.liking.other_spellings: "Fair" is itself a label of lowest_to_highest. Strike it '
-        "here or there. (message 40)",
+        (
+            's.yaml:45:29: variables.liking.other_spellings: "Fair" is itself a label of lowest_to_highest. Strike it '
+            "here or there. (message 40)"
+        ),
     ),
 )
 
@@ -388,8 +468,10 @@ def test_the_first_data_row_follows_names_and_units() -> None:
 def test_an_empty_file_says_what_to_write() -> None:
     """A spec without keys is refused as such, whether empty, a list or a word."""
     expected = [
-        "s.yaml: no keys stand in the file. Write the keys study, data, rows, variables, associations and inference. "
-        "(message 25)"
+        (
+            "s.yaml: no keys stand in the file. Write the keys study, data, rows, variables, associations and inference. "
+            "(message 25)"
+        )
     ]
     assert [spec_messages(text) for text in ("", "# nothing yet\n", "[]", "word")] == [expected] * 4
 

@@ -48,6 +48,10 @@ def analyse(spec: StudySpec, data: StudyData, progress: Callable[[str], None] = 
 
     Parameters
     ----------
+    spec
+        The plan.
+    data
+        Everything read for it.
     progress
         Told the name of each association when it is done.
 

@@ -33,7 +33,7 @@ SCHEMA: Final = "urn:rankdocket:analysis:1"
 
 def analysis_to_plain(analysis: Analysis) -> dict[str, Plain]:
     """Return the whole analysis as plain data."""
-    words = Counter(finding.word or "no finding" for finding in analysis.findings.values())
+    words = Counter[str](finding.word or "no finding" for finding in analysis.findings.values())
     return {
         **data_to_plain(analysis.spec, analysis.data),
         "schema": SCHEMA,
@@ -122,8 +122,7 @@ def _table(table: Table) -> dict[str, Plain]:
         "values_digest": table.source.values_digest,
         "rows": len(table.row_numbers),
         "columns": list(table.columns),
-        "first_line": table.row_numbers[0] if table.row_numbers else 0,
-        "last_line": table.row_numbers[-1] if table.row_numbers else 0,
+        "lines": list(table.row_numbers),
         **{key: value for key, value in received.items() if value is not None},
     }
 

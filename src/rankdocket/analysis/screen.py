@@ -8,7 +8,7 @@ from decimal import Decimal
 
 from rankdocket.analysis.results import CompleteRow, LeftOutRow, RowFlow, Screened
 from rankdocket.stats.ranks import dense_codes, doubled_midranks, tie_groups
-from rankdocket.study.leave_out import matching_rows
+from rankdocket.study.leave_out import rows_left_out
 from rankdocket.study.spec import AssociationSpec, StudySpec
 from rankdocket.study.table import StudyData, VariableValues
 
@@ -17,7 +17,7 @@ def screen_association(association: AssociationSpec, spec: StudySpec, data: Stud
     """Select the complete rows of an association, then rank each variable among them."""
     x, y = data.variables[association.x], data.variables[association.y]
     table = data.tables[x.spec.table]
-    left_out = matching_rows(table, spec.rows.leave_out)
+    left_out = rows_left_out(data.tables, spec.rows.leave_out)[table.spec.name]
     kept = [position for position, row in enumerate(table.row_numbers) if row not in left_out]
     complete = [position for position in kept if x.values[position] is not None and y.values[position] is not None]
     without_x = sum(x.values[position] is None and y.values[position] is not None for position in kept)

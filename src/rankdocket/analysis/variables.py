@@ -7,7 +7,7 @@ from decimal import Decimal
 from fractions import Fraction
 
 from rankdocket.analysis.filing import filed
-from rankdocket.study.leave_out import matching_rows
+from rankdocket.study.leave_out import rows_left_out
 from rankdocket.study.spec import StudySpec
 from rankdocket.study.table import StudyData, VariableValues
 
@@ -45,7 +45,7 @@ class VariableSummary:
 def summarise(variable: VariableValues, spec: StudySpec, data: StudyData) -> VariableSummary:
     """Describe one variable alone."""
     table = data.tables[variable.spec.table]
-    left_out = matching_rows(table, spec.rows.leave_out)
+    left_out = rows_left_out(data.tables, spec.rows.leave_out)[table.spec.name]
     kept = [position for position, row in enumerate(table.row_numbers) if row not in left_out]
     values = sorted(value for position in kept if (value := variable.values[position]) is not None)
     meanings = dict.fromkeys([*table.spec.missing_codes.values(), *variable.spec.missing_codes.values()], 0)

@@ -1,8 +1,10 @@
 """Help pages in our own order: what it does, an example, the options."""
 
-from typing import Any
+from typing import Any, Final
 
 import click
+
+HELP_WORDS: Final = "Show this page and stop."
 
 
 class OfficeCommand(click.Command):
@@ -11,6 +13,10 @@ class OfficeCommand(click.Command):
     def __init__(self, *arguments: Any, example: str, **settings: Any) -> None:
         super().__init__(*arguments, **settings)
         self.example = example
+
+    def get_help_option(self, ctx: click.Context) -> click.Option | None:
+        """Return the option --help, in our words."""
+        return _in_our_words(super().get_help_option(ctx))
 
     def format_help(self, ctx: click.Context, formatter: click.HelpFormatter) -> None:
         """Write the help page."""
@@ -23,6 +29,10 @@ class OfficeGroup(click.Group):
     def __init__(self, *arguments: Any, example: str, **settings: Any) -> None:
         super().__init__(*arguments, **settings)
         self.example = example
+
+    def get_help_option(self, ctx: click.Context) -> click.Option | None:
+        """Return the option --help, in our words."""
+        return _in_our_words(super().get_help_option(ctx))
 
     def format_help(self, ctx: click.Context, formatter: click.HelpFormatter) -> None:
         """Write the help page."""
@@ -39,6 +49,18 @@ class OfficeGroup(click.Group):
         return list(self.commands)
 
 
+def _in_our_words(option: click.Option | None) -> click.Option | None:
+    if option is not None:
+        option.help = HELP_WORDS
+    return option
+
+
+def _row(option: click.Option, ctx: click.Context) -> tuple[str, str] | None:
+    record = option.get_help_record(ctx)
+    needed = " Needed." if option.required else ""
+    return None if record is None else (record[0], f"{option.help or ''}{needed}")
+
+
 def _write_help(command: click.Command, example: str, ctx: click.Context, formatter: click.HelpFormatter) -> None:
     formatter.width = 100
     for paragraph in (command.help or "").split("\n\n"):
@@ -47,7 +69,8 @@ def _write_help(command: click.Command, example: str, ctx: click.Context, format
     formatter.write_text("For example:")
     with formatter.indentation():
         formatter.write_text(example)
-    rows = [row for parameter in command.get_params(ctx) if (row := parameter.get_help_record(ctx)) is not None]
+    options = [parameter for parameter in command.get_params(ctx) if isinstance(parameter, click.Option)]
+    rows = [row for option in options if (row := _row(option, ctx)) is not None]
     formatter.write_paragraph()
     formatter.write_text("What can be added:")
     with formatter.indentation():

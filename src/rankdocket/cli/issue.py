@@ -2,6 +2,7 @@
 
 import click
 
+from rankdocket.canonical import Plain
 from rankdocket.cli.help import OfficeCommand
 from rankdocket.cli.output import Answer, Voice, answer, progress, voiced
 
@@ -28,13 +29,15 @@ def issue_command(study: str, reason: str, draft: bool, actor: str | None, as_js
 
 
 def _issue(study: str, reason: str, draft: bool, actor: str | None, voice: Voice) -> Answer:
-    from rankdocket.cli.refusals import require_reason
-    from rankdocket.workflow.issue import issue
+    from rankdocket.cli.refusals import require_reason, require_usable_time
 
     require_reason(reason)
+    require_usable_time()
+    from rankdocket.workflow.issue import issue
+
     done = issue(study, reason=reason, draft=draft, actor=actor, progress=progress(voice))
     kind = "Draft" if draft else "Edition"
-    plain = {
+    plain: dict[str, Plain] = {
         "schema": "urn:rankdocket:issued:1",
         "changed": done.changed,
         "edition": done.edition,

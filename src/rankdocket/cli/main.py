@@ -1,6 +1,5 @@
 """The command ``rankdocket``: which command, which exit status; the work is done in the workflow."""
 
-import os
 import sys
 from typing import Final, NoReturn
 
@@ -8,7 +7,7 @@ import click
 
 from rankdocket.cli.help import OfficeCommand, OfficeGroup
 from rankdocket.cli.issue import issue_command
-from rankdocket.cli.output import EXIT_USAGE, fail_usage
+from rankdocket.cli.output import EXIT_USAGE, close_quietly, fail_interrupted, fail_usage
 from rankdocket.cli.schema import schema_command
 from rankdocket.cli.screen import screen_command
 from rankdocket.cli.verify import verify_command
@@ -42,16 +41,17 @@ for _command in COMMANDS:
 
 def main() -> NoReturn:
     """Run the command line and end the process with its exit status."""
+    as_json = "--json" in sys.argv  # also where the command line as a whole cannot be read
     try:
         status = rankdocket.main(standalone_mode=False, prog_name="rankdocket")
     except click.UsageError as error:
-        fail_usage(error)
+        fail_usage(error, as_json)
         status = EXIT_USAGE
     except (KeyboardInterrupt, click.Abort):
-        click.echo("Interrupted: nothing was sealed.", err=True)
+        fail_interrupted(as_json)
         status = EXIT_INTERRUPTED
-    except BrokenPipeError:
-        # The reader of our output has gone; Python would complain again while closing it.
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+    except SystemExit:
+        # How click ends when the reader of a help page has gone: that is no answer "no".
+        close_quietly()
         status = 0
     sys.exit(status if isinstance(status, int) else 0)

@@ -2,7 +2,9 @@
 
 import difflib
 import json
+import os
 import sys
+import traceback
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from typing import Any, Final
@@ -10,13 +12,19 @@ from typing import Any, Final
 import click
 
 from rankdocket.canonical import Plain
-from rankdocket.errors import ComputeError, InputError, RankdocketError, RegisterError, RenderError
+from rankdocket.errors import ComputeError, Fault, InputError, RankdocketError, RegisterError, RenderError
 
 EXIT_YES: Final = 0
 EXIT_NO: Final = 1
 EXIT_USAGE: Final = 2
 EXIT_INPUT: Final = 3
 EXIT_FAILED: Final = 4
+
+_LINE: Final = 60
+"""So wide is the line that tells how far the work is."""
+
+NOTHING_COMPUTED: Final = "Nothing was computed."
+"""Said once whenever the user's files cannot be used: by a fault itself or behind the last one."""
 
 ERROR_SCHEMA: Final = "urn:rankdocket:error:1"
 
@@ -54,32 +62,52 @@ def answer(voice: Voice, work: Callable[[], Answer]) -> int:
     """Do the work, print its answer or its error, and return the exit status."""
     try:
         found = work()
-    except RankdocketError as error:
+    except Exception as error:  # noqa: BLE001 - whatever a library raises, the user gets a sentence and status 4
+        _clear(voice)
         if voice.debug:
-            raise
-        return _failed(voice, error)
-    except OSError as error:
-        if voice.debug or isinstance(error, BrokenPipeError):
-            raise
-        return _failed(voice, RegisterError(f"{error.filename or 'a file'}: {error.strerror or error}. Nothing was sealed."))
-    if voice.as_json:
-        click.echo(json.dumps(found.plain, ensure_ascii=False, sort_keys=True))
-    elif not voice.quiet:
-        click.echo(found.words)
+            traceback.print_exception(error)
+        return _failed(voice, _as_ours(error))
+    _clear(voice)
+    try:
+        if voice.as_json:
+            click.echo(json.dumps(found.plain, ensure_ascii=False, sort_keys=True))
+        elif not voice.quiet:
+            click.echo(found.words)
+    except BrokenPipeError:
+        close_quietly()
     return found.status
+
+
+def close_quietly() -> None:
+    """Let nobody read what is still to come: the reader has gone, and Python would complain again while closing."""
+    os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
 
 
 def progress(voice: Voice) -> Callable[[str], None]:
     """Return what tells how far the work is: on a terminal's standard error, one line that is written over."""
-    if voice.quiet or not sys.stderr.isatty():
+    if not _shows_progress(voice):
         return lambda _: None
-    return lambda text: click.echo(f"\r{text:<60}\r", err=True, nl=False)
+    return lambda text: click.echo(f"\r{text:<{_LINE}}\r", err=True, nl=False)
 
 
-def fail_usage(error: click.UsageError) -> None:
+def _clear(voice: Voice) -> None:
+    if _shows_progress(voice):
+        click.echo(f"\r{'':<{_LINE}}\r", err=True, nl=False)
+
+
+def _shows_progress(voice: Voice) -> bool:
+    return not voice.quiet and sys.stderr.isatty()
+
+
+def fail_usage(error: click.UsageError, as_json: bool) -> None:
     """Say what is wrong with a command line, in our words."""
     where = error.ctx.command_path if error.ctx is not None else "rankdocket"
-    click.echo(f"{where}: {_usage_words(error)} See: {where} --help", err=True)
+    _say(as_json, "usage", f"{where}: {_usage_words(error)} See: {where} --help", ())
+
+
+def fail_interrupted(as_json: bool) -> None:
+    """Say that the work was interrupted."""
+    _say(as_json, "interrupted", "Interrupted: nothing was sealed.", ())
 
 
 def _usage_words(error: click.UsageError) -> str:
@@ -92,6 +120,9 @@ def _usage_words(error: click.UsageError) -> str:
             if isinstance(error.param, click.Option):
                 return f"{error.param.opts[0]} is needed."
             return f"{name.upper()} is needed."
+        case click.BadOptionUsage():
+            takes_none = "does not take" in error.format_message()
+            return f"{error.option_name} {'takes no value' if takes_none else 'needs a value'}."
         case click.BadParameter():
             name = error.param.opts[0] if error.param is not None else "a value"
             return f"the value of {name} cannot be used."
@@ -111,34 +142,45 @@ def _nearest(word: str, known: list[str]) -> str:
     return f" nearest: {near[0]}." if near else ""
 
 
+def _as_ours(error: Exception) -> RankdocketError:
+    if isinstance(error, RankdocketError):
+        return error
+    if isinstance(error, OSError):
+        return RegisterError(f"{error.filename or 'a file'}: {error.strerror or error}. Nothing was sealed.")
+    return RankdocketError(
+        f"The program itself failed ({type(error).__name__}: {error}). Nothing was sealed; --debug shows where it failed."
+    )
+
+
 def _failed(voice: Voice, error: RankdocketError) -> int:
-    status = EXIT_INPUT if isinstance(error, InputError) else EXIT_FAILED
-    kind = {InputError: "input", ComputeError: "compute", RenderError: "render", RegisterError: "register"}
-    if voice.as_json:
-        faults = error.faults if isinstance(error, InputError) else ()
-        click.echo(
-            json.dumps(
-                {
-                    "schema": ERROR_SCHEMA,
-                    "kind": kind.get(type(error), "error"),
-                    "message": str(error),
-                    "faults": [
-                        {
-                            "file": fault.place.file,
-                            "line": fault.place.line,
-                            "column": fault.place.column,
-                            "field": fault.field,
-                            "what": fault.what,
-                            "remedy": fault.remedy,
-                            "number": fault.number,
-                        }
-                        for fault in faults
-                    ],
-                },
-                ensure_ascii=False,
-                sort_keys=True,
-            )
-        )
-    else:
-        click.echo(str(error), err=True)
-    return status
+    kinds = {InputError: "input", ComputeError: "compute", RenderError: "render", RegisterError: "register"}
+    faults = error.faults if isinstance(error, InputError) else ()
+    message = str(error)
+    if faults and NOTHING_COMPUTED not in message:
+        message = f"{message}\n{NOTHING_COMPUTED}"
+    _say(voice.as_json, kinds.get(type(error), "program"), message, faults)
+    return EXIT_INPUT if isinstance(error, InputError) else EXIT_FAILED
+
+
+def _say(as_json: bool, kind: str, message: str, faults: tuple[Fault, ...]) -> None:
+    if not as_json:
+        click.echo(message, err=True)
+        return
+    plain = {
+        "schema": ERROR_SCHEMA,
+        "kind": kind,
+        "message": message,
+        "faults": [
+            {
+                "file": fault.place.file,
+                "line": fault.place.line,
+                "column": fault.place.column,
+                "field": fault.field,
+                "what": fault.what,
+                "remedy": fault.remedy,
+                "number": fault.number,
+            }
+            for fault in faults
+        ],
+    }
+    click.echo(json.dumps(plain, ensure_ascii=False, sort_keys=True))

@@ -2,6 +2,7 @@
 
 from rankdocket.errors import InputError, Place
 from rankdocket.study.messages import Message, fault
+from rankdocket.workflow.moment import now
 
 
 def require_reason(reason: str) -> None:
@@ -24,3 +25,14 @@ def require_reason(reason: str) -> None:
                 ),
             )
         )
+
+
+def require_usable_time() -> None:
+    """Refuse a given time that is none before any library is imported: one of them stumbles over it by itself.
+
+    Raises
+    ------
+    InputError
+        If SOURCE_DATE_EPOCH is set and is not a whole number of seconds.
+    """
+    now()

@@ -24,6 +24,9 @@ def screen_command(study: str, as_json: bool, quiet: bool, debug: bool) -> int:
 
 
 def _screen(study: str) -> Answer:
+    from rankdocket.cli.refusals import require_usable_time
+
+    require_usable_time()
     from rankdocket.workflow.screen import screen
     from rankdocket.workflow.screening_text import screening_text
 

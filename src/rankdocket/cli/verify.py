@@ -2,6 +2,7 @@
 
 import click
 
+from rankdocket.canonical import Plain
 from rankdocket.cli.help import OfficeCommand
 from rankdocket.cli.output import EXIT_NO, EXIT_YES, Answer, Voice, answer, progress, voiced
 
@@ -26,6 +27,9 @@ def verify_command(study: str, edition: str | None, as_json: bool, quiet: bool, 
 
 
 def _verify(study: str, edition: str | None, voice: Voice) -> Answer:
+    from rankdocket.cli.refusals import require_usable_time
+
+    require_usable_time()
     from rankdocket.workflow.verify import verify
 
     found = verify(study, edition=edition, progress=progress(voice))
@@ -35,7 +39,7 @@ def _verify(study: str, edition: str | None, voice: Voice) -> Answer:
         lines = [f"{len(found.problems)} things in edition {found.edition} do not agree ({found.numbers} numbers, {found.files} files looked at):"]
         lines += [f"  {number}. {problem}" for number, problem in enumerate(found.problems, start=1)]
     lines += list(found.remarks)
-    plain = {
+    plain: dict[str, Plain] = {
         "schema": "urn:rankdocket:verification:1",
         "edition": found.edition,
         "grade": found.grade,

@@ -41,11 +41,16 @@ def look_up(plain: Plain, key: str) -> Plain:
     for step in key.split("/"):
         if isinstance(found, Mapping):
             found = found[step]
-        elif isinstance(found, Sequence) and not isinstance(found, str):
+        elif isinstance(found, Sequence) and not isinstance(found, str) and _is_position(step, len(found)):
             found = found[int(step)]
         else:
             raise KeyError(key)
     return found
+
+
+def _is_position(step: str, length: int) -> bool:
+    """Return whether a step is a list position as it is written in an address: "0", "17", never "-1" or "01"."""
+    return step.isascii() and step.isdecimal() and str(int(step)) == step and int(step) < length
 
 
 @dataclass(frozen=True, slots=True)
@@ -89,7 +94,7 @@ class Numbers:
     def as_filed(self, key: str) -> Number:
         """Return a decimal with all its digits (a rank, a level, a limit of the plan)."""
         exact = self._exact(key)
-        return Number(key, exact, _signed(_plain_text(Decimal(exact))))
+        return Number(key, exact, _signed(f"{Decimal(exact):f}"))
 
     def share(self, key: str) -> Number:
         """Return a filed fraction ``a/b`` as a percentage; fewer than a hundred rows get no decimals."""
@@ -126,11 +131,13 @@ class Numbers:
         exact = self._exact(key)
         value = Decimal(exact)
         smallest = Decimal(1).scaleb(-self.p_value_decimals)
+        while smallest > self.alpha:
+            smallest = smallest.scaleb(-1)
         if value == self.alpha:
             return Number(key, exact, f"{self._styled(self.alpha)} (exactly)")
         if value == 1:
             return Number(key, exact, "1")
-        if value < smallest <= self.alpha:
+        if value < smallest:
             return Number(key, exact, f"<{NARROW_SPACE}{self._styled(smallest)}")
         places = self.p_value_decimals
         while places < MOST_DECIMALS and self._misleads(_rounded(value, places), value):
@@ -142,13 +149,13 @@ class Numbers:
         exact = self._exact(key)
         value = Decimal(exact)
         places = self.p_value_decimals + 1
-        if value and _rounded(value, places) == 0:
+        if _rounded(value, places) == 0:
             return Number(key, exact, f"<{NARROW_SPACE}{self._styled(Decimal(1).scaleb(-places))}")
         return Number(key, exact, self._styled(_rounded(value, places)))
 
     def _misleads(self, printed: Decimal, value: Decimal) -> bool:
         crossed = (printed <= self.alpha) != (value <= self.alpha) or printed == self.alpha
-        return crossed or printed == 0 or printed == 1
+        return crossed or printed in (0, 1)
 
     def _styled(self, value: Decimal) -> str:
         text = f"{value:f}"

@@ -116,7 +116,7 @@ _RULES: Final[tuple[tuple[str, str], ...]] = (
      "no adjective for size without a stated scale"),
     (r"\bp(?:-value)? (?:is|was) the probability that\b", "p is not the probability of a hypothesis"),
     (r"\bp\s*=\s*0?\.?0+\b(?!\.\d)", "p is never zero"),
-    (r"\b(?:n\.s\.|not significant|non-significant|insignificant|statistically significant)\b",
+    (r"\bn\.s\.|\b(?:not significant|non-significant|insignificant|statistically significant)\b",
      "a finding is stated in the plan's own words"),
     (r"\b(?:zero error|beyond (?:any )?doubt|without (?:any )?doubt|guarantee[sd]?)\b", "no absolute claims"),
     (r"\d\s*\*{1,3}(?!\*)", "no marks for p-values"),

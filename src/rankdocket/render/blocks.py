@@ -35,6 +35,15 @@ from rankdocket.render.markup import trusted
 _CELL_SPACE: Final = 0.5
 """Em between a cell's text and its right edge, as in the style sheet."""
 
+_LONGEST_LEAD: Final = 2
+"""Paragraphs that may stand between a heading and the wide table they lead to."""
+
+_LONGEST_WHOLE: Final = 40
+"""Signs up to which a number is never broken; a line of the text holds more."""
+
+_LONG_TABLE: Final = 25
+"""Rows from which they stand closer, so that a worksheet of usual length has one page."""
+
 _SHORT_TABLE: Final = 12
 """Rows up to which a table is kept on one page."""
 
@@ -62,7 +71,11 @@ class Setter:
     def section(
         self, section: Section, level: int, opens: str, *, works: Mapping[str, str], inner: Sequence[Markup]
     ) -> Markup:
-        """Return a section with its heading, its blocks, its sub-sections and, where given, its list of works."""
+        """Return a section with its heading, its blocks, its sub-sections and, where given, its list of works.
+
+        What leads to a wide table goes with it onto the wide page: a heading must not stay behind alone.
+        """
+        led = _led_to_wide_table(section.blocks)
         return self._fill(
             "section",
             id=identifier("section", section.key),
@@ -70,7 +83,8 @@ class Setter:
             opens=opens,
             number=section.number,
             title=self.prose(section.title),
-            body=self.blocks(section.blocks),
+            lead=self.blocks(section.blocks[:led]),
+            body=self.blocks(section.blocks[led:]),
             inner=inner,
             works=[(identifier("reference", key), full) for key, full in works.items()],
         )
@@ -94,7 +108,7 @@ class Setter:
             case str():
                 return Markup.escape(piece)
             case Number():
-                return self._macro("number", piece)
+                return self._macro("number", piece, len(piece.text) > _LONGEST_WHOLE)
             case Citation():
                 return self._macro("citation", piece, self._anchors.of_citation(piece.key))
             case Link():
@@ -183,6 +197,7 @@ class Setter:
             foot=lines(table.foot),
             notes=[self.prose(note) for note in table.notes],
             landscape=table.landscape,
+            long=len(table.rows) >= _LONG_TABLE,
             short=len(table.rows) + len(table.foot) <= _SHORT_TABLE,
         )
 
@@ -212,3 +227,13 @@ class Setter:
     def _fill(self, template: str, **slots: object) -> Markup:
         rendered = self._templates.get_template(f"blocks/{template}.html.j2").render(**slots)
         return trusted(rendered)
+
+
+def _led_to_wide_table(blocks: Sequence[Block]) -> int:
+    """Return how many blocks, up to and with a wide table, belong to the heading above them; 0 for none."""
+    for i, block in enumerate(blocks[: _LONGEST_LEAD + 1]):
+        if isinstance(block, TableBlock) and block.landscape:
+            return i + 1
+        if not isinstance(block, Paragraph):
+            break
+    return 0

@@ -30,8 +30,13 @@ _SHORT_CELL: Final = 8.6
 
 _LONGEST_CELL: Final = 34.0
 _LEAST_TABLE: Final = 30.0
-_DIGITS_KEPT: Final = 7
-"""Letters of a digest or literal that stay together; such text may be broken anywhere after them."""
+_LONGEST_CODE: Final = 10.0
+"""Em of a literal's part that stay together; a longer one (a digest) may be broken anywhere."""
+
+_CODE_SIZE: Final = 0.8
+"""Size of literals beside that of the text around them, as in the style sheet."""
+
+_CODE_BREAKS: Final = re.compile(r"(?<=[ /-])")
 
 _BREAKS: Final = re.compile(r"(?<=[ \n/–-])")
 _DECIMAL_MARK: Final = "."
@@ -120,7 +125,8 @@ def _word(prose: Prose, face: Face) -> float:
         if isinstance(piece, Number):
             parts: Sequence[str] = (piece.text,)
         elif isinstance(piece, Emphasis) and piece.kind == "code":
-            longest = max(longest, width(piece.text[:_DIGITS_KEPT], MONO_TEXT))
+            code = max((width(part, MONO_TEXT) * _CODE_SIZE for part in _CODE_BREAKS.split(piece.text)), default=0.0)
+            longest = max(longest, min(code, _LONGEST_CODE))
             parts = ()
         else:
             parts = _BREAKS.split(piece if isinstance(piece, str) else piece.text)

@@ -18,7 +18,7 @@ TITLE_GAP: Final = 6.0
 
 _LARGEST_RADIUS: Final = 8.0
 _CROWDED: Final = 400
-_SMALLEST_RADIUS: Final = 0.9
+"""Marks above which each is drawn smaller, so that all together keep the same ink."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -61,9 +61,13 @@ def radii(marks: Sequence[Mark], single: float) -> list[float]:
     """Return a radius for each mark, its area growing with the count; smaller where there are many."""
     if not marks:
         return []
-    rare = max(_SMALLEST_RADIUS, single * min(1.0, sqrt(_CROWDED / len(marks))))
-    one = min(rare, _LARGEST_RADIUS / sqrt(max(mark.count for mark in marks)))
+    one = min(single * thinning(marks), _LARGEST_RADIUS / sqrt(max(mark.count for mark in marks)))
     return [one * sqrt(mark.count) for mark in marks]
+
+
+def thinning(marks: Sequence[Mark]) -> float:
+    """Return the factor, at most 1, by which marks and their outlines shrink because there are many."""
+    return min(1.0, sqrt(_CROWDED / max(1, len(marks))))
 
 
 def draw_frame(sheet: Sheet, panel: Panel) -> None:

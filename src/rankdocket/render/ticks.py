@@ -6,7 +6,9 @@ from typing import Final
 
 from rankdocket.render.fonts import SANS_TEXT, width
 
-_STEPS: Final = (Decimal(1), Decimal(2), Decimal(5), Decimal(10))
+_STEPS: Final = (Decimal(10), Decimal(5), Decimal(2), Decimal(1))
+_LONGEST_STEP: Final = Decimal("1.4")
+"""How much longer than wished a step may be before the next shorter one is taken."""
 _MINUS: Final = "\u2212"
 _SUPERSCRIPTS: Final = str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹")
 _LARGEST_PLAIN: Final = 6
@@ -45,9 +47,9 @@ def even_scale(low: Decimal, high: Decimal, wanted: int) -> Scale:
     if low == high:
         spread = abs(low) / 2 or Decimal(1)
         low, high = low - spread, high + spread
-    raw = (high - low) / wanted
-    unit = Decimal(1).scaleb(raw.adjusted())
-    step = next(unit * part for part in _STEPS if unit * part >= raw)
+    longest = (high - low) / wanted * _LONGEST_STEP
+    unit = Decimal(1).scaleb(longest.adjusted())
+    step = next(unit * part for part in _STEPS if unit * part <= longest)
     first = (low / step).to_integral_value(ROUND_CEILING)
     last = (high / step).to_integral_value(ROUND_FLOOR)
     values = [step * (first + i) for i in range(int(last - first) + 1)]

@@ -128,9 +128,7 @@ def _scale_faults(parts: Parts, name: str, variable: VariableForm) -> Iterator[F
     if (scale == "two-valued" and labels not in (0, 2)) or (scale == "ordered" and labels == 1):
         place = parts.key_place("variables", name, "lowest_to_highest")
         what = f"{labels} labels stand here; the scale {scale} has {wanted[scale]}."
-        yield fault(
-            place, f"variables.{name}.lowest_to_highest", Message.WRONG_SHAPE, what, "Write [lowest, highest]."
-        )
+        yield fault(place, f"variables.{name}.lowest_to_highest", Message.WRONG_SHAPE, what, "Write [lowest, highest].")
 
 
 def _label_faults(parts: Parts, name: str, variable: VariableForm) -> Iterator[Fault]:

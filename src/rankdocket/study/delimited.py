@@ -80,7 +80,8 @@ def records_of(lines: list[str], spec: DataSpec) -> Records:
             units = record
         else:
             data.append(record)
-    while data and all(not cell.strip() for cell in data[-1].fields):
+    # A quoted empty cell is something that was sent; a line of blanks and separators is not.
+    while data and not lines[data[-1].line - 1].replace(spec.separator, "").strip():
         data.pop()
     faults = _absent_rows(len(lines), spec, found=(names is not None, units is not None, bool(data)))
     if faults or names is None:

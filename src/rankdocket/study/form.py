@@ -107,11 +107,15 @@ class DataForm(Form):
     separator: Annotated[str, kinds.Mark(SEPARATORS, ((TAB_WORD, "\t"),))] = Field(
         default=",", description="Character between two fields; tab may be written as a word."
     )
-    decimal_mark: Annotated[str, kinds.Mark(DECIMAL_MARKS)] = Field(default=".", description="Mark before the decimals.")
+    decimal_mark: Annotated[str, kinds.Mark(DECIMAL_MARKS)] = Field(
+        default=".", description="Mark before the decimals."
+    )
     thousands_mark: Annotated[str | None, kinds.Mark(THOUSANDS_MARKS)] = Field(
         default=None, description="Mark between groups of three digits; left out when the file has none."
     )
-    text_encoding: Annotated[str, kinds.OneOf(ENCODINGS)] = Field(default="utf-8", description="How bytes stand for text.")
+    text_encoding: Annotated[str, kinds.OneOf(ENCODINGS)] = Field(
+        default="utf-8", description="How bytes stand for text."
+    )
     comment_mark: Annotated[str | None, kinds.CommentMark()] = Field(
         default=None, description="A line that begins with this mark is not data."
     )
@@ -120,7 +124,9 @@ class DataForm(Form):
     first_data_row: OptionalRowNumber = Field(
         default=None, description="First line of data; the line after names and units when left out."
     )
-    last_data_row: OptionalRowNumber = Field(default=None, description="Last line of data; the end of the file when left out.")
+    last_data_row: OptionalRowNumber = Field(
+        default=None, description="Last line of data; the end of the file when left out."
+    )
     missing_codes: Annotated[dict[str, str], kinds.MissingCodes()] = Field(
         description="Cell texts that mean missing: a list, or each with its meaning. [] when there are none."
     )
@@ -169,7 +175,9 @@ class VariableForm(Form):
     unit: OptionalProse = Field(default=None, description='Unit, required when measured; "1" for a pure number.')
     scale: Annotated[Scale, kinds.OneOf(SCALES)] = Field(description="What kind of values the column holds.")
     lowest_to_highest: tuple[Prose, ...] = Field(default=(), description="The labels from lowest to highest.")
-    other_spellings: dict[str, Prose] = Field(default={}, description="Label as it may stand in the file, and what it means.")
+    other_spellings: dict[str, Prose] = Field(
+        default={}, description="Label as it may stand in the file, and what it means."
+    )
     missing_codes: Annotated[dict[str, str], kinds.MissingCodes()] = Field(
         default={}, description="Cell texts that mean missing in this column alone."
     )
@@ -202,7 +210,9 @@ class SeveralTestsForm(Form):
     """How p is adjusted for several tests."""
 
     adjust: Annotated[Adjustment, kinds.OneOf(ADJUSTMENTS)] = Field(default="Holm", description="The adjustment.")
-    among: Annotated[Family, kinds.OneOf(FAMILIES)] = Field(default="primary", description="Which associations are the family.")
+    among: Annotated[Family, kinds.OneOf(FAMILIES)] = Field(
+        default="primary", description="Which associations are the family."
+    )
     reason: OptionalProse = Field(default=None, description="Why nothing is adjusted; required then.")
 
 
@@ -224,7 +234,9 @@ class InferenceForm(Form):
     alpha: Annotated[Decimal, kinds.DecimalNumber(_ZERO, _HALF, (_ZERO,))] = Field(
         description="Largest p at which an association counts as shown."
     )
-    sidedness: Annotated[Sidedness, kinds.OneOf(SIDEDNESS)] = Field(default="two-sided", description="Tails of the test.")
+    sidedness: Annotated[Sidedness, kinds.OneOf(SIDEDNESS)] = Field(
+        default="two-sided", description="Tails of the test."
+    )
     confidence_level: Annotated[Decimal, kinds.DecimalNumber(_HALF, _ONE, (_ONE,))] = Field(
         default=Decimal("0.95"), description="Level of the intervals."
     )
@@ -278,9 +290,7 @@ class SpecForm(Form):
     data: dict[str, DataForm] = Field(description="The data files, each under a name.", json_schema_extra=_Names)
     rows: RowsForm = Field(description="What one row is.")
     variables: dict[str, VariableForm] = Field(description="The variables by name.", json_schema_extra=_Names)
-    associations: dict[str, AssociationForm] = Field(
-        description="The associations by name.", json_schema_extra=_Names
-    )
+    associations: dict[str, AssociationForm] = Field(description="The associations by name.", json_schema_extra=_Names)
     inference: InferenceForm = Field(description="The decision rule of the study.")
     requirements: RequirementsForm = Field(
         default_factory=RequirementsForm, description="Limits, and what follows when one is not met."

@@ -4,7 +4,7 @@ import csv
 import io
 import json
 import re
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterator
 from itertools import zip_longest
 from typing import Any, Final
 
@@ -64,11 +64,20 @@ def _json(name: str, filed: Any, made: Any, address: str = "") -> Iterator[str]:
 def _csv(name: str, filed: str, made: str) -> Iterator[str]:
     ours, theirs = list(csv.reader(io.StringIO(made))), list(csv.reader(io.StringIO(filed)))
     head = ours[0] if ours else []
-    for line, (row, other) in enumerate(zip_longest(theirs, ours, fillvalue=[]), start=1):
+    none: list[str] = []
+    for line, (row, other) in enumerate(zip_longest(theirs, ours, fillvalue=none), start=1):
         for column, (cell, right) in enumerate(zip_longest(row, other, fillvalue="")):
             if cell != right:
                 title = head[column] if column < len(head) else f"column {column + 1}"
                 yield f"{name}: line {line}, {title} is {_short(cell)} as filed, {_short(right)} as recomputed."
+
+
+def shown_numbers(page: str) -> dict[str, set[str]]:
+    """Return address → the texts by which a page prints the number that stands there."""
+    found: dict[str, set[str]] = {}
+    for key, text in _NUMBER_ELEMENT.findall(page):
+        found.setdefault(key, set()).add(text)
+    return found
 
 
 def _html(name: str, filed: str, made: str) -> Iterator[str]:
@@ -104,17 +113,3 @@ def _short(value: object) -> str:
         return "nothing"
     text = value if isinstance(value, str) else json.dumps(value, ensure_ascii=False)
     return f"“{text if len(text) <= 80 else text[:77] + '…'}”"
-
-
-def as_mapping(data: bytes) -> Mapping[str, Any]:
-    """Return a JSON object.
-
-    Raises
-    ------
-    ValueError
-        If the bytes hold anything else.
-    """
-    found = json.loads(data)
-    if not isinstance(found, dict):
-        raise ValueError("not a JSON object")
-    return found

@@ -61,8 +61,12 @@ def issue(path: str, *, reason: str, draft: bool = False, actor: str | None = No
         The study's folder or its spec.
     reason
         Why; printed and filed.
+    draft
+        Whether a lettered draft is sealed instead of an edition.
     actor
         Who issues it, as claimed; by default RANKDOCKET_ACTOR or the name of the account.
+    progress
+        Told in words how far the work is.
 
     Raises
     ------

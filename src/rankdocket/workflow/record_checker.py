@@ -1,167 +1,401 @@
 """Checks a record copy without the program that made it: python3 check.py in the folder of the edition.
 
-Needs Python 3.9 or later and nothing else.  It holds every file against SHA256SUMS, ranks the values of rows.csv
-anew, recomputes each coefficient in whole numbers, counts all orderings of the rows where there are few, and looks
-up every printed number of document.json in analysis.json and in report.html.
+Needs Python 3.9 or later and nothing else.  It holds every file against SHA256SUMS; ranks the values of rows.csv
+anew and holds the worksheets against them; recomputes each coefficient in whole numbers; counts all orderings of
+the rows where there are few enough; derives p, adjusted p and finding from the counts; holds results.csv against
+analysis.json; and looks up every printed number of document.json in analysis.json and in report.html.
+
+It does not read the spec and the data as received, does not recompute intervals and drawn permutations, and does
+not open the PDF.
 """
+
+from __future__ import annotations
 
 import csv
 import hashlib
 import html
-import itertools
 import json
 import re
 import sys
-from collections import Counter
+from collections import Counter, defaultdict
 from decimal import ROUND_HALF_EVEN, Context, Decimal
 from fractions import Fraction
-from math import factorial
+from functools import reduce
+from math import comb, factorial, gcd
 from pathlib import Path
+from typing import TYPE_CHECKING, Any
 
-MOST_ROWS_COUNTED = 8
+if TYPE_CHECKING:
+    from collections.abc import Iterator
+
+MOST_ROWS_COUNTED = 14
+"""Up to here counting takes seconds on any machine; more rows are left to the program itself."""
+
 DIGITS = 12
+"""Significant digits of every filed value that is not whole."""
+
+RHO = "Spearman rho"
+RESULT_COLUMNS = (
+    ("n", "rows/complete"),
+    ("coefficient", "coefficient"),
+    ("value", "estimate/value"),
+    ("interval_low", "interval/low"),
+    ("interval_high", "interval/high"),
+    ("interval_by", "interval/by"),
+    ("p", "test/p"),
+    ("p_by", "test/method"),
+    ("p_adjusted", "finding/p_adjusted"),
+    ("finding", "finding/word"),
+    ("x", "x"),
+    ("y", "y"),
+)
+"""Column of results.csv and where its value stands below an association of analysis.json; absent is blank."""
+
+NUMBER_ELEMENT = re.compile(r'data-key="([^"]+)"[^>]*>([^<]*)<')
 
 
-def main(folder):
+def main(folder: Path) -> int:
     """Check the record copy in ``folder``; return the exit status."""
-    problems = []
+    problems: list[str] = []
     files = check_digests(folder, problems)
-    analysis = json.loads((folder / "analysis.json").read_text(encoding="utf-8"))
-    rows = rows_by_association(folder)
-    for name, found in sorted(analysis["associations"].items()):
-        check_association(folder, name, found, rows.get(name, []), problems)
-    numbers = check_printed(folder, analysis, problems)
-    if not problems:
-        print(f"Everything agrees ({numbers} numbers, {files} files).")
-        return 0
-    print(f"{len(problems)} things do not agree ({numbers} numbers, {files} files looked at):")
-    for place, problem in enumerate(problems, start=1):
-        print(f"  {place}. {problem}")
-    return 1
+    numbers, left = 0, []
+    try:
+        analysis = json.loads((folder / "analysis.json").read_text(encoding="utf-8"))
+        left = check_associations(folder, analysis, problems)
+        check_findings(folder, analysis, problems)
+        check_results(folder, analysis, problems)
+        numbers = check_printed(folder, analysis, problems)
+    except (OSError, ValueError, KeyError, TypeError, ArithmeticError) as error:
+        problems.append(f"the record cannot be read to its end: {type(error).__name__}, {error}.")
+    if problems:
+        say(f"{len(problems)} things do not agree ({numbers} numbers, {files} files looked at):")
+        for place, problem in enumerate(problems, start=1):
+            say(f"  {place}. {problem}")
+    else:
+        say(f"Everything agrees ({numbers} numbers, {files} files).")
+    if left:
+        say(
+            f"Not counted anew, because permutations were drawn or more than {MOST_ROWS_COUNTED} rows ranked: {', '.join(left)}."
+        )
+    return 1 if problems else 0
 
 
-def check_digests(folder, problems):
-    """Hold every listed file against its SHA-256."""
-    lines = (folder / "SHA256SUMS").read_text(encoding="utf-8").splitlines()
-    for line in lines:
-        digest, name = line.split("  ", 1)
-        path = folder / name
-        if not path.is_file():
+def say(text: str) -> None:
+    """Print a line."""
+    sys.stdout.write(f"{text}\n")
+
+
+def check_digests(folder: Path, problems: list[str]) -> int:
+    """Hold every listed file against its SHA-256, and look for files that are not listed; return how many are."""
+    listed = {}
+    for line in (folder / "SHA256SUMS").read_text(encoding="utf-8").splitlines():
+        digest, _, name = line.partition("  ")
+        listed[name] = digest
+    present = {path.relative_to(folder).as_posix() for path in folder.rglob("*") if path.is_file()}
+    for name, digest in sorted(listed.items()):
+        if name not in present:
             problems.append(f"{name} is missing.")
-        elif hashlib.sha256(path.read_bytes()).hexdigest() != digest:
+        elif hashlib.sha256((folder / name).read_bytes()).hexdigest() != digest:
             problems.append(f"{name} is not the file that was sealed.")
-    return len(lines)
+    problems.extend(f"{name} is not listed in SHA256SUMS." for name in sorted(present - listed.keys() - {"SHA256SUMS"}))
+    return len(listed)
 
 
-def rows_by_association(folder):
-    """Return association name → rows of rows.csv."""
-    found = {}
+def check_associations(folder: Path, analysis: Any, problems: list[str]) -> list[str]:
+    """Rank, compute and count every association again; return the names of those not counted."""
+    rows: dict[str, list[dict[str, str]]] = {}
     for row in read_csv(folder / "rows.csv"):
-        found.setdefault(row["association"], []).append(row)
-    return found
+        rows.setdefault(row["association"], []).append(row)
+    problems.extend(
+        f"rows.csv: there is no association {name}." for name in sorted(rows.keys() - analysis["associations"].keys())
+    )
+    left = []
+    for name, found in sorted(analysis["associations"].items()):
+        its_rows = rows.get(name, [])
+        if len(its_rows) != found["rows"]["complete"]:
+            problems.append(
+                f"{name}: rows.csv has {len(its_rows)} rows, analysis.json says {found['rows']['complete']}."
+            )
+            continue
+        x = doubled_midranks([Fraction(row["x_value"]) for row in its_rows])
+        y = doubled_midranks([Fraction(row["y_value"]) for row in its_rows])
+        check_worksheet(folder, name, (its_rows, x, y), problems)
+        if found["estimate"]["state"] == "estimated":
+            check_estimate(name, found, (x, y), problems)
+        if found["test"]["state"] == "tested" and not check_test(name, found, (x, y), problems):
+            left.append(name)
+    return left
 
 
-def read_csv(path):
+def read_csv(path: Path) -> list[dict[str, str]]:
     """Return a CSV file's rows as mappings."""
     with path.open(encoding="utf-8", newline="") as file:
         return list(csv.DictReader(file))
 
 
-def check_association(folder, name, found, rows, problems):
-    """Rank, compute and count one association again."""
-    if len(rows) != found["rows"]["complete"]:
-        problems.append(f"{name}: rows.csv has {len(rows)} rows, analysis.json says {found['rows']['complete']}.")
+def check_worksheet(
+    folder: Path, name: str, rows: tuple[list[dict[str, str]], list[int], list[int]], problems: list[str]
+) -> None:
+    """Hold the ranks, their differences and the squares against ranks made anew."""
+    file = f"ranks-{name}.csv"
+    filed = read_csv(folder / file)
+    used, x, y = rows
+    if len(filed) != len(used):
+        problems.append(f"{file} has {len(filed)} rows, rows.csv {len(used)}.")
         return
-    x = doubled_midranks([Fraction(row["x_value"]) for row in rows])
-    y = doubled_midranks([Fraction(row["y_value"]) for row in rows])
-    for line, (filed, rank_x, rank_y) in enumerate(zip(read_csv(folder / f"ranks-{name}.csv"), x, y), start=2):
-        for column, rank in (("rank_x", rank_x), ("rank_y", rank_y)):
-            if Fraction(filed[column]) * 2 != rank:
-                problems.append(f"ranks-{name}.csv, line {line}: {column} is {filed[column]}, ranked anew {Fraction(rank, 2)}.")
-    if found["estimate"]["state"] != "estimated":
-        return
-    sums = rho_sums(x, y) if found["coefficient"] == "Spearman rho" else tau_sums(x, y)
-    for key, value in zip(("numerator", "x_square", "y_square"), sums):
-        if int(found["estimate"][key]) != value:
-            problems.append(f"{name}: {key} is {found['estimate'][key]} in analysis.json, computed anew {value}.")
+    for place, row in enumerate(filed):
+        rank_x, rank_y = Fraction(x[place], 2), Fraction(y[place], 2)
+        anew = {"rank_x": rank_x, "rank_y": rank_y, "difference": rank_x - rank_y, "squared": (rank_x - rank_y) ** 2}
+        for column, value in anew.items():
+            if Fraction(row[column]) != value:
+                problems.append(
+                    f"{file}, line {place + 2}: {column} is {row[column]}, made anew {decimal_text(value)}."
+                )
+        problems.extend(
+            f"{file}, line {place + 2}: {column} is {row[column]}, rows.csv has {used[place][column]}."
+            for column in ("row", "x", "y")
+            if row[column] != used[place][column]
+        )
+
+
+def check_estimate(name: str, found: Any, ranks: tuple[list[int], list[int]], problems: list[str]) -> None:
+    """Compute the coefficient again."""
+    sums = rho_sums(*ranks) if found["coefficient"] == RHO else tau_sums(*ranks)
+    estimate = found["estimate"]
+    for position, key in enumerate(("numerator", "x_square", "y_square")):
+        if int(estimate[key]) != sums[position]:
+            problems.append(f"{name}: {key} is {estimate[key]} in analysis.json, computed anew {sums[position]}.")
     value = coefficient(*sums)
-    if Decimal(found["estimate"]["value"]) != value:
-        problems.append(f"{name}: the coefficient is {found['estimate']['value']}, computed anew {value}.")
-    check_count(name, found, x, y, sums[0], problems)
+    if Decimal(estimate["value"]) != value:
+        problems.append(f"{name}: the coefficient is {estimate['value']} in analysis.json, computed anew {value}.")
 
 
-def check_count(name, found, x, y, numerator, problems):
-    """Count all orderings of the rows where there are few enough."""
+def check_test(name: str, found: Any, ranks: tuple[list[int], list[int]], problems: list[str]) -> bool:
+    """Derive p from its count, and count all orderings where there are few enough; return whether it was done."""
     test = found["test"]
-    if test["state"] != "tested" or not test["method"].startswith("exact") or len(x) > MOST_ROWS_COUNTED:
+    for key, text in (("p", test["count"]), ("p_greater", test["count_greater"]), ("p_less", test["count_less"])):
+        if test[key] != filed_text(p_of(test, int(text))):
+            problems.append(
+                f"{name}: {key} is {test[key]} in analysis.json, its count says {filed_text(p_of(test, int(text)))}."
+            )
+    if not test["method"].startswith("exact") or len(ranks[0]) > MOST_ROWS_COUNTED:
+        return False
+    tally = orderings(*ranks, found["coefficient"])
+    numerator = (rho_sums(*ranks) if found["coefficient"] == RHO else tau_sums(*ranks))[0]
+    counts = {
+        "greater": sum(times for value, times in tally.items() if value >= numerator),
+        "less": sum(times for value, times in tally.items() if value <= numerator),
+        "two-sided": sum(times for value, times in tally.items() if abs(value) >= abs(numerator)),
+    }
+    anew = (("count", counts[test["direction"]]), ("count_greater", counts["greater"]), ("count_less", counts["less"]))
+    whole = factorial(len(ranks[0]))
+    for key, count in anew:
+        if Fraction(int(test[key]), int(test["of"])) != Fraction(count, whole):
+            problems.append(
+                f"{name}: {key} is {test[key]} of {test['of']} in analysis.json, counted anew {count} of {whole}."
+            )
+    return True
+
+
+def p_of(test: Any, count: int) -> Fraction:
+    """Return p: a share of all orderings, or of the drawn ones together with the observed one."""
+    drawn = 0 if test["method"].startswith("exact") else 1
+    return Fraction(count + drawn, int(test["of"]) + drawn)
+
+
+def check_findings(folder: Path, analysis: Any, problems: list[str]) -> None:
+    """Adjust every p again and decide again by the plan."""
+    plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))
+    family, alpha = analysis["inference"]["family"], Fraction(plan["inference"]["alpha"])
+    p_values = {
+        name: p_of(found["test"], int(found["test"]["count"]))
+        for name, found in analysis["associations"].items()
+        if found["test"]["state"] == "tested"
+    }
+    everybody = {name: p_values.get(name, Fraction(1)) for name in family}
+    adjusted = holm(everybody) if plan["inference"]["several_tests"]["adjust"] == "Holm" else everybody
+    for name, found in sorted(analysis["associations"].items()):
+        finding = found["finding"]
+        if "p_adjusted" in finding and finding["p_adjusted"] != filed_text(adjusted[name]):
+            problems.append(
+                f"{name}: p_adjusted is {finding['p_adjusted']}, adjusted anew {filed_text(adjusted[name])}."
+            )
+        if name not in p_values or finding["basis"] == "outside the family":
+            continue
+        word = "not shown"
+        if (adjusted[name] if finding["basis"] == "family" else p_values[name]) <= alpha:
+            sign = "positive" if int(found["estimate"]["numerator"]) > 0 else "negative"
+            expected = plan["associations"][name]["hypothesis"]["expected_sign"]
+            word = "shown" if expected in ("either", sign) else "shown, opposite sign"
+        if finding["word"] != word:
+            problems.append(f"{name}: the finding is {finding['word']!r}, decided anew {word!r}.")
+
+
+def holm(p_values: dict[str, Fraction]) -> dict[str, Fraction]:
+    """Adjust by Holm's step-down rule."""
+    adjusted, largest = {}, Fraction(0)
+    for smaller, name in enumerate(sorted(p_values, key=lambda name: p_values[name])):
+        largest = max(largest, min(Fraction(1), (len(p_values) - smaller) * p_values[name]))
+        adjusted[name] = largest
+    return adjusted
+
+
+def check_results(folder: Path, analysis: Any, problems: list[str]) -> None:
+    """Hold every cell of results.csv against analysis.json."""
+    rows = read_csv(folder / "results.csv")
+    names = [row["association"] for row in rows]
+    if sorted(names) != sorted(analysis["associations"]):
+        problems.append(f"results.csv has the associations {', '.join(names)}, analysis.json others.")
         return
-    sums = rho_sums if found["coefficient"] == "Spearman rho" else tau_sums
-    tally = Counter(sums(x, order)[0] for order in itertools.permutations(y))
-    extreme = {
-        "greater": lambda value: value >= numerator,
-        "less": lambda value: value <= numerator,
-        "two-sided": lambda value: abs(value) >= abs(numerator),
-    }[test["direction"]]
-    count = sum(times for value, times in tally.items() if extreme(value))
-    if (int(test["count"]), int(test["of"])) != (count, factorial(len(x))):
-        problems.append(f"{name}: the count is {test['count']} of {test['of']}, counted anew {count} of {factorial(len(x))}.")
+    for line, row in enumerate(rows, start=2):
+        found = analysis["associations"][row["association"]]
+        right = {column: text_at(found, address) for column, address in RESULT_COLUMNS}
+        right["sidedness"] = analysis["inference"]["sidedness"]
+        problems.extend(
+            f"results.csv, line {line}: {column} is {row[column] or 'blank'}, analysis.json has {text or 'nothing'}."
+            for column, text in right.items()
+            if row[column] != text
+        )
 
 
-def doubled_midranks(values):
+def text_at(plain: Any, address: str) -> str:
+    """Return what stands at an address as a cell of a table holds it."""
+    value = look_up(plain, address)
+    return "" if value is None else str(value)
+
+
+def doubled_midranks(values: list[Fraction]) -> list[int]:
     """Return twice the midrank of every value."""
-    ordered = sorted(values)
-    first, last = {}, {}
-    for place, value in enumerate(ordered, start=1):
+    first: dict[Fraction, int] = {}
+    last: dict[Fraction, int] = {}
+    for place, value in enumerate(sorted(values), start=1):
         first.setdefault(value, place)
         last[value] = place
     return [first[value] + last[value] for value in values]
 
 
-def rho_sums(x, y):
+def rho_sums(x: list[int], y: list[int]) -> tuple[int, int, int]:
     """Return products, squares of x and squares of y of doubled centred midranks."""
     middle = len(x) + 1
     a, b = [value - middle for value in x], [value - middle for value in y]
-    return sum(p * q for p, q in zip(a, b)), sum(p * p for p in a), sum(q * q for q in b)
+    products = sum(value * b[place] for place, value in enumerate(a))
+    return products, sum(value * value for value in a), sum(value * value for value in b)
 
 
-def tau_sums(x, y):
+def tau_sums(x: list[int], y: list[int]) -> tuple[int, int, int]:
     """Return row pairings in the same less those in opposite order, and pairings not tied in x and in y."""
-    sign = lambda one, other: (one > other) - (one < other)
-    pairs = list(itertools.combinations(range(len(x)), 2))
-    in_x = [sign(x[i], x[j]) for i, j in pairs]
-    in_y = [sign(y[i], y[j]) for i, j in pairs]
-    return sum(p * q for p, q in zip(in_x, in_y)), sum(map(abs, in_x)), sum(map(abs, in_y))
+    numerator, in_x, in_y = 0, 0, 0
+    for i in range(len(x)):
+        for j in range(i):
+            sign_x, sign_y = (x[i] > x[j]) - (x[i] < x[j]), (y[i] > y[j]) - (y[i] < y[j])
+            numerator, in_x, in_y = numerator + sign_x * sign_y, in_x + abs(sign_x), in_y + abs(sign_y)
+    return numerator, in_x, in_y
 
 
-def coefficient(numerator, x_square, y_square):
+def coefficient(numerator: int, x_square: int, y_square: int) -> Decimal:
     """Return the first over the root of the product of the others, 12 significant digits, half to even."""
     wide = Context(prec=80)
     exact = wide.divide(Decimal(numerator), wide.sqrt(Decimal(x_square * y_square)))
     return Context(prec=DIGITS, rounding=ROUND_HALF_EVEN).plus(exact)
 
 
-def check_printed(folder, analysis, problems):
-    """Look up every printed number of document.json in analysis.json and in report.html."""
-    document = json.loads((folder / "document.json").read_text(encoding="utf-8"))
-    page = (folder / "report.html").read_text(encoding="utf-8")
-    printed = {}
-    for key, text in re.findall(r'data-key="([^"]+)"[^>]*>([^<]*)<', page):
-        printed.setdefault(html.unescape(key), set()).add(html.unescape(text))
-    numbers = 0
-    for number in numbers_in(document):
-        numbers += 1
-        filed = look_up(analysis, number["key"])
-        if str(filed) != number["exact"]:
-            problems.append(f"document.json: {number['key']} is {number['exact']}, analysis.json has {filed}.")
-        if number["text"] not in printed.get(number["key"], ()):
-            problems.append(f"report.html does not print {number['key']} as {number['text']}.")
-    for key, texts in sorted(printed.items()):
-        told = {number["text"] for number in numbers_in(document) if number["key"] == key}
-        problems.extend(f"report.html prints {key} as {text}; document.json does not." for text in sorted(texts - told))
-    return numbers
+def filed_text(value: Fraction) -> str:
+    """Return a fraction as it is filed: at most 12 significant digits, half to even, without an exponent."""
+    narrow = Context(prec=DIGITS, rounding=ROUND_HALF_EVEN)
+    return decimal_text(Fraction(narrow.divide(Decimal(value.numerator), Decimal(value.denominator))))
 
 
-def numbers_in(node):
+def decimal_text(value: Fraction) -> str:
+    """Return a fraction whose decimal form ends in full."""
+    text = f"{Context(prec=200).divide(Decimal(value.numerator), Decimal(value.denominator)):f}"
+    return text.rstrip("0").rstrip(".") if "." in text else text
+
+
+def orderings(x: list[int], y: list[int], name: str) -> dict[int, int]:
+    """Return numerator → number of the n! orderings of y against x that have it.
+
+    x is gone through from its smallest value; what is remembered is how many rows of each y value are used up, and
+    for each such state the counts of all sums so far, packed into one long whole number: a shift adds to a sum.
+    """
+    n, middle = len(x), len(x) + 1
+    values = sorted(Counter(y).items())
+    low_x, low_y = min(x), min(y)
+    unit_x = reduce(gcd, (value - low_x for value in x)) or 1
+    unit_y = reduce(gcd, (value - low_y for value in y)) or 1
+    steps_y = [(value - low_y) // unit_y for value, _ in values]
+    width = factorial(n).bit_length()
+    layer: dict[tuple[int, ...], int] = {(0,) * len(values): 1}
+    shift = -n * (middle - low_x) * (middle - low_y) if name == RHO else 0
+    scale = unit_x * unit_y if name == RHO else 1
+    for value, size in sorted(Counter(x).items()):
+        following: dict[tuple[int, ...], int] = defaultdict(int)
+        if name != RHO:
+            shift -= size * sum(next(iter(layer)))
+        for used, packed in layer.items():
+            room = [times - used[place] for place, (_, times) in enumerate(values)]
+            for taken in choices(room, size):
+                ways = factorial(size)
+                for place, number in enumerate(taken):
+                    ways *= comb(room[place], number)
+                if name == RHO:
+                    gain = (
+                        (value - low_x) // unit_x * sum(number * steps_y[place] for place, number in enumerate(taken))
+                    )
+                else:
+                    gain = size * sum(used) + sum(
+                        number * (sum(used[:place]) - sum(used[place + 1 :]))
+                        for place, number in enumerate(taken)
+                        if number
+                    )
+                after = tuple(used[place] + number for place, number in enumerate(taken))
+                following[after] += (packed * ways) << (width * gain)
+        layer = following
+    [packed] = layer.values()
+    tally, mask, place = {}, (1 << width) - 1, 0
+    while packed:
+        if packed & mask:
+            tally[place * scale + shift] = packed & mask
+        packed >>= width
+        place += 1
+    return tally
+
+
+def choices(room: list[int], size: int) -> Iterator[tuple[int, ...]]:
+    """Yield every way of taking ``size`` rows from groups that have ``room``."""
+    if len(room) == 1:
+        if size <= room[0]:
+            yield (size,)
+        return
+    most_later = sum(room[1:])
+    for number in range(max(0, size - most_later), min(room[0], size) + 1):
+        for rest in choices(room[1:], size - number):
+            yield (number, *rest)
+
+
+def check_printed(folder: Path, analysis: Any, problems: list[str]) -> int:
+    """Look up every printed number of document.json in analysis.json and in report.html; return how many there are."""
+    numbers = list(numbers_in(json.loads((folder / "document.json").read_text(encoding="utf-8"))))
+    shown = Counter(
+        (html.unescape(key), html.unescape(text))
+        for key, text in NUMBER_ELEMENT.findall((folder / "report.html").read_text(encoding="utf-8"))
+    )
+    told = Counter((number["key"], number["text"]) for number in numbers)
+    for key, exact in sorted({(number["key"], number["exact"]) for number in numbers}):
+        if str(look_up(analysis, key)) != exact:
+            problems.append(f"document.json: {key} is {exact}, analysis.json has {look_up(analysis, key)}.")
+    for key, text in sorted(told.keys() | shown.keys()):
+        if told[key, text] > shown[key, text]:
+            problems.append(
+                f"document.json prints {key} as {text}, {told[key, text]} times; report.html {shown[key, text]} times."
+            )
+        elif told[key, text] < shown[key, text]:
+            problems.append(
+                f"report.html prints {key} as {text}, {shown[key, text]} times; document.json {told[key, text]} times."
+            )
+    return len(numbers)
+
+
+def numbers_in(node: Any) -> Iterator[dict[str, str]]:
     """Yield every number of a document."""
     if isinstance(node, dict):
         if node.get("is") == "Number":
@@ -173,7 +407,7 @@ def numbers_in(node):
             yield from numbers_in(value)
 
 
-def look_up(plain, key):
+def look_up(plain: Any, key: str) -> Any:
     """Return what stands at an address of analysis.json, or None."""
     for step in key.split("/"):
         try:

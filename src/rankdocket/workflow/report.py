@@ -1,6 +1,9 @@
 """A report in memory: computed and set, nothing written."""
 
+import io
 from dataclasses import dataclass
+
+import pandas as pd
 
 from rankdocket.analysis.analyse import analyse
 from rankdocket.analysis.plain import analysis_to_plain
@@ -12,6 +15,7 @@ from rankdocket.register.environment import components, program_digest
 from rankdocket.render.rendition import html_only, render
 from rankdocket.study.writer import spec_as_used
 from rankdocket.workflow.moment import now
+from rankdocket.workflow.record_tables import record_tables
 from rankdocket.workflow.study_folder import open_study
 from rankdocket.writing.section import Ingredient, IssueFacts
 from rankdocket.writing.write import write
@@ -39,6 +43,11 @@ class Report:
     def pdf(self) -> bytes:
         """Return the report as PDF; needs the system libraries for text layout."""
         return render(self.document).pdf
+
+    def result_table(self) -> pd.DataFrame:
+        """Return one row an association, the columns of results.csv; values as filed, absent ones empty."""
+        tables = record_tables(self.analysis, analysis_to_plain(self.analysis))
+        return pd.read_csv(io.BytesIO(tables["results.csv"]), dtype=str, keep_default_na=False)
 
     def _repr_html_(self) -> str:
         return self.html()

@@ -18,7 +18,7 @@ from rankdocket.register.chain import GENESIS, Line
 from rankdocket.register.editions import EditionName, existing
 from rankdocket.register.environment import components, program_digest
 from rankdocket.register.holdings import folder_of, register_of
-from rankdocket.workflow.differences import name_differences
+from rankdocket.workflow.differences import name_differences, shown_numbers
 from rankdocket.workflow.edition_files import Issue, Progress, make_edition, received_name
 from rankdocket.workflow.issue import DRAFTED, ISSUED, moment_of, replaced_by
 from rankdocket.workflow.study_folder import read_study, spec_path_of
@@ -70,6 +70,8 @@ def verify(path: str, *, edition: str | None = None, progress: Progress = lambda
     RegisterError
         If there is no such edition, or the register has no line for it.
     """
+    if not Path(path).exists():
+        raise RegisterError(f"{path}: there is no such study. Write its folder or its spec.")
     folder = spec_path_of(path).parent
     name = _chosen(folder, edition)
     register = register_of(folder)
@@ -200,14 +202,17 @@ def _same_text(differences: tuple[str, ...]) -> bool:
 
 
 def _moved_numbers(name: str, filed: bytes, made: bytes) -> list[str]:
-    """Name every number of document.json that both hold and print differently, whatever else changed around it."""
-    if name != "document.json":
+    """Name every number that both reports hold and the filed one prints otherwise, whatever changed around it."""
+    if name == "document.json":
+        then, today = _printed(json.loads(filed)), _printed(json.loads(made))
+    elif name == "report.html":
+        then, today = shown_numbers(filed.decode("utf-8")), shown_numbers(made.decode("utf-8"))
+    else:
         return []
-    then, today = _printed(json.loads(filed)), _printed(json.loads(made))
     return [
         f"{name}: {key} was printed as “{', '.join(sorted(texts))}”, recomputed “{', '.join(sorted(today[key]))}”."
         for key, texts in sorted(then.items())
-        if key in today and not texts & today[key]
+        if key in today and not texts <= today[key]
     ]
 
 

@@ -76,7 +76,8 @@ def raw_plot(story: Story, name: str) -> FigureBlock:
     """Return the values as received, one mark a row; equal points share a mark."""
     result = story.analysis.results[name]
     x, y = variables_of(story, result.screened.spec)
-    points = Counter((str(row.x), str(row.y)) for row in result.screened.rows)
+    # Counted as numbers: 1.0 and 1 are one point.
+    points = Counter((row.x, row.y) for row in result.screened.rows)
     return FigureBlock(
         key=f"{name}-raw",
         number=f"{name}a",
@@ -86,7 +87,7 @@ def raw_plot(story: Story, name: str) -> FigureBlock:
         data={
             "x": _axis(story, x),
             "y": _axis(story, y),
-            "points": tuple({"x": px, "y": py, "count": rows} for (px, py), rows in points.items()),
+            "points": tuple({"x": f"{px:f}", "y": f"{py:f}", "count": rows} for (px, py), rows in points.items()),
         },
     )
 

@@ -1,8 +1,10 @@
 """Turns of phrase that several sections share: names of variables, an estimate with its interval, a p with its count."""
 
+from typing import Final
+
 from rankdocket.analysis.results import AssociationAnalysis, Estimate, RankTest
 from rankdocket.document.model import Emphasis, Link, Prose, Supplied
-from rankdocket.document.prose import joined, listed, only, prose
+from rankdocket.document.prose import joined, listed, only, prose, text_of
 from rankdocket.stats.interval import Interval
 from rankdocket.study.spec import AssociationSpec, VariableSpec
 from rankdocket.writing.section import Story
@@ -10,6 +12,9 @@ from rankdocket.writing.section import Story
 N = Emphasis("n", "italic")
 P = Emphasis("p", "italic")
 EN_DASH_CELL = only("–")
+
+MOST_PRINTED: Final = 10**15
+"""A count over more orderings than this is not printed beside its p: nobody reads thirty digits."""
 
 
 def label(variable: VariableSpec) -> Supplied:
@@ -107,6 +112,11 @@ def p_with_count(story: Story, name: str) -> Prose:
     result = story.analysis.results[name]
     if not isinstance(result.test, RankTest):
         return only("")
+    if result.test.tails.of > MOST_PRINTED:
+        return prose(
+            "{p}, counted over all orderings of the rows; both whole numbers stand in analysis.json",
+            p=p_equals(story, address(name, "test", "p")),
+        )
     count, of = address(name, "test", "count"), address(name, "test", "of")
     template = (
         "{p}, {count} of {of} orderings of the rows"
@@ -140,4 +150,4 @@ def direction_sentence(story: Story, name: str) -> Prose:
 
 def sentences(*parts: Prose) -> Prose:
     """Return several sentences as one paragraph, empty ones left out."""
-    return joined(tuple(part for part in parts if part.pieces))
+    return joined(tuple(part for part in parts if text_of(part)))

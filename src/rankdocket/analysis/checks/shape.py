@@ -13,8 +13,8 @@ from rankdocket.references import Description
 from rankdocket.stats.rho import rho
 from rankdocket.study.spec import StudySpec
 
-FEWEST_ROWS: Final = 20
-"""Below this a half has fewer than ten rows and its coefficient wanders too far to say anything (house rule)."""
+FEWEST_ROWS: Final = 10
+"""With fewer rows the coefficient of a half wanders too far to say anything (house rule)."""
 
 OPPOSED: Final = 0.3
 """Both halves must lean at least so far, in opposite directions, before the shape is called doubtful (house rule)."""
@@ -23,11 +23,13 @@ OPPOSED: Final = 0.3
 def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
     """Compare the direction in the lower and in the upper half of x."""
     del spec  # the look has no limit of the plan's
-    if len(screened.rows) < FEWEST_ROWS:
+    middle = len(screened.rows) + 1
+    # Tied rows stay together: a tie group cut at the middle would make the outcome depend on the order of the rows.
+    lower = [row for row in screened.rows if row.x_doubled_rank < middle]
+    upper = [row for row in screened.rows if row.x_doubled_rank >= middle]
+    if min(len(lower), len(upper)) < FEWEST_ROWS:
         return CheckOutcome(CHECK.key, "not examined", None, None, "too few rows for a look at two halves")
-    ordered = sorted(screened.rows, key=lambda row: row.x_doubled_rank)
-    middle = len(ordered) // 2
-    halves = [_direction(ordered[:middle]), _direction(ordered[middle:])]
+    halves = [_direction(lower), _direction(upper)]
     known = [value for value in halves if value is not None]
     if len(known) < 2:
         return CheckOutcome(CHECK.key, "not examined", None, None, "a variable is constant in one half of the rows")

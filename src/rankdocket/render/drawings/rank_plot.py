@@ -13,6 +13,7 @@ from rankdocket.render.panel import (
     draw_frame,
     radii,
     read_marks,
+    thinning,
     widest,
     write_lines,
     write_titles,
@@ -46,7 +47,7 @@ def _draw(data: Mapping[str, Plain], width: float) -> Sheet:
         write_lines(sheet, (x, y - TICK - 1 - leading(SMALL_SIZE) / 2), [label], "center")
     write_titles(sheet, panel, x_title, y_title)
     places = [panel.at(mark.x, mark.y) for mark in marks]
-    sheet.circles(list(zip(places, radii(marks, _RADIUS), strict=True)), weight=_WEIGHT, filled=True)
+    sheet.circles(list(zip(places, radii(marks, _RADIUS), strict=True)), weight=_WEIGHT * thinning(marks), filled=True)
     return sheet
 
 

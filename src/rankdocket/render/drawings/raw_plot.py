@@ -16,6 +16,7 @@ from rankdocket.render.panel import (
     draw_frame,
     radii,
     read_marks,
+    thinning,
     widest,
     write_lines,
     write_titles,
@@ -28,11 +29,11 @@ _RADIUS: Final = 2.1
 _WEIGHT: Final = 0.8
 _MARGIN: Final = 8.0
 _PANEL_HEIGHT: Final = 150.0
-_WANTED_TICKS: Final = 5
+_WANTED_TICKS: Final = 4
 _Y_LABEL_ROOM: Final = 62.0
 _SLANT: Final = 38.0
 _LONGEST_SLANTED: Final = 96.0
-_INSET: Final = Decimal("0.05")
+_INSET: Final = Decimal("0.07")
 _HALF: Final = Decimal("0.5")
 
 
@@ -58,7 +59,7 @@ def _draw(data: Mapping[str, Plain], width: float) -> Sheet:
     labels.write(sheet, panel)
     write_titles(sheet, panel, x_title, y_title)
     places = [panel.at(mark.x, mark.y) for mark in marks]
-    sheet.circles(list(zip(places, radii(marks, _RADIUS), strict=True)), weight=_WEIGHT, filled=False)
+    sheet.circles(list(zip(places, radii(marks, _RADIUS), strict=True)), weight=_WEIGHT * thinning(marks), filled=False)
     return sheet
 
 

@@ -1,7 +1,7 @@
 """Requirements that were not met or are doubtful, each with what follows from it."""
 
 from rankdocket.analysis.checks import CHECKS
-from rankdocket.analysis.results import CheckOutcome
+from rankdocket.analysis.results import AssociationAnalysis, CheckOutcome, NotEstimable, Withheld
 from rankdocket.document.model import Number, Prose
 from rankdocket.document.prose import only, prose
 from rankdocket.writing.caveat import CaveatRule, FoundCaveat
@@ -30,12 +30,12 @@ def measure(story: Story, name: str, outcome: CheckOutcome, side: str) -> Number
 
 
 def _find(story: Story) -> tuple[FoundCaveat, ...]:
-    found = []
-    for name, result in story.analysis.results.items():
-        for outcome in result.checks:
-            if outcome.state in ("not met", "doubtful") and outcome.key not in (_SHARED, "not_constant"):
-                found.append(FoundCaveat(name, _words(story, name, outcome)))
-    return tuple(found)
+    return tuple(
+        FoundCaveat(name, _words(story, name, outcome))
+        for name, result in story.analysis.results.items()
+        for outcome in result.checks
+        if outcome.state in ("not met", "doubtful") and outcome.key not in (_SHARED, "not_constant")
+    )
 
 
 def _words(story: Story, name: str, outcome: CheckOutcome) -> Prose:
@@ -46,13 +46,6 @@ def _words(story: Story, name: str, outcome: CheckOutcome) -> Prose:
         if figure is not None and limit is not None
         else only("")
     )
-    match outcome.withholds:
-        case "nothing":
-            after = "The result stands with this reservation."
-        case "test":
-            after = "The estimate is given without a test."
-        case "all":
-            after = "Neither an estimate nor a test is given."
     return prose(
         "{name}: the requirement “{label}” is {state}: {reason}{held}. {after}",
         name=pointer(name),
@@ -60,8 +53,19 @@ def _words(story: Story, name: str, outcome: CheckOutcome) -> Prose:
         state=outcome.state,
         reason=outcome.reason,
         held=held,
-        after=after,
+        after=_what_is_given(story.analysis.results[name]),
     )
+
+
+def _what_is_given(result: AssociationAnalysis) -> str:
+    """Return what stands in the end: one requirement may leave a result that another withholds."""
+    if isinstance(result.estimate, NotEstimable):
+        return "No coefficient exists for these rows."
+    if isinstance(result.estimate, Withheld):
+        return "Neither an estimate nor a test is given."
+    if isinstance(result.test, Withheld):
+        return "The estimate is given without a test."
+    return "The result stands with this reservation."
 
 
 def _find_shared(story: Story) -> tuple[FoundCaveat, ...]:

@@ -19,9 +19,10 @@ def _not_estimable(story: Story) -> tuple[FoundCaveat, ...]:
         FoundCaveat(
             name,
             prose(
-                "{name} is not estimable: {reason}. It keeps its place in the family and in every table.",
+                "{name} is not estimable: {reason}. It keeps its place in {places}.",
                 name=pointer(name),
                 reason=result.estimate.reason,
+                places="the family and in every table" if name in story.analysis.family else "every table",
             ),
         )
         for name, result in story.analysis.results.items()
@@ -41,9 +42,12 @@ def _perfect(story: Story) -> tuple[FoundCaveat, ...]:
                 FoundCaveat(
                     name,
                     prose(
-                        "{name}: all rows agree in order, so that the sample holds no disagreement from which an error "
-                        "could be estimated; for the interval half of the smallest visible disagreement was assumed.",
+                        "{name}: all rows follow one order, so that the sample holds no disagreement from which an error "
+                        "could be estimated{interval}.",
                         name=pointer(name),
+                        interval="; for the interval half of the smallest visible disagreement was assumed"
+                        if isinstance(result.interval, Interval)
+                        else "",
                     ),
                 )
             )
@@ -51,22 +55,19 @@ def _perfect(story: Story) -> tuple[FoundCaveat, ...]:
 
 
 def _small(story: Story) -> tuple[FoundCaveat, ...]:
-    small = tuple(
-        name
+    small = {
+        name: result
         for name, result in story.analysis.results.items()
         if isinstance(result.interval, Interval) and result.screened.flow.complete < SMALL
+    }
+    counted = tuple(
+        name for name, result in small.items() if isinstance(result.test, RankTest) and result.test.tails.is_exact
     )
-    if not small:
-        return ()
-    return (
-        FoundCaveat(
-            None,
-            prose(
-                "{names}: with so few rows the data exclude little. The interval is indicative; the test from all "
-                "orderings of the rows is the primary result.",
-                names=pointers(small),
-            ),
-        ),
+    others = tuple(name for name in small if name not in counted)
+    few = "{names}: with so few rows the data exclude little. The interval is indicative"
+    templates = {few + "; the test from all orderings of the rows is the primary result.": counted, few + ".": others}
+    return tuple(
+        FoundCaveat(None, prose(template, names=pointers(names))) for template, names in templates.items() if names
     )
 
 

@@ -1,6 +1,6 @@
 """Caveats about the whole study: supplied words, rows left out, what an interval rests on, and the usual cautions."""
 
-from rankdocket.analysis.results import Estimate
+from rankdocket.analysis.results import Estimate, RankTest
 from rankdocket.document.model import Emphasis, Link, Supplied
 from rankdocket.document.prose import lint, listed, only, prose
 from rankdocket.stats.interval import Interval
@@ -51,10 +51,9 @@ def _incomplete(story: Story) -> tuple[FoundCaveat, ...]:
         return ()
     parts = tuple(
         prose(
-            "{name} {lost} of {rows}",
+            "{name} {lost}",
             name=pointer(name),
             lost=story.numbers.share(address(name, "checks", "missing_share", "found")),
-            rows=story.numbers.whole(address(name, "rows", "read")),
         )
         for name in names
         if any(outcome.key == "missing_share" and outcome.found for outcome in story.analysis.results[name].checks)
@@ -63,7 +62,8 @@ def _incomplete(story: Story) -> tuple[FoundCaveat, ...]:
         FoundCaveat(
             None,
             prose(
-                "Rows lacking a value were set aside for the association concerned ({parts} rows read). That is harmless "
+                "Rows lacking a value were set aside for the association concerned ({parts} of the rows that the plan does "
+                "not leave out). That is harmless "
                 "only if values are missing for reasons that have nothing to do with what would have been observed.",
                 parts=listed(parts),
             ),
@@ -72,20 +72,25 @@ def _incomplete(story: Story) -> tuple[FoundCaveat, ...]:
 
 
 def _left_out(story: Story) -> tuple[FoundCaveat, ...]:
+    variables = story.analysis.spec.variables
+    first_of_table: dict[str, str] = {}
     for name, result in story.analysis.results.items():
         if result.screened.flow.left_out:
-            return (
-                FoundCaveat(
-                    None,
-                    prose(
-                        "The plan leaves out {count} of {read} rows; each is listed with its reason in section {section}.",
-                        count=story.numbers.whole(address(name, "rows", "left_out")),
-                        read=story.numbers.whole(address(name, "rows", "read")),
-                        section=Link("data", "2"),
-                    ),
-                ),
-            )
-    return ()
+            first_of_table.setdefault(variables[result.screened.spec.x].table, name)
+    return tuple(
+        FoundCaveat(
+            None,
+            prose(
+                "The plan leaves out {count} of {read} rows of table {table}; each is listed with its reason in section "
+                "{section}.",
+                count=story.numbers.whole(address(name, "rows", "left_out")),
+                read=story.numbers.whole(address(name, "rows", "read")),
+                table=Emphasis(table, "code"),
+                section=Link("data", "2"),
+            ),
+        )
+        for table, name in first_of_table.items()
+    )
 
 
 def _interval_rests_on(story: Story) -> tuple[FoundCaveat, ...]:
@@ -126,7 +131,7 @@ def _association_only(story: Story) -> tuple[FoundCaveat, ...]:
 
 
 def _independence_null(story: Story) -> tuple[FoundCaveat, ...]:
-    if not story.analysis.results:
+    if not any(isinstance(result.test, RankTest) for result in story.analysis.results.values()):
         return ()
     return (
         FoundCaveat(

@@ -5,6 +5,7 @@ from typing import Final
 from rankdocket.document.model import Block, Column, Emphasis, Paragraph, Prose, Section, Supplied, TableBlock
 from rankdocket.document.prose import only, prose
 from rankdocket.study.table import Table
+from rankdocket.study.wording import composed
 from rankdocket.writing.phrases import EN_DASH_CELL
 from rankdocket.writing.section import SectionRule, Story
 
@@ -54,7 +55,7 @@ def _listing(story: Story, name: str, table: Table, position: int) -> TableBlock
         ),
         rows=tuple(
             (
-                only(Supplied(str(row))),
+                only(story.numbers.label(f"tables/{name}/lines/{line}")),
                 *(_cell(table.columns[column][line]) for column in columns),
                 only(Supplied(reasons[row])) if row in reasons else EN_DASH_CELL,
             )
@@ -73,7 +74,8 @@ def _used_columns(story: Story, name: str) -> tuple[str, ...]:
     used = {variable.column for variable in spec.variables.values() if variable.table == name}
     used |= {answer for answer in (spec.rows.repeated_within, spec.rows.time_order) if answer is not None}
     used |= {column for left in spec.rows.leave_out for column in left.where}
-    return tuple(column for column in story.analysis.data.tables[name].columns if column in used)
+    written = {composed(column) for column in used}
+    return tuple(column for column in story.analysis.data.tables[name].columns if column in written)
 
 
 SECTION = SectionRule("listing", write)

@@ -6,7 +6,7 @@ from rankdocket.analysis.analyse import adjustment_of
 from rankdocket.analysis.checks import CHECKS
 from rankdocket.analysis.results import Estimate, RankTest
 from rankdocket.document.model import Block, Emphasis, Link, Number, Paragraph, Prose, Section, Supplied
-from rankdocket.document.prose import joined, only, prose
+from rankdocket.document.prose import joined, only, prose, text_of
 from rankdocket.references import Description
 from rankdocket.stats.interval import Interval
 from rankdocket.stats.intervals import INTERVAL_METHODS
@@ -49,8 +49,8 @@ def method_paragraphs(story: Story) -> tuple[Prose, ...]:
     """Return the paragraphs of the methods text in the order in which the work was done."""
     return tuple(
         part
-        for part in (_ranking(story), _checks(), _coefficients(story), _nulls(story), _sides(story), _family(story), _intervals(story), _comparisons(story))
-        if part.pieces
+        for part in (_ranking(story), _checks(story), _coefficients(story), _nulls(story), _sides(story), _family(story), _intervals(story), _comparisons(story))
+        if text_of(part)
     )
 
 
@@ -66,7 +66,9 @@ def described(description: Description, **slots: Number | Prose | Emphasis | Sup
 
 
 def _ranking(story: Story) -> Prose:
-    missing = any(table.spec.missing_codes for table in story.analysis.data.tables.values())
+    data = story.analysis.data
+    of_tables = any(table.spec.missing_codes for table in data.tables.values())
+    missing = of_tables or any(variable.spec.missing_codes for variable in data.variables.values())
     return joined(
         (
             only(
@@ -83,8 +85,14 @@ def _ranking(story: Story) -> Prose:
     )
 
 
-def _checks() -> Prose:
-    return joined(tuple(described(check.demand) for check in CHECKS))
+def _checks(story: Story) -> Prose:
+    ran = {
+        outcome.key
+        for result in story.analysis.results.values()
+        for outcome in result.checks
+        if outcome.state != "not examined"
+    }
+    return joined(tuple(described(check.demand) for check in CHECKS if check.key in ran))
 
 
 def _coefficients(story: Story) -> Prose:

@@ -63,7 +63,6 @@ def master_table(story: Story) -> TableBlock:
         ),
         rows=tuple(_master_row(story, name, result) for name, result in story.analysis.results.items()),
         notes=_master_notes(story),
-        landscape=True,
     )
 
 

@@ -44,7 +44,6 @@ def variables_table(story: Story) -> TableBlock:
                 "label stands."
             ),
         ),
-        landscape=len(story.analysis.spec.variables) > 0,
     )
 
 

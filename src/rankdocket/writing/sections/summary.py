@@ -31,8 +31,7 @@ def summary(story: Story) -> Section:
         Paragraph(prose("Question. {question}", question=Supplied(story.analysis.spec.study.question))),
         Paragraph(_tally(story)),
     ]
-    for name in shown:
-        blocks.append(FieldList(_answer(story, name), key=f"summary-{name}"))
+    blocks.extend(FieldList(_answer(story, name), key=f"summary-{name}") for name in shown)
     if more:
         blocks.append(
             Paragraph(

@@ -36,7 +36,7 @@ def write(story: Story) -> Section:
             "below it; they must agree, and do, to every filed digit."
         )
         if parts
-        else only("No association has an estimate, so that there is no worksheet.")
+        else only("There is no worksheet: not one of the associations has an estimate.")
     )
     return Section("worksheets", "A", only("Rank worksheets"), (Paragraph(opening),), parts, opens="page")
 
@@ -77,7 +77,7 @@ def _table(story: Story, name: str, result: AssociationAnalysis, position: int) 
             ),
         )
     x, y = variables_of(story, result.screened.spec)
-    foot = ()
+    foot: tuple[tuple[Prose, ...], ...] = ()
     if isinstance(result.estimate, Estimate) and result.estimate.squared_differences is not None:
         foot = (
             (

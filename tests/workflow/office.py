@@ -1,0 +1,162 @@
+"""What the tests of an office's tasks share: copies of studies, the real command line, and a forger's tools."""
+
+import json
+import os
+import shutil
+import subprocess
+import sys
+from collections.abc import Callable, Iterator, Mapping
+from dataclasses import dataclass, replace
+from pathlib import Path
+from typing import Any
+
+import rankdocket
+from rankdocket.canonical import sha256
+from rankdocket.register import chain
+from rankdocket.register.manifest import SUMS_FILE, sha256sums
+
+ROOT = Path(__file__).resolve().parents[2]
+STUDIES = ROOT / "studies"
+SOURCES = Path(rankdocket.__file__).resolve().parents[1]
+GIVEN_TIME = "1770000000"
+"""2026-02-02, in seconds since 1970."""
+
+ACCOUNT = "quillfeather"
+"""The name of the account under which every command of these tests runs."""
+
+LOCK = ".seal.lock"
+
+
+@dataclass(frozen=True, slots=True)
+class Ran:
+    """How a command ended and what it printed."""
+
+    status: int
+    out: str
+    err: str
+
+    @property
+    def plain(self) -> Any:
+        """The one object that --json prints."""
+        return json.loads(self.out)
+
+
+@dataclass(frozen=True, slots=True)
+class Sealed:
+    """A study with an edition: its folder, the edition's folder, and how the command ran."""
+
+    study: Path
+    edition: Path
+    ran: Ran
+
+
+def copy_study(name: str, to: Path) -> Path:
+    """Copy a demonstration study as a client would send it: spec and data, no edition."""
+    to.mkdir(parents=True)
+    shutil.copy(STUDIES / name / "study.yaml", to)
+    shutil.copytree(STUDIES / name / "received", to / "received")
+    return to
+
+
+def surroundings(sources: Path = SOURCES, **settings: str) -> dict[str, str]:
+    """Return the environment in which commands of these tests run."""
+    known = {name: os.environ[name] for name in ("PATH", "HOME", "LD_LIBRARY_PATH") if name in os.environ}
+    paths = [str(sources), *filter(None, os.environ.get("PYTHONPATH", "").split(os.pathsep))]
+    return {
+        **known,
+        "PYTHONPATH": os.pathsep.join(paths),
+        "LOGNAME": ACCOUNT,
+        "USER": ACCOUNT,
+        "SOURCE_DATE_EPOCH": GIVEN_TIME,
+        **settings,
+    }
+
+
+def command(*words: str) -> list[str]:
+    """Return the command line as the system starts it."""
+    return [sys.executable, "-P", "-m", "rankdocket", *words]
+
+
+def run(*words: str, cwd: Path, environment: Mapping[str, str] | None = None) -> Ran:
+    """Run the command line as a user does, in a process of its own."""
+    done = subprocess.run(
+        command(*words),
+        cwd=cwd,
+        env=environment or surroundings(),
+        stdin=subprocess.DEVNULL,
+        capture_output=True,
+        check=False,
+        encoding="utf-8",
+    )
+    return Ran(done.returncode, done.stdout, done.stderr)
+
+
+def snapshot(folder: Path) -> dict[str, bytes]:
+    """Return every file below a folder but the lock, by name."""
+    return {
+        path.relative_to(folder).as_posix(): path.read_bytes()
+        for path in sorted(folder.rglob("*"))
+        if path.is_file() and path.name != LOCK
+    }
+
+
+def numbers_in(node: object) -> Iterator[dict[str, str]]:
+    """Yield every number of a document.json."""
+    if isinstance(node, dict):
+        if node.get("is") == "Number":
+            yield node
+        for below in node.values():
+            yield from numbers_in(below)
+    elif isinstance(node, list):
+        for below in node:
+            yield from numbers_in(below)
+
+
+def keys_in(node: object) -> Iterator[str]:
+    """Yield every key of plain data, at any depth."""
+    if isinstance(node, dict):
+        yield from node
+        for below in node.values():
+            yield from keys_in(below)
+    elif isinstance(node, list):
+        for below in node:
+            yield from keys_in(below)
+
+
+def forge(study: Path, edition: str, name: str, change: Callable[[str], str]) -> None:
+    """Alter a file of an edition and repair everything that tells: list of digests, register line, chain."""
+    folder = study / "editions" / edition
+    before = (folder / name).read_text(encoding="utf-8")
+    after = change(before)
+    assert after != before
+    (folder / name).write_text(after, encoding="utf-8")
+    files = {path: data for path, data in snapshot(folder).items() if path != SUMS_FILE}
+    sums = sha256sums(files)
+    (folder / SUMS_FILE).write_bytes(sums)
+    forged: tuple[chain.Line, ...] = ()
+    for line in chain.read(study / "register.jsonl"):
+        event = line.event
+        if event.details.get("edition") == edition:
+            repaired = {**event.details, "sums": sha256(sums), "analysis": sha256(files["analysis.json"])}
+            event = replace(event, details=repaired)
+        forged = (*forged, chain.compose(forged, event))
+    (study / "register.jsonl").write_bytes(b"".join(line.raw + b"\n" for line in forged))
+
+
+def replaced_once(old: str, new: str) -> Callable[[str], str]:
+    """Return a change that replaces the first ``old``, which must be there."""
+
+    def change(text: str) -> str:
+        assert old in text
+        return text.replace(old, new, 1)
+
+    return change
+
+
+def copy_of_program(to: Path) -> Path:
+    """Copy the package with its templates into a folder of its own; return what belongs on PYTHONPATH."""
+    without = shutil.ignore_patterns("__pycache__", ".*")
+    shutil.copytree(SOURCES / "rankdocket", to / "src" / "rankdocket", ignore=without)
+    if not (SOURCES / "rankdocket" / "report_templates").is_dir():
+        shutil.copytree(SOURCES.parent / "report_templates", to / "report_templates", ignore=without)
+    return to / "src"

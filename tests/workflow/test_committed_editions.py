@@ -1,0 +1,35 @@
+"""The editions that come with the demonstration studies still agree, number by number."""
+
+import shutil
+import subprocess
+import sys
+from pathlib import Path
+
+import pytest
+
+from rankdocket.register import chain, manifest
+from rankdocket.workflow.verify import verify
+from workflow.office import STUDIES
+
+COMMITTED = ["gasket-creep", pytest.param("weld-smoke", marks=pytest.mark.slow)]
+
+
+@pytest.mark.parametrize("name", COMMITTED)
+def test_a_committed_edition_agrees(name: str, tmp_path: Path) -> None:
+    """Whatever has changed since in words and looks, no number of a committed edition has moved."""
+    study = Path(shutil.copytree(STUDIES / name, tmp_path / name))
+    found = verify(str(study))
+    assert found.problems == ()
+    assert found.edition == "1"
+
+
+@pytest.mark.parametrize("name", ["gasket-creep", "weld-smoke"])
+def test_a_committed_edition_is_whole(name: str) -> None:
+    """Files, digests and register of a committed edition are as they were sealed, and its own checker agrees."""
+    edition = STUDIES / name / "editions" / "1"
+    assert manifest.check(edition) == ()
+    [line] = chain.read(STUDIES / name / "register.jsonl")
+    assert line.event.actor == "demonstration"
+    done = subprocess.run([sys.executable, "-I", str(edition / "check.py")], capture_output=True, check=False)
+    assert done.returncode == 0
+    assert done.stdout.startswith(b"Everything agrees (")

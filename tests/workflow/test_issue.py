@@ -1,0 +1,221 @@
+"""Issuing: whole or not at all, never without need, never with a used number."""
+
+import json
+import shutil
+import signal
+import subprocess
+from collections.abc import Callable
+from pathlib import Path
+
+import pytest
+
+from rankdocket.register import chain
+from workflow.office import (
+    LOCK,
+    Ran,
+    Sealed,
+    command,
+    copy_of_program,
+    copy_study,
+    replaced_once,
+    run,
+    snapshot,
+    surroundings,
+)
+
+SPEC = "study.yaml"
+DATA = "received/proving_trial.csv"
+
+FAULTS = [
+    (
+        SPEC,
+        "  alpha: 0.05",
+        "  aplha: 0.05",
+        'study.yaml:43:3: inference.aplha: "aplha" is not a key of inference. nearest: alpha.',
+        15,
+    ),
+    (
+        SPEC,
+        "column: volume_ml",
+        "column: volume_l",
+        'study.yaml:29:3: variables.volume.column: no column "volume_l"; nearest: volume_ml.',
+        6,
+    ),
+    (
+        SPEC,
+        "proving_trial.csv",
+        "provng.csv",
+        "study.yaml:11:3: data.doughs.file: there is no file 'received/provng.csv'.",
+        53,
+    ),
+    (DATA, "D06,88,", "D06,many,", 'received/proving_trial.csv:5: row 5, column proving_min: found "many".', 1),
+    (
+        DATA,
+        "D06,88,2107",
+        "D06,88,2107,7",
+        "received/proving_trial.csv:5: row 5: 4 fields where the names in row 1 give 3;",
+        45,
+    ),
+]
+
+
+@pytest.mark.parametrize(("file", "old", "new", "told", "number"), FAULTS, ids=lambda value: str(value)[:24])
+def test_a_fault_of_the_input_is_told_by_place_and_nothing_is_written(
+    first_look: Path, here: Callable[..., Ran], file: str, old: str, new: str, told: str, number: int
+) -> None:
+    """The error names file, line and column, what is wrong and what to write; the study's folder is as it was."""
+    spoiled = replaced_once(old, new)((first_look / file).read_text(encoding="utf-8"))
+    (first_look / file).write_text(spoiled, encoding="utf-8")
+    before = snapshot(first_look)
+    ran = here("issue", ".", "--reason", "first issue", cwd=first_look)
+    assert (ran.status, ran.out) == (3, "")
+    assert told in ran.err
+    assert ran.err.count("Nothing was computed.") == 1
+    assert f"(message {number})" in next(line for line in ran.err.splitlines() if told in line)
+    assert snapshot(first_look) == before
+
+
+def test_all_faults_of_a_spec_come_in_one_go(first_look: Path, here: Callable[..., Ran]) -> None:
+    """Three mistakes in one spec are three lines, in the order of the file, and three entries as JSON."""
+    text = (first_look / SPEC).read_text(encoding="utf-8")
+    for old, new in (("client:", "cleint:"), ("scale: measured", "scale: meassured"), ("alpha: 0.05", "alpha: 5")):
+        text = replaced_once(old, new)(text)
+    (first_look / SPEC).write_text(text, encoding="utf-8")
+    ran = here("issue", ".", "--reason", "first issue", "--json", cwd=first_look)
+    plain = ran.plain
+    assert (ran.status, ran.err, plain["schema"], plain["kind"]) == (3, "", "urn:rankdocket:error:1", "input")
+    fields = [fault["field"] for fault in plain["faults"]]
+    assert [field for field in fields if "cleint" in field or field.endswith(("scale", "alpha"))] == [
+        "study.cleint",
+        "variables.proving.scale",
+        "inference.alpha",
+    ]
+    lines = [fault["line"] for fault in plain["faults"]]
+    assert lines == sorted(lines)
+
+
+def test_a_data_file_that_may_not_be_read_is_an_input_fault(first_look: Path, here: Callable[..., Ran]) -> None:
+    """A folder where the spec names a file cannot be read: the fault stands at the key that names it."""
+    (first_look / DATA).unlink()
+    (first_look / DATA).mkdir()
+    ran = here("issue", ".", "--reason", "first issue", cwd=first_look)
+    assert ran.status == 3
+    assert ran.err.startswith("study.yaml:11:3: data.doughs.file: 'received/proving_trial.csv' is a folder.")
+    assert sorted(path.name for path in first_look.iterdir()) == ["received", SPEC]
+
+
+@pytest.mark.parametrize("reason", ["", "  ", "\t\n"])
+def test_a_blank_reason_is_refused(first_look: Path, here: Callable[..., Ran], reason: str) -> None:
+    """An edition needs a reason in words."""
+    before = snapshot(first_look)
+    ran = here("issue", ".", "--reason", reason, cwd=first_look)
+    assert (ran.status, ran.out) == (3, "")
+    assert "needs a reason" in ran.err
+    assert snapshot(first_look) == before
+
+
+def test_a_time_that_is_no_number_is_refused(first_look: Path) -> None:
+    """SOURCE_DATE_EPOCH is a whole number of seconds or an input fault."""
+    ran = run("issue", ".", "--reason", "x", cwd=first_look, environment=surroundings(SOURCE_DATE_EPOCH="yesterday"))
+    assert ran.status == 3
+    assert ran.err.startswith("SOURCE_DATE_EPOCH: 'yesterday' is not a number of seconds since 1970.")
+    assert not (first_look / "register.jsonl").exists()
+
+
+def test_unchanged_inputs_write_nothing(issued: Sealed, here: Callable[..., Ran]) -> None:
+    """Issuing again with the same spec, data and program says so, files no line and ends with 0."""
+    before = snapshot(issued.study)
+    ran = here("issue", "first-look", "--reason", "once more", cwd=issued.study.parent)
+    assert (ran.status, ran.err) == (0, "")
+    assert ran.out.splitlines() == [
+        "Nothing has changed since edition 1: nothing was written.",
+        "The report lies at first-look/editions/1/report.pdf",
+    ]
+    assert snapshot(issued.study) == before
+
+
+def test_changed_data_make_the_next_edition_and_no_number_returns(issued: Sealed, tmp_path: Path) -> None:
+    """Edition 2 says that it replaces edition 1; its number is its own although the folder of edition 1 is gone."""
+    study = tmp_path / "first-look"
+    shutil.copytree(issued.study, study)
+    shutil.rmtree(study / "editions" / "1")
+    changed = replaced_once("D06,88,2107", "D06,88,2108")((study / DATA).read_text(encoding="utf-8"))
+    (study / DATA).write_text(changed, encoding="utf-8")
+    ran = run("issue", ".", "--reason", "a volume was corrected", "--json", cwd=study)
+    assert (ran.status, ran.plain["edition"], ran.plain["changed"]) == (0, "2", True)
+    assert [path.name for path in (study / "editions").iterdir()] == ["2"]
+    first, second = chain.read(study / "register.jsonl")
+    assert second.previous == first.digest
+    assert second.event.reason == "a volume was corrected"
+    document = (study / "editions" / "2" / "document.json").read_text(encoding="utf-8")
+    assert "edition 1 of 2026-02-02" in document
+    assert first.digest in document
+    assert (study / "editions" / "2" / "register-extract.jsonl").read_bytes() == first.raw + b"\n"
+
+
+def test_a_page_that_cannot_be_made_seals_nothing(tmp_path: Path) -> None:
+    """A template that asks for something outside the report fails the issue with 4; the study is as it was."""
+    sources = copy_of_program(tmp_path)
+    frame = next(path for path in tmp_path.rglob("report.html.j2"))
+    broken = replaced_once("<main>", '<main><img alt="" src="file:///no/such/picture.png">')(frame.read_text("utf-8"))
+    frame.write_text(broken, encoding="utf-8")
+    study = copy_study("first-look", tmp_path / "first-look")
+    before = snapshot(study)
+    ran = run("issue", "first-look", "--reason", "x", cwd=tmp_path, environment=surroundings(sources))
+    assert (ran.status, ran.out) == (4, "")
+    assert ran.err.startswith("The page asked for something outside the report: ")
+    assert "Traceback" not in ran.err
+    assert snapshot(study) == before
+    assert not (study / "editions").exists()
+
+
+def test_a_failure_that_nobody_foresaw_is_told_in_a_sentence(tmp_path: Path) -> None:
+    """A template that is no template ends with 4 and a sentence, as JSON too; --debug shows where it failed."""
+    sources = copy_of_program(tmp_path)
+    frame = next(path for path in tmp_path.rglob("report.html.j2"))
+    frame.write_text("{{ nothing.of.this }}", encoding="utf-8")
+    study = copy_study("first-look", tmp_path / "first-look")
+    before = snapshot(study)
+    ran = run("issue", ".", "--reason", "x", "--json", "--debug", cwd=study, environment=surroundings(sources))
+    assert (ran.status, ran.plain["kind"]) == (4, "program")
+    assert "Nothing was sealed" in ran.plain["message"]
+    assert "Traceback" in ran.err
+    assert snapshot(study) == before
+
+
+def test_a_shipped_case_that_fails_seals_nothing(tmp_path: Path) -> None:
+    """Before anything is computed the shipped cases must come out; one that does not is named, and nothing sealed."""
+    sources = copy_of_program(tmp_path)
+    cases_file = sources / "rankdocket" / "workflow" / "self_test.json"
+    cases = json.loads(cases_file.read_text(encoding="utf-8"))
+    spoiled = next(case for case in cases["cases"] if "count_two_sided" in case)
+    spoiled["count_two_sided"] += 2
+    cases_file.write_text(json.dumps(cases), encoding="utf-8")
+    study = copy_study("first-look", tmp_path / "first-look")
+    before = snapshot(study)
+    ran = run("issue", "first-look", "--reason", "x", cwd=tmp_path, environment=surroundings(sources))
+    assert (ran.status, ran.out) == (4, "")
+    assert ran.err.startswith(f"1 of {len(cases['cases'])} shipped cases do not come out on this machine: ")
+    assert spoiled["name"] in ran.err
+    assert snapshot(study) == before
+    assert not (study / "editions").exists()
+
+
+def test_an_interrupt_seals_nothing(first_look: Path) -> None:
+    """Interrupted in the middle of its work, the command says so, ends with 130 and leaves the study as it was."""
+    before = snapshot(first_look)
+    with subprocess.Popen(
+        command("issue", ".", "--reason", "first issue"),
+        cwd=first_look,
+        env=surroundings(),
+        stdin=subprocess.DEVNULL,
+        stdout=subprocess.PIPE,
+        stderr=subprocess.PIPE,
+    ) as process:
+        while process.poll() is None and not (first_look / LOCK).exists():
+            pass
+        process.send_signal(signal.SIGINT)
+        out, err = process.communicate()
+    assert (process.returncode, out) == (130, b"")
+    assert err.decode().split() == ["Interrupted:", "nothing", "was", "sealed."]
+    assert snapshot(first_look) == before

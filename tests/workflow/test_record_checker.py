@@ -1,0 +1,174 @@
+"""The checker that every edition carries: it needs bare Python alone, and finds what was altered by itself."""
+
+import ast
+import itertools
+import json
+import re
+import shutil
+import subprocess
+import sys
+from collections import Counter
+from pathlib import Path
+
+import pytest
+
+import rankdocket.workflow.record_checker as checker
+from rankdocket.workflow.study_folder import open_study
+from workflow.office import STUDIES, Ran, Sealed, forge, numbers_in, replaced_once
+
+SOURCE = Path(checker.__file__)
+
+
+def _check(copy: Path) -> Ran:
+    """Run check.py as a stranger would: no environment, no installed library, another working folder."""
+    done = subprocess.run(
+        [sys.executable, "-I", "-S", "-X", "utf8", str(copy / "check.py")],
+        env={},
+        cwd="/",
+        capture_output=True,
+        check=False,
+        encoding="utf-8",
+    )
+    return Ran(done.returncode, done.stdout, done.stderr)
+
+
+@pytest.fixture
+def study(issued: Sealed, tmp_path: Path) -> Path:
+    """A copy of the issued study that may be spoiled."""
+    return Path(shutil.copytree(issued.study, tmp_path / "first-look"))
+
+
+@pytest.mark.parametrize("name", ["issued", "drafted"])
+def test_a_record_copy_agrees(name: str, request: pytest.FixtureRequest, tmp_path: Path) -> None:
+    """A record copy carried elsewhere agrees, counts included, with every number and file looked at."""
+    sealed = request.getfixturevalue(name)
+    copy = Path(shutil.copytree(sealed.edition, tmp_path / "handed over"))
+    numbers = len(list(numbers_in(json.loads((copy / "document.json").read_bytes()))))
+    files = len([path for path in copy.rglob("*") if path.is_file()]) - 1
+    assert _check(copy) == Ran(0, f"Everything agrees ({numbers} numbers, {files} files).\n", "")
+
+
+def test_a_changed_rank_is_named(study: Path) -> None:
+    """A rank changed in the worksheet file is named with what it is when ranked anew."""
+    lines = (study / "editions" / "1" / "ranks-A1.csv").read_text(encoding="utf-8").splitlines()
+    cells = lines[5].split(",")
+    was, cells[4] = cells[4], "11.5"
+    forge(study, "1", "ranks-A1.csv", replaced_once(lines[5], ",".join(cells)))
+    ran = _check(study / "editions" / "1")
+    assert (ran.status, ran.err) == (1, "")
+    assert f"ranks-A1.csv, line 6: rank_y is 11.5, made anew {was}." in ran.out
+
+
+def test_a_changed_count_is_named(study: Path) -> None:
+    """A count changed in analysis.json is counted anew over all orderings of the twelve rows."""
+    count = json.loads((study / "editions" / "1" / "analysis.json").read_bytes())["associations"]["A1"]["test"]["count"]
+    forge(study, "1", "analysis.json", replaced_once(f'"count": "{count}"', f'"count": "{int(count) + 2}"'))
+    ran = _check(study / "editions" / "1")
+    told = f"A1: count is {int(count) + 2} of 479001600 in analysis.json, counted anew {count} of 479001600."
+    assert ran.status == 1
+    assert told in ran.out
+
+
+@pytest.mark.parametrize("name", ["report.html", "document.json"])
+def test_a_changed_digit_is_named(study: Path, name: str) -> None:
+    """A digit changed on the page alone or in the document alone is named by the number's address."""
+    pattern = {
+        "report.html": r'(data-key="associations/A1/estimate/value">)([^<]+)(<)',
+        "document.json": r'("key": "associations/A1/estimate/value",\s*"text": ")([^"]+)(")',
+    }[name]
+    forge(study, "1", name, lambda text: re.sub(pattern, r"\g<1>0.99\g<3>", text, count=1))
+    ran = _check(study / "editions" / "1")
+    assert ran.status == 1
+    assert f"{name} prints associations/A1/estimate/value as 0.99, 1 times;" in ran.out
+
+
+def test_a_changed_result_is_named(study: Path) -> None:
+    """A finding changed in results.csv is not what analysis.json says."""
+    forge(study, "1", "results.csv", lambda text: text.replace(",not shown\n", ",shown\n"))
+    ran = _check(study / "editions" / "1")
+    assert "results.csv, line 2: finding is shown, analysis.json has not shown." in ran.out
+
+
+def test_a_finding_changed_everywhere_is_decided_anew(study: Path) -> None:
+    """A finding changed in analysis.json itself is decided again from count, alpha and plan."""
+    forge(study, "1", "analysis.json", replaced_once('"word": "not shown"', '"word": "shown"'))
+    ran = _check(study / "editions" / "1")
+    assert "A1: the finding is 'shown', decided anew 'not shown'." in ran.out
+
+
+def test_files_touched_without_repair_are_named(study: Path) -> None:
+    """An altered, a removed and an added file are each named."""
+    edition = study / "editions" / "1"
+    (edition / "README.txt").write_bytes(b"Nothing to see here.\n")
+    (edition / "spec.yaml").unlink()
+    (edition / "more.txt").write_bytes(b"")
+    ran = _check(edition)
+    assert ran.status == 1
+    for told in (
+        "README.txt is not the file that was sealed.",
+        "spec.yaml is missing.",
+        "more.txt is not listed in SHA256SUMS.",
+    ):
+        assert told in ran.out
+
+
+def test_a_record_that_cannot_be_read_is_told_in_a_sentence(study: Path) -> None:
+    """A torn file ends the check with 1 and a sentence, not with a trace."""
+    forge(study, "1", "analysis.json", lambda text: text[:-20])
+    ran = _check(study / "editions" / "1")
+    assert (ran.status, ran.err) == (1, "")
+    assert "the record cannot be read to its end: " in ran.out
+
+
+def test_the_checker_is_the_file_that_editions_carry(issued: Sealed) -> None:
+    """check.py is the module as it stands, and speaks the Python of 2020."""
+    assert (issued.edition / "check.py").read_bytes() == SOURCE.read_bytes()
+    tree = ast.parse(SOURCE.read_text(encoding="utf-8"), feature_version=(3, 9))
+    imported = {
+        name.split(".")[0]
+        for node in ast.walk(tree)
+        for name in (
+            [alias.name for alias in node.names]
+            if isinstance(node, ast.Import)
+            else [node.module or ""]
+            if isinstance(node, ast.ImportFrom)
+            else []
+        )
+    }
+    assert imported <= sys.stdlib_module_names
+    names = {node.attr for node in ast.walk(tree) if isinstance(node, ast.Attribute)}
+    newer = {"bit_count", "pairwise", "batched", "file_digest", "removeprefix_"}
+    assert names.isdisjoint(newer)
+    assert not any(
+        keyword.arg == "strict" for node in ast.walk(tree) if isinstance(node, ast.Call) for keyword in node.keywords
+    )
+
+
+TIED = [
+    ([1, 2, 3, 4, 5], [2, 1, 4, 3, 5]),
+    ([1, 1, 2, 3, 3, 3], [4, 2, 2, 1, 1, 5]),
+    ([1, 1, 1, 2, 2, 2], [1, 2, 1, 2, 1, 2]),
+    ([3, 1, 2, 2], [7, 7, 7, 9]),
+    ([1, 2], [2, 1]),
+]
+
+
+@pytest.mark.parametrize("name", ["Spearman rho", "Kendall tau-b"])
+@pytest.mark.parametrize(("x", "y"), TIED)
+def test_its_count_is_that_of_all_orderings(name: str, x: list[int], y: list[int]) -> None:
+    """The packed count equals listing every ordering of y, one by one, for both coefficients, with and without ties."""
+    ranks_x = checker.doubled_midranks([checker.Fraction(value) for value in x])
+    ranks_y = checker.doubled_midranks([checker.Fraction(value) for value in y])
+    sums = checker.rho_sums if name == "Spearman rho" else checker.tau_sums
+    listed = Counter(sums(ranks_x, list(order))[0] for order in itertools.permutations(ranks_y))
+    assert checker.orderings(ranks_x, ranks_y, name) == listed
+
+
+def test_no_demonstration_needs_more_than_it_says() -> None:
+    """The two small demonstrations lie within what the checker counts, the large one does not."""
+    rows = {
+        name: len(next(iter(open_study(str(STUDIES / name)).data.tables.values())).row_numbers)
+        for name in ("first-look", "gasket-creep", "weld-smoke")
+    }
+    assert rows["first-look"] <= checker.MOST_ROWS_COUNTED < rows["weld-smoke"]
+    assert rows["gasket-creep"] <= checker.MOST_ROWS_COUNTED

@@ -1,0 +1,164 @@
+"""The methods text is gathered from the rules that ran: what did not run is neither described nor cited."""
+
+import re
+from dataclasses import replace
+
+import pytest
+
+from analysis.invented import MIXED, RISING, Invented, association, read_texts
+from rankdocket.analysis.analyse import analyse
+from rankdocket.analysis.checks import CHECKS
+from rankdocket.document.prose import text_of
+from rankdocket.references import Description
+from rankdocket.stats.adjustments.holm import HOLM
+from rankdocket.stats.intervals.bonett_wright import BONETT_WRIGHT
+from rankdocket.stats.null import MONTE_CARLO_INTERVAL, NULL_DESCRIPTIONS, TWO_SIDED
+from rankdocket.stats.rho import RHO
+from rankdocket.stats.tau import TAU_B
+from rankdocket.writing.sections.methods import method_paragraphs
+from writing.reports import Told, demonstration_report, study_of_every_finding, told
+
+BASE = Invented(columns={"u": RISING, "v": MIXED})
+TAU = {"A1": association(more="coefficient: Kendall tau-b")}
+DRAWN = "alpha: 0.05, p_value: {by: permutation, permutations: 999, seed: 20260402}"
+TWENTY = {"u": " ".join(map(str, range(1, 21))), "v": " ".join(str(7 * place % 23) for place in range(1, 21))}
+
+
+def text(report: Told) -> str:
+    return "\n".join(text_of(paragraph) for paragraph in method_paragraphs(report.story)).replace("\u00a0", " ")
+
+
+def words_of(description: Description) -> str:
+    """Return the longest run of words of a description between two slots, without the full stop."""
+    return max(re.split(r"{\w+}", description.sentence.removesuffix(".")), key=len)
+
+
+RULES: dict[str, Description] = {
+    **NULL_DESCRIPTIONS,
+    "rho": RHO,
+    "tau-b": TAU_B,
+    "two-sided": TWO_SIDED,
+    "interval of a drawn p": MONTE_CARLO_INTERVAL,
+    "Holm": HOLM.describe,
+    "interval": BONETT_WRIGHT.describe,
+    **{check.key: check.demand for check in CHECKS},
+}
+
+ALL_CHECKS_BUT_SHAPE = {check.key for check in CHECKS if check.key != "shape"}
+RAN: dict[str, tuple[Invented, set[str]]] = {
+    "exact": (BASE, {"exact, no ties", "rho", "two-sided", "Holm", "interval", *ALL_CHECKS_BUT_SHAPE}),
+    "ties": (
+        replace(BASE, columns={"u": RISING, "v": "1 1 2 3 4 5 6 7 8 9"}),
+        {"exact, conditional on the ties", "rho", "two-sided", "Holm", "interval", *ALL_CHECKS_BUT_SHAPE},
+    ),
+    "drawn": (
+        replace(BASE, inference=DRAWN),
+        {"drawn permutations", "interval of a drawn p", "rho", "two-sided", "Holm", "interval", *ALL_CHECKS_BUT_SHAPE},
+    ),
+    "tau-b": (
+        replace(BASE, associations=TAU),
+        {"exact, no ties", "tau-b", "two-sided", "Holm", *ALL_CHECKS_BUT_SHAPE},
+    ),
+    "one-sided": (
+        replace(BASE, inference="alpha: 0.05, sidedness: one-sided"),
+        {"exact, no ties", "rho", "Holm", "interval", *ALL_CHECKS_BUT_SHAPE},
+    ),
+    "not adjusted": (
+        replace(BASE, inference="alpha: 0.05, several_tests: {adjust: none, reason: one question}"),
+        {"exact, no ties", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
+    ),
+    "no family": (
+        replace(BASE, inference="alpha: 0.05, several_tests: {among: none, reason: one question}"),
+        {"exact, no ties", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
+    ),
+    "test withheld": (replace(BASE, rows="leave_out: []"), {"rho", "Holm", "interval", *ALL_CHECKS_BUT_SHAPE}),
+    "not estimable": (
+        replace(BASE, columns={"u": RISING, "v": "5 " * 10}),
+        {"Holm", *ALL_CHECKS_BUT_SHAPE - {"attainable_p"}},
+    ),
+    "twenty rows": (
+        replace(BASE, columns=TWENTY, inference=DRAWN),
+        {
+            "drawn permutations",
+            "interval of a drawn p",
+            "rho",
+            "two-sided",
+            "Holm",
+            "interval",
+            *ALL_CHECKS_BUT_SHAPE,
+            "shape",
+        },
+    ),
+}
+
+
+@pytest.mark.parametrize("name", list(RAN))
+def test_what_ran_is_described_and_nothing_else(name: str) -> None:
+    """Rule by rule, and the works of no other rule are listed."""
+    invented, ran = RAN[name]
+    report = told(invented.analysed())
+    found = text(report)
+    assert {key for key, description in RULES.items() if words_of(description) in found} == ran
+    of_rules = {work for key in ran for work in RULES[key].cites}
+    of_others = {work for key in RULES.keys() - ran for work in RULES[key].cites} - of_rules
+    # Caveats and worksheets cite works of their own; the rules that did not run bring none.
+    by_caveats = {"bonett2000", "diciccio2017", "student1921", "kendall1945"}
+    assert of_rules <= set(report.document.references)
+    assert not (of_others - by_caveats) & set(report.document.references)
+
+
+def test_every_rule_runs_in_one_of_the_studies() -> None:
+    """No description is left untested."""
+    assert set().union(*(ran for _, ran in RAN.values())) == set(RULES)
+
+
+def test_exact_and_drawn_are_told_apart() -> None:
+    """A study counted exactly says nothing of draws or seeds, and cites nobody for them."""
+    exact, drawn = told(BASE.analysed()), told(replace(BASE, inference=DRAWN).analysed())
+    assert "drawn" not in text(exact)
+    assert "seed" not in text(exact)
+    assert "999 permutations drawn at random from seed 20260402" in text(drawn)
+    assert "every order in which" not in text(drawn)
+    works = {"dwass1957", "phipson2010", "clopper1934"}
+    assert not works & set(exact.document.references)
+    assert works <= set(drawn.document.references)
+
+
+def test_a_description_ends_in_its_works() -> None:
+    """Before the full stop, in brackets, short."""
+    assert (
+        "Holm's step-down rule, which keeps the chance of any false finding in the family at or below alpha (Holm 1979)."
+        in text(told(BASE.analysed()))
+    )
+
+
+@pytest.mark.parametrize("codes", ["", "missing_codes: [x]"])
+def test_missing_cells_are_spoken_of_where_a_code_is_declared(codes: str) -> None:
+    """For a table or for one variable alone."""
+    keys = f"label: load, scale: measured, unit: N{', ' if codes else ''}{codes}"
+    spec_text = replace(BASE, variables={"u": keys}).spec_text().replace('{"-": not measured}', "[]")
+    report = told(analyse(*read_texts(spec_text, {"received/trials.csv": BASE.data_text()})))
+    assert ("no cell was missing" in text(report)) == (not codes)
+
+
+def test_the_family_is_described_as_it_is() -> None:
+    """Size, who, and what happens to members without a p (golden)."""
+    assert (
+        "The family of 5 associations (primary and secondary) holds A1, A2, A3, A4 and A5; an association that is not "
+        "estimable or whose test is withheld stays in it." in text(study_of_every_finding())
+    )
+    alone = told(replace(BASE, inference="alpha: 0.05, several_tests: {among: none, reason: it was asked}").analysed())
+    assert "Reason given: it was asked" in text(alone)
+
+
+@pytest.mark.parametrize("name", ["first-look", "gasket-creep", "weld-smoke"])
+def test_the_methods_of_the_demonstrations_have_no_empty_paragraph(name: str) -> None:
+    """Each paragraph says something."""
+    assert all(text_of(paragraph).strip() for paragraph in method_paragraphs(demonstration_report(name).story))
+
+
+def test_withheld_tests_leave_no_empty_paragraph() -> None:
+    """What is not said takes no room."""
+    report = told(replace(BASE, rows="leave_out: []").analysed())
+    assert all(text_of(paragraph).strip() for paragraph in method_paragraphs(report.story))
+    assert "Alpha was" not in text(report)
