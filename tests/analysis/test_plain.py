@@ -13,7 +13,7 @@ from hypothesis import strategies as st
 
 from analysis.invented import DEMONSTRATIONS, RISING, Invented, association, demonstration
 from rankdocket.analysis.checks import CHECKS
-from rankdocket.analysis.filing import DIGITS, exact_decimal, filed, half
+from rankdocket.analysis.filing import DIGITS, exact_decimal, filed, filed_beside, half
 from rankdocket.analysis.plain import SCHEMA, analysis_to_plain, data_to_plain, screened_to_plain
 from rankdocket.analysis.results import Estimate, RankTest
 from rankdocket.analysis.screen import screen_all
@@ -214,3 +214,13 @@ def test_equal_studies_are_filed_in_equal_bytes() -> None:
     first, second = (canonical_bytes(analysis_to_plain(EVERY_FINDING.analysed())) for _ in range(2))
     assert first == second
     assert RISING in EVERY_FINDING.columns["u"]
+
+
+def test_a_p_that_twelve_digits_would_merge_with_alpha_is_filed_with_more() -> None:
+    """A reader of analysis.json must come to the side of alpha on which the fractions put the finding."""
+    level = Decimal("0.0123015873016")
+    above = Fraction(31, 2520)
+    assert Decimal(filed(above)) == level
+    assert Decimal(filed_beside(above, level)) != level
+    assert (Decimal(filed_beside(above, level)) > level) == (above > Fraction(level))
+    assert filed_beside(Fraction(level), level) == str(level)

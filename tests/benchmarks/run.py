@@ -10,6 +10,7 @@ import sys
 import time
 from collections.abc import Callable, Iterator
 from contextlib import contextmanager
+from dataclasses import fields
 from pathlib import Path
 from tempfile import TemporaryDirectory
 
@@ -29,7 +30,7 @@ def main() -> None:
         _told("first-look: screen", folder, lambda place: (command("screen", "."), copy_study("first-look", place)))
         for study in STUDIES:
             words = command("issue", ".", "--reason", "measured")
-            _told(f"{study}: spec to sealed edition", folder, lambda place, s=study: (words, copy_study(s, place)))
+            _told(f"{study}: spec to sealed edition", folder, lambda place, s=study, w=words: (w, copy_study(s, place)))
     for study in STUDIES:
         _stages(study)
 
@@ -77,6 +78,12 @@ def _stages(study: str) -> None:
     from rankdocket.workflow.report import report
     from rankdocket.workflow.self_test import run_self_test
     from rankdocket.workflow.study_folder import open_study
+    from rankdocket.writing.section import IssueFacts
+    from rankdocket.writing.write import write
+
+    nothing = dict.fromkeys(("replaces",), None) | {"ingredients": (), "status": "draft"}
+    texts = {field.name: "2026-02-02T00:00:00Z" for field in fields(IssueFacts) if field.name not in nothing}
+    facts = IssueFacts(**texts, **nothing)
 
     spent: dict[str, float] = {}
 
@@ -94,10 +101,10 @@ def _stages(study: str) -> None:
         with stage("recompute shipped cases"):
             run_self_test()
         with stage("analyse"):
-            analysis_to_plain(analyse(opened.spec, opened.data))
-        with stage("read, analyse and write"):
-            report(folder)
-        spent["write"] = max(0.0, spent.pop("read, analyse and write") - spent["read spec and data"] - spent["analyse"])
+            analysis = analyse(opened.spec, opened.data)
+            plain = analysis_to_plain(analysis)
+        with stage("write"):
+            write(analysis, plain, facts)
         with stage("draw figures"):
             figures = {
                 block.key: draw(block).element for block in all_blocks(document) if isinstance(block, FigureBlock)

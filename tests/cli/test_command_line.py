@@ -82,7 +82,7 @@ def test_a_wrong_command_line_with_json_is_one_object(
     assert (plain["schema"], plain["kind"], plain["faults"]) == ("urn:rankdocket:error:1", "usage", [])
     assert "\n" not in plain["message"]
     assert _foreign(ran) == []
-    assert told.split(" See:")[0] in plain["message"] or "too many" in told
+    assert told.partition(" See:")[0] in plain["message"]
 
 
 @pytest.mark.parametrize("name", [None, *(each.name for each in COMMANDS)])
@@ -237,7 +237,7 @@ def schema(here: Callable[..., Ran], tmp_path: Path) -> dict[str, object]:
 
 def _spec(name: str) -> dict[str, object]:
     text = (STUDIES / name / "study.yaml").read_text(encoding="utf-8")
-    found = yaml.load(text, Loader=yaml.BaseLoader)  # noqa: S506 - makes text and nothing else
+    found = yaml.load(text, Loader=yaml.BaseLoader)
     assert isinstance(found, dict)
     return found
 

@@ -104,15 +104,22 @@ def test_a_rank_or_a_limit_is_printed_with_all_its_digits(value: str, text: str)
         ("98/99", "99%"),
         ("1/100", "1.0%"),
         ("33/100", "33.0%"),
-        ("1/3000", "0.0%"),
+        ("1/3000", "0.03%"),  # never 0% for something
         ("1/800", "0.1%"),  # 0.125
         ("3/2000", "0.2%"),  # 0.15, half to even
-        ("1/2000", "0.0%"),  # 0.05, half to even
+        ("1/2000", "0.05%"),
+        ("1999/2000", "99.95%"),  # never 100% for less
     ],
 )
 def test_a_share_has_decimals_from_a_hundred_rows_on(value: str, text: str) -> None:
     """The denominator, not reduced, tells how many rows there were."""
     assert numbers(value).share("v").text == text
+
+
+def test_a_share_that_differs_from_its_limit_does_not_read_as_equal_to_it() -> None:
+    """"Found 20%, limit 20%, not met" would look like a mistake."""
+    made = Numbers({"found": "10/49", "limit": "0.20"}, 2, 3, "leading zero", Decimal("0.05"))
+    assert made.share("found", "limit").text == "20.4%"
 
 
 @pytest.mark.parametrize(

@@ -10,8 +10,36 @@ from house.ground import ROOT, SRC, TEMPLATES, definitions, names_given, tracked
 from workflow.office import Sealed, surroundings
 
 NEVER = frozenset(
-    "project job dataset datasets preprocess assumption assumptions registry plugin coef robustness significant "
-    "significance star stars payload log cache diff batch bundle util utils helper helpers manager common clean".split()
+    (
+        "project",
+        "job",
+        "dataset",
+        "datasets",
+        "preprocess",
+        "assumption",
+        "assumptions",
+        "registry",
+        "plugin",
+        "coef",
+        "robustness",
+        "significant",
+        "significance",
+        "star",
+        "stars",
+        "payload",
+        "log",
+        "cache",
+        "diff",
+        "batch",
+        "bundle",
+        "util",
+        "utils",
+        "helper",
+        "helpers",
+        "manager",
+        "common",
+        "clean",
+    )
 )
 """Words of the "never" column, and of file names, that no name in the program is made of."""
 

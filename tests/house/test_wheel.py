@@ -2,7 +2,6 @@
 
 import subprocess
 import sys
-import sysconfig
 import venv
 import zipfile
 from pathlib import Path
@@ -60,7 +59,8 @@ def test_the_wheel_alone_issues_and_verifies_a_study(wheel: Path, tmp_path: Path
         ).stdout.strip()
     )
     # Read after the room's own packages: the libraries are shared, the program is the one from the wheel.
-    (site / "neighbours.pth").write_text(f"{sysconfig.get_path('purelib')}\n{sysconfig.get_path('platlib')}\n")
+    shared = [entry for entry in sys.path if Path(entry).name in {"site-packages", "dist-packages"}]
+    (site / "neighbours.pth").write_text("\n".join(shared) + "\n", encoding="utf-8")
     study = copy_study("first-look", tmp_path / "first-look")
     surroundings = {"PATH": str(room / "bin"), "HOME": str(tmp_path), "SOURCE_DATE_EPOCH": GIVEN_TIME}
 

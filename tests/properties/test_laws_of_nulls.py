@@ -186,3 +186,19 @@ def test_drawn_permutations_agree_with_the_exact_null_within_their_stated_error(
         assert limits is not None
         assert limits[0] <= exact.p(direction) <= limits[1]
         assert limits[0] <= drawn.p(direction) <= limits[1] + 1e-4
+
+
+@pytest.mark.parametrize("name", COEFFICIENTS)
+@pytest.mark.parametrize("data", DRAWN)
+def test_drawn_permutations_do_not_depend_on_the_order_of_the_rows(
+    name: CoefficientName, data: tuple[list[int], list[int]]
+) -> None:
+    """The same rows in another order meet the same draws and give the same counts."""
+    pairs = list(zip(*data, strict=True))
+    counts = set()
+    for rows in (pairs, pairs[::-1], sorted(pairs), sorted(pairs, key=lambda row: (row[1], -row[0]))):
+        x, y = (_codes(list(column)) for column in zip(*rows, strict=True))
+        coefficient = {"Spearman rho": rho, "Kendall tau-b": tau_b}[name](x, y)
+        choice = choose_null(name, tie_groups(x), tie_groups(y), "permutation")
+        counts.add(count_tails(choice, x, y, observed=coefficient, draws=Draws(500, stream(3, "order"))))
+    assert len(counts) == 1

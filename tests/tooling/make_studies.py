@@ -32,19 +32,19 @@ def main(folder: Path) -> None:
 def studies() -> dict[str, str]:
     """Return path below studies/ → text of each data file."""
     return {
-        "first-look/received/proving_trial.csv": first_look(),
+        "first-look/received/rising_trial.csv": first_look(),
         "gasket-creep/received/2026-02-16/creep_tests.csv": gasket_creep(),
         "weld-smoke/received/2026-03-02/shift_samples.csv": weld_smoke(),
     }
 
 
 def first_look() -> str:
-    """Return 12 trial doughs: proving time in minutes, loaf volume in millilitres."""
+    """Return 12 trial doughs: rising time in minutes, loaf volume in millilitres."""
     draw = random.Random(FIRST_LOOK_SEED)
     times = sorted(draw.sample(range(35, 130), 12))
-    rows = [(f"D{place:02d}", time, round(1450 + 5.5 * time + draw.gauss(0, 130))) for place, time in enumerate(times, 1)]
+    rows = [(f"D{place:02d}", time, round(1450 + 5.5 * time + draw.gauss(0, 90))) for place, time in enumerate(times, 1)]
     draw.shuffle(rows)
-    return text_of(("dough", "proving_min", "volume_ml"), rows, ",")
+    return text_of(("dough", "rising_min", "volume_ml"), rows, ",")
 
 
 def gasket_creep() -> str:

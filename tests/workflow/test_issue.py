@@ -59,17 +59,17 @@ FAULTS = [
 ]
 
 
-@pytest.mark.parametrize(("file", "old", "new", "told", "number"), FAULTS, ids=lambda value: str(value)[:24])
+@pytest.mark.parametrize("fault", FAULTS, ids=lambda fault: f"message {fault[-1]}")
 def test_a_fault_of_the_input_is_told_by_place_and_nothing_is_written(
-    first_look: Path, here: Callable[..., Ran], file: str, old: str, new: str, told: str, number: int
+    first_look: Path, here: Callable[..., Ran], fault: tuple[str, str, str, str, int]
 ) -> None:
     """The error names file, line and column, what is wrong and what to write; the study's folder is as it was."""
+    file, old, new, told, number = fault
     spoiled = replaced_once(old, new)((first_look / file).read_text(encoding="utf-8"))
     (first_look / file).write_text(spoiled, encoding="utf-8")
     before = snapshot(first_look)
     ran = here("issue", ".", "--reason", "first issue", cwd=first_look)
     assert (ran.status, ran.out) == (3, "")
-    assert told in ran.err
     assert ran.err.count("Nothing was computed.") == 1
     assert f"(message {number})" in next(line for line in ran.err.splitlines() if told in line)
     assert snapshot(first_look) == before

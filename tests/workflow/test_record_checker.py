@@ -64,7 +64,7 @@ def test_a_changed_count_is_named(study: Path) -> None:
     count = json.loads((study / "editions" / "1" / "analysis.json").read_bytes())["associations"]["A1"]["test"]["count"]
     forge(study, "1", "analysis.json", replaced_once(f'"count": "{count}"', f'"count": "{int(count) + 2}"'))
     ran = _check(study / "editions" / "1")
-    told = f"A1: count is {int(count) + 2} of 479001600 in analysis.json, counted anew {count} of 479001600."
+    told = f"A1: count is {int(count) + 2}, made anew {count}."
     assert ran.status == 1
     assert told in ran.out
 
@@ -93,7 +93,7 @@ def test_a_finding_changed_everywhere_is_decided_anew(study: Path) -> None:
     """A finding changed in analysis.json itself is decided again from count, alpha and plan."""
     forge(study, "1", "analysis.json", replaced_once('"word": "not shown"', '"word": "shown"'))
     ran = _check(study / "editions" / "1")
-    assert "A1: the finding is 'shown', decided anew 'not shown'." in ran.out
+    assert "A1: the finding is shown, made anew not shown." in ran.out
 
 
 def test_files_touched_without_repair_are_named(study: Path) -> None:

@@ -116,7 +116,7 @@ def require_seed(spec: StudySpec, screened: dict[str, Screened]) -> None:
     drawn = [
         name
         for name, rows in screened.items()
-        if min(rows.x_ties.distinct, rows.y_ties.distinct) > 1 and null_choice(rows, spec).needs_draws
+        if _will_be_tested(rows, spec) and null_choice(rows, spec).needs_draws
     ]
     if drawn:
         raise InputError(
@@ -130,6 +130,13 @@ def require_seed(spec: StudySpec, screened: dict[str, Screened]) -> None:
                 ),
             )
         )
+
+
+def _will_be_tested(screened: Screened, spec: StudySpec) -> bool:
+    """Return whether a test is to come, from what may be looked at before anything joint is computed."""
+    if min(screened.x_ties.distinct, screened.y_ties.distinct) < 2 or len(screened.rows) < FEWEST_ROWS:
+        return False
+    return all(check.examine(screened, spec).withholds == "nothing" for check in CHECKS if not check.joint)
 
 
 def _rank_codes(screened: Screened) -> tuple[Codes, Codes]:

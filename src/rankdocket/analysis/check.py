@@ -10,7 +10,7 @@ from decimal import Decimal
 from fractions import Fraction
 from typing import Literal
 
-from rankdocket.analysis.filing import filed
+from rankdocket.analysis.filing import filed_beside
 from rankdocket.analysis.results import CheckOutcome, Measure, Screened
 from rankdocket.references import Description
 from rankdocket.study.spec import StudySpec
@@ -75,6 +75,11 @@ def limit_share(value: Decimal) -> Measure:
     return Measure(str(value), "percent")
 
 
-def p_measure(value: Fraction | Decimal) -> Measure:
-    """Return a p-value, or a level it is held against, as a measure."""
-    return Measure(filed(value), "p")
+def p_measure(value: Fraction, level: Decimal) -> Measure:
+    """Return a p-value as a measure that stays on its own side of the level it is held against."""
+    return Measure(filed_beside(value, level), "p")
+
+
+def level_measure(level: Decimal) -> Measure:
+    """Return a level as the plan states it."""
+    return Measure(str(level), "p")

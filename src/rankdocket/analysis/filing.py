@@ -5,6 +5,9 @@ from fractions import Fraction
 from typing import Final
 
 DIGITS: Final = 12
+MOST_DIGITS: Final = 400
+"""Enough to part any two fractions that a study can bring together."""
+
 _ROUND: Final = Context(prec=DIGITS, rounding=ROUND_HALF_EVEN)
 
 
@@ -17,10 +20,22 @@ def filed(value: Fraction | Decimal | float) -> str:
         rounded = _ROUND.divide(Decimal(value.numerator), Decimal(value.denominator))
     else:
         rounded = _ROUND.create_decimal(Decimal(value))
-    text = f"{rounded:f}"
-    if "." in text:
-        text = text.rstrip("0").rstrip(".")
-    return "0" if text == "-0" else text
+    return _trimmed(f"{rounded:f}")
+
+
+def filed_beside(value: Fraction, level: Decimal) -> str:
+    """Return a p-value as filed, with as many more digits as it takes to keep it on its own side of ``level``.
+
+    Twelve digits of a p just above alpha may read as alpha itself; whoever compares the filed text must come to the
+    finding that the fractions gave.
+    """
+    if value == Fraction(level):
+        return str(level)
+    for digits in range(DIGITS, MOST_DIGITS + 1):
+        text = f"{Context(prec=digits, rounding=ROUND_HALF_EVEN).divide(Decimal(value.numerator), Decimal(value.denominator)):f}"
+        if Decimal(text) != level and (Decimal(text) < level) == (value < Fraction(level)):
+            return _trimmed(text)
+    raise ValueError(f"{value} and {level} cannot be told apart in {MOST_DIGITS} digits")
 
 
 def half(doubled: int) -> str:
@@ -43,3 +58,9 @@ def exact_decimal(value: Fraction) -> str:
         if scaled.denominator == 1:
             return f"{Decimal(scaled.numerator).scaleb(-places):f}"
     raise ValueError(f"{value} has no finite decimal form")
+
+
+def _trimmed(text: str) -> str:
+    if "." in text:
+        text = text.rstrip("0").rstrip(".")
+    return "0" if text == "-0" else text

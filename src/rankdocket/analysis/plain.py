@@ -6,10 +6,11 @@ key ``reason`` beside a ``state``; nothing is ever NaN or null.
 """
 
 from collections import Counter
+from decimal import Decimal
 from fractions import Fraction
 from typing import Final
 
-from rankdocket.analysis.filing import exact_decimal, filed, half
+from rankdocket.analysis.filing import exact_decimal, filed, filed_beside, half
 from rankdocket.analysis.results import (
     Analysis,
     AssociationAnalysis,
@@ -43,7 +44,7 @@ def analysis_to_plain(analysis: Analysis) -> dict[str, Plain]:
             "family_size": len(analysis.family),
         },
         "associations": {
-            name: _association(result, analysis.findings[name]) for name, result in analysis.results.items()
+            name: _association(result, analysis.findings[name], analysis.spec.inference.alpha) for name, result in analysis.results.items()
         },
         "tally": {
             "associations": len(analysis.results),
@@ -160,18 +161,18 @@ def _check(outcome: CheckOutcome) -> dict[str, Plain]:
     return {"state": outcome.state, "reason": outcome.reason, "withholds": outcome.withholds, **limit, **found}
 
 
-def _association(result: AssociationAnalysis, finding: Finding) -> dict[str, Plain]:
+def _association(result: AssociationAnalysis, finding: Finding, alpha: Decimal) -> dict[str, Plain]:
     smallest: dict[str, Plain] = {}
     if result.smallest_attainable_p is not None:
-        smallest = {"smallest_attainable_p": filed(result.smallest_attainable_p)}
+        smallest = {"smallest_attainable_p": filed_beside(result.smallest_attainable_p, alpha)}
     return {
         **screened_to_plain(result.screened, result.checks),
         "coefficient": result.screened.spec.coefficient,
         "estimate": _estimate(result),
-        "test": _test(result),
+        "test": _test(result, alpha),
         "interval": _interval(result),
-        "comparisons": _comparisons(result),
-        "finding": _finding(finding),
+        "comparisons": _comparisons(result, alpha),
+        "finding": _finding(finding, alpha),
         "worksheet": _worksheet(result.screened),
         **smallest,
     }
@@ -202,7 +203,7 @@ def _estimate(result: AssociationAnalysis) -> dict[str, Plain]:
             return plain
 
 
-def _test(result: AssociationAnalysis) -> dict[str, Plain]:
+def _test(result: AssociationAnalysis, alpha: Decimal) -> dict[str, Plain]:
     test = result.test
     match test:
         case NotEstimable(reason):
@@ -220,9 +221,9 @@ def _test(result: AssociationAnalysis) -> dict[str, Plain]:
                 "of": str(tails.of),
                 "count_greater": str(tails.greater),
                 "count_less": str(tails.less),
-                "p": filed(test.p),
-                "p_greater": filed(tails.p("greater")),
-                "p_less": filed(tails.p("less")),
+                "p": filed_beside(test.p, alpha),
+                "p_greater": filed_beside(tails.p("greater"), alpha),
+                "p_less": filed_beside(tails.p("less"), alpha),
             }
             if test.p_interval is not None:
                 plain["p_low"], plain["p_high"] = filed(test.p_interval[0]), filed(test.p_interval[1])
@@ -243,7 +244,7 @@ def _interval(result: AssociationAnalysis) -> dict[str, Plain]:
     }
 
 
-def _comparisons(result: AssociationAnalysis) -> dict[str, Plain]:
+def _comparisons(result: AssociationAnalysis, alpha: Decimal) -> dict[str, Plain]:
     plain: dict[str, Plain] = {}
     comparisons = result.comparisons
     if comparisons.t_value_p is not None:
@@ -251,16 +252,16 @@ def _comparisons(result: AssociationAnalysis) -> dict[str, Plain]:
     if comparisons.pearson is not None:
         plain["pearson"] = filed(comparisons.pearson)
     if comparisons.doubled_p is not None:
-        plain["doubled_p"] = filed(comparisons.doubled_p)
+        plain["doubled_p"] = filed_beside(comparisons.doubled_p, alpha)
     if isinstance(result.estimate, Estimate) and result.estimate.short_form is not None:
         plain["short_form"] = filed(result.estimate.short_form)
     return plain
 
 
-def _finding(finding: Finding) -> dict[str, Plain]:
+def _finding(finding: Finding, alpha: Decimal) -> dict[str, Plain]:
     plain: dict[str, Plain] = {"word": finding.word or "no finding", "basis": finding.basis}
     if finding.p_adjusted is not None:
-        plain["p_adjusted"] = filed(finding.p_adjusted)
+        plain["p_adjusted"] = filed_beside(finding.p_adjusted, alpha)
     return plain
 
 

@@ -96,13 +96,27 @@ class Numbers:
         exact = self._exact(key)
         return Number(key, exact, _signed(f"{Decimal(exact):f}"))
 
-    def share(self, key: str) -> Number:
-        """Return a filed fraction ``a/b`` as a percentage; fewer than a hundred rows get no decimals."""
+    def level(self, key: str) -> Number:
+        """Return a level or a size that the plan states, with the digits it has and the zero of the style."""
         exact = self._exact(key)
-        value = Fraction(exact)
+        return Number(key, exact, self._styled(Decimal(exact)))
+
+    def share(self, key: str, limit: str | None = None) -> Number:
+        """Return a filed fraction ``a/b`` as a percentage; fewer than a hundred rows get no decimals.
+
+        Decimals are added until a share that is neither nothing nor everything does not read as if it were, and one
+        that differs from the limit at the address ``limit`` does not read as equal to it.
+        """
+        exact = self._exact(key)
+        value = _decimal(Fraction(exact)) * 100
         of = int(exact.partition("/")[2] or FEW_ROWS)
-        decimals = 0 if of < FEW_ROWS else 1
-        return Number(key, exact, f"{_rounded(_decimal(value) * 100, decimals)}%")
+        others = {Decimal(0), Decimal(100)}
+        if limit is not None:
+            others.add(Decimal(self._exact(limit)) * 100)
+        places = 0 if of < FEW_ROWS else 1
+        while places < MOST_DECIMALS and _rounded(value, places) in others and value not in others:
+            places += 1
+        return Number(key, exact, f"{_rounded(value, places)}%")
 
     def percent(self, key: str) -> Number:
         """Return a filed decimal between 0 and 1 as a percentage with the digits that it has."""

@@ -109,7 +109,7 @@ _RULES: Final[tuple[tuple[str, str], ...]] = (
     (r"\btrend(?:s|ed|ing)? towards?\b", "a p-value above alpha is not almost below it"),
     (r"\b(?:marginally|borderline|nearly|almost|highly) significant\b", "a p-value has no degrees"),
     (r"\bmarginally\b", "a p-value has no degrees"),
-    (r"\b(?:prov(?:es?|ed|en|ing)|confirm(?:s|ed|ing)?)\b", "a sample neither proves nor confirms"),
+    (r"\b(?:prov(?:es?|ed|en)|confirm(?:s|ed|ing)?)\b", "a sample neither proves nor confirms"),
     (r"\b(?:caus(?:es?|ed|al|ing)|leads? to|led to|driv(?:es?|en|ing)|effects? of|due to)\b",
      "an association does not say why"),
     (r"\b(?:strong|strongly|weak|weakly|moderate|moderately) (?:\w+ )?(?:correlat|associat|relation)\w*",
@@ -119,7 +119,7 @@ _RULES: Final[tuple[tuple[str, str], ...]] = (
     (r"\bn\.s\.|\b(?:not significant|non-significant|insignificant|statistically significant)\b",
      "a finding is stated in the plan's own words"),
     (r"\b(?:zero error|beyond (?:any )?doubt|without (?:any )?doubt|guarantee[sd]?)\b", "no absolute claims"),
-    (r"\d\s*\*{1,3}(?!\*)", "no marks for p-values"),
+    (r"\d\s*\*{1,3}(?!\*)(?!\s*[\w(])", "no marks for p-values"),
 )
 
 

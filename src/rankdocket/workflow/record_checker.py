@@ -9,6 +9,8 @@ It does not read the spec and the data as received, does not recompute intervals
 not open the PDF.
 """
 
+# ruff: noqa: T201 - it speaks to a person at a terminal
+
 from __future__ import annotations
 
 import csv
@@ -18,15 +20,14 @@ import json
 import re
 import sys
 from collections import Counter, defaultdict
+from collections.abc import Iterator
 from decimal import ROUND_HALF_EVEN, Context, Decimal
 from fractions import Fraction
 from functools import reduce
-from math import comb, factorial, gcd
+from math import comb, factorial, gcd, prod
+from operator import add, mul, sub
 from pathlib import Path
-from typing import TYPE_CHECKING, Any
-
-if TYPE_CHECKING:
-    from collections.abc import Iterator
+from typing import Any
 
 MOST_ROWS_COUNTED = 14
 """Up to here counting takes seconds on any machine; more rows are left to the program itself."""
@@ -35,21 +36,18 @@ DIGITS = 12
 """Significant digits of every filed value that is not whole."""
 
 RHO = "Spearman rho"
-RESULT_COLUMNS = (
-    ("n", "rows/complete"),
-    ("coefficient", "coefficient"),
-    ("value", "estimate/value"),
-    ("interval_low", "interval/low"),
-    ("interval_high", "interval/high"),
-    ("interval_by", "interval/by"),
-    ("p", "test/p"),
-    ("p_by", "test/method"),
-    ("p_adjusted", "finding/p_adjusted"),
-    ("finding", "finding/word"),
-    ("x", "x"),
-    ("y", "y"),
-)
-"""Column of results.csv and where its value stands below an association of analysis.json; absent is blank."""
+RESULT_ADDRESSES = {
+    "n": "rows/complete",
+    "value": "estimate/value",
+    "interval_low": "interval/low",
+    "interval_high": "interval/high",
+    "interval_by": "interval/by",
+    "p": "test/p",
+    "p_by": "test/method",
+    "p_adjusted": "finding/p_adjusted",
+    "finding": "finding/word",
+}
+"""Column of results.csv → where its value stands below an association of analysis.json, if not under its own name."""
 
 NUMBER_ELEMENT = re.compile(r'data-key="([^"]+)"[^>]*>([^<]*)<')
 
@@ -68,21 +66,22 @@ def main(folder: Path) -> int:
     except (OSError, ValueError, KeyError, TypeError, ArithmeticError) as error:
         problems.append(f"the record cannot be read to its end: {type(error).__name__}, {error}.")
     if problems:
-        say(f"{len(problems)} things do not agree ({numbers} numbers, {files} files looked at):")
+        print(f"{len(problems)} things do not agree ({numbers} numbers, {files} files looked at):")
         for place, problem in enumerate(problems, start=1):
-            say(f"  {place}. {problem}")
+            print(f"  {place}. {problem}")
     else:
-        say(f"Everything agrees ({numbers} numbers, {files} files).")
+        print(f"Everything agrees ({numbers} numbers, {files} files).")
     if left:
-        say(
+        print(
             f"Not counted anew, because permutations were drawn or more than {MOST_ROWS_COUNTED} rows ranked: {', '.join(left)}."
         )
     return 1 if problems else 0
 
 
-def say(text: str) -> None:
-    """Print a line."""
-    sys.stdout.write(f"{text}\n")
+def hold(what: str, filed: object, anew: object, problems: list[str]) -> None:
+    """Note a value that is not what it is when made anew."""
+    if filed != anew:
+        problems.append(f"{what} is {filed}, made anew {anew}.")
 
 
 def check_digests(folder: Path, problems: list[str]) -> int:
@@ -147,53 +146,37 @@ def check_worksheet(
         rank_x, rank_y = Fraction(x[place], 2), Fraction(y[place], 2)
         anew = {"rank_x": rank_x, "rank_y": rank_y, "difference": rank_x - rank_y, "squared": (rank_x - rank_y) ** 2}
         for column, value in anew.items():
-            if Fraction(row[column]) != value:
-                problems.append(
-                    f"{file}, line {place + 2}: {column} is {row[column]}, made anew {decimal_text(value)}."
-                )
-        problems.extend(
-            f"{file}, line {place + 2}: {column} is {row[column]}, rows.csv has {used[place][column]}."
-            for column in ("row", "x", "y")
-            if row[column] != used[place][column]
-        )
+            hold(f"{file}, line {place + 2}: {column}", row[column], decimal_text(value), problems)
+        for column in ("row", "x", "y"):
+            hold(f"{file}, line {place + 2}: {column}", row[column], used[place][column], problems)
 
 
 def check_estimate(name: str, found: Any, ranks: tuple[list[int], list[int]], problems: list[str]) -> None:
     """Compute the coefficient again."""
-    sums = rho_sums(*ranks) if found["coefficient"] == RHO else tau_sums(*ranks)
-    estimate = found["estimate"]
+    sums = sums_of(found["coefficient"], *ranks)
     for position, key in enumerate(("numerator", "x_square", "y_square")):
-        if int(estimate[key]) != sums[position]:
-            problems.append(f"{name}: {key} is {estimate[key]} in analysis.json, computed anew {sums[position]}.")
-    value = coefficient(*sums)
-    if Decimal(estimate["value"]) != value:
-        problems.append(f"{name}: the coefficient is {estimate['value']} in analysis.json, computed anew {value}.")
+        hold(f"{name}: {key}", found["estimate"][key], str(sums[position]), problems)
+    hold(f"{name}: the coefficient", Decimal(found["estimate"]["value"]), coefficient(*sums), problems)
 
 
 def check_test(name: str, found: Any, ranks: tuple[list[int], list[int]], problems: list[str]) -> bool:
     """Derive p from its count, and count all orderings where there are few enough; return whether it was done."""
     test = found["test"]
-    for key, text in (("p", test["count"]), ("p_greater", test["count_greater"]), ("p_less", test["count_less"])):
-        if test[key] != filed_text(p_of(test, int(text))):
-            problems.append(
-                f"{name}: {key} is {test[key]} in analysis.json, its count says {filed_text(p_of(test, int(text)))}."
-            )
+    for key, count in (("p", "count"), ("p_greater", "count_greater"), ("p_less", "count_less")):
+        hold(f"{name}: {key}", test[key], filed_text(p_of(test, int(test[count]))), problems)
     if not test["method"].startswith("exact") or len(ranks[0]) > MOST_ROWS_COUNTED:
         return False
     tally = orderings(*ranks, found["coefficient"])
-    numerator = (rho_sums(*ranks) if found["coefficient"] == RHO else tau_sums(*ranks))[0]
+    numerator = sums_of(found["coefficient"], *ranks)[0]
     counts = {
         "greater": sum(times for value, times in tally.items() if value >= numerator),
         "less": sum(times for value, times in tally.items() if value <= numerator),
         "two-sided": sum(times for value, times in tally.items() if abs(value) >= abs(numerator)),
     }
-    anew = (("count", counts[test["direction"]]), ("count_greater", counts["greater"]), ("count_less", counts["less"]))
-    whole = factorial(len(ranks[0]))
-    for key, count in anew:
-        if Fraction(int(test[key]), int(test["of"])) != Fraction(count, whole):
-            problems.append(
-                f"{name}: {key} is {test[key]} of {test['of']} in analysis.json, counted anew {count} of {whole}."
-            )
+    hold(f"{name}: count", test["count"], str(counts[test["direction"]]), problems)
+    hold(f"{name}: count_greater", test["count_greater"], str(counts["greater"]), problems)
+    hold(f"{name}: count_less", test["count_less"], str(counts["less"]), problems)
+    hold(f"{name}: the number of orderings", test["of"], str(factorial(len(ranks[0]))), problems)
     return True
 
 
@@ -216,10 +199,8 @@ def check_findings(folder: Path, analysis: Any, problems: list[str]) -> None:
     adjusted = holm(everybody) if plan["inference"]["several_tests"]["adjust"] == "Holm" else everybody
     for name, found in sorted(analysis["associations"].items()):
         finding = found["finding"]
-        if "p_adjusted" in finding and finding["p_adjusted"] != filed_text(adjusted[name]):
-            problems.append(
-                f"{name}: p_adjusted is {finding['p_adjusted']}, adjusted anew {filed_text(adjusted[name])}."
-            )
+        if "p_adjusted" in finding:
+            hold(f"{name}: p_adjusted", finding["p_adjusted"], filed_text(adjusted[name]), problems)
         if name not in p_values or finding["basis"] == "outside the family":
             continue
         word = "not shown"
@@ -227,8 +208,7 @@ def check_findings(folder: Path, analysis: Any, problems: list[str]) -> None:
             sign = "positive" if int(found["estimate"]["numerator"]) > 0 else "negative"
             expected = plan["associations"][name]["hypothesis"]["expected_sign"]
             word = "shown" if expected in ("either", sign) else "shown, opposite sign"
-        if finding["word"] != word:
-            problems.append(f"{name}: the finding is {finding['word']!r}, decided anew {word!r}.")
+        hold(f"{name}: the finding", finding["word"], word, problems)
 
 
 def holm(p_values: dict[str, Fraction]) -> dict[str, Fraction]:
@@ -248,20 +228,17 @@ def check_results(folder: Path, analysis: Any, problems: list[str]) -> None:
         problems.append(f"results.csv has the associations {', '.join(names)}, analysis.json others.")
         return
     for line, row in enumerate(rows, start=2):
-        found = analysis["associations"][row["association"]]
-        right = {column: text_at(found, address) for column, address in RESULT_COLUMNS}
-        right["sidedness"] = analysis["inference"]["sidedness"]
-        problems.extend(
-            f"results.csv, line {line}: {column} is {row[column] or 'blank'}, analysis.json has {text or 'nothing'}."
-            for column, text in right.items()
-            if row[column] != text
-        )
-
-
-def text_at(plain: Any, address: str) -> str:
-    """Return what stands at an address as a cell of a table holds it."""
-    value = look_up(plain, address)
-    return "" if value is None else str(value)
+        its_own = {
+            **analysis["associations"][row["association"]],
+            "association": row["association"],
+            "sidedness": analysis["inference"]["sidedness"],
+        }
+        for column, cell in row.items():
+            filed = look_up(its_own, RESULT_ADDRESSES.get(column, column))
+            if cell != ("" if filed is None else str(filed)):
+                problems.append(
+                    f"results.csv, line {line}: {column} is {cell or 'blank'}, analysis.json has {filed or 'nothing'}."
+                )
 
 
 def doubled_midranks(values: list[Fraction]) -> list[int]:
@@ -272,6 +249,11 @@ def doubled_midranks(values: list[Fraction]) -> list[int]:
         first.setdefault(value, place)
         last[value] = place
     return [first[value] + last[value] for value in values]
+
+
+def sums_of(name: str, x: list[int], y: list[int]) -> tuple[int, int, int]:
+    """Return the three whole numbers that make a coefficient."""
+    return rho_sums(x, y) if name == RHO else tau_sums(x, y)
 
 
 def rho_sums(x: list[int], y: list[int]) -> tuple[int, int, int]:
@@ -317,38 +299,31 @@ def orderings(x: list[int], y: list[int], name: str) -> dict[int, int]:
     x is gone through from its smallest value; what is remembered is how many rows of each y value are used up, and
     for each such state the counts of all sums so far, packed into one long whole number: a shift adds to a sum.
     """
-    n, middle = len(x), len(x) + 1
-    values = sorted(Counter(y).items())
+    values, times = zip(*sorted(Counter(y).items()))  # noqa: B905 - Python 3.9 has no strict
     low_x, low_y = min(x), min(y)
     unit_x = reduce(gcd, (value - low_x for value in x)) or 1
     unit_y = reduce(gcd, (value - low_y for value in y)) or 1
-    steps_y = [(value - low_y) // unit_y for value, _ in values]
-    width = factorial(n).bit_length()
+    width = factorial(len(x)).bit_length()
+    scale, shift = 1, 0
+    if name == RHO:
+        scale, shift = unit_x * unit_y, -len(x) * (len(x) + 1 - low_x) * (len(x) + 1 - low_y)
     layer: dict[tuple[int, ...], int] = {(0,) * len(values): 1}
-    shift = -n * (middle - low_x) * (middle - low_y) if name == RHO else 0
-    scale = unit_x * unit_y if name == RHO else 1
     for value, size in sorted(Counter(x).items()):
         following: dict[tuple[int, ...], int] = defaultdict(int)
+        before = sum(next(iter(layer)))
         if name != RHO:
-            shift -= size * sum(next(iter(layer)))
+            shift -= size * before
         for used, packed in layer.items():
-            room = [times - used[place] for place, (_, times) in enumerate(values)]
+            if name == RHO:
+                least, weights = 0, [(value - low_x) // unit_x * ((other - low_y) // unit_y) for other in values]
+            else:
+                least = size * before
+                weights = [sum(used[:place]) - sum(used[place + 1 :]) for place in range(len(values))]
+            room = list(map(sub, times, used))
             for taken in choices(room, size):
-                ways = factorial(size)
-                for place, number in enumerate(taken):
-                    ways *= comb(room[place], number)
-                if name == RHO:
-                    gain = (
-                        (value - low_x) // unit_x * sum(number * steps_y[place] for place, number in enumerate(taken))
-                    )
-                else:
-                    gain = size * sum(used) + sum(
-                        number * (sum(used[:place]) - sum(used[place + 1 :]))
-                        for place, number in enumerate(taken)
-                        if number
-                    )
-                after = tuple(used[place] + number for place, number in enumerate(taken))
-                following[after] += (packed * ways) << (width * gain)
+                ways = factorial(size) * prod(map(comb, room, taken))
+                gain = least + sum(map(mul, weights, taken))
+                following[tuple(map(add, used, taken))] += (packed * ways) << (width * gain)
         layer = following
     [packed] = layer.values()
     tally, mask, place = {}, (1 << width) - 1, 0

@@ -86,7 +86,7 @@ def _result(
         str(look_up(plain, f"{at}/test/p")) if tested else _ABSENT,
         analysis.spec.inference.sidedness,
         str(look_up(plain, f"{at}/test/method")) if tested else _ABSENT,
-        filed(finding.p_adjusted) if finding.p_adjusted is not None else _ABSENT,
+        str(look_up(plain, f"{at}/finding/p_adjusted")) if finding.p_adjusted is not None else _ABSENT,
         finding.word or "no finding",
     )
 

@@ -116,8 +116,8 @@ def _printed(screening: Screening, name: str, outcome: CheckOutcome, measure: Me
         case "count":
             return numbers.whole(key).text
         case "share":
-            return numbers.share(key).text
+            return numbers.share(key, f"associations/{name}/checks/{outcome.key}/limit").text
         case "percent":
             return numbers.percent(key).text
         case "p":
-            return numbers.p_value(key).text if side == "found" else numbers.as_filed(key).text
+            return numbers.p_value(key).text if side == "found" else numbers.level(key).text

@@ -28,7 +28,7 @@ def finding_sentence(story: Story, name: str) -> Prose:
     expected = result.screened.spec.hypothesis.expected_sign
     deciding = deciding_p(story, name)
     rule = "the adjusted {p} lay {side} alpha, {alpha}" if finding.basis == "family" and _is_adjusted(story) else "{p} lay {side} alpha, {alpha}"
-    alpha = story.numbers.as_filed("inference/alpha")
+    alpha = story.numbers.level("inference/alpha")
     if finding.word == "not shown":
         return prose(
             "By the rule of the plan {what} was not shown: " + rule.replace("{side}", "above") + ".{open}",
@@ -64,7 +64,7 @@ def smallest_of_interest(story: Story, name: str) -> Number | None:
     """Return the smallest size that the plan calls of interest, where it names one."""
     if story.analysis.spec.associations[name].hypothesis.smallest_of_interest is None:
         return None
-    return story.numbers.as_filed(f"inference/smallest_of_interest/{name}")
+    return story.numbers.level(f"inference/smallest_of_interest/{name}")
 
 
 def size_sentence(story: Story, name: str) -> Prose:

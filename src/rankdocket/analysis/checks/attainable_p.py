@@ -2,7 +2,7 @@
 
 from fractions import Fraction
 
-from rankdocket.analysis.check import Check, direction_of, p_measure
+from rankdocket.analysis.check import Check, direction_of, level_measure, p_measure
 from rankdocket.analysis.family import family_size
 from rankdocket.analysis.results import CheckOutcome, Screened
 from rankdocket.references import Description
@@ -13,13 +13,13 @@ from rankdocket.study.spec import StudySpec
 def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
     """Hold the smallest attainable p against alpha, and against alpha shared among the family."""
     alpha = Fraction(spec.inference.alpha)
-    limit = p_measure(spec.inference.alpha)
+    limit = level_measure(spec.inference.alpha)
     if min(screened.x_ties.distinct, screened.y_ties.distinct) < 2:
         return CheckOutcome(CHECK.key, "not examined", limit, None, "no rank correlation exists for these rows")
     smallest = smallest_attainable_p(
         screened.spec.coefficient, screened.x_ties, screened.y_ties, direction_of(screened, spec)
     )
-    found = p_measure(smallest)
+    found = p_measure(smallest, spec.inference.alpha)
     if smallest > alpha:
         # The p is still given: that it could not have been smaller is said beside it.
         return CheckOutcome(CHECK.key, "not met", limit, found, "no result with these rows and ties could reach alpha")

@@ -34,7 +34,8 @@ def drawn_tails(name: CoefficientName, x_codes: Codes, y_codes: Codes, *, observ
     ComputeError
         If there are so many rows that sums of rank products could exceed an int64.
     """
-    order = np.argsort(x_codes, kind="stable")
+    # Sorted by both, so that the draws meet the same pairs whatever order the rows of the file have.
+    order = np.lexsort((y_codes, x_codes))
     x, y = x_codes[order], y_codes[order]
     x_ranks, y_ranks = centred_ranks(x), centred_ranks(y)
     if len(x) ** 3 >= SAFE_SUM:

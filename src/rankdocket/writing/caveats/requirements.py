@@ -22,11 +22,11 @@ def measure(story: Story, name: str, outcome: CheckOutcome, side: str) -> Number
         case "count":
             return story.numbers.whole(key)
         case "share":
-            return story.numbers.share(key)
+            return story.numbers.share(key, address(name, "checks", outcome.key, "limit"))
         case "percent":
             return story.numbers.percent(key)
         case "p":
-            return story.numbers.p_value(key) if side == "found" else story.numbers.as_filed(key)
+            return story.numbers.p_value(key) if side == "found" else story.numbers.level(key)
 
 
 def _find(story: Story) -> tuple[FoundCaveat, ...]:

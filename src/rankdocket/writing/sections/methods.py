@@ -128,7 +128,7 @@ def _sides(story: Story) -> Prose:
     inference = story.analysis.spec.inference
     if not any(isinstance(result.test, RankTest) for result in story.analysis.results.values()):
         return only("")
-    alpha = story.numbers.as_filed("inference/alpha")
+    alpha = story.numbers.level("inference/alpha")
     if inference.sidedness == "two-sided":
         sides = described(TWO_SIDED)
     else:
