@@ -71,7 +71,7 @@ def in_lab(rows: str) -> Invented:
 
 
 CASES = (
-    Case("enough_rows", replace(BASE, requirements=limits(10)), "met", "the plan's number was reached", ("10", "10")),
+    Case("enough_rows", replace(BASE, requirements=limits(10)), "met", "the plan’s number was reached", ("10", "10")),
     Case("enough_rows", replace(BASE, requirements=limits(11)), "not met", FEWER, ("11", "10"), "test"),
     Case(
         "enough_rows",
@@ -88,7 +88,7 @@ CASES = (
         "missing_share",
         replace(GAPS, requirements=limits(missing="0.2")),
         "met",
-        "within the plan's limit",
+        "within the plan’s limit",
         ("0.2", "2/10"),
     ),
     Case(
@@ -122,13 +122,13 @@ CASES = (
     Case("not_constant", replace(BASE, columns={"u": "1 2 3 4", "v": "7 7.0 7 7"}), "not met", CONSTANT, ("2", "1")),
     Case("not_constant", replace(BASE, columns={"u": RISING, "v": NOTHING}), "not examined", NO_ROW, ("2", None)),
     Case(
-        "tie_share", replace(TIED, requirements=limits(tied="0.5")), "met", "within the plan's limit", ("0.5", "5/10")
+        "tie_share", replace(TIED, requirements=limits(tied="0.5")), "met", "within the plan’s limit", ("0.5", "5/10")
     ),
     Case(
         "tie_share",
         replace(TIED, requirements=limits(tied="0.49")),
         "doubtful",
-        "more rows share a value than the plan's limit",
+        "more rows share a value than the plan’s limit",
         ("0.49", "5/10"),
     ),
     Case("tie_share", GONE, "not examined", NO_ROW, ("1", None)),

@@ -1,4 +1,4 @@
-"""What the plan's rule makes of the results: five words, families, and the comparison with alpha on fractions."""
+"""What the plan’s rule makes of the results: five words, families, and the comparison with alpha on fractions."""
 
 from dataclasses import replace
 from decimal import Decimal

@@ -17,7 +17,7 @@ WHY = "an association does not say why"
 SIZE = "no adjective for size without a stated scale"
 PROBABILITY = "p is not the probability of a hypothesis"
 ZERO = "p is never zero"
-PLAN = "a finding is stated in the plan's own words"
+PLAN = "a finding is stated in the plan’s own words"
 ABSOLUTE = "no absolute claims"
 MARKS = "no marks for p-values"
 

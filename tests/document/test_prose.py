@@ -29,7 +29,7 @@ def test_a_digit_in_the_words_is_refused(template: str) -> None:
 
 @pytest.mark.parametrize("word", ["5 rows", "A1"])
 def test_a_digit_in_words_given_to_a_slot_is_refused(word: str) -> None:
-    """Words in a slot are the program's own as well."""
+    """Words in a slot are the program’s own as well."""
     with pytest.raises(ValueError, match="give it an address"):
         prose("{what}", what=word)
 
@@ -62,7 +62,7 @@ def test_parts_are_joined_and_listed() -> None:
 
 
 def test_the_programs_own_words_are_told_from_those_supplied() -> None:
-    """Supplied words and literals are masked; numbers, links and symbols are the program's own."""
+    """Supplied words and literals are masked; numbers, links and symbols are the program’s own."""
     content = Prose(
         (
             "See ",

@@ -26,6 +26,10 @@ ACCOUNT = "quillfeather"
 
 LOCK = ".seal.lock"
 
+SPEC = "study.yaml"
+DATA = "received/rising_trial.csv"
+"""The data file of the first-look study; line 5 holds an ordinary row."""
+
 
 @dataclass(frozen=True, slots=True)
 class Ran:
@@ -151,6 +155,17 @@ def replaced_once(old: str, new: str) -> Callable[[str], str]:
         return text.replace(old, new, 1)
 
     return change
+
+
+def with_line(number: int, change: Callable[[list[str]], list[str]]) -> Callable[[str], str]:
+    """Return a change of the cells of one line (counted from 1) of a table."""
+
+    def change_text(text: str) -> str:
+        lines = text.splitlines()
+        lines[number - 1] = ",".join(change(lines[number - 1].split(",")))
+        return "\n".join(lines) + "\n"
+
+    return change_text
 
 
 def copy_of_program(to: Path) -> Path:

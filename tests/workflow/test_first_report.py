@@ -90,7 +90,7 @@ def test_supplied_words_stand_in_page_and_pdf(issued: Sealed) -> None:
     page = html.unescape((issued.edition / "report.html").read_text(encoding="utf-8"))
     reader = PdfReader(io.BytesIO((issued.edition / "report.pdf").read_bytes()))
     text = _one_line(" ".join(sheet.extract_text() for sheet in reader.pages))
-    for words in ("Harrow Lane Bakehouse", "Do doughs that prove longer give larger loaves?"):
+    for words in ("Harrow Lane Bakehouse", "Do doughs that rise longer give larger loaves?"):
         assert words in page
         assert words in text
 

@@ -11,7 +11,9 @@ import pytest
 
 from rankdocket.register import chain
 from workflow.office import (
+    DATA,
     LOCK,
+    SPEC,
     Ran,
     Sealed,
     command,
@@ -21,39 +23,38 @@ from workflow.office import (
     run,
     snapshot,
     surroundings,
+    with_line,
 )
-
-SPEC = "study.yaml"
-DATA = "received/proving_trial.csv"
 
 FAULTS = [
     (
         SPEC,
-        "  alpha: 0.05",
-        "  aplha: 0.05",
+        replaced_once("  alpha: 0.05", "  aplha: 0.05"),
         'study.yaml:43:3: inference.aplha: "aplha" is not a key of inference. nearest: alpha.',
         15,
     ),
     (
         SPEC,
-        "column: volume_ml",
-        "column: volume_l",
+        replaced_once("column: volume_ml", "column: volume_l"),
         'study.yaml:29:3: variables.volume.column: no column "volume_l"; nearest: volume_ml.',
         6,
     ),
     (
         SPEC,
-        "proving_trial.csv",
-        "provng.csv",
-        "study.yaml:11:3: data.doughs.file: there is no file 'received/provng.csv'.",
+        replaced_once(DATA, "received/risng.csv"),
+        "study.yaml:11:3: data.doughs.file: there is no file 'received/risng.csv'.",
         53,
     ),
-    (DATA, "D06,88,", "D06,many,", 'received/proving_trial.csv:5: row 5, column proving_min: found "many".', 1),
     (
         DATA,
-        "D06,88,2107",
-        "D06,88,2107,7",
-        "received/proving_trial.csv:5: row 5: 4 fields where the names in row 1 give 3;",
+        with_line(5, lambda cells: [cells[0], "many", *cells[2:]]),
+        f'{DATA}:5: row 5, column rising_min: found "many".',
+        1,
+    ),
+    (
+        DATA,
+        with_line(5, lambda cells: [*cells, "7"]),
+        f"{DATA}:5: row 5: 4 fields where the names in row 1 give 3;",
         45,
     ),
 ]
@@ -61,11 +62,11 @@ FAULTS = [
 
 @pytest.mark.parametrize("fault", FAULTS, ids=lambda fault: f"message {fault[-1]}")
 def test_a_fault_of_the_input_is_told_by_place_and_nothing_is_written(
-    first_look: Path, here: Callable[..., Ran], fault: tuple[str, str, str, str, int]
+    first_look: Path, here: Callable[..., Ran], fault: tuple[str, Callable[[str], str], str, int]
 ) -> None:
     """The error names file, line and column, what is wrong and what to write; the study's folder is as it was."""
-    file, old, new, told, number = fault
-    spoiled = replaced_once(old, new)((first_look / file).read_text(encoding="utf-8"))
+    file, change, told, number = fault
+    spoiled = change((first_look / file).read_text(encoding="utf-8"))
     (first_look / file).write_text(spoiled, encoding="utf-8")
     before = snapshot(first_look)
     ran = here("issue", ".", "--reason", "first issue", cwd=first_look)
@@ -87,7 +88,7 @@ def test_all_faults_of_a_spec_come_in_one_go(first_look: Path, here: Callable[..
     fields = [fault["field"] for fault in plain["faults"]]
     assert [field for field in fields if "cleint" in field or field.endswith(("scale", "alpha"))] == [
         "study.cleint",
-        "variables.proving.scale",
+        "variables.rising.scale",
         "inference.alpha",
     ]
     lines = [fault["line"] for fault in plain["faults"]]
@@ -100,7 +101,7 @@ def test_a_data_file_that_may_not_be_read_is_an_input_fault(first_look: Path, he
     (first_look / DATA).mkdir()
     ran = here("issue", ".", "--reason", "first issue", cwd=first_look)
     assert ran.status == 3
-    assert ran.err.startswith("study.yaml:11:3: data.doughs.file: 'received/proving_trial.csv' is a folder.")
+    assert ran.err.startswith("study.yaml:11:3: data.doughs.file: 'received/rising_trial.csv' is a folder.")
     assert sorted(path.name for path in first_look.iterdir()) == ["received", SPEC]
 
 
@@ -139,7 +140,7 @@ def test_changed_data_make_the_next_edition_and_no_number_returns(issued: Sealed
     study = tmp_path / "first-look"
     shutil.copytree(issued.study, study)
     shutil.rmtree(study / "editions" / "1")
-    changed = replaced_once("D06,88,2107", "D06,88,2108")((study / DATA).read_text(encoding="utf-8"))
+    changed = with_line(5, lambda cells: [*cells[:2], "1"])((study / DATA).read_text(encoding="utf-8"))
     (study / DATA).write_text(changed, encoding="utf-8")
     ran = run("issue", ".", "--reason", "a volume was corrected", "--json", cwd=study)
     assert (ran.status, ran.plain["edition"], ran.plain["changed"]) == (0, "2", True)

@@ -11,7 +11,7 @@ import rankdocket
 from rankdocket.analysis.analyse import analyse
 from rankdocket.analysis.plain import analysis_to_plain
 from rankdocket.workflow.study_folder import open_study
-from workflow.office import STUDIES, Ran, copy_study, keys_in, replaced_once, snapshot
+from workflow.office import DATA, STUDIES, Ran, copy_study, keys_in, replaced_once, snapshot
 
 DEMONSTRATIONS = ("first-look", "gasket-creep", "weld-smoke")
 JOINT = {"estimate", "test", "interval", "comparisons", "finding", "worksheet", "coefficient", "tally"}
@@ -126,7 +126,7 @@ def test_a_spec_with_two_kinds_of_fault_tells_the_spec_first(first_look: Path, h
     """Data files are read once the spec is right: a wrong spec is told alone, by screen as by issue."""
     spec = first_look / "study.yaml"
     spec.write_text(replaced_once("scale: measured", "scale: meassured")(spec.read_text("utf-8")), encoding="utf-8")
-    (first_look / "received" / "proving_trial.csv").unlink()
+    (first_look / DATA).unlink()
     screened, issued = here("screen", ".", cwd=first_look), here("issue", ".", "--reason", "x", cwd=first_look)
     assert (screened.status, issued.status) == (3, 3)
     assert screened.err == issued.err

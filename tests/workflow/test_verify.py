@@ -10,7 +10,7 @@ import pytest
 
 from rankdocket.register import chain
 from rankdocket.workflow.verify import verify
-from workflow.office import Ran, Sealed, forge, numbers_in, replaced_once, run
+from workflow.office import DATA, Ran, Sealed, forge, numbers_in, replaced_once, run, with_line
 
 
 @pytest.fixture
@@ -101,7 +101,7 @@ def test_a_changed_digit_in_the_document_is_named(study: Path) -> None:
 @pytest.mark.slow
 def test_a_changed_cell_of_the_data_as_received_is_named_with_all_that_follows(study: Path) -> None:
     """Data altered in the record copy give another worksheet and other sums: the files that differ are named."""
-    forge(study, "1", "received/proving_trial.csv", replaced_once("D06,88,2107", "D06,88,1600"))
+    forge(study, "1", DATA, with_line(5, lambda cells: [*cells[:2], "1"]))
     problems = _problems(study)
     for name in ("analysis.json", "rows.csv", "ranks-A1.csv", "results.csv", "document.json", "report.pdf"):
         assert f"{name}: " in problems

@@ -1,4 +1,4 @@
-"""Printed numbers and what is filed cannot part, and no number stands in the program's own words."""
+"""Printed numbers and what is filed cannot part, and no number stands in the program’s own words."""
 
 from collections.abc import Callable
 from dataclasses import replace

@@ -129,7 +129,7 @@ WORDS = {
     ),
     "two_sided_rule": (
         "A1: the ties make the null lopsided. Counting orderings at least as far from zero gives p = 0.250; doubling "
-        "the smaller tail would give 0.500. The plan's rule is the first."
+        "the smaller tail would give 0.500. The plan’s rule is the first."
     ),
     "test_and_interval": (
         "A1: test and interval point different ways (p = 0.049; interval −0.04 to 0.92). They are built differently; "

@@ -1,4 +1,4 @@
-"""Findings as sentences: no more than the plan's rule made of the rows."""
+"""Findings as sentences: no more than the plan’s rule made of the rows."""
 
 from dataclasses import replace
 from typing import Any
@@ -153,7 +153,7 @@ def test_a_table_says_the_word_itself() -> None:
 
 
 def test_the_p_that_decided_is_the_one_printed() -> None:
-    """The adjusted one of a family member, else the association's own."""
+    """The adjusted one of a family member, else the association’s own."""
     report = study_of_every_finding()
     assert plainly(text_of(deciding_p(report.story, "A3"))) == "p = 0.281"
     assert plainly(text_of(deciding_p(report.story, "A6"))) == "p = 0.116"

@@ -127,7 +127,7 @@ def test_exact_and_drawn_are_told_apart() -> None:
 def test_a_description_ends_in_its_works() -> None:
     """Before the full stop, in brackets, short."""
     assert (
-        "Holm's step-down rule, which keeps the chance of any false finding in the family at or below alpha (Holm 1979)."
+        "Holm’s step-down rule, which keeps the chance of any false finding in the family at or below alpha (Holm 1979)."
         in text(told(BASE.analysed()))
     )
 

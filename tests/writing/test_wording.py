@@ -1,4 +1,4 @@
-"""The program's own words: every literal of the room obeys the wording rules, and a report that does not is not made."""
+"""The program’s own words: every literal of the room obeys the wording rules, and a report that does not is not made."""
 
 import ast
 import re

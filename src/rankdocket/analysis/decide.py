@@ -15,7 +15,7 @@ def decide(
 ) -> Mapping[str, Finding]:
     """Return the finding of every association.
 
-    A family member without a p enters the adjustment as p = 1: it never lowers another's adjusted p.
+    A family member without a p enters the adjustment as p = 1: it never lowers another’s adjusted p.
     """
     family = family_of(spec)
     adjusted = dict(zip(family, adjustment.function(tuple(_p_or_one(results[name]) for name in family)), strict=True))

@@ -73,7 +73,7 @@ def data_to_plain(spec: StudySpec, data: StudyData) -> dict[str, Plain]:
 
 
 def screened_to_plain(screened: Screened, outcomes: tuple[CheckOutcome, ...]) -> dict[str, Plain]:
-    """Return an association's rows and checks: the part of its analysis that shows nothing joint."""
+    """Return an association’s rows and checks: the part of its analysis that shows nothing joint."""
     flow = screened.flow
     return {
         "x": screened.spec.x,

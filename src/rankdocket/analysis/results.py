@@ -37,7 +37,7 @@ class Withheld:
 
 @dataclass(frozen=True, slots=True)
 class LeftOutRow:
-    """A row that the plan leaves out: its line in the file and the plan's reason."""
+    """A row that the plan leaves out: its line in the file and the plan’s reason."""
 
     row: int
     reason: str
@@ -74,7 +74,7 @@ class CompleteRow:
 
 @dataclass(frozen=True, slots=True)
 class Screened:
-    """An association's rows, selected first and ranked second, before anything joint is computed."""
+    """An association’s rows, selected first and ranked second, before anything joint is computed."""
 
     spec: AssociationSpec
     flow: RowFlow
@@ -102,7 +102,7 @@ class CheckOutcome:
     state
         met, doubtful, not met or not examined.
     limit, found
-        The plan's limit and the figure that was held against it, where there are such figures.
+        The plan’s limit and the figure that was held against it, where there are such figures.
     reason
         A sentence part in words, without digits.
     withholds
@@ -121,7 +121,7 @@ class CheckOutcome:
 class Estimate:
     """A coefficient with what a second person needs to recompute it.
 
-    ``squared_differences``, ``corrected`` and ``short_form`` belong to Spearman's rho and are ``None`` for tau-b.
+    ``squared_differences``, ``corrected`` and ``short_form`` belong to Spearman’s rho and are ``None`` for tau-b.
     """
 
     coefficient: Coefficient
@@ -143,7 +143,7 @@ class RankTest:
     p
         The exact value ``count/of``, or (b + 1)/(B + 1) from drawn permutations.
     p_interval
-        For drawn permutations the interval of p at the study's confidence level, else ``None``.
+        For drawn permutations the interval of p at the study’s confidence level, else ``None``.
     """
 
     direction: Direction
@@ -183,14 +183,14 @@ FindingBasis: TypeAlias = Literal["family", "own p-value", "outside the family"]
 
 @dataclass(frozen=True, slots=True)
 class Finding:
-    """What the plan's rule makes of one association.
+    """What the plan’s rule makes of one association.
 
     Attributes
     ----------
     word
         One of the fixed list, or ``None`` for an association outside the family, for which no finding is stated.
     basis
-        Whether the adjusted p of the family decided, the association's own p, or nothing did.
+        Whether the adjusted p of the family decided, the association’s own p, or nothing did.
     p_adjusted
         The adjusted p of a family member whose p is given.
     """

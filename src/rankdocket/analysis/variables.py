@@ -21,7 +21,7 @@ class VariableSummary:
     n
         Values present.
     missing
-        Meaning of a missing code → rows, in the order of the plan's codes; codes that do not occur count 0.
+        Meaning of a missing code → rows, in the order of the plan’s codes; codes that do not occur count 0.
     distinct, largest_tie, tied_rows
         Distinct values, rows of the largest tie group, rows that share their value with another.
     five

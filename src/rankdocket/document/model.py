@@ -67,7 +67,7 @@ Piece: TypeAlias = str | Number | Citation | Link | Supplied | Emphasis
 
 @dataclass(frozen=True, slots=True)
 class Prose:
-    """A run of text; plain ``str`` pieces are the program's own words."""
+    """A run of text; plain ``str`` pieces are the program’s own words."""
 
     pieces: tuple[Piece, ...]
 
@@ -151,7 +151,7 @@ class FigureBlock:
     number
         Printed number.
     kind
-        Which drawing of the renderer's catalogue draws it.
+        Which drawing of the renderer’s catalogue draws it.
     data
         What the drawing shows, as plain data; numbers as decimal text.
     alternative

@@ -62,11 +62,11 @@ class Numbers:
     plain
         The analysis as filed.
     coefficient_decimals, p_value_decimals
-        Decimals of the study's report.
+        Decimals of the study’s report.
     style
         Whether a zero stands before the decimal point of coefficients and p-values.
     alpha
-        The level of the study's decision rule.
+        The level of the study’s decision rule.
     """
 
     plain: Plain

@@ -2,7 +2,7 @@
 
 A template holds words only: a digit in it, a slot without a value, a value without a slot, or a formatting code
 is a mistake of ours and raises at once.  The lint knows the phrases that claim more than a rank correlation
-can; a hit in the program's own words fails the report, a hit in supplied words becomes a caveat.
+can; a hit in the program’s own words fails the report, a hit in supplied words becomes a caveat.
 """
 
 import re
@@ -117,7 +117,7 @@ _RULES: Final[tuple[tuple[str, str], ...]] = (
     (r"\bp(?:-value)? (?:is|was) the probability that\b", "p is not the probability of a hypothesis"),
     (r"\bp\s*=\s*0?\.?0+\b(?!\.\d)", "p is never zero"),
     (r"\bn\.s\.|\b(?:not significant|non-significant|insignificant|statistically significant)\b",
-     "a finding is stated in the plan's own words"),
+     "a finding is stated in the plan’s own words"),
     (r"\b(?:zero error|beyond (?:any )?doubt|without (?:any )?doubt|guarantee[sd]?)\b", "no absolute claims"),
     (r"\d\s*\*{1,3}(?!\*)(?!\s*[\w(])", "no marks for p-values"),
 )
@@ -134,7 +134,7 @@ def lint(text: str) -> tuple[Hit, ...]:
 
 
 def generated_text(content: Prose) -> str:
-    """Return the program's own words; supplied words and literals are replaced by a neutral mark."""
+    """Return the program’s own words; supplied words and literals are replaced by a neutral mark."""
     return "".join(
         "…" if isinstance(piece, Supplied) or (isinstance(piece, Emphasis) and piece.kind == "code")
         else piece if isinstance(piece, str) else piece.text
@@ -143,7 +143,7 @@ def generated_text(content: Prose) -> str:
 
 
 def lint_document(document: Document) -> tuple[Hit, ...]:
-    """Return the forbidden phrases in the program's own sentences; a report with any must not be issued."""
+    """Return the forbidden phrases in the program’s own sentences; a report with any must not be issued."""
     return tuple(hit for content in all_prose(document) for hit in lint(generated_text(content)))
 
 

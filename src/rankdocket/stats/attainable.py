@@ -32,7 +32,7 @@ def smallest_attainable_p(name: CoefficientName, x: TieGroups, y: TieGroups, dir
     """Return the smallest exact p-value that data with these tie groups can give, above 0 to 1.
 
     Exactly one cross-table of the values gives the largest numerator, and one the smallest; ∏t! of x times ∏t!
-    of y over ∏n! of the table's cells permutations lead to it.
+    of y over ∏n! of the table’s cells permutations lead to it.
     """
     parallel, opposed = _share_of(x, x.codes(), y.codes()), _share_of(x, x.codes(), y.codes()[::-1])
     match direction:

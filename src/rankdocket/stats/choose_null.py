@@ -61,12 +61,12 @@ def choose_null(name: CoefficientName, x: TieGroups, y: TieGroups, by: PBy) -> N
     if forecast.operations > OPERATIONS_BUDGET or forecast.bytes > BYTES_BUDGET:
         return NullChoice(
             "drawn permutations",
-            "A complete count was not attempted: its forecast exceeded the program's limits of time and memory.",
+            "A complete count was not attempted: its forecast exceeded the program’s limits of time and memory.",
             forecast,
         )
     return NullChoice(
         "exact, conditional on the ties" if x.has_ties or y.has_ties else "exact, no ties",
-        "A complete count was made: its forecast lay within the program's limits of time and memory.",
+        "A complete count was made: its forecast lay within the program’s limits of time and memory.",
         forecast,
     )
 

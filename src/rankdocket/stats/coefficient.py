@@ -12,7 +12,7 @@ FILED_DIGITS: Final = 12
 """Significant digits with which a coefficient is filed."""
 
 FLOAT_DIGITS: Final = 40
-"""Digits from which the float is taken: far beyond a double's 17, so that it is the nearest one."""
+"""Digits from which the float is taken: far beyond a double’s 17, so that it is the nearest one."""
 
 
 @dataclass(frozen=True, slots=True)

@@ -12,7 +12,7 @@ from rankdocket.vocabulary import Direction
 
 
 def t_value_p(coefficient: Coefficient, direction: Direction) -> float | None:
-    """Return the p-value of r√((n − 2)/(1 − r²)) taken as Student's t with n − 2 degrees of freedom.
+    """Return the p-value of r√((n − 2)/(1 − r²)) taken as Student’s t with n − 2 degrees of freedom.
 
     ``None`` when the coefficient is undefined or there are fewer than three rows.  1 − r² is formed from the
     integers, so that nothing is lost near ±1.

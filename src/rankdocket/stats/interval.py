@@ -40,7 +40,7 @@ class Interval:
     method
         Key of the rule that made it.
     cap_binds
-        Whether the coefficient was so near to ±1 that the rule's cap replaced it.
+        Whether the coefficient was so near to ±1 that the rule’s cap replaced it.
     """
 
     low: float

@@ -52,7 +52,7 @@ class TieCorrectedForm:
 
     @property
     def decimal_text(self) -> str:
-        """The form's value with twelve significant digits, half to even; both terms must be above 0."""
+        """The form’s value with twelve significant digits, half to even; both terms must be above 0."""
         return root_ratio_text(self.numerator, 4 * self.x_term * self.y_term, FILED_DIGITS)
 
 

@@ -1,4 +1,4 @@
-"""Citations: a rule's works in brackets, and the list of everything a document cites."""
+"""Citations: a rule’s works in brackets, and the list of everything a document cites."""
 
 from collections.abc import Mapping
 

@@ -1,4 +1,4 @@
-"""What each figure shows, as plain data, with its alternative text; how it looks is the renderer's business."""
+"""What each figure shows, as plain data, with its alternative text; how it looks is the renderer’s business."""
 
 from collections import Counter
 

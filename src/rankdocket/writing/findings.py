@@ -1,4 +1,4 @@
-"""Findings in words: what the plan's rule made of an association, claiming no more than the evidence."""
+"""Findings in words: what the plan’s rule made of an association, claiming no more than the evidence."""
 
 from rankdocket.analysis.results import Estimate, Finding, NotEstimable, RankTest, Withheld
 from rankdocket.document.model import Number, Prose
@@ -15,7 +15,7 @@ def finding_word(finding: Finding) -> str:
 
 
 def finding_sentence(story: Story, name: str) -> Prose:
-    """Return what the plan's rule makes of an association, as one sentence."""
+    """Return what the plan’s rule makes of an association, as one sentence."""
     result, finding = story.analysis.results[name], story.analysis.findings[name]
     if isinstance(result.estimate, NotEstimable):
         return prose("No rank correlation could be computed: {reason}.", reason=result.estimate.reason)
@@ -53,7 +53,7 @@ def finding_sentence(story: Story, name: str) -> Prose:
 
 
 def deciding_p(story: Story, name: str) -> Prose:
-    """Return the p-value that decided: the adjusted one of a family member, else the association's own."""
+    """Return the p-value that decided: the adjusted one of a family member, else the association’s own."""
     key = address(name, "finding", "p_adjusted")
     if story.analysis.findings[name].p_adjusted is None:
         key = address(name, "test", "p")

@@ -18,12 +18,12 @@ MOST_PRINTED: Final = 10**15
 
 
 def label(variable: VariableSpec) -> Supplied:
-    """Return a variable's label as supplied, to be read inside a sentence."""
+    """Return a variable’s label as supplied, to be read inside a sentence."""
     return Supplied(variable.label)
 
 
 def label_head(variable: VariableSpec) -> Supplied:
-    """Return a variable's label at the head of a cell, a title or an axis."""
+    """Return a variable’s label at the head of a cell, a title or an axis."""
     return Supplied(capitalised(variable.label))
 
 
@@ -46,7 +46,7 @@ def variables_of(story: Story, association: AssociationSpec) -> tuple[VariableSp
 
 
 def pointer(name: str) -> Link:
-    """Return a link to an association's spread."""
+    """Return a link to an association’s spread."""
     return Link(f"association-{name}", name)
 
 
@@ -61,7 +61,7 @@ def coefficient_symbol(association: AssociationSpec) -> str:
 
 
 def address(name: str, *steps: str) -> str:
-    """Return the address of something in an association's part of analysis.json."""
+    """Return the address of something in an association’s part of analysis.json."""
     return "/".join(("associations", name, *steps))
 
 

@@ -38,11 +38,11 @@ class IssueFacts:
     spec_text
         The spec as used, every default written out.
     spec_digest, analysis_digest
-        SHA-256 of the spec's bytes as filed and of analysis.json.
+        SHA-256 of the spec’s bytes as filed and of analysis.json.
     head_before
-        Digest of the register's last line before this edition's.
+        Digest of the register’s last line before this edition’s.
     program_digest
-        SHA-256 over the program's own files.
+        SHA-256 over the program’s own files.
     self_test
         Sentence on the cases recomputed before this edition was sealed.
     """

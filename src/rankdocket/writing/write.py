@@ -1,4 +1,4 @@
-"""Analysis to document: the report's table of contents."""
+"""Analysis to document: the report’s table of contents."""
 
 from collections.abc import Mapping
 from dataclasses import replace
@@ -23,7 +23,7 @@ def write(analysis: Analysis, plain: Mapping[str, Plain], facts: IssueFacts) -> 
     Raises
     ------
     RenderError
-        If a sentence of the program's own breaks the wording rules.
+        If a sentence of the program’s own breaks the wording rules.
     """
     story = tell(analysis, plain, facts)
     document = Document(
@@ -61,7 +61,7 @@ def refuse_forbidden_words(document: Document) -> None:
     hits = lint_document(document)
     if hits:
         listing = "; ".join(f"“{hit.phrase}” ({hit.rule})" for hit in hits)
-        raise RenderError(f"the report's own words break its wording rules: {listing}. Nothing was sealed.")
+        raise RenderError(f"the report’s own words break its wording rules: {listing}. Nothing was sealed.")
 
 
 def _with_references(document: Document) -> Document:

@@ -10,7 +10,7 @@ def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
     """Hold the number of complete rows against the fewest that the plan accepts."""
     found, limit = screened.flow.complete, spec.requirements.fewest_complete_rows
     if found >= limit:
-        return CheckOutcome(CHECK.key, "met", count(limit), count(found), "the plan's number was reached")
+        return CheckOutcome(CHECK.key, "met", count(limit), count(found), "the plan’s number was reached")
     return CheckOutcome(
         CHECK.key, "not met", count(limit), count(found), "fewer complete rows than the plan asks for", withheld_by(spec)
     )
@@ -19,7 +19,7 @@ def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
 CHECK = Check(
     key="enough_rows",
     label="Enough complete rows",
-    demand=Description("The complete rows of each association were counted and held against the plan's smallest number."),
+    demand=Description("The complete rows of each association were counted and held against the plan’s smallest number."),
     joint=False,
     examine=examine,
 )

@@ -8,7 +8,7 @@ from rankdocket.vocabulary import NOT_APPLICABLE
 
 
 def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
-    """Read the plan's answers about repeated rows and time order; silence is not an answer."""
+    """Read the plan’s answers about repeated rows and time order; silence is not an answer."""
     del screened  # a fact of the plan, the same for every association
     rows = spec.rows
     if rows.declared_independent:

@@ -10,7 +10,7 @@ from rankdocket.study.spec import StudySpec
 
 
 def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
-    """Hold the share of incomplete rows, among rows not left out by the plan, against the plan's limit."""
+    """Hold the share of incomplete rows, among rows not left out by the plan, against the plan’s limit."""
     flow, limit = screened.flow, spec.requirements.most_missing
     incomplete = flow.missing_x + flow.missing_y + flow.missing_both
     considered = incomplete + flow.complete
@@ -18,7 +18,7 @@ def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
         return CheckOutcome(CHECK.key, "not examined", limit_share(limit), None, "no row was left to look at")
     found = share(incomplete, considered)
     if Fraction(incomplete, considered) <= Fraction(Decimal(limit)):
-        return CheckOutcome(CHECK.key, "met", limit_share(limit), found, "within the plan's limit")
+        return CheckOutcome(CHECK.key, "met", limit_share(limit), found, "within the plan’s limit")
     return CheckOutcome(
         CHECK.key, "not met", limit_share(limit), found, "more rows lack a value than the plan allows", withheld_by(spec)
     )
@@ -29,7 +29,7 @@ CHECK = Check(
     label="Share of rows lacking a value",
     demand=Description(
         "The share of rows that lacked a value in either variable, rows left out by the plan apart, was held against "
-        "the plan's limit."
+        "the plan’s limit."
     ),
     joint=False,
     examine=examine,

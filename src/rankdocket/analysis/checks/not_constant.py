@@ -8,7 +8,7 @@ from rankdocket.study.spec import StudySpec
 
 def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
     """Count the distinct values of the variable that has fewer of them."""
-    del spec  # the requirement has no limit of the plan's
+    del spec  # the requirement has no limit of the plan’s
     if not screened.rows:
         return CheckOutcome(CHECK.key, "not examined", count(2), None, "no complete row was left to look at")
     fewest = min(screened.x_ties.distinct, screened.y_ties.distinct)

@@ -22,7 +22,7 @@ OPPOSED: Final = 0.3
 
 def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
     """Compare the direction in the lower and in the upper half of x."""
-    del spec  # the look has no limit of the plan's
+    del spec  # the look has no limit of the plan’s
     middle = len(screened.rows) + 1
     # Tied rows stay together: a tie group cut at the middle would make the outcome depend on the order of the rows.
     lower = [row for row in screened.rows if row.x_doubled_rank < middle]

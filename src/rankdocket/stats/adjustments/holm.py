@@ -1,4 +1,4 @@
-"""Holm's step-down adjustment."""
+"""Holm’s step-down adjustment."""
 
 from fractions import Fraction
 from typing import Final
@@ -24,7 +24,7 @@ HOLM: Final = AdjustmentRule(
     "Holm",
     holm,
     Description(
-        "The p-values of the {family} associations of the family were adjusted by Holm's step-down rule, which keeps "
+        "The p-values of the {family} associations of the family were adjusted by Holm’s step-down rule, which keeps "
         "the chance of any false finding in the family at or below alpha.",
         ("holm1979",),
     ),

@@ -27,7 +27,7 @@ from rankdocket.stats.ranks import TieGroups, centred_ranks, exact_dot
 
 
 def rho_null(x: TieGroups, y: TieGroups) -> ExactNull:
-    """Return the null of rho's numerator for variables with these tie groups; both have the same n."""
+    """Return the null of rho’s numerator for variables with these tie groups; both have the same n."""
     dealt, rows = fewer_states_first(x, y)
     row_ranks, dealt_ranks = centred_ranks(rows.codes()), np.unique(centred_ranks(dealt.codes()))
     row_step, dealt_step = _step(np.unique(row_ranks).tolist()), _step(dealt_ranks.tolist())

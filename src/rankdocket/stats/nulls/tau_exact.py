@@ -1,4 +1,4 @@
-"""The exact null of Kendall's concordant less discordant pairs, with or without ties.
+"""The exact null of Kendall’s concordant less discordant pairs, with or without ties.
 
 With ties in one variable at most, the discordant pairs of the distinct arrangements have a generating function
 in closed form.  With ties in both, the rows are taken one tie group at a time.

@@ -132,7 +132,7 @@ def _conventions(story: Story) -> tuple[FoundCaveat, ...]:
                     name,
                     prose(
                         "{name}: the ties make the null lopsided. Counting orderings at least as far from zero gives "
-                        "{p}; doubling the smaller tail would give {doubled}. The plan's rule is the first.",
+                        "{p}; doubling the smaller tail would give {doubled}. The plan’s rule is the first.",
                         name=pointer(name),
                         p=p_equals(story, address(name, "test", "p")),
                         doubled=story.numbers.p_value(address(name, "comparisons", "doubled_p")),
