@@ -303,3 +303,19 @@ def test_a_p_value_is_rounded_once(value: str, hundredths: int) -> None:
 def test_a_comparison_has_one_decimal_more_and_is_never_0(value: str, text: str) -> None:
     """The t value of a perfect order gives a p of 0; no p is printed as 0."""
     assert numbers(value).comparison_p("v").text == text
+
+
+@pytest.mark.parametrize(
+    ("value", "text"),
+    [
+        ("0.000793650793651", "0.0008"),
+        ("0.0238095238095", "0.024"),
+        ("0.00000193", "0.000002"),
+        ("0.0000000193", f"<{NARROW_SPACE}0.000001"),
+        ("0.05", "0.05 (exactly)"),
+        ("0.0833333333333", "0.083"),
+    ],
+)
+def test_the_smallest_attainable_p_is_printed_down_to_a_millionth(value: str, text: str) -> None:
+    """Whoever plans a sample wants to see how far below alpha it could reach, not only that it is small."""
+    assert numbers(value).attainable_p("v").text == text

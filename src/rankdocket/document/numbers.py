@@ -20,6 +20,9 @@ NARROW_SPACE: Final = "\u202f"
 MOST_DECIMALS: Final = 15
 """A filed value has 12 significant digits; more decimals than this never separate two of them in print."""
 
+MOST_SMALL_DECIMALS: Final = 6
+"""Decimals of a smallest attainable p: beyond them it is told apart from nobody's alpha."""
+
 NEAR_ONE: Final = Decimal("0.95")
 """From here on a coefficient gets one more decimal (JCGM 100:2008, 7.2.6: three digits near unity)."""
 
@@ -156,6 +159,20 @@ class Numbers:
         places = self.p_value_decimals
         while places < MOST_DECIMALS and self._misleads(_rounded(value, places), value):
             places += 1
+        return Number(key, exact, self._styled(_rounded(value, places)))
+
+    def attainable_p(self, key: str) -> Number:
+        """Return the smallest p that a sample allows: as any p, but down to a millionth with its first digit."""
+        exact = self._exact(key)
+        value = Decimal(exact)
+        if value >= Decimal(1).scaleb(-self.p_value_decimals) or value == self.alpha:
+            return self.p_value(key)
+        places = min(-value.adjusted(), MOST_SMALL_DECIMALS)
+        while places < MOST_DECIMALS and _rounded(value, places) >= self.alpha > value:
+            places += 1
+        smallest = Decimal(1).scaleb(-places)
+        if value < smallest:
+            return Number(key, exact, f"<{NARROW_SPACE}{self._styled(smallest)}")
         return Number(key, exact, self._styled(_rounded(value, places)))
 
     def comparison_p(self, key: str) -> Number:

@@ -120,4 +120,4 @@ def _printed(screening: Screening, name: str, outcome: CheckOutcome, measure: Me
         case "percent":
             return numbers.percent(key).text
         case "p":
-            return numbers.p_value(key).text if side == "found" else numbers.level(key).text
+            return numbers.attainable_p(key).text if side == "found" else numbers.level(key).text

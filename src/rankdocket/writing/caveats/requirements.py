@@ -26,7 +26,7 @@ def measure(story: Story, name: str, outcome: CheckOutcome, side: str) -> Number
         case "percent":
             return story.numbers.percent(key)
         case "p":
-            return story.numbers.p_value(key) if side == "found" else story.numbers.level(key)
+            return story.numbers.attainable_p(key) if side == "found" else story.numbers.level(key)
 
 
 def _find(story: Story) -> tuple[FoundCaveat, ...]:

@@ -1,5 +1,7 @@
 """Section 6: one master table, planned against found, then one spread an association."""
 
+from typing import Literal
+
 from rankdocket.analysis.results import AssociationAnalysis, Estimate, RankTest
 from rankdocket.document.model import Block, Column, FieldList, Link, Paragraph, Prose, Section, Supplied, TableBlock
 from rankdocket.document.prose import joined, only, prose
@@ -232,7 +234,7 @@ def _numbers(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
     rows.append((result.screened.spec.coefficient, estimate_with_interval(story, name)))
     if isinstance(result.test, RankTest):
         rows += [
-            ("Null", prose("{method}; {why}", method=result.test.tails.method, why=result.test.choice.reason)),
+            ("Null", prose("{method}. {why}", method=result.test.tails.method.capitalize(), why=result.test.choice.reason)),
             ("Test", p_with_count(story, name)),
             (
                 "Both tails",
@@ -258,21 +260,31 @@ def _numbers(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
     else:
         rows.append(("Test", prose("withheld: {reason}", reason=result.test.reason)))
     if result.smallest_attainable_p is not None:
-        rows.append(("Smallest attainable p", only(numbers.p_value(address(name, "smallest_attainable_p")))))
+        rows.append(("Smallest attainable p", only(numbers.attainable_p(address(name, "smallest_attainable_p")))))
     if story.analysis.findings[name].p_adjusted is not None:
         rows.append(("p, adjusted", _adjusted(story, name)))
     rows.append(("Finding", only(finding_word(story.analysis.findings[name]))))
     return tuple(rows)
 
 
-def _ties(story: Story, name: str, side: str) -> Prose:
-    numbers = story.numbers
+def _ties(story: Story, name: str, side: Literal["ties_x", "ties_y"]) -> Prose:
+    numbers, result = story.numbers, story.analysis.results[name]
+    ties = result.screened.x_ties if side == "ties_x" else result.screened.y_ties
+    distinct = numbers.whole(address(name, side, "distinct"))
+    if not ties.groups:
+        return prose("none; {distinct} distinct values", distinct=distinct)
+    template = (
+        "{tied} of rows, in {groups} tie group; {distinct} distinct values"
+        if ties.groups == 1
+        else "{tied} of rows, in {groups} tie groups, the largest of {largest}; {distinct} distinct values"
+    )
+    largest = {} if ties.groups == 1 else {"largest": numbers.whole(address(name, side, "largest"))}
     return prose(
-        "{tied} of rows in {groups} tie groups, the largest of {largest}; {distinct} distinct values",
+        template,
         tied=numbers.share(address(name, side, "share")),
         groups=numbers.whole(address(name, side, "groups")),
-        largest=numbers.whole(address(name, side, "largest")),
-        distinct=numbers.whole(address(name, side, "distinct")),
+        distinct=distinct,
+        **largest,
     )
 
 
