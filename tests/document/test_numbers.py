@@ -117,7 +117,7 @@ def test_a_share_has_decimals_from_a_hundred_rows_on(value: str, text: str) -> N
 
 
 def test_a_share_that_differs_from_its_limit_does_not_read_as_equal_to_it() -> None:
-    """"Found 20%, limit 20%, not met" would look like a mistake."""
+    """ "Found 20%, limit 20%, not met" would look like a mistake."""
     made = Numbers({"found": "10/49", "limit": "0.20"}, 2, 3, "leading zero", Decimal("0.05"))
     assert made.share("found", "limit").text == "20.4%"
 

@@ -42,7 +42,9 @@ def first_look() -> str:
     """Return 12 trial doughs: rising time in minutes, loaf volume in millilitres."""
     draw = random.Random(FIRST_LOOK_SEED)
     times = sorted(draw.sample(range(35, 130), 12))
-    rows = [(f"D{place:02d}", time, round(1450 + 5.5 * time + draw.gauss(0, 90))) for place, time in enumerate(times, 1)]
+    rows = [
+        (f"D{place:02d}", time, round(1450 + 5.5 * time + draw.gauss(0, 90))) for place, time in enumerate(times, 1)
+    ]
     draw.shuffle(rows)
     return text_of(("dough", "rising_min", "volume_ml"), rows, ",")
 

@@ -86,9 +86,7 @@ def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnaly
             screened, checks, estimate, estimate, NoInterval(estimate.reason), Comparisons(None, None, None), smallest
         )
     test = _test(screened, spec, checks, estimate.coefficient)
-    interval = interval_of(
-        IntervalQuestion(estimate.coefficient, x, y, spec.inference.confidence_level, direction)
-    )
+    interval = interval_of(IntervalQuestion(estimate.coefficient, x, y, spec.inference.confidence_level, direction))
     comparisons = Comparisons(
         t_value_p=t_value_p(estimate.coefficient, direction)
         if screened.spec.coefficient == "Spearman rho" and isinstance(test, RankTest)
@@ -114,9 +112,7 @@ def require_seed(spec: StudySpec, screened: dict[str, Screened]) -> None:
     if spec.inference.p_value.seed is not None:
         return
     drawn = [
-        name
-        for name, rows in screened.items()
-        if _will_be_tested(rows, spec) and null_choice(rows, spec).needs_draws
+        name for name, rows in screened.items() if _will_be_tested(rows, spec) and null_choice(rows, spec).needs_draws
     ]
     if drawn:
         raise InputError(
@@ -152,7 +148,13 @@ def _estimate(
         return NotEstimable("fewer than three complete rows")
     constant = [ties.distinct < 2 for ties in (screened.x_ties, screened.y_ties)]
     if any(constant):
-        which = "both variables have" if all(constant) else "the first variable has" if constant[0] else "the second variable has"
+        which = (
+            "both variables have"
+            if all(constant)
+            else "the first variable has"
+            if constant[0]
+            else "the second variable has"
+        )
         return NotEstimable(f"{which} one value in all complete rows")
     for outcome in checks:
         if outcome.withholds == "all":

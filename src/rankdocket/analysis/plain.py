@@ -44,7 +44,8 @@ def analysis_to_plain(analysis: Analysis) -> dict[str, Plain]:
             "family_size": len(analysis.family),
         },
         "associations": {
-            name: _association(result, analysis.findings[name], analysis.spec.inference.alpha) for name, result in analysis.results.items()
+            name: _association(result, analysis.findings[name], analysis.spec.inference.alpha)
+            for name, result in analysis.results.items()
         },
         "tally": {
             "associations": len(analysis.results),
@@ -66,9 +67,7 @@ def data_to_plain(spec: StudySpec, data: StudyData) -> dict[str, Plain]:
             "if_not_met": spec.requirements.if_not_met,
         },
         "tables": {name: _table(table) for name, table in data.tables.items()},
-        "variables": {
-            name: _variable(summarise(variable, spec, data)) for name, variable in data.variables.items()
-        },
+        "variables": {name: _variable(summarise(variable, spec, data)) for name, variable in data.variables.items()},
     }
 
 

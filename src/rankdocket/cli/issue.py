@@ -18,7 +18,9 @@ from rankdocket.cli.output import Answer, Voice, answer, progress, voiced
 @click.option("--draft", is_flag=True, help="Seal a lettered draft, marked on every page, instead of an edition.")
 @click.option("--by", "actor", metavar="NAME", help="Who issues it, as claimed (default: the account's name).")
 @voiced
-def issue_command(study: str, reason: str, draft: bool, actor: str | None, as_json: bool, quiet: bool, debug: bool) -> int:
+def issue_command(
+    study: str, reason: str, draft: bool, actor: str | None, as_json: bool, quiet: bool, debug: bool
+) -> int:
     """Compute STUDY (its folder or its spec) and seal the next numbered edition of it, whole or not at all.
 
     Unchanged inputs write nothing and say so. Print the head digest somewhere that is not in your own hands: the

@@ -130,7 +130,9 @@ def _usage_words(error: click.UsageError) -> str:
             words = error.format_message()
             if words.startswith("No such command"):
                 given = words.split("'")[1]
-                known = list(error.ctx.command.commands) if error.ctx and isinstance(error.ctx.command, click.Group) else []
+                known = (
+                    list(error.ctx.command.commands) if error.ctx and isinstance(error.ctx.command, click.Group) else []
+                )
                 return f"there is no command {given}.{_nearest(given, known)}"
             if "unexpected extra argument" in words:
                 return "there is one word too many."

@@ -34,9 +34,14 @@ def _verify(study: str, edition: str | None, voice: Voice) -> Answer:
 
     found = verify(study, edition=edition, progress=progress(voice))
     if found.agrees:
-        lines = [f"Everything agrees ({found.numbers} numbers, {found.files} files).", f"Edition {found.edition}: {found.grade}."]
+        lines = [
+            f"Everything agrees ({found.numbers} numbers, {found.files} files).",
+            f"Edition {found.edition}: {found.grade}.",
+        ]
     else:
-        lines = [f"{len(found.problems)} things in edition {found.edition} do not agree ({found.numbers} numbers, {found.files} files looked at):"]
+        lines = [
+            f"{len(found.problems)} things in edition {found.edition} do not agree ({found.numbers} numbers, {found.files} files looked at):"
+        ]
         lines += [f"  {number}. {problem}" for number, problem in enumerate(found.problems, start=1)]
     lines += list(found.remarks)
     plain: dict[str, Plain] = {

@@ -203,9 +203,7 @@ class SignatureBlock:
     lines: tuple[SignatureLine, ...]
 
 
-Block: TypeAlias = (
-    Paragraph | Items | TableBlock | FieldList | FigureBlock | CaveatBlock | Verbatim | SignatureBlock
-)
+Block: TypeAlias = Paragraph | Items | TableBlock | FieldList | FigureBlock | CaveatBlock | Verbatim | SignatureBlock
 
 
 @dataclass(frozen=True, slots=True)

@@ -110,14 +110,20 @@ _RULES: Final[tuple[tuple[str, str], ...]] = (
     (r"\b(?:marginally|borderline|nearly|almost|highly) significant\b", "a p-value has no degrees"),
     (r"\bmarginally\b", "a p-value has no degrees"),
     (r"\b(?:prov(?:es?|ed|en)|confirm(?:s|ed|ing)?)\b", "a sample neither proves nor confirms"),
-    (r"\b(?:caus(?:es?|ed|al|ing)|leads? to|led to|driv(?:es?|en|ing)|effects? of|due to)\b",
-     "an association does not say why"),
-    (r"\b(?:strong|strongly|weak|weakly|moderate|moderately) (?:\w+ )?(?:correlat|associat|relation)\w*",
-     "no adjective for size without a stated scale"),
+    (
+        r"\b(?:caus(?:es?|ed|al|ing)|leads? to|led to|driv(?:es?|en|ing)|effects? of|due to)\b",
+        "an association does not say why",
+    ),
+    (
+        r"\b(?:strong|strongly|weak|weakly|moderate|moderately) (?:\w+ )?(?:correlat|associat|relation)\w*",
+        "no adjective for size without a stated scale",
+    ),
     (r"\bp(?:-value)? (?:is|was) the probability that\b", "p is not the probability of a hypothesis"),
     (r"\bp\s*=\s*0?\.?0+\b(?!\.\d)", "p is never zero"),
-    (r"\bn\.s\.|\b(?:not significant|non-significant|insignificant|statistically significant)\b",
-     "a finding is stated in the plan’s own words"),
+    (
+        r"\bn\.s\.|\b(?:not significant|non-significant|insignificant|statistically significant)\b",
+        "a finding is stated in the plan’s own words",
+    ),
     (r"\b(?:zero error|beyond (?:any )?doubt|without (?:any )?doubt|guarantee[sd]?)\b", "no absolute claims"),
     (r"\d\s*\*{1,3}(?!\*)(?!\s*[\w(])", "no marks for p-values"),
 )
@@ -136,8 +142,11 @@ def lint(text: str) -> tuple[Hit, ...]:
 def generated_text(content: Prose) -> str:
     """Return the program’s own words; supplied words and literals are replaced by a neutral mark."""
     return "".join(
-        "…" if isinstance(piece, Supplied) or (isinstance(piece, Emphasis) and piece.kind == "code")
-        else piece if isinstance(piece, str) else piece.text
+        "…"
+        if isinstance(piece, Supplied) or (isinstance(piece, Emphasis) and piece.kind == "code")
+        else piece
+        if isinstance(piece, str)
+        else piece.text
         for piece in content.pieces
     )
 

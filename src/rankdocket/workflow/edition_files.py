@@ -153,7 +153,9 @@ def _versions(issue: Issue) -> bytes:
     return readable_bytes(
         {
             "schema": VERSIONS_SCHEMA,
-            "components": [{"what": item.what, "version": item.version, "role": item.role} for item in issue.ingredients],
+            "components": [
+                {"what": item.what, "version": item.version, "role": item.role} for item in issue.ingredients
+            ],
             "program_digest": issue.program_digest,
             "self_test": {"outcome": issue.self_test, "cases": issue.self_test_cases},
         }

@@ -52,7 +52,9 @@ class Issued:
     pages: int
 
 
-def issue(path: str, *, reason: str, draft: bool = False, actor: str | None = None, progress: Progress = lambda _: None) -> Issued:
+def issue(
+    path: str, *, reason: str, draft: bool = False, actor: str | None = None, progress: Progress = lambda _: None
+) -> Issued:
     """Compute the study at ``path`` and seal the next edition, or draft, of it.
 
     Parameters
@@ -103,7 +105,14 @@ def issue(path: str, *, reason: str, draft: bool = False, actor: str | None = No
     sealed = seal(study.folder, draft, build)
     if sealed is None:
         last = last_sealed(chain.read(register_of(study.folder)), draft)
-        return Issued(False, _edition(last), study.folder / "editions" / _edition(last), chain.head(register_of(study.folder)), {}, 0)
+        return Issued(
+            False,
+            _edition(last),
+            study.folder / "editions" / _edition(last),
+            chain.head(register_of(study.folder)),
+            {},
+            0,
+        )
     return _issued(sealed, made[-1])
 
 

@@ -66,9 +66,7 @@ def _results(analysis: Analysis, plain: Mapping[str, Plain]) -> bytes:
     return _csv(head, (_result(name, result, analysis, plain) for name, result in analysis.results.items()))
 
 
-def _result(
-    name: str, result: AssociationAnalysis, analysis: Analysis, plain: Mapping[str, Plain]
-) -> tuple[str, ...]:
+def _result(name: str, result: AssociationAnalysis, analysis: Analysis, plain: Mapping[str, Plain]) -> tuple[str, ...]:
     at = f"associations/{name}"
     spec, finding = result.screened.spec, analysis.findings[name]
     interval = result.interval if isinstance(result.interval, Interval) else None
@@ -109,4 +107,3 @@ def _defused(cell: str) -> str:
     except InvalidOperation:
         return f"'{cell}"
     return cell
-

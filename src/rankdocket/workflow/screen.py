@@ -55,7 +55,10 @@ def screen(path: str) -> Screening:
     for name, rows in screened.items():
         associations[name] = screened_to_plain(rows, outcomes[name])
         if min(rows.x_ties.distinct, rows.y_ties.distinct) > 1:
-            associations[name] = {**screened_to_plain(rows, outcomes[name]), "null": null_choice(rows, study.spec).method}
+            associations[name] = {
+                **screened_to_plain(rows, outcomes[name]),
+                "null": null_choice(rows, study.spec).method,
+            }
     plain: dict[str, Plain] = {
         "schema": "urn:rankdocket:screening:1",
         **data_to_plain(study.spec, study.data),

@@ -119,7 +119,10 @@ def _text(data: bytes, path: str) -> str:
 
 def _unreadable(place: Place, field: str, path: str, error: OSError) -> Fault:
     if isinstance(error, FileNotFoundError):
-        what, remedy = f"there is no file {path!r}.", "Paths are relative to the folder of the spec. Nothing was computed."
+        what, remedy = (
+            f"there is no file {path!r}.",
+            "Paths are relative to the folder of the spec. Nothing was computed.",
+        )
     elif isinstance(error, IsADirectoryError):
         what, remedy = f"{path!r} is a folder.", "Name a file in it. Nothing was computed."
     else:

@@ -84,7 +84,9 @@ def verify(path: str, *, edition: str | None = None, progress: Progress = lambda
     if line is None and not problems:
         problems.append(f"register: no line says that {name.folder} was sealed.")
     if line is not None and sha256(filed.get(manifest.SUMS_FILE, b"")) != line.event.details["sums"]:
-        problems.append(f"register: the digest of SHA256SUMS of {name.folder} is not the one filed in line {line.sequence}.")
+        problems.append(
+            f"register: the digest of SHA256SUMS of {name.folder} is not the one filed in line {line.sequence}."
+        )
     if line is None:
         return Verification(name.folder, "different", 0, len(filed), tuple(problems), ())
     try:
@@ -108,7 +110,9 @@ def _chosen(folder: Path, edition: str | None) -> EditionName:
         return wanted
     issued = [name for name in names if not name.is_draft] or list(names)
     if not issued:
-        raise RegisterError(f'{folder}: nothing has been issued. Write: rankdocket issue {folder} --reason "first issue"')
+        raise RegisterError(
+            f'{folder}: nothing has been issued. Write: rankdocket issue {folder} --reason "first issue"'
+        )
     return issued[-1]
 
 
@@ -228,4 +232,3 @@ def _printed(node: object) -> dict[str, set[str]]:
         elif isinstance(here, list):
             stack.extend(here)
     return found
-

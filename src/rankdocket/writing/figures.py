@@ -101,7 +101,11 @@ def rank_plot(story: Story, name: str) -> FigureBlock:
         key=f"{name}-rank",
         number=f"{name}b",
         kind="rank-plot",
-        caption=_caption("Rank plot: midranks of {x} and {y}; the area of a mark counts its rows ({n}\u00a0=\u00a0{rows}).", story, name),
+        caption=_caption(
+            "Rank plot: midranks of {x} and {y}; the area of a mark counts its rows ({n}\u00a0=\u00a0{rows}).",
+            story,
+            name,
+        ),
         alternative=_alternative(story, name, "midranks"),
         data={
             "x_label": f"Rank of {x.label}",

@@ -27,7 +27,11 @@ def finding_sentence(story: Story, name: str) -> Prose:
         return only("The plan places this association outside the family, so that no finding is stated for it.")
     expected = result.screened.spec.hypothesis.expected_sign
     deciding = deciding_p(story, name)
-    rule = "the adjusted {p} lay {side} alpha, {alpha}" if finding.basis == "family" and _is_adjusted(story) else "{p} lay {side} alpha, {alpha}"
+    rule = (
+        "the adjusted {p} lay {side} alpha, {alpha}"
+        if finding.basis == "family" and _is_adjusted(story)
+        else "{p} lay {side} alpha, {alpha}"
+    )
     alpha = story.numbers.level("inference/alpha")
     if finding.word == "not shown":
         return prose(
@@ -40,7 +44,8 @@ def finding_sentence(story: Story, name: str) -> Prose:
     if finding.word == "shown, opposite sign":
         return prose(
             "By the rule of the plan an association was shown, with the sign opposite to the one expected: "
-            + rule.replace("{side}", "at or below") + ".",
+            + rule.replace("{side}", "at or below")
+            + ".",
             p=deciding,
             alpha=alpha,
         )

@@ -75,7 +75,12 @@ def estimate_with_interval(story: Story, name: str) -> Prose:
     estimate = numbers.coefficient(value)
     if not isinstance(result.interval, Interval):
         return prose("{estimate} (no interval: {why})", estimate=estimate, why=result.interval.reason)
-    return prose("{estimate} ({level} interval {range})", estimate=estimate, level=level(story), range=interval_range(story, name))
+    return prose(
+        "{estimate} ({level} interval {range})",
+        estimate=estimate,
+        level=level(story),
+        range=interval_range(story, name),
+    )
 
 
 def interval_range(story: Story, name: str) -> Prose:

@@ -25,7 +25,11 @@ def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
         return CheckOutcome(CHECK.key, "not met", limit, found, "no result with these rows and ties could reach alpha")
     if smallest * family_size(screened.spec, spec) > alpha:
         return CheckOutcome(
-            CHECK.key, "doubtful", limit, found, "alpha could be reached, but not if every other test of the family failed"
+            CHECK.key,
+            "doubtful",
+            limit,
+            found,
+            "alpha could be reached, but not if every other test of the family failed",
         )
     return CheckOutcome(CHECK.key, "met", limit, found, "alpha could be reached")
 

@@ -12,14 +12,21 @@ def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
     if found >= limit:
         return CheckOutcome(CHECK.key, "met", count(limit), count(found), "the plan’s number was reached")
     return CheckOutcome(
-        CHECK.key, "not met", count(limit), count(found), "fewer complete rows than the plan asks for", withheld_by(spec)
+        CHECK.key,
+        "not met",
+        count(limit),
+        count(found),
+        "fewer complete rows than the plan asks for",
+        withheld_by(spec),
     )
 
 
 CHECK = Check(
     key="enough_rows",
     label="Enough complete rows",
-    demand=Description("The complete rows of each association were counted and held against the plan’s smallest number."),
+    demand=Description(
+        "The complete rows of each association were counted and held against the plan’s smallest number."
+    ),
     joint=False,
     examine=examine,
 )

@@ -20,7 +20,12 @@ def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
     if Fraction(incomplete, considered) <= Fraction(Decimal(limit)):
         return CheckOutcome(CHECK.key, "met", limit_share(limit), found, "within the plan’s limit")
     return CheckOutcome(
-        CHECK.key, "not met", limit_share(limit), found, "more rows lack a value than the plan allows", withheld_by(spec)
+        CHECK.key,
+        "not met",
+        limit_share(limit),
+        found,
+        "more rows lack a value than the plan allows",
+        withheld_by(spec),
     )
 
 

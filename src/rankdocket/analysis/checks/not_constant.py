@@ -21,7 +21,9 @@ def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
 CHECK = Check(
     key="not_constant",
     label="Distinct values",
-    demand=Description("Each variable had to take at least two values among the complete rows; otherwise no rank correlation exists."),
+    demand=Description(
+        "Each variable had to take at least two values among the complete rows; otherwise no rank correlation exists."
+    ),
     joint=False,
     examine=examine,
 )

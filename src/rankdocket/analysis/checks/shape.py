@@ -36,7 +36,11 @@ def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
     low, high = known
     if min(abs(low), abs(high)) >= OPPOSED and low * high < 0:
         return CheckOutcome(
-            CHECK.key, "doubtful", None, None, "the direction in the lower half of x is opposite to that in the upper half"
+            CHECK.key,
+            "doubtful",
+            None,
+            None,
+            "the direction in the lower half of x is opposite to that in the upper half",
         )
     return CheckOutcome(CHECK.key, "met", None, None, "the two halves of x do not lean in opposite directions")
 

@@ -19,7 +19,9 @@ def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
     if Fraction(worse.tied_rows, worse.n) <= Fraction(limit):
         return CheckOutcome(CHECK.key, "met", limit_share(limit), found, "within the plan’s limit")
     # Ties withhold nothing: the null used is conditional on them. They coarsen what the coefficient can show.
-    return CheckOutcome(CHECK.key, "doubtful", limit_share(limit), found, "more rows share a value than the plan’s limit")
+    return CheckOutcome(
+        CHECK.key, "doubtful", limit_share(limit), found, "more rows share a value than the plan’s limit"
+    )
 
 
 CHECK = Check(

@@ -14,7 +14,9 @@ def supplied_texts(story: Story) -> tuple[tuple[str, str], ...]:
     """Return where each supplied text stands in the spec, and the text."""
     spec = story.analysis.spec
     texts = [("study.title", spec.study.title), ("study.question", spec.study.question)]
-    texts += [(f"associations.{name}.question", association.question) for name, association in spec.associations.items()]
+    texts += [
+        (f"associations.{name}.question", association.question) for name, association in spec.associations.items()
+    ]
     texts += [(f"variables.{name}.label", variable.label) for name, variable in spec.variables.items()]
     if spec.rows.independent_because is not None:
         texts.append(("rows.independent_because", spec.rows.independent_because))
@@ -166,4 +168,3 @@ NO_INTERVAL = CaveatRule("no_interval", 35, _no_interval_for_tau)
 ASSOCIATION_ONLY = CaveatRule("association_only", 20, _association_only)
 INDEPENDENCE_NULL = CaveatRule("independence_null", 15, _independence_null)
 DECISION = CaveatRule("decision", 10, _decision)
-

@@ -16,7 +16,10 @@ def control_page(story: Story) -> tuple[Block, ...]:
         ("Status", only(facts.status)),
         ("Date of issue", only(Supplied(facts.date))),
         ("Reason for issue", only(Supplied(facts.reason))),
-        ("Replaces", only(Supplied(facts.replaces)) if facts.replaces else only("nothing: no earlier edition was issued")),
+        (
+            "Replaces",
+            only(Supplied(facts.replaces)) if facts.replaces else only("nothing: no earlier edition was issued"),
+        ),
         ("Written for", listed(tuple(only(reader) for reader in spec.report.readers))),
     ]
     if spec.report.marking:

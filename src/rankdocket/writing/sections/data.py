@@ -59,13 +59,20 @@ def _received(story: Story) -> TableBlock:
             Column(only("Digest"), "digest", share=3),
         ),
         rows=tuple(rows),
-        notes=(only("The digest is the beginning of the SHA-256 of the file’s bytes; the whole stands in the record."),),
+        notes=(
+            only("The digest is the beginning of the SHA-256 of the file’s bytes; the whole stands in the record."),
+        ),
     )
 
 
 def _reading(spec: DataSpec) -> Prose:
     names = {",": "comma", ";": "semicolon", "\t": "tab", "|": "bar"}
-    codes = listed(tuple(prose("{code} ({meaning})", code=_literal(code), meaning=Supplied(meaning)) for code, meaning in spec.missing_codes.items()))
+    codes = listed(
+        tuple(
+            prose("{code} ({meaning})", code=_literal(code), meaning=Supplied(meaning))
+            for code, meaning in spec.missing_codes.items()
+        )
+    )
     missing = prose("missing: {codes}", codes=codes) if spec.missing_codes else only("no missing codes")
     return joined(
         (
@@ -90,7 +97,9 @@ def _rows_facts(story: Story) -> tuple[tuple[str, Prose], ...]:
         ("Time order", _answer(rows.time_order)),
         (
             "Independent because",
-            only(Supplied(rows.independent_because)) if rows.independent_because else only("no reason stated in the plan"),
+            only(Supplied(rows.independent_because))
+            if rows.independent_because
+            else only("no reason stated in the plan"),
         ),
     )
 

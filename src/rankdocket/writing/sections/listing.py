@@ -15,9 +15,7 @@ MOST_ROWS: Final = 200
 
 def write(story: Story) -> Section:
     """Return one listing a table."""
-    blocks: list[Block] = [
-        Paragraph(only("Cells are printed as received; the columns are those that the plan uses."))
-    ]
+    blocks: list[Block] = [Paragraph(only("Cells are printed as received; the columns are those that the plan uses."))]
     blocks += [
         _listing(story, name, table, position)
         for position, (name, table) in enumerate(story.analysis.data.tables.items(), start=1)

@@ -49,7 +49,16 @@ def method_paragraphs(story: Story) -> tuple[Prose, ...]:
     """Return the paragraphs of the methods text in the order in which the work was done."""
     return tuple(
         part
-        for part in (_ranking(story), _checks(story), _coefficients(story), _nulls(story), _sides(story), _family(story), _intervals(story), _comparisons(story))
+        for part in (
+            _ranking(story),
+            _checks(story),
+            _coefficients(story),
+            _nulls(story),
+            _sides(story),
+            _family(story),
+            _intervals(story),
+            _comparisons(story),
+        )
         if text_of(part)
     )
 
@@ -136,7 +145,9 @@ def _sides(story: Story) -> Prose:
             "Tests were one-sided in the direction that the plan expects: orderings whose coefficient lay at least as far "
             "in that direction were counted, comparing whole numbers; the interval is the matching one-sided bound."
         )
-    return joined((sides, prose("Alpha was {alpha}; a p-value at or below it, compared as fractions, decided.", alpha=alpha)))
+    return joined(
+        (sides, prose("Alpha was {alpha}; a p-value at or below it, compared as fractions, decided.", alpha=alpha))
+    )
 
 
 def _family(story: Story) -> Prose:

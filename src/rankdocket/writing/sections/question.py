@@ -17,7 +17,9 @@ def write(story: Story) -> Section:
         ("Population", only(Supplied(study.population)) if study.population else only("not stated")),
         (
             "Number of rows",
-            only(Supplied(study.rows_were_fixed_by)) if study.rows_were_fixed_by else only("how it was fixed is not stated"),
+            only(Supplied(study.rows_were_fixed_by))
+            if study.rows_were_fixed_by
+            else only("how it was fixed is not stated"),
         ),
     ]
     return Section(
@@ -28,7 +30,8 @@ def write(story: Story) -> Section:
             FieldList(tuple(rows), key="instructions"),
             Items(tuple(_plan_line(story, association) for association in story.analysis.spec.associations.values())),
             Paragraph(
-                only("Why two variables move together was not asked of this analysis and cannot be answered by it."), "note"
+                only("Why two variables move together was not asked of this analysis and cannot be answered by it."),
+                "note",
             ),
         ),
         opens="page",

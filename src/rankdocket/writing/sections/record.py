@@ -49,13 +49,17 @@ def write(story: Story) -> Section:
 def _how_to() -> tuple[Prose, ...]:
     return (
         prose(
-            "Files unchanged since issue: {command} in the folder of the edition.", command=Emphasis("sha256sum -c SHA256SUMS", "code")
+            "Files unchanged since issue: {command} in the folder of the edition.",
+            command=Emphasis("sha256sum -c SHA256SUMS", "code"),
         ),
         prose(
             "Numbers, without this program: {command} in the same folder recomputes ranks, coefficients and small exact counts.",
             command=Emphasis("python3 check.py", "code"),
         ),
-        prose("Everything, with this program: {command} in the folder of the study.", command=Emphasis("rankdocket verify study.yaml", "code")),
+        prose(
+            "Everything, with this program: {command} in the folder of the study.",
+            command=Emphasis("rankdocket verify study.yaml", "code"),
+        ),
         only(
             "The register’s chain of digests shows an altered, removed or reordered line. It does not show that its last lines "
             "were cut off, nor a register rewritten as a whole: deposit the head digest with somebody else."

@@ -155,11 +155,21 @@ def _comparisons(story: Story) -> TableBlock | None:
         rows.append(
             (
                 only(pointer(name)),
-                only(numbers.p_value(address(name, "test", "p"))) if isinstance(result.test, RankTest) else EN_DASH_CELL,
-                EN_DASH_CELL if comparisons.t_value_p is None else only(numbers.comparison_p(address(name, "comparisons", "t_value_p"))),
-                EN_DASH_CELL if comparisons.doubled_p is None else only(numbers.comparison_p(address(name, "comparisons", "doubled_p"))),
-                EN_DASH_CELL if comparisons.pearson is None else only(numbers.coefficient(address(name, "comparisons", "pearson"))),
-                EN_DASH_CELL if result.estimate.short_form is None else only(numbers.coefficient(address(name, "comparisons", "short_form"))),
+                only(numbers.p_value(address(name, "test", "p")))
+                if isinstance(result.test, RankTest)
+                else EN_DASH_CELL,
+                EN_DASH_CELL
+                if comparisons.t_value_p is None
+                else only(numbers.comparison_p(address(name, "comparisons", "t_value_p"))),
+                EN_DASH_CELL
+                if comparisons.doubled_p is None
+                else only(numbers.comparison_p(address(name, "comparisons", "doubled_p"))),
+                EN_DASH_CELL
+                if comparisons.pearson is None
+                else only(numbers.coefficient(address(name, "comparisons", "pearson"))),
+                EN_DASH_CELL
+                if result.estimate.short_form is None
+                else only(numbers.coefficient(address(name, "comparisons", "short_form"))),
             )
         )
     if not rows:
@@ -193,11 +203,20 @@ def _spread(story: Story, name: str, position: int) -> Section:
     title = prose("{name}: {x} and {y}", name=Supplied(name), x=label_head(x), y=label(y))
     blocks: list[Block] = [Paragraph(only(Supplied(spec.question)))]
     if isinstance(result.estimate, Estimate):
-        blocks += [raw_plot(story, name), rank_plot(story, name), FieldList(_numbers(story, name), key=f"numbers-{name}")]
+        blocks += [
+            raw_plot(story, name),
+            rank_plot(story, name),
+            FieldList(_numbers(story, name), key=f"numbers-{name}"),
+        ]
         blocks.append(
             Paragraph(
                 sentences(
-                    prose("{direction}: {symbol} {estimate}.", direction=direction_sentence(story, name), symbol=coefficient_symbol(spec), estimate=estimate_with_interval(story, name)),
+                    prose(
+                        "{direction}: {symbol} {estimate}.",
+                        direction=direction_sentence(story, name),
+                        symbol=coefficient_symbol(spec),
+                        estimate=estimate_with_interval(story, name),
+                    ),
                     finding_sentence(story, name),
                     size_sentence(story, name),
                 ),
@@ -234,7 +253,10 @@ def _numbers(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
     rows.append((result.screened.spec.coefficient, estimate_with_interval(story, name)))
     if isinstance(result.test, RankTest):
         rows += [
-            ("Null", prose("{method}. {why}", method=result.test.tails.method.capitalize(), why=result.test.choice.reason)),
+            (
+                "Null",
+                prose("{method}. {why}", method=result.test.tails.method.capitalize(), why=result.test.choice.reason),
+            ),
             ("Test", p_with_count(story, name)),
             (
                 "Both tails",
@@ -292,8 +314,14 @@ def _caveats(story: Story, name: str) -> Prose:
     links = tuple(only(Link(caveat.block.key, str(caveat.block.number))) for caveat in story.caveats_about(name))
     general = Link("requirements", "5")
     if not links:
-        return prose("No caveat concerns this association alone; those of the study stand in section {section}.", section=general)
-    return prose("Caveats about this association: {numbers}; those of the study stand in section {section}.", numbers=joined(links, ", "), section=general)
+        return prose(
+            "No caveat concerns this association alone; those of the study stand in section {section}.", section=general
+        )
+    return prose(
+        "Caveats about this association: {numbers}; those of the study stand in section {section}.",
+        numbers=joined(links, ", "),
+        section=general,
+    )
 
 
 SECTION = SectionRule("results-section", write)

@@ -14,7 +14,11 @@ def write(story: Story) -> Section:
     """Return the screening table and, for ordered labels, their order with counts."""
     variables = story.analysis.spec.variables
     blocks: list[Block] = [variables_table(story)]
-    ordered = tuple(_levels(story, variable) for variable in variables.values() if story.analysis.data.variables[variable.name].labels)
+    ordered = tuple(
+        _levels(story, variable)
+        for variable in variables.values()
+        if story.analysis.data.variables[variable.name].labels
+    )
     if ordered:
         blocks.append(Items(ordered))
     return Section("screening", "3", only("Screening"), tuple(blocks))
@@ -84,7 +88,11 @@ def _missing(story: Story, name: str) -> Prose:
         return only("no code declared")
     return listed(
         tuple(
-            prose("{meaning} {rows}", meaning=Supplied(str(look_up(story.plain, f"{at}/meaning"))), rows=story.numbers.whole(f"{at}/rows"))
+            prose(
+                "{meaning} {rows}",
+                meaning=Supplied(str(look_up(story.plain, f"{at}/meaning"))),
+                rows=story.numbers.whole(f"{at}/rows"),
+            )
             for at in (f"variables/{name}/missing/{position}" for position in range(len(kinds)))
         )
     )
@@ -97,7 +105,11 @@ def _levels(story: Story, variable: VariableSpec) -> Prose:
         variable=label_head(variable),
         levels=listed(
             tuple(
-                prose("{label} ({rows})", label=Supplied(text), rows=story.numbers.whole(f"variables/{variable.name}/levels/{position}/rows"))
+                prose(
+                    "{label} ({rows})",
+                    label=Supplied(text),
+                    rows=story.numbers.whole(f"variables/{variable.name}/levels/{position}/rows"),
+                )
                 for position, text in enumerate(labels)
             )
         ),

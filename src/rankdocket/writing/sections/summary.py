@@ -43,7 +43,11 @@ def summary(story: Story) -> Section:
             )
         )
     heaviest = _heaviest(story)
-    blocks.append(Paragraph(prose("To be read with the result (all caveats: section {section}):", section=Link("requirements", "5"))))
+    blocks.append(
+        Paragraph(
+            prose("To be read with the result (all caveats: section {section}):", section=Link("requirements", "5"))
+        )
+    )
     blocks.append(Items(tuple(caveat.block.prose for caveat in heaviest)))
     blocks.append(Paragraph(_changes(story), "note"))
     return Section("summary", "", only("Summary"), tuple(blocks), opens="page")
@@ -88,7 +92,11 @@ def _answer(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
         rows.append(
             (
                 "Answer",
-                prose("{direction}. {finding}", direction=direction_sentence(story, name), finding=finding_sentence(story, name)),
+                prose(
+                    "{direction}. {finding}",
+                    direction=direction_sentence(story, name),
+                    finding=finding_sentence(story, name),
+                ),
             )
         )
         rows.append(

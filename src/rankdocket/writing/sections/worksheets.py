@@ -104,7 +104,10 @@ def _table(story: Story, name: str, result: AssociationAnalysis, position: int) 
                 only(numbers.label(f"{at}/row/{line}")),
                 only(Supplied(rows[line].x_literal)),
                 only(Supplied(rows[line].y_literal)),
-                *(only(numbers.as_filed(f"{at}/{column}/{line}")) for column in ("rank_x", "rank_y", "difference", "squared")),
+                *(
+                    only(numbers.as_filed(f"{at}/{column}/{line}"))
+                    for column in ("rank_x", "rank_y", "difference", "squared")
+                ),
             )
             for line in printed
         ),

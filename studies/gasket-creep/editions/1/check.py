@@ -1,0 +1,396 @@
+"""Checks a record copy without the program that made it: python3 check.py in the folder of the edition.
+
+Needs Python 3.9 or later and nothing else.  It holds every file against SHA256SUMS; ranks the values of rows.csv
+anew and holds the worksheets against them; recomputes each coefficient in whole numbers; counts all orderings of
+the rows where there are few enough; derives p, adjusted p and finding from the counts; holds results.csv against
+analysis.json; and looks up every printed number of document.json in analysis.json and in report.html.
+
+It does not read the spec and the data as received, does not recompute intervals and drawn permutations, and does
+not open the PDF.
+"""
+
+# ruff: noqa: T201 - it speaks to a person at a terminal
+
+from __future__ import annotations
+
+import csv
+import hashlib
+import html
+import json
+import re
+import sys
+from collections import Counter, defaultdict
+from collections.abc import Iterator
+from decimal import ROUND_HALF_EVEN, Context, Decimal
+from fractions import Fraction
+from functools import reduce
+from math import comb, factorial, gcd, prod
+from operator import add, mul, sub
+from pathlib import Path
+from typing import Any
+
+MOST_ROWS_COUNTED = 14
+"""Up to here counting takes seconds on any machine; more rows are left to the program itself."""
+
+DIGITS = 12
+"""Significant digits of every filed value that is not whole."""
+
+RHO = "Spearman rho"
+RESULT_ADDRESSES = {
+    "n": "rows/complete",
+    "value": "estimate/value",
+    "interval_low": "interval/low",
+    "interval_high": "interval/high",
+    "interval_by": "interval/by",
+    "p": "test/p",
+    "p_by": "test/method",
+    "p_adjusted": "finding/p_adjusted",
+    "finding": "finding/word",
+}
+"""Column of results.csv → where its value stands below an association of analysis.json, if not under its own name."""
+
+NUMBER_ELEMENT = re.compile(r'data-key="([^"]+)"[^>]*>([^<]*)<')
+
+
+def main(folder: Path) -> int:
+    """Check the record copy in ``folder``; return the exit status."""
+    problems: list[str] = []
+    files = check_digests(folder, problems)
+    numbers, left = 0, []
+    try:
+        analysis = json.loads((folder / "analysis.json").read_text(encoding="utf-8"))
+        left = check_associations(folder, analysis, problems)
+        check_findings(folder, analysis, problems)
+        check_results(folder, analysis, problems)
+        numbers = check_printed(folder, analysis, problems)
+    except (OSError, ValueError, KeyError, TypeError, ArithmeticError) as error:
+        problems.append(f"the record cannot be read to its end: {type(error).__name__}, {error}.")
+    if problems:
+        print(f"{len(problems)} things do not agree ({numbers} numbers, {files} files looked at):")
+        for place, problem in enumerate(problems, start=1):
+            print(f"  {place}. {problem}")
+    else:
+        print(f"Everything agrees ({numbers} numbers, {files} files).")
+    if left:
+        print(
+            f"Not counted anew, because permutations were drawn or more than {MOST_ROWS_COUNTED} rows ranked: {', '.join(left)}."
+        )
+    return 1 if problems else 0
+
+
+def hold(what: str, filed: object, anew: object, problems: list[str]) -> None:
+    """Note a value that is not what it is when made anew."""
+    if filed != anew:
+        problems.append(f"{what} is {filed}, made anew {anew}.")
+
+
+def check_digests(folder: Path, problems: list[str]) -> int:
+    """Hold every listed file against its SHA-256, and look for files that are not listed; return how many are."""
+    listed = {}
+    for line in (folder / "SHA256SUMS").read_text(encoding="utf-8").splitlines():
+        digest, _, name = line.partition("  ")
+        listed[name] = digest
+    present = {path.relative_to(folder).as_posix() for path in folder.rglob("*") if path.is_file()}
+    for name, digest in sorted(listed.items()):
+        if name not in present:
+            problems.append(f"{name} is missing.")
+        elif hashlib.sha256((folder / name).read_bytes()).hexdigest() != digest:
+            problems.append(f"{name} is not the file that was sealed.")
+    problems.extend(f"{name} is not listed in SHA256SUMS." for name in sorted(present - listed.keys() - {"SHA256SUMS"}))
+    return len(listed)
+
+
+def check_associations(folder: Path, analysis: Any, problems: list[str]) -> list[str]:
+    """Rank, compute and count every association again; return the names of those not counted."""
+    rows: dict[str, list[dict[str, str]]] = {}
+    for row in read_csv(folder / "rows.csv"):
+        rows.setdefault(row["association"], []).append(row)
+    problems.extend(
+        f"rows.csv: there is no association {name}." for name in sorted(rows.keys() - analysis["associations"].keys())
+    )
+    left = []
+    for name, found in sorted(analysis["associations"].items()):
+        its_rows = rows.get(name, [])
+        if len(its_rows) != found["rows"]["complete"]:
+            problems.append(
+                f"{name}: rows.csv has {len(its_rows)} rows, analysis.json says {found['rows']['complete']}."
+            )
+            continue
+        x = doubled_midranks([Fraction(row["x_value"]) for row in its_rows])
+        y = doubled_midranks([Fraction(row["y_value"]) for row in its_rows])
+        check_worksheet(folder, name, (its_rows, x, y), problems)
+        if found["estimate"]["state"] == "estimated":
+            check_estimate(name, found, (x, y), problems)
+        if found["test"]["state"] == "tested" and not check_test(name, found, (x, y), problems):
+            left.append(name)
+    return left
+
+
+def read_csv(path: Path) -> list[dict[str, str]]:
+    """Return a CSV file's rows as mappings."""
+    with path.open(encoding="utf-8", newline="") as file:
+        return list(csv.DictReader(file))
+
+
+def check_worksheet(
+    folder: Path, name: str, rows: tuple[list[dict[str, str]], list[int], list[int]], problems: list[str]
+) -> None:
+    """Hold the ranks, their differences and the squares against ranks made anew."""
+    file = f"ranks-{name}.csv"
+    filed = read_csv(folder / file)
+    used, x, y = rows
+    if len(filed) != len(used):
+        problems.append(f"{file} has {len(filed)} rows, rows.csv {len(used)}.")
+        return
+    for place, row in enumerate(filed):
+        rank_x, rank_y = Fraction(x[place], 2), Fraction(y[place], 2)
+        anew = {"rank_x": rank_x, "rank_y": rank_y, "difference": rank_x - rank_y, "squared": (rank_x - rank_y) ** 2}
+        for column, value in anew.items():
+            hold(f"{file}, line {place + 2}: {column}", row[column], decimal_text(value), problems)
+        for column in ("row", "x", "y"):
+            hold(f"{file}, line {place + 2}: {column}", row[column], used[place][column], problems)
+
+
+def check_estimate(name: str, found: Any, ranks: tuple[list[int], list[int]], problems: list[str]) -> None:
+    """Compute the coefficient again."""
+    sums = sums_of(found["coefficient"], *ranks)
+    for position, key in enumerate(("numerator", "x_square", "y_square")):
+        hold(f"{name}: {key}", found["estimate"][key], str(sums[position]), problems)
+    hold(f"{name}: the coefficient", Decimal(found["estimate"]["value"]), coefficient(*sums), problems)
+
+
+def check_test(name: str, found: Any, ranks: tuple[list[int], list[int]], problems: list[str]) -> bool:
+    """Derive p from its count, and count all orderings where there are few enough; return whether it was done."""
+    test = found["test"]
+    for key, count in (("p", "count"), ("p_greater", "count_greater"), ("p_less", "count_less")):
+        hold(f"{name}: {key}", test[key], filed_text(p_of(test, int(test[count]))), problems)
+    if not test["method"].startswith("exact") or len(ranks[0]) > MOST_ROWS_COUNTED:
+        return False
+    tally = orderings(*ranks, found["coefficient"])
+    numerator = sums_of(found["coefficient"], *ranks)[0]
+    counts = {
+        "greater": sum(times for value, times in tally.items() if value >= numerator),
+        "less": sum(times for value, times in tally.items() if value <= numerator),
+        "two-sided": sum(times for value, times in tally.items() if abs(value) >= abs(numerator)),
+    }
+    hold(f"{name}: count", test["count"], str(counts[test["direction"]]), problems)
+    hold(f"{name}: count_greater", test["count_greater"], str(counts["greater"]), problems)
+    hold(f"{name}: count_less", test["count_less"], str(counts["less"]), problems)
+    hold(f"{name}: the number of orderings", test["of"], str(factorial(len(ranks[0]))), problems)
+    return True
+
+
+def p_of(test: Any, count: int) -> Fraction:
+    """Return p: a share of all orderings, or of the drawn ones together with the observed one."""
+    drawn = 0 if test["method"].startswith("exact") else 1
+    return Fraction(count + drawn, int(test["of"]) + drawn)
+
+
+def check_findings(folder: Path, analysis: Any, problems: list[str]) -> None:
+    """Adjust every p again and decide again by the plan."""
+    plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))
+    family, alpha = analysis["inference"]["family"], Fraction(plan["inference"]["alpha"])
+    p_values = {
+        name: p_of(found["test"], int(found["test"]["count"]))
+        for name, found in analysis["associations"].items()
+        if found["test"]["state"] == "tested"
+    }
+    everybody = {name: p_values.get(name, Fraction(1)) for name in family}
+    adjusted = holm(everybody) if plan["inference"]["several_tests"]["adjust"] == "Holm" else everybody
+    for name, found in sorted(analysis["associations"].items()):
+        finding = found["finding"]
+        if "p_adjusted" in finding:
+            hold(f"{name}: p_adjusted", finding["p_adjusted"], filed_text(adjusted[name]), problems)
+        if name not in p_values or finding["basis"] == "outside the family":
+            continue
+        word = "not shown"
+        if (adjusted[name] if finding["basis"] == "family" else p_values[name]) <= alpha:
+            sign = "positive" if int(found["estimate"]["numerator"]) > 0 else "negative"
+            expected = plan["associations"][name]["hypothesis"]["expected_sign"]
+            word = "shown" if expected in ("either", sign) else "shown, opposite sign"
+        hold(f"{name}: the finding", finding["word"], word, problems)
+
+
+def holm(p_values: dict[str, Fraction]) -> dict[str, Fraction]:
+    """Adjust by Holm's step-down rule."""
+    adjusted, largest = {}, Fraction(0)
+    for smaller, name in enumerate(sorted(p_values, key=lambda name: p_values[name])):
+        largest = max(largest, min(Fraction(1), (len(p_values) - smaller) * p_values[name]))
+        adjusted[name] = largest
+    return adjusted
+
+
+def check_results(folder: Path, analysis: Any, problems: list[str]) -> None:
+    """Hold every cell of results.csv against analysis.json."""
+    rows = read_csv(folder / "results.csv")
+    names = [row["association"] for row in rows]
+    if sorted(names) != sorted(analysis["associations"]):
+        problems.append(f"results.csv has the associations {', '.join(names)}, analysis.json others.")
+        return
+    for line, row in enumerate(rows, start=2):
+        its_own = {
+            **analysis["associations"][row["association"]],
+            "association": row["association"],
+            "sidedness": analysis["inference"]["sidedness"],
+        }
+        for column, cell in row.items():
+            filed = look_up(its_own, RESULT_ADDRESSES.get(column, column))
+            if cell != ("" if filed is None else str(filed)):
+                problems.append(
+                    f"results.csv, line {line}: {column} is {cell or 'blank'}, analysis.json has {filed or 'nothing'}."
+                )
+
+
+def doubled_midranks(values: list[Fraction]) -> list[int]:
+    """Return twice the midrank of every value."""
+    first: dict[Fraction, int] = {}
+    last: dict[Fraction, int] = {}
+    for place, value in enumerate(sorted(values), start=1):
+        first.setdefault(value, place)
+        last[value] = place
+    return [first[value] + last[value] for value in values]
+
+
+def sums_of(name: str, x: list[int], y: list[int]) -> tuple[int, int, int]:
+    """Return the three whole numbers that make a coefficient."""
+    return rho_sums(x, y) if name == RHO else tau_sums(x, y)
+
+
+def rho_sums(x: list[int], y: list[int]) -> tuple[int, int, int]:
+    """Return products, squares of x and squares of y of doubled centred midranks."""
+    middle = len(x) + 1
+    a, b = [value - middle for value in x], [value - middle for value in y]
+    products = sum(value * b[place] for place, value in enumerate(a))
+    return products, sum(value * value for value in a), sum(value * value for value in b)
+
+
+def tau_sums(x: list[int], y: list[int]) -> tuple[int, int, int]:
+    """Return row pairings in the same less those in opposite order, and pairings not tied in x and in y."""
+    numerator, in_x, in_y = 0, 0, 0
+    for i in range(len(x)):
+        for j in range(i):
+            sign_x, sign_y = (x[i] > x[j]) - (x[i] < x[j]), (y[i] > y[j]) - (y[i] < y[j])
+            numerator, in_x, in_y = numerator + sign_x * sign_y, in_x + abs(sign_x), in_y + abs(sign_y)
+    return numerator, in_x, in_y
+
+
+def coefficient(numerator: int, x_square: int, y_square: int) -> Decimal:
+    """Return the first over the root of the product of the others, 12 significant digits, half to even."""
+    wide = Context(prec=80)
+    exact = wide.divide(Decimal(numerator), wide.sqrt(Decimal(x_square * y_square)))
+    return Context(prec=DIGITS, rounding=ROUND_HALF_EVEN).plus(exact)
+
+
+def filed_text(value: Fraction) -> str:
+    """Return a fraction as it is filed: at most 12 significant digits, half to even, without an exponent."""
+    narrow = Context(prec=DIGITS, rounding=ROUND_HALF_EVEN)
+    return decimal_text(Fraction(narrow.divide(Decimal(value.numerator), Decimal(value.denominator))))
+
+
+def decimal_text(value: Fraction) -> str:
+    """Return a fraction whose decimal form ends in full."""
+    text = f"{Context(prec=200).divide(Decimal(value.numerator), Decimal(value.denominator)):f}"
+    return text.rstrip("0").rstrip(".") if "." in text else text
+
+
+def orderings(x: list[int], y: list[int], name: str) -> dict[int, int]:
+    """Return numerator → number of the n! orderings of y against x that have it.
+
+    x is gone through from its smallest value; what is remembered is how many rows of each y value are used up, and
+    for each such state the counts of all sums so far, packed into one long whole number: a shift adds to a sum.
+    """
+    values, times = zip(*sorted(Counter(y).items()))  # noqa: B905 - Python 3.9 has no strict
+    low_x, low_y = min(x), min(y)
+    unit_x = reduce(gcd, (value - low_x for value in x)) or 1
+    unit_y = reduce(gcd, (value - low_y for value in y)) or 1
+    width = factorial(len(x)).bit_length()
+    scale, shift = 1, 0
+    if name == RHO:
+        scale, shift = unit_x * unit_y, -len(x) * (len(x) + 1 - low_x) * (len(x) + 1 - low_y)
+    layer: dict[tuple[int, ...], int] = {(0,) * len(values): 1}
+    for value, size in sorted(Counter(x).items()):
+        following: dict[tuple[int, ...], int] = defaultdict(int)
+        before = sum(next(iter(layer)))
+        if name != RHO:
+            shift -= size * before
+        for used, packed in layer.items():
+            if name == RHO:
+                least, weights = 0, [(value - low_x) // unit_x * ((other - low_y) // unit_y) for other in values]
+            else:
+                least = size * before
+                weights = [sum(used[:place]) - sum(used[place + 1 :]) for place in range(len(values))]
+            room = list(map(sub, times, used))
+            for taken in choices(room, size):
+                ways = factorial(size) * prod(map(comb, room, taken))
+                gain = least + sum(map(mul, weights, taken))
+                following[tuple(map(add, used, taken))] += (packed * ways) << (width * gain)
+        layer = following
+    [packed] = layer.values()
+    tally, mask, place = {}, (1 << width) - 1, 0
+    while packed:
+        if packed & mask:
+            tally[place * scale + shift] = packed & mask
+        packed >>= width
+        place += 1
+    return tally
+
+
+def choices(room: list[int], size: int) -> Iterator[tuple[int, ...]]:
+    """Yield every way of taking ``size`` rows from groups that have ``room``."""
+    if len(room) == 1:
+        if size <= room[0]:
+            yield (size,)
+        return
+    most_later = sum(room[1:])
+    for number in range(max(0, size - most_later), min(room[0], size) + 1):
+        for rest in choices(room[1:], size - number):
+            yield (number, *rest)
+
+
+def check_printed(folder: Path, analysis: Any, problems: list[str]) -> int:
+    """Look up every printed number of document.json in analysis.json and in report.html; return how many there are."""
+    numbers = list(numbers_in(json.loads((folder / "document.json").read_text(encoding="utf-8"))))
+    shown = Counter(
+        (html.unescape(key), html.unescape(text))
+        for key, text in NUMBER_ELEMENT.findall((folder / "report.html").read_text(encoding="utf-8"))
+    )
+    told = Counter((number["key"], number["text"]) for number in numbers)
+    for key, exact in sorted({(number["key"], number["exact"]) for number in numbers}):
+        if str(look_up(analysis, key)) != exact:
+            problems.append(f"document.json: {key} is {exact}, analysis.json has {look_up(analysis, key)}.")
+    for key, text in sorted(told.keys() | shown.keys()):
+        if told[key, text] > shown[key, text]:
+            problems.append(
+                f"document.json prints {key} as {text}, {told[key, text]} times; report.html {shown[key, text]} times."
+            )
+        elif told[key, text] < shown[key, text]:
+            problems.append(
+                f"report.html prints {key} as {text}, {shown[key, text]} times; document.json {told[key, text]} times."
+            )
+    return len(numbers)
+
+
+def numbers_in(node: Any) -> Iterator[dict[str, str]]:
+    """Yield every number of a document."""
+    if isinstance(node, dict):
+        if node.get("is") == "Number":
+            yield node
+        for value in node.values():
+            yield from numbers_in(value)
+    elif isinstance(node, list):
+        for value in node:
+            yield from numbers_in(value)
+
+
+def look_up(plain: Any, key: str) -> Any:
+    """Return what stands at an address of analysis.json, or None."""
+    for step in key.split("/"):
+        try:
+            plain = plain[int(step)] if isinstance(plain, list) else plain[step]
+        except (KeyError, IndexError, ValueError, TypeError):
+            return None
+    return plain
+
+
+if __name__ == "__main__":
+    sys.exit(main(Path(__file__).resolve().parent))
