@@ -1,6 +1,7 @@
 """Where the house stands, and its source files as syntax trees."""
 
 import ast
+import shutil
 import subprocess
 from collections.abc import Iterator
 from functools import cache
@@ -21,19 +22,31 @@ def trees() -> dict[str, ast.Module]:
 
 
 def tracked() -> tuple[str, ...]:
-    """Return the files that the repository holds; in a copy without one, those that are not hidden or made."""
-    found = subprocess.run(
-        ["git", "-c", "safe.directory=*", "ls-files"], cwd=ROOT, capture_output=True, check=False, encoding="utf-8"
-    )
-    if found.returncode == 0:
-        return tuple(found.stdout.splitlines())
-    kept = ("src", "tests", "studies", "report_templates", ".ci", "README.md", "DEVELOPERS.md", "pyproject.toml")
+    """Return the files that the repository holds; without git, all that lie there and are not made by a tool."""
+    git = shutil.which("git")
+    if git is not None:
+        listing = [git, "-c", "safe.directory=*", "ls-files"]
+        found = subprocess.run(listing, cwd=ROOT, capture_output=True, check=False, encoding="utf-8")
+        if found.returncode == 0:
+            return tuple(found.stdout.splitlines())
     return tuple(
         path.relative_to(ROOT).as_posix()
-        for name in kept
-        for path in ([ROOT / name] if (ROOT / name).is_file() else sorted((ROOT / name).rglob("*")))
-        if path.is_file() and not any(part.startswith(("__pycache__", ".mypy", ".pytest")) for part in path.parts)
+        for path in sorted(ROOT.rglob("*"))
+        if path.is_file() and not _MADE_BY_TOOLS.intersection(path.relative_to(ROOT).parts)
     )
+
+
+_MADE_BY_TOOLS = {
+    "__pycache__",
+    ".git",
+    ".venv",
+    "build",
+    "dist",
+    ".mypy_cache",
+    ".pytest_cache",
+    ".ruff_cache",
+    ".hypothesis",
+}
 
 
 def definitions(tree: ast.Module) -> Iterator[tuple[str, ast.FunctionDef | ast.ClassDef]]:

@@ -57,6 +57,7 @@ MOST_LINES = 400
 TOP = {
     ".ci",
     ".gitignore",
+    ".readme",
     "DEVELOPERS.md",
     "README.md",
     "pyproject.toml",
