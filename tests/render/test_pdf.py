@@ -12,6 +12,7 @@ from pathlib import Path
 
 import pypdf
 import pytest
+from page import validate_pdf
 
 from rankdocket.document.model import Section
 from rankdocket.errors import RenderError
@@ -125,6 +126,13 @@ def test_the_file_names_its_title_author_language_and_date_and_is_tagged(renditi
     assert "20260309101500" in str(reader.metadata["/CreationDate"])
     assert reader.trailer["/Root"]["/Lang"] == "en-GB"
     assert reader.trailer["/Root"]["/MarkInfo"]["/Marked"]
+
+
+def test_the_file_is_what_its_metadata_say(rendition: Rendition, tmp_path: Path) -> None:
+    """The metadata name an archival variant with tags; a validator made by others finds nothing against it."""
+    file = tmp_path / "report.pdf"
+    file.write_bytes(rendition.pdf)
+    assert validate_pdf(str(file), profile="3a").failures == []
 
 
 def test_every_face_in_the_file_is_embedded_and_ours(rendition: Rendition) -> None:

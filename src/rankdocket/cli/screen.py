@@ -28,7 +28,7 @@ def _screen(study: str) -> Answer:
 
     require_usable_time()
     from rankdocket.workflow.screen import screen
-    from rankdocket.workflow.screening_text import screening_text
+    from rankdocket.writing.screening_page import screening_page
 
     screening = screen(study)
-    return Answer(screening_text(screening), screening.plain, EXIT_YES if screening.all_met else EXIT_NO)
+    return Answer(screening_page(screening), screening.plain, EXIT_YES if screening.all_met else EXIT_NO)

@@ -9,7 +9,7 @@ import logging
 import sys
 import warnings
 from pathlib import Path
-from typing import Final
+from typing import Any, Final
 
 from rankdocket.render.fonts import FACES
 
@@ -54,7 +54,7 @@ def _lay_out(folder: Path) -> int:
     try:
         source = HTML(string=page, base_url=_BASE, url_fetcher=fetcher)
         laid_out = source.render(font_config=faces, pdf_variant=VARIANT)
-        pdf = laid_out.write_pdf(pdf_variant=VARIANT)
+        pdf = laid_out.write_pdf(pdf_variant=VARIANT, finisher=_leave_metadata_readable)
     except FatalURLFetchingError as refused:
         return _finish(folder, refused=str(refused))
     if fetcher.refused:
@@ -63,6 +63,12 @@ def _lay_out(folder: Path) -> int:
         return _finish(folder, complaints=complaints.texts[:_SHOWN_AT_MOST])
     (folder / PDF_NAME).write_bytes(pdf)
     return _finish(folder, pages=len(laid_out.pages))
+
+
+def _leave_metadata_readable(_document: Any, pdf: Any) -> None:
+    """Keep the description of the file uncompressed, as archives ask for it (ISO 19005-3, 6.6.2.1)."""
+    number = int(pdf.catalog["Metadata"].split()[0])
+    pdf.objects[number].compress = False
 
 
 class _Complaints(logging.Handler):

@@ -4,14 +4,14 @@ from collections.abc import Iterator
 
 from rankdocket.analysis.checks import CHECKS
 from rankdocket.analysis.results import CheckOutcome, Measure
+from rankdocket.analysis.screening import Screening
 from rankdocket.analysis.variables import VariableSummary, summarise
 from rankdocket.document.numbers import Numbers
-from rankdocket.workflow.screen import Screening
 
 _LABELS = {check.key: check.label for check in CHECKS}
 
 
-def screening_text(screening: Screening) -> str:
+def screening_page(screening: Screening) -> str:
     """Return the screening page."""
     sections = (
         ("What arrived", _arrived(screening)),
@@ -21,7 +21,7 @@ def screening_text(screening: Screening) -> str:
         ("Questions to the client", _questions(screening)),
         ("What this sample could show", _could_show(screening)),
     )
-    lines: list[str] = [f"Screening of {screening.study.spec.study.number}: no joint result is shown."]
+    lines: list[str] = [f"Screening of {screening.spec.study.number}: no joint result is shown."]
     number = 0
     for title, sentences in sections:
         lines += ["", title]
@@ -32,7 +32,7 @@ def screening_text(screening: Screening) -> str:
 
 
 def _arrived(screening: Screening) -> Iterator[str]:
-    for name, table in screening.study.data.tables.items():
+    for name, table in screening.data.tables.items():
         received = f", received {table.spec.received_on}" if table.spec.received_on else ""
         yield (
             f"Table {name}: {table.source.path}, {table.source.size:,} bytes{received}, SHA-256 {table.source.digest[:12]}…, "
@@ -41,19 +41,19 @@ def _arrived(screening: Screening) -> Iterator[str]:
 
 
 def _read(screening: Screening) -> Iterator[str]:
-    for name, table in screening.study.data.tables.items():
+    for name, table in screening.data.tables.items():
         codes = ", ".join(f"{code or 'blank'!s} ({meaning})" for code, meaning in table.spec.missing_codes.items())
         yield (
-            f"Table {name}: {table.spec.text_encoding}, decimal mark {table.spec.decimal_mark}, names from line "
+            f"Table {name}: {table.spec.text_encoding}, decimal mark “{table.spec.decimal_mark}”, names from line "
             f"{table.spec.column_names_in_row}, missing: {codes or 'no code declared'}."
         )
-    rows = screening.study.spec.rows
+    rows = screening.spec.rows
     yield f"One row is {rows.one_row_is}. Repeated within: {rows.repeated_within or 'not stated'}. Time order: {rows.time_order or 'not stated'}."
 
 
 def _variables(screening: Screening) -> Iterator[str]:
-    for variable in screening.study.data.variables.values():
-        found = summarise(variable, screening.study.spec, screening.study.data)
+    for variable in screening.data.variables.values():
+        found = summarise(variable, screening.spec, screening.data)
         yield f"{variable.spec.label}: {_summary(found, variable.spec.unit)}"
 
 
@@ -63,7 +63,7 @@ def _summary(found: VariableSummary, unit: str | None) -> str:
     spread = (
         f" Smallest, quartiles, largest: {' · '.join(found.five)}{in_unit}." if found.five else " No value is present."
     )
-    return f"n {found.n}; missing: {missing}; {found.distinct} distinct values, largest tie group {found.largest_tie}.{spread}"
+    return f"n {found.n}; missing: {missing}; distinct values: {found.distinct}; largest tie group: {found.largest_tie}.{spread}"
 
 
 def _questions(screening: Screening) -> Iterator[str]:
@@ -102,7 +102,7 @@ def _figures(screening: Screening, name: str, outcome: CheckOutcome) -> str:
 def _printed(screening: Screening, name: str, outcome: CheckOutcome, measure: Measure | None) -> str:
     if measure is None:
         return ""
-    spec = screening.study.spec
+    spec = screening.spec
     numbers = Numbers(
         screening.plain,
         spec.report.coefficient_decimals,

@@ -1,0 +1,63 @@
+"""A screening: everything that may be shown before anything joint is known."""
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import Final
+
+from rankdocket.analysis.analyse import null_choice
+from rankdocket.analysis.check import Check
+from rankdocket.analysis.checks import CHECKS
+from rankdocket.analysis.plain import data_to_plain, screened_to_plain
+from rankdocket.analysis.results import CheckOutcome, Screened
+from rankdocket.analysis.screen import screen_all
+from rankdocket.canonical import Plain
+from rankdocket.study.spec import StudySpec
+from rankdocket.study.table import StudyData
+
+SCHEMA: Final = "urn:rankdocket:screening:1"
+
+BLIND_CHECKS: Final[tuple[Check, ...]] = tuple(check for check in CHECKS if not check.joint)
+"""The checks that look at one variable at a time, or at counts that show no direction."""
+
+
+@dataclass(frozen=True, slots=True)
+class Screening:
+    """What may be shown before anything joint is known.
+
+    Attributes
+    ----------
+    outcomes
+        Association → outcomes of the checks that show nothing joint.
+    plain
+        The same as plain data, with each variable alone.
+    """
+
+    spec: StudySpec
+    data: StudyData
+    screened: Mapping[str, Screened]
+    outcomes: Mapping[str, tuple[CheckOutcome, ...]]
+    plain: Mapping[str, Plain]
+
+    @property
+    def all_met(self) -> bool:
+        """True when no requirement is not met."""
+        return all(outcome.state != "not met" for outcomes in self.outcomes.values() for outcome in outcomes)
+
+
+def screen_study(spec: StudySpec, data: StudyData) -> Screening:
+    """Look at the data and the requirements of a study."""
+    screened = screen_all(spec, data)
+    outcomes = {name: tuple(check.examine(rows, spec) for check in BLIND_CHECKS) for name, rows in screened.items()}
+    plain: dict[str, Plain] = {
+        "schema": SCHEMA,
+        **data_to_plain(spec, data),
+        "associations": {name: _association(rows, outcomes[name], spec) for name, rows in screened.items()},
+    }
+    return Screening(spec, data, screened, outcomes, plain)
+
+
+def _association(rows: Screened, outcomes: tuple[CheckOutcome, ...], spec: StudySpec) -> dict[str, Plain]:
+    plain = screened_to_plain(rows, outcomes)
+    if min(rows.x_ties.distinct, rows.y_ties.distinct) > 1:
+        plain["null"] = null_choice(rows, spec).method
+    return plain
