@@ -8,7 +8,6 @@ strings: integers of any size, fractions ``a/b``, decimals.
 import hashlib
 import json
 from collections.abc import Mapping, Sequence
-from pathlib import Path
 from typing import Final, TypeAlias
 
 Plain: TypeAlias = "str | int | bool | Mapping[str, Plain] | Sequence[Plain] | None"
@@ -44,12 +43,6 @@ def sha256(data: bytes) -> str:
 def digest_of(data: Plain) -> str:
     """Return the SHA-256 digest of the canonical form of ``data``."""
     return sha256(canonical_bytes(data))
-
-
-def digest_of_folder(folder: Path, pattern: str = "*") -> str:
-    """Return one digest of the names and bytes of all files below ``folder`` that match ``pattern``."""
-    names = sorted(path for path in folder.rglob(pattern) if path.is_file() and "__pycache__" not in path.parts)
-    return digest_of({path.relative_to(folder).as_posix(): sha256(path.read_bytes()) for path in names})
 
 
 def _ordered(data: Plain) -> Plain:

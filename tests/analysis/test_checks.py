@@ -54,10 +54,27 @@ ORDERED = "the plan declares rows in time order, and the test at hand exchanges 
 DECLARED = "the plan declares the rows independent"
 NO_ROW = "no complete row was left to look at"
 REACHED = "alpha could be reached"
-UNREACHED = "no result with these rows and ties could reach alpha"
+SHARED = "alpha could be reached, but not if every other test of the family failed"
+UNREACHED = "no result of this plan with these rows could reach alpha"
 TOO_FEW = "too few rows for a look at two halves"
 FLAT_HALF = "a variable is constant in one half of the rows"
 ONE_WAY = "the two halves of x do not lean in opposite directions"
+OPPOSED = "the direction in the lower half of x is opposite to that in the upper half"
+
+TWENTY_TWO = " ".join(str(place) for place in range(1, 23))
+LEANS_BY_03 = (1, 6, 7, 4, 2, 8, 11, 10, 9, 5, 3)
+"""Eleven places whose squared differences from 1 ... 11 sum to 154."""
+LEANS_BY_029 = (3, 8, 7, 1, 5, 10, 4, 2, 11, 9, 6)
+"""The same with a sum of 156."""
+
+
+def bent(lower: tuple[int, ...], upper: tuple[int, ...]) -> str:
+    """Return values that lean upwards as the first half does and then downwards as the second does."""
+    return " ".join(str(value) for value in (*lower, *(12 - value for value in upper)))
+
+
+def drawn_at(alpha: str) -> str:
+    return DRAWN.replace("0.05", alpha)
 
 
 def limits(fewest: int = 3, missing: str = "1", tied: str = "1", then: str = "estimate without test") -> str:
@@ -146,9 +163,37 @@ CASES = (
         "attainable_p",
         replace(FIVE, associations={f"A{place}": association() for place in range(1, 5)}),
         "doubtful",
-        "alpha could be reached, but not if every other test of the family failed",
+        SHARED,
         ("0.05", "0.0166666666667"),
     ),
+    # Three tests share 0.05: each could still reach 1/60, which is just enough.
+    Case(
+        "attainable_p",
+        replace(FIVE, associations={f"A{place}": association() for place in range(1, 4)}),
+        "met",
+        REACHED,
+        ("0.05", "0.0166666666667"),
+    ),
+    # One of 20 distinct orderings is the most extreme: 1/20 is alpha itself, and a p at alpha is shown.
+    Case(
+        "attainable_p",
+        replace(FIVE, columns={"u": "1 2 3 4 5", "v": "1 1 1 2 3"}, inference="alpha: 0.05, sidedness: one-sided"),
+        "met",
+        REACHED,
+        ("0.05", "0.05"),
+    ),
+    # No p from 999 draws lies below 1/1000 (Phipson & Smyth 2010), although 2/10! would be far below.
+    Case("attainable_p", replace(BASE, inference=drawn_at("0.0009")), "not met", UNREACHED, ("0.0009", "0.001")),
+    Case("attainable_p", replace(BASE, inference=drawn_at("0.001")), "met", REACHED, ("0.001", "0.001")),
+    Case(
+        "attainable_p",
+        replace(BASE, inference=drawn_at("0.0019"), associations={"A1": association(), "A2": association()}),
+        "doubtful",
+        SHARED,
+        ("0.0019", "0.001"),
+    ),
+    # Where the ties allow less than the draws, the ties decide: 1/60 from 999 draws as from all orderings.
+    Case("attainable_p", replace(FIVE, inference=DRAWN), "met", REACHED, ("0.05", "0.0166666666667")),
     Case(
         "attainable_p",
         replace(
@@ -188,7 +233,27 @@ CASES = (
         "shape",
         replace(BASE, columns={"u": TWENTY, "v": HILL}, inference=DRAWN),
         "doubtful",
-        "the direction in the lower half of x is opposite to that in the upper half",
+        OPPOSED,
+    ),
+    # Two halves of eleven rows lean apart by 1 - 6 * 154/1320 = 0.3 each: that is just far enough.
+    Case(
+        "shape",
+        replace(BASE, columns={"u": TWENTY_TWO, "v": bent(LEANS_BY_03, LEANS_BY_03)}, inference=DRAWN),
+        "doubtful",
+        OPPOSED,
+    ),
+    # The upper half leans by 1 - 6 * 156/1320 = 0.291 only, whichever way round.
+    Case(
+        "shape",
+        replace(BASE, columns={"u": TWENTY_TWO, "v": bent(LEANS_BY_03, LEANS_BY_029)}, inference=DRAWN),
+        "met",
+        ONE_WAY,
+    ),
+    Case(
+        "shape",
+        replace(BASE, columns={"u": TWENTY_TWO, "v": bent(LEANS_BY_029, LEANS_BY_03)}, inference=DRAWN),
+        "met",
+        ONE_WAY,
     ),
     Case("shape", replace(BASE, columns={"u": RISING, "v": FALLING}), "not examined", TOO_FEW),
     Case(

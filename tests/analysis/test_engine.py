@@ -213,12 +213,12 @@ def test_a_cell_that_is_no_finite_number_is_an_input_fault(text: str) -> None:
     ],
     ids=["silence", "repeated", "time order"],
 )
-def test_without_declared_independence_only_the_test_is_withheld(rows: str, reason: str) -> None:
-    """The estimate and its interval stand; nothing that rests on a test does."""
+def test_without_declared_independence_the_estimate_stands_alone(rows: str, reason: str) -> None:
+    """Test and interval both need rows that are independent; nothing that rests on either is given."""
     found = study(RISING, RISING, rows=rows).analysed()
     result = found.results["A1"]
     assert estimated(result).coefficient.value == 1
-    assert isinstance(result.interval, Interval)
+    assert result.interval == NoInterval(reason)
     assert result.test == Withheld(reason)
     assert (result.comparisons.t_value_p, result.comparisons.doubled_p) == (None, None)
     assert (found.findings["A1"].word, found.findings["A1"].p_adjusted) == ("withheld", None)
@@ -241,6 +241,35 @@ def test_a_plan_that_asks_for_more_rows_withholds_what_it_says() -> None:
     assert isinstance(results["test with caveat"].test, RankTest)
     words = {answer: analysis.findings["A1"].word for answer, analysis in found.items()}
     assert words == {"estimate without test": "withheld", "withhold all": "withheld", "test with caveat": "shown"}
+
+
+def test_dependent_rows_give_their_own_reason_for_the_missing_interval() -> None:
+    """Also where no rule would have made one, and where the test is withheld for more than one reason."""
+    reason = "the plan does not say whether rows are repeated or in time order"
+    tau = {"A1": association(more="coefficient: Kendall tau-b")}
+    many = "fewest_complete_rows: 11, if_not_met: estimate without test"
+    for parts in ({"associations": tau}, {"requirements": many}):
+        result = study(RISING, RISING, rows="leave_out: []", **parts).analysed().results["A1"]
+        assert result.interval == NoInterval(reason)
+        assert isinstance(result.test, Withheld)
+    one = study("7 7 7 7", "1 2 3 4", rows="leave_out: []").analysed().results["A1"]
+    assert one.interval == NoInterval("the first variable has one value in all complete rows")
+
+
+@pytest.mark.parametrize(
+    ("inference", "smallest"),
+    [
+        ("alpha: 0.05", Fraction(2, 3_628_800)),
+        (ONE_SIDED, Fraction(1, 3_628_800)),
+        ("alpha: 0.05, p_value: {by: permutation, permutations: 999, seed: 5}", Fraction(1, 1000)),
+        ("alpha: 0.05, p_value: {by: permutation, permutations: 1999, seed: 5}", Fraction(1, 2000)),
+    ],
+)
+def test_the_smallest_p_is_that_of_the_null_that_is_used(inference: str, smallest: Fraction) -> None:
+    """Ten rows: 2/10! over all orderings, and never below 1/(B + 1) from B draws (Phipson & Smyth 2010)."""
+    result = study(RISING, RISING, inference=inference).analysed().results["A1"]
+    assert result.smallest_attainable_p == smallest
+    assert rank_test(result).p >= smallest
 
 
 def test_what_cannot_be_estimated_is_not_called_withheld() -> None:

@@ -13,8 +13,9 @@ from analysis.invented import FALLING, MIXED, RISING, Invented, association
 from rankdocket.analysis.analyse import adjustment_of, analyse
 from rankdocket.analysis.decide import decide
 from rankdocket.analysis.family import family_of, family_size
-from rankdocket.analysis.results import Analysis, Finding, RankTest
+from rankdocket.analysis.results import Analysis, AssociationAnalysis, Finding, RankTest, Withheld
 from rankdocket.errors import InputError
+from rankdocket.stats.null import TailCounts
 from rankdocket.vocabulary import FAMILIES, FINDINGS, FindingWord
 
 ONE_SIDED = "alpha: 0.05, sidedness: one-sided"
@@ -237,3 +238,82 @@ def test_draws_that_find_nothing_do_not_give_a_p_of_0() -> None:
     assert test.p_interval is not None
     assert test.p_interval[0] == 0
     assert round(Decimal(test.p_interval[1]), 6) == Decimal("0.003686")
+
+
+DRAWS = 999
+
+
+def as_if_drawn(result: AssociationAnalysis, hits: int) -> AssociationAnalysis:
+    """Return the association as if ``hits`` of 999 draws had been as extreme as the data."""
+    assert isinstance(result.test, RankTest)
+    tails = TailCounts("drawn permutations", hits, DRAWS, hits, DRAWS)
+    p_interval = tails.interval("two-sided", Decimal("0.95"))
+    return replace(result, test=replace(result.test, tails=tails, p=tails.p("two-sided"), p_interval=p_interval))
+
+
+def with_hits(*hits: int, role: str = "primary", several: str = "") -> dict[str, Finding]:
+    """Return the findings of as many associations, each drawn with so many hits."""
+    plan = {f"A{place}": association(role=role) for place, _ in enumerate(hits, start=1)}
+    analysis = replace(Invented(), associations=plan, inference=f"alpha: 0.05{several}").analysed()
+    results = {
+        name: as_if_drawn(result, found) for (name, result), found in zip(analysis.results.items(), hits, strict=True)
+    }
+    return dict(decide(results, analysis.spec, adjustment_of(analysis.spec)))
+
+
+OWN_P = ", several_tests: {among: none, reason: each question is its own}"
+UNADJUSTED = ", several_tests: {adjust: none, reason: each question is its own}"
+
+
+def test_draws_leave_open_what_the_adjusted_ends_of_their_interval_leave_open() -> None:
+    """Five tests, 9 of 1,000: p 0.009 (0.0035 to 0.0157) is 0.045 adjusted and shown; 5 times 0.0157 is above alpha."""
+    finding = with_hits(8, 500, 600, 700, 800)["A1"]
+    assert (finding.word, finding.p_adjusted) == ("shown", Fraction(45, 1000))
+    assert finding.undecided_by_draws
+
+
+def test_draws_whose_raw_interval_holds_alpha_may_still_decide() -> None:
+    """Second of five, 44 of 1,000: p 0.044 (0.031 to 0.058) is 0.176 adjusted; 4 times 0.031 is above alpha as well."""
+    findings = with_hits(0, 43, 600, 700, 800)
+    assert (findings["A2"].word, findings["A2"].p_adjusted) == ("not shown", Fraction(176, 1000))
+    assert not findings["A2"].undecided_by_draws
+    assert not findings["A1"].undecided_by_draws  # 0.001 (0 to 0.0037): 5 times 0.0037 is below alpha
+
+
+@pytest.mark.parametrize(
+    ("hits", "undecided"),
+    [
+        # Ends of the intervals of b of 999 at 0.95 (Clopper & Pearson 1934): 37 up to 0.0507, 36 up to 0.0496.
+        (0, False),
+        (36, False),
+        (37, True),
+        (49, True),
+        # 64 from 0.0497, 65 from 0.0506.
+        (64, True),
+        (65, False),
+        (500, False),
+        (999, False),
+    ],
+)
+@pytest.mark.parametrize("several", ["", OWN_P, UNADJUSTED])
+def test_a_drawn_p_is_undecided_from_where_its_interval_reaches_alpha(hits: int, undecided: bool, several: str) -> None:
+    """Clearly above or below alpha, the error of the draws changes nothing; alone, adjustment does not either."""
+    assert with_hits(hits, several=several)["A1"].undecided_by_draws == undecided
+
+
+def test_the_others_are_held_fixed_when_an_end_is_adjusted() -> None:
+    """Each of three is judged by its own ends; an exact p is never undecided."""
+    assert {name: found.undecided_by_draws for name, found in with_hits(10, 16, 300).items()} == {
+        "A1": True,  # 0.011 (0.005 to 0.0183): 3 times 0.0183 is above alpha, 3 times 0.005 is below
+        "A2": True,  # 0.017 (0.0092 to 0.0259): 2 times 0.0259 is above alpha
+        "A3": False,
+    }
+    assert not any(found.undecided_by_draws for found in with_p("0.049", "0.051").findings.values())
+
+
+def test_without_a_finding_nothing_is_undecided() -> None:
+    """Outside the family the plan decides nothing, and a withheld test has no p."""
+    assert not with_hits(49, role="exploratory", several=OWN_P)["A1"].undecided_by_draws
+    analysis = Invented().analysed()
+    results = {"A1": replace(as_if_drawn(analysis.results["A1"], 49), test=Withheld("the plan says so"))}
+    assert not decide(results, analysis.spec, adjustment_of(analysis.spec))["A1"].undecided_by_draws

@@ -2,6 +2,8 @@
 
 import json
 import re
+import shutil
+import signal
 import subprocess
 import sys
 from collections.abc import Callable
@@ -114,17 +116,20 @@ def test_every_option_and_example_of_help_works(here: Callable[..., Ran], tmp_pa
 
 def test_statuses(issued: Sealed, here: Callable[..., Ran], tmp_path: Path) -> None:
     """0 done and yes, 1 done and no, 2 wrong command line, 3 wrong files, 4 failed: errors on standard error only."""
+    altered = Path(shutil.copytree(issued.study, tmp_path / "altered"))
+    line = (altered / "register.jsonl").read_bytes()
+    (altered / "register.jsonl").write_bytes(line.replace(b"first issue", b"First issue"))
     ended = {
         0: here("issue", "first-look", "--reason", "again", cwd=issued.study.parent),
         1: here("screen", str(STUDIES / "weld-smoke"), cwd=tmp_path),
         2: here("screen", cwd=tmp_path),
         3: here("screen", "nowhere", cwd=tmp_path),
-        4: here("verify", "first-look", "--edition", "7", cwd=issued.study.parent),
+        4: here("issue", "altered", "--reason", "again", cwd=tmp_path),
     }
     assert {status: ran.status for status, ran in ended.items()} == {status: status for status in ended}
     assert [status for status, ran in ended.items() if ran.out] == [0, 1]
     assert [status for status, ran in ended.items() if ran.err] == [2, 3, 4]
-    assert ended[3].err.startswith("nowhere: there is no file 'nowhere'.")
+    assert ended[3].err.startswith("nowhere: there is no such study.")
 
 
 def test_json_is_one_object_on_failure_too(here: Callable[..., Ran], issued: Sealed, tmp_path: Path) -> None:
@@ -133,7 +138,7 @@ def test_json_is_one_object_on_failure_too(here: Callable[..., Ran], issued: Sea
         (("screen", "nowhere"), tmp_path, 3),
         (("issue", "nowhere", "--reason", "x"), tmp_path, 3),
         (("issue", "first-look", "--reason", " "), issued.study.parent, 3),
-        (("verify", "first-look", "--edition", "7"), issued.study.parent, 4),
+        (("verify", "first-look", "--edition", "7"), issued.study.parent, 3),
         (("issue", "first-look", "--reason", "again"), issued.study.parent, 0),
         (("schema",), tmp_path, 0),
     ):
@@ -152,7 +157,7 @@ def test_quiet_prints_no_answer_and_still_tells_errors(
     assert here("issue", "first-look", "--reason", "x", "--quiet", cwd=issued.study.parent) == Ran(0, "", "")
     wrong = here("screen", "nowhere", "--quiet", cwd=tmp_path)
     assert (wrong.status, wrong.out) == (3, "")
-    assert "there is no file" in wrong.err
+    assert "there is no such study" in wrong.err
 
 
 def test_progress_is_shown_on_a_terminal_only(issued: Sealed, drafted: Sealed) -> None:
@@ -188,6 +193,47 @@ def test_a_reader_who_leaves_early_changes_no_status(words: tuple[str, ...], sta
         assert process.stderr is not None
         told = process.stderr.read()
     assert (process.returncode, told) == (status, b"")
+
+
+@pytest.mark.parametrize("as_json", [(), ("--json",)], ids=["words", "JSON"])
+def test_an_answer_that_cannot_be_written_is_no_success(as_json: tuple[str, ...], tmp_path: Path) -> None:
+    """A full disk behind standard output is told in one sentence on standard error, with status 4."""
+    with Path("/dev/full").open("wb") as full:
+        done = subprocess.run(
+            command("schema", *as_json),
+            cwd=tmp_path,
+            env=surroundings(),
+            stdout=full,
+            stderr=subprocess.PIPE,
+            check=False,
+        )
+    told = b"The work is done and its answer could not be written: No space left on device.\n"
+    assert (done.returncode, done.stderr) == (4, told)
+
+
+@pytest.mark.parametrize("request_to_end", [signal.SIGINT, signal.SIGTERM])
+def test_a_request_to_end_after_the_answer_changes_nothing(request_to_end: signal.Signals, issued: Sealed) -> None:
+    """Once the answer is out, no interrupt says that nothing was done: one answer, nothing else, status 0."""
+    with subprocess.Popen(
+        command("issue", "first-look", "--reason", "once more", "--json"),
+        cwd=issued.study.parent,
+        env=surroundings(),
+        stdout=subprocess.PIPE,
+        stderr=subprocess.PIPE,
+    ) as process:
+        assert process.stdout is not None
+        first = process.stdout.readline()
+        process.send_signal(request_to_end)
+        rest, told = process.communicate()
+    assert (process.returncode, rest, told) == (0, b"", b"")
+    assert json.loads(first)["edition"] == "1"
+
+
+def test_a_request_to_end_that_was_ignored_stays_ignored(here: Callable[..., Ran], tmp_path: Path) -> None:
+    """Who started the program so that it ignores requests to end finds that it does."""
+    signal.signal(signal.SIGTERM, signal.SIG_IGN)
+    assert here("--version", cwd=tmp_path).status == 0
+    assert signal.getsignal(signal.SIGTERM) is signal.SIG_IGN
 
 
 @pytest.mark.parametrize("words", [("--help",), ("issue", "--help"), ("--version",), ("isue",)])

@@ -86,10 +86,38 @@ def test_a_number_that_names_something_has_no_commas() -> None:
     assert numbers(20260).label("v").text == "20260"
 
 
-@pytest.mark.parametrize(("value", "text"), [("3.5", "3.5"), ("-2", "\u22122"), ("0.05", "0.05"), ("12.25", "12.25")])
-def test_a_rank_or_a_limit_is_printed_with_all_its_digits(value: str, text: str) -> None:
-    """Nothing is rounded there."""
+@pytest.mark.parametrize(
+    ("value", "text"),
+    [
+        ("3.5", "3.5"),
+        ("-2", "\u22122"),
+        ("0.05", "0.05"),
+        ("12.25", "12.25"),
+        ("999.75", "999.75"),
+        ("1000", "1,000"),
+        ("-1234567.25", "\u22121,234,567.25"),
+    ],
+)
+def test_a_rank_or_a_sum_of_squares_is_printed_with_all_its_digits(value: str, text: str) -> None:
+    """Nothing is rounded there; thousands are grouped as in counts."""
     assert numbers(value).as_filed("v").text == text
+
+
+@pytest.mark.parametrize(
+    ("value", "style", "text"),
+    [
+        ("0.05", "leading zero", "0.05"),
+        ("0.30", "leading zero", "0.30"),
+        ("-0.612637", "leading zero", "\u22120.612637"),
+        ("0.05", "no leading zero", ".05"),
+        ("-0.612637", "no leading zero", "\u2212.612637"),
+        ("1", "no leading zero", "1"),
+        ("1.00000000000", "no leading zero", "1.00000000000"),
+    ],
+)
+def test_a_level_keeps_its_digits_and_has_the_zero_of_the_style(value: str, style: NumberStyle, text: str) -> None:
+    """Alpha, a size of interest and a worksheet’s coefficient stand beside numbers of that style."""
+    assert numbers(value, style=style).level("v").text == text
 
 
 @pytest.mark.parametrize(
@@ -227,12 +255,15 @@ def test_without_leading_zero_a_coefficient_begins_at_the_point(value: str, text
         ("0.0503", "0.0503"),
         ("0.05", "0.05 (exactly)"),
         ("0.0500", "0.05 (exactly)"),
-        ("0.9996", "0.9996"),
+        ("0", f"<{NARROW_SPACE}0.001"),
+        ("0.9994", "0.999"),
+        ("0.9995", f">{NARROW_SPACE}0.999"),  # half to even it would read 1.000
+        ("0.999999999999", f">{NARROW_SPACE}0.999"),
         ("1", "1"),
     ],
 )
 def test_a_p_value_is_printed_on_its_side_of_alpha(value: str, text: str) -> None:
-    """Digits are added near alpha and near 1; equality is said in words; nothing below the last decimal is 0."""
+    """Digits are added near alpha; equality is said in words; nothing small reads as 0, nothing below 1 as 1."""
     assert p_text(value) == text
 
 
@@ -241,6 +272,21 @@ def test_the_number_style_holds_for_p_values_too() -> None:
     assert p_text("0.0238095", style="no leading zero") == ".024"
     assert p_text("0.05", style="no leading zero") == ".05 (exactly)"
     assert p_text("0.0002", style="no leading zero") == f"<{NARROW_SPACE}.001"
+    assert p_text("0.9998", style="no leading zero") == f">{NARROW_SPACE}.999"
+
+
+@pytest.mark.parametrize(
+    ("value", "decimals", "text"),
+    [
+        ("0.995", 2, f">{NARROW_SPACE}0.99"),
+        ("0.9949", 2, "0.99"),
+        ("0.99996", 4, f">{NARROW_SPACE}0.9999"),
+        ("0.99996", 5, "0.99996"),
+    ],
+)
+def test_the_bound_near_1_has_the_decimals_of_the_report(value: str, decimals: int, text: str) -> None:
+    """A p-value that rounds to 1 is said to lie above the largest printed value below it."""
+    assert p_text(value, p_value=decimals) == text
 
 
 @pytest.mark.parametrize(
@@ -263,6 +309,7 @@ def test_an_alpha_below_the_last_decimal_is_respected(value: str, text: str) -> 
 @example("0.0500000000001", 50_000, 3)
 @example("0.0499999999999", 50_000, 2)
 @example("0.000000000001", 1, 6)
+@example("0.9995", 50_000, 3)
 def test_the_display_never_changes_the_side_of_alpha(value: str, millionths: int, decimals: int) -> None:
     """What a reader concludes from the printed p is what follows from the filed one."""
     alpha, exact = Decimal(millionths) / 1_000_000, Decimal(value)
@@ -272,6 +319,9 @@ def test_the_display_never_changes_the_side_of_alpha(value: str, millionths: int
         bound = as_number(text[2:])
         assert exact < bound <= alpha
         return
+    if text.startswith(">"):
+        assert alpha < as_number(text[2:]) < exact < 1
+        return
     printed = as_number(text.removesuffix(" (exactly)"))
     assert (printed <= alpha) == (exact <= alpha)
     assert printed > 0
@@ -280,29 +330,17 @@ def test_the_display_never_changes_the_side_of_alpha(value: str, millionths: int
 
 @given(filed_values(lowest=10**9), st.integers(1, 50))
 def test_a_p_value_is_rounded_once(value: str, hundredths: int) -> None:
-    """Half to even, from the filed value, at as many places as are printed."""
+    """Half to even, from the filed value, at as many places as are printed; 1 only for 1."""
     text = p_text(value, alpha=str(Decimal(hundredths) / 100))
     assume(not text.endswith("(exactly)"))
+    rounds_to_1 = Decimal(value).quantize(Decimal("0.001"), rounding=ROUND_HALF_EVEN) == 1
+    assert text.startswith(">") == (rounds_to_1 and Decimal(value) < 1)
+    assume(not text.startswith(">"))
     printed = as_number(text)
     assert printed > 0
     assert printed == Decimal(value).quantize(
         Decimal(1).scaleb(int(printed.as_tuple().exponent)), rounding=ROUND_HALF_EVEN
     )
-
-
-@pytest.mark.parametrize(
-    ("value", "text"),
-    [
-        ("0.0162", "0.0162"),
-        ("0.05", "0.0500"),
-        ("0.00004", f"<{NARROW_SPACE}0.0001"),
-        ("0", f"<{NARROW_SPACE}0.0001"),
-        ("1", "1.0000"),
-    ],
-)
-def test_a_comparison_has_one_decimal_more_and_is_never_0(value: str, text: str) -> None:
-    """The t value of a perfect order gives a p of 0; no p is printed as 0."""
-    assert numbers(value).comparison_p("v").text == text
 
 
 @pytest.mark.parametrize(
@@ -319,3 +357,37 @@ def test_a_comparison_has_one_decimal_more_and_is_never_0(value: str, text: str)
 def test_the_smallest_attainable_p_is_printed_down_to_a_millionth(value: str, text: str) -> None:
     """Whoever plans a sample wants to see how far below alpha it could reach, not only that it is small."""
     assert numbers(value).attainable_p("v").text == text
+
+
+@pytest.mark.parametrize(
+    ("value", "alpha", "text"),
+    [
+        ("0", "0.05", f"<{NARROW_SPACE}0.000001"),  # the lower end of the interval of a p with no draw as extreme
+        ("0", "0.0000001", f"<{NARROW_SPACE}0.0000001"),
+        ("0.000000999", "0.05", f"<{NARROW_SPACE}0.000001"),
+        ("0.000001", "0.05", "0.000001"),
+        ("0.00096", "0.05", "0.0010"),
+        ("0.00052", "0.0005", "0.00052"),
+        ("0.00048", "0.0005", "0.00048"),
+        ("0.0005", "0.0005", "0.0005 (exactly)"),
+        ("0.00000006", "0.0000001", f"<{NARROW_SPACE}0.0000001"),
+    ],
+)
+def test_a_small_p_stays_on_its_side_of_a_small_alpha_and_is_never_0(value: str, alpha: str, text: str) -> None:
+    """What bounds it lies at or below alpha; what is printed of it lies on the side on which it lies itself."""
+    assert numbers(value, alpha=alpha).attainable_p("v").text == text
+
+
+@given(filed_values(), st.integers(1, 500_000), st.integers(2, 6))
+@example("0.00052", 500, 3)
+def test_the_display_of_a_small_p_never_changes_its_side_of_alpha(value: str, millionths: int, decimals: int) -> None:
+    """As for every other p-value."""
+    alpha, exact = Decimal(millionths) / 1_000_000, Decimal(value)
+    text = numbers(value, alpha=str(alpha), p_value=decimals).attainable_p("v").text
+    assert text.endswith("(exactly)") == (exact == alpha)
+    if text.startswith(("<", ">")):
+        assert (exact <= alpha) == text.startswith("<")
+        return
+    printed = as_number(text.removesuffix(" (exactly)"))
+    assert printed > 0
+    assert (printed <= alpha) == (exact <= alpha)

@@ -3,7 +3,7 @@
 import pytest
 
 from rankdocket.document.model import Emphasis, Link, Number, Prose, Supplied
-from rankdocket.document.prose import EMPTY, generated_text, joined, listed, only, prose, text_of
+from rankdocket.document.prose import generated_text, joined, listed, only, prose, text_of
 
 THREE = Number("tally/associations", "3", "3")
 
@@ -57,7 +57,7 @@ def test_parts_are_joined_and_listed() -> None:
     """Empty parts leave no separator behind."""
     parts = (only("a"), only("b"), only("c"))
     assert text_of(joined(parts)) == "a b c"
-    assert text_of(joined((EMPTY, only("a"), EMPTY, only("b")), "; ")) == "a; b"
+    assert text_of(joined((Prose(()), only("a"), Prose(()), only("b")), "; ")) == "a; b"
     assert [text_of(listed(parts[:k])) for k in range(4)] == ["", "a", "a and b", "a, b and c"]
 
 

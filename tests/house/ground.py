@@ -44,6 +44,7 @@ _MADE_BY_TOOLS = {
     "dist",
     ".mypy_cache",
     ".pytest_cache",
+    ".import_linter_cache",
     ".ruff_cache",
     ".hypothesis",
 }

@@ -2,6 +2,7 @@
 
 from decimal import Decimal
 from fractions import Fraction
+from random import Random
 
 import numpy as np
 from hypothesis import assume, given, settings
@@ -78,6 +79,20 @@ def test_both_forms_of_rho_agree_to_every_filed_digit(data: tuple[list[int], lis
     assert 4 * form.x_term == coefficient.x_square
     if not tie_groups(x).has_ties and not tie_groups(y).has_ties:
         assert short_form(len(x), squared_differences(x, y)) == Fraction(coefficient.numerator, coefficient.x_square)
+
+
+@settings(max_examples=50)
+@given(st.integers(2, 400), st.integers(1, 400), st.randoms(use_true_random=False))
+def test_both_forms_of_rho_agree_in_many_rows_too(n: int, distinct: int, chance: Random) -> None:
+    """Between coarse ties and none: a last digit that only seldom differs would show here."""
+    x, y = (_codes([chance.randrange(distinct) for _ in range(n)]) for _ in range(2))
+    coefficient = rho(x, y)
+    assume(coefficient.is_defined)
+    form = tie_corrected_rho(x, y)
+    assert form.decimal_text == coefficient.decimal_text()
+    assert 2 * form.numerator == coefficient.numerator
+    assert 4 * form.x_term == coefficient.x_square
+    assert 4 * form.y_term == coefficient.y_square
 
 
 @given(rows)

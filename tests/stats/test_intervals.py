@@ -42,6 +42,26 @@ def test_the_cap_is_lower_when_the_ties_are_coarse() -> None:
     assert tie_cap(np.array([0, 0, 1, 1]), np.array([0, 0, 1, 1])) == pytest.approx(0.5, rel=1e-15)
 
 
+def test_the_cap_rests_on_the_widest_step_of_unequal_tie_groups() -> None:
+    """Groups of 1, 1 and 6 have midranks 1, 2 and 5.5: the widest step is 3.5, the squares sum to 24.5 (by hand).
+
+    So the cap against itself is 1 − 3.5²/(2·24.5) = 0.75; against eight untied rows, whose step is 1 and whose
+    squares sum to 42, it is 1 − 3.5/(2√(24.5·42)).
+    """
+    grouped, untied = np.array([0, 1, 2, 2, 2, 2, 2, 2]), np.arange(8)
+    assert tie_cap(grouped, grouped) == pytest.approx(0.75, rel=1e-15)
+    assert tie_cap(grouped[::-1], grouped) == pytest.approx(0.75, rel=1e-15)
+    mixed = 1 - 3.5 / (2 * sqrt(24.5 * 42))
+    assert tie_cap(grouped, untied) == tie_cap(untied, grouped) == pytest.approx(mixed, rel=1e-15)
+
+
+def test_the_cap_of_one_lone_row_and_of_two_rows() -> None:
+    """Ten ties and a lone row: midranks 5.5 and 11, squares 27.5, so 1 − 5.5²/55 = 0.45; two rows leave 0 (by hand)."""
+    lone = np.array([0] * 10 + [1])
+    assert tie_cap(lone, lone) == pytest.approx(0.45, rel=1e-15)
+    assert tie_cap(np.array([0, 1]), np.array([0, 1])) == pytest.approx(0, abs=1e-15)
+
+
 def test_perfect_order_still_has_an_interval_with_width() -> None:
     """At rho = 1 the interval ends at 1 and begins where the cap less its half-width lies; −1 mirrors it."""
     cap = 1 - 6 / (10 * 99)

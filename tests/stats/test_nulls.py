@@ -1,9 +1,11 @@
 """Nulls, tails, draws and the choice between them."""
 
 import re
+import struct
 import sys
 from decimal import Decimal
 from fractions import Fraction
+from hashlib import sha256
 from math import factorial
 
 import numpy as np
@@ -125,6 +127,27 @@ def test_what_is_beyond_the_budget_is_drawn(name: CoefficientName, x: tuple[int,
     assert forecast is None or forecast.operations > OPERATIONS_BUDGET or forecast.bytes > BYTES_BUDGET
 
 
+@pytest.mark.parametrize(
+    ("name", "x", "y", "of_operations", "of_bytes"),
+    [
+        ("Spearman rho", (1,) * 37, (6, 7, 7, 8, 9), False, True),
+        ("Spearman rho", (1,) * 66, (20, 21, 25), False, True),
+        ("Kendall tau-b", (47, 48), (47, 48), True, False),
+        ("Spearman rho", (2,) * 18 + (1,), (6, 7, 7, 8, 9), True, True),
+        ("Spearman rho", (1,) * 17, (1,) * 17, False, False),
+    ],
+)
+def test_either_budget_alone_is_enough_to_stop_a_complete_count(
+    name: CoefficientName, x: tuple[int, ...], y: tuple[int, ...], of_operations: bool, of_bytes: bool
+) -> None:
+    """Time without memory, memory without time, both, and neither."""
+    choice = choose_null(name, TieGroups(x), TieGroups(y), "exact when possible")
+    assert choice.forecast is not None
+    exceeded = (choice.forecast.operations > OPERATIONS_BUDGET, choice.forecast.bytes > BYTES_BUDGET)
+    assert exceeded == (of_operations, of_bytes)
+    assert choice.needs_draws == any(exceeded)
+
+
 @pytest.mark.parametrize("name", COEFFICIENTS)
 def test_a_reason_is_one_sentence_without_numbers(name: CoefficientName) -> None:
     """Every reason can be printed as it stands."""
@@ -179,6 +202,20 @@ def test_a_stream_belongs_to_its_address() -> None:
     assert stream(7, "study", "A1", "null").bit_generator.random_raw(4).tolist() == first
     for other in (stream(8, "study", "A1", "null"), stream(7, "study", "A2", "null"), stream(7, "studyA1", "", "null")):
         assert other.bit_generator.random_raw(4).tolist() != first
+
+
+def test_a_stream_starts_from_the_seed_and_every_word_of_the_digest() -> None:
+    """SHA-256 (FIPS 180-4) has eight words of 32 bits: all of them, in their order, behind the seed."""
+    words = struct.unpack(">8I", sha256(b"study\x1fA1\x1fnull").digest())
+    drawn = stream(7, "study", "A1", "null").bit_generator.random_raw(4).tolist()
+
+    def bits(*entropy: int) -> list[int]:
+        return list(np.random.PCG64(np.random.SeedSequence([7, *entropy])).random_raw(4).tolist())
+
+    assert bits(*words) == drawn
+    for place in range(8):
+        assert bits(*words[:place], *words[place + 1 :]) != drawn
+        assert bits(*words[:place], words[place] ^ 1, *words[place + 1 :]) != drawn
 
 
 def test_the_attainable_range_of_a_halved_variable() -> None:

@@ -57,3 +57,8 @@ def test_faults_come_in_file_order_and_once() -> None:
     whole = fault(Place("s.yaml"), "", Message.NAME, "whole")
     other = fault(Place("a.csv", 1), "", Message.NAME, "other")
     assert in_file_order([late, early, other, whole, late]) == (whole, early, late, other)
+
+
+def test_no_message_says_what_the_command_line_says() -> None:
+    """That nothing was computed is said once, behind the last message, and never by a message of this room."""
+    assert [file.name for file in ROOM.glob("*.py") if "nothing was computed" in file.read_text("utf-8").lower()] == []

@@ -47,7 +47,7 @@ TAKEN_AWAY = (
     (
         "    role: primary\n",
         "",
-        "s.yaml:26:3: associations.A1: role is missing. Write role: … (message 27)",
+        "s.yaml:26:3: associations.A1: role is missing. Write role: and one of: primary, secondary, exploratory. (message 27)",
     ),
     (
         "expected_sign: negative",
@@ -365,7 +365,7 @@ FOUND_IN_PANEL = (
         "most_missing: 20",
         (
             "s.yaml:81:17: requirements.most_missing: 20 is not possible here. Write a number at least 0 and at most 1. "
-            "A share is written from 0 to 1: 20 percent is 0.20. (message 31)"
+            "20 percent is 0.20. (message 31)"
         ),
     ),
     (

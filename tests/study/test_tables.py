@@ -103,14 +103,14 @@ REFUSED: tuple[tuple[bytes | str, dict[str, object], str], ...] = (
         "a,,b,\n1,2,3,4\n",
         {},
         (
-            f"{FILE}:1: row 1: the column name is blank in field 2, 4 of 4. Give every column a name in the file, or "
+            f"{FILE}:1: row 1: the column name is blank in 2 fields: 2, 4; the row has 4. Give every column a name in the file, or "
             "write column_names_in_row. (message 46)"
         ),
     ),
     (
         "a,b, a\n1,2,3\n",
         {},
-        f'{FILE}:1: row 1: the column name "a" stands in fields 1, 3. Rename one of them in the file. (message 46)',
+        f'{FILE}:1: row 1: the column name "a" stands in 2 fields: 1, 3. Rename one of them in the file. (message 46)',
     ),
     (
         'a,b\n1,2\n1,"2\n3,4\n',
@@ -139,32 +139,29 @@ REFUSED: tuple[tuple[bytes | str, dict[str, object], str], ...] = (
     (
         "",
         {},
-        (
-            f"{FILE}: data.survey: no column names begin in row 1; the file has 0 lines. Write column_names_in_row as in "
-            "the file. (message 47)"
-        ),
+        (f"{FILE}: data.survey: the file is empty. Ask for the file again, with its data. (message 60)"),
     ),
     (
         "a,b\n",
         {},
         (
-            f"{FILE}: data.survey: no data stand from row 2 on; the file has 1 line. Write first_data_row as in the file. "
-            "(message 47)"
+            f"{FILE}:1: data.survey: the file holds column names and no data. Ask for the file again, with its data. "
+            "(message 60)"
         ),
     ),
     (
         "a,b\n1,2\n",
         {"units_in_row": 4},
         (
-            f"{FILE}: data.survey: no units begin in row 4; the file has 2 lines. Write units_in_row as in the file. "
-            "(message 47)"
+            f"{FILE}: data.survey: no units begin in row 4; the file has 2 lines. Write units_in_row: and a row "
+            "from 1 to 2. Or leave it out. (message 47)"
         ),
     ),
     (
         "a,b\n1,2\n",
         {"last_data_row": 9},
         (
-            f"{FILE}: data.survey: last_data_row is 9; the file has 2 lines. Write 2, or leave last_data_row out. "
+            f"{FILE}: data.survey: last_data_row is 9; the file has 2 lines. Write last_data_row: 2, or leave it out. "
             "(message 47)"
         ),
     ),
@@ -172,7 +169,7 @@ REFUSED: tuple[tuple[bytes | str, dict[str, object], str], ...] = (
         b"a,b\n1,2\n\xb5,2\n",
         {},
         (
-            f'{FILE}:3: data.survey: the bytes B5 2C 32 0A are no text of utf-8; near "a,b<U+000A>1,2<U+000A>". If the '
+            f'{FILE}:3: data.survey: the bytes B5 2C 32 0A are no text of utf-8; near "a,b<U+000A>1,2<U+000A>"; 1 line: 3. If the '
             "file was saved so write: text_encoding: windows-1252 (message 44)"
         ),
     ),
@@ -180,7 +177,7 @@ REFUSED: tuple[tuple[bytes | str, dict[str, object], str], ...] = (
         b"a,b\n\x81,2\n",
         {"text_encoding": "windows-1252"},
         (
-            f'{FILE}:2: data.survey: the bytes 81 2C 32 0A are no text of windows-1252; near "a,b<U+000A>". Write '
+            f'{FILE}:2: data.survey: the bytes 81 2C 32 0A are no text of windows-1252; near "a,b<U+000A>"; 1 line: 2. Write '
             "text_encoding as the file was saved. (message 44)"
         ),
     ),

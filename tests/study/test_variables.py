@@ -101,7 +101,7 @@ NUMBERS: tuple[tuple[list[str], dict[str, Any], str], ...] = (
         {},
         (
             f'{FILE}:2: row 2, column secchi: found "1.2.3". With decimal_mark: "." this is not a number; 1 row: 2. Mend '
-            "the file at its source, or declare the text in missing_codes if it means missing. (message 1)"
+            'the file at its source; or, if these mean missing, write: missing_codes: ["", "n/a", "1.2.3"] (message 1)'
         ),
     ),
     (
@@ -133,7 +133,8 @@ NUMBERS: tuple[tuple[list[str], dict[str, Any], str], ...] = (
         {},
         (
             f'{FILE}:2: row 2, column secchi: found "-inf". This is not a number; 1 row: 2. Rows by text: "-inf" in 1. '
-            "Infinity is no measurement; mend the file at its source, or declare the text in missing_codes. (message 1)"
+            "Infinity is no measurement. Mend the file at its source; or, if these mean missing, write: missing_codes: "
+            '["", "n/a", "-inf"] (message 1)'
         ),
     ),
 )
@@ -165,7 +166,8 @@ def test_counts_are_whole_and_not_negative() -> None:
     assert messages(lambda: read_variable(column(["1", "-1", "2.5"]), COUNT)) == [
         (
             f'{FILE}:3: row 3, column secchi: found "-1". A count is a whole number from 0; 2 rows: 3, 4. Write scale: '
-            "measured if the column is no count, or declare a code in missing_codes. (message 49)"
+            'measured if the column is no count; or, if these mean missing, write: missing_codes: ["", "n/a", "-1", '
+            '"2.5"] (message 49)'
         )
     ]
 
@@ -193,6 +195,33 @@ def test_an_unknown_label_is_told_with_the_nearest() -> None:
     ]
 
 
+def test_a_number_is_not_taken_for_a_misspelt_other_number() -> None:
+    """11 is not a misspelt 1: among numbers no label is suggested, among words beside them one is."""
+    graded = replace(ORDERED, lowest_to_highest=("1", "2", "10", "best"), other_spellings={})
+    assert messages(lambda: read_variable(column(["1", "11", "bets"]), graded)) == [
+        (
+            f'{FILE}:3: row 3, column secchi: "11" is not in lowest_to_highest; 1 row: 3. Write it under other_spellings '
+            'with the label it means: {"11": its label}, or under missing_codes. (message 4)'
+        ),
+        (
+            f'{FILE}:4: row 4, column secchi: "bets" is not in lowest_to_highest (nearest: "best"); 1 row: 4. Write it '
+            'under other_spellings with the label it means: {"bets": "best"}, or under missing_codes. (message 4)'
+        ),
+    ]
+
+
+def test_no_number_is_suggested_in_the_spec_either() -> None:
+    """Another spelling whose label is an unknown number gets the list of labels."""
+    grades = "scale: ordered\n    lowest_to_highest: [1, 2, 10]\n    other_spellings: {ten: 11}"
+    text = changed(PLANKTON, ("    unit: \u00b5g/L\n    scale: measured", f"    {grades}"))
+    assert messages(lambda: read_spec(text, "s.yaml")) == [
+        (
+            's.yaml:20:28: variables.chlorophyll.other_spellings: "11" is not in lowest_to_highest. Labels: 1, 2, 10. '
+            "(message 4)"
+        )
+    ]
+
+
 @pytest.mark.parametrize("scale", ["ordered", "two-valued"])
 def test_labels_without_an_order_are_listed_as_they_come(scale: Scale) -> None:
     """Without an order, the labels of the file are listed, and no order is made up."""
@@ -213,7 +242,8 @@ def test_two_values_are_two_numbers_or_two_labels() -> None:
     assert messages(lambda: read_variable(column(["1", "0", "2", "1"]), TWO_VALUED)) == [
         (
             f'{FILE}:4: row 4, column secchi: "2" is a third value; a two-valued column has two. Rows by value: 1 in 2, 0 '
-            "in 1, 2 in 1. Write another scale, or declare a code in missing_codes. (message 50)"
+            'in 1, 2 in 1. Write another scale; or, if "2" means missing, write: missing_codes: ["", "n/a", "2"] '
+            "(message 50)"
         )
     ]
 

@@ -12,6 +12,7 @@ from rankdocket.errors import Place
 from rankdocket.study import form
 from rankdocket.study.reader import read_spec
 from rankdocket.study.spec import StudySpec
+from rankdocket.study.wording import composed
 from rankdocket.study.writer import spec_as_used
 from study.specs import PANEL, PLANKTON
 
@@ -85,13 +86,17 @@ def yaml_text(value: object) -> str:
 @st.composite
 def spec_texts(draw: st.DrawFn) -> str:
     """Draw the text of a sound spec with arbitrary words in it."""
+    columns = draw(st.lists(TEXT, min_size=4, max_size=4, unique_by=composed))
+    role = draw(st.sampled_from(vocabulary.ROLES))
+    # A family without any association is refused.
+    families = [family for family in vocabulary.FAMILIES if family in ("all", "none") or role in family]
     names = draw(st.lists(NAME, min_size=2, max_size=4, unique_by=str.casefold))
     table = draw(NAME)
     codes = draw(st.dictionaries(SHORT.map(str.strip), TEXT, max_size=4))
     variables: dict[str, object] = {}
-    for name in names:
+    for name, column in zip(names, columns, strict=False):
         variables[name] = {
-            "column": {"table": table, "name": draw(TEXT)},
+            "column": {"table": table, "name": column},
             "label": draw(TEXT),
             "unit": draw(TEXT),
             "scale": draw(st.sampled_from([s for s in vocabulary.SCALES if s != "ordered"])),
@@ -124,14 +129,14 @@ def spec_texts(draw: st.DrawFn) -> str:
             "A1": {
                 "between": names[:2],
                 "question": draw(TEXT),
-                "role": draw(st.sampled_from(vocabulary.ROLES)),
+                "role": role,
                 "hypothesis": {"expected_sign": draw(st.sampled_from(vocabulary.EXPECTED_SIGNS))},
             }
         },
         "inference": {
             "alpha": "0.01",
             "p_value": {"seed": str(draw(st.integers(0, form.LARGEST_SEED)))},
-            "several_tests": {"adjust": "none", "reason": draw(TEXT)},
+            "several_tests": {"adjust": "none", "among": draw(st.sampled_from(families)), "reason": draw(TEXT)},
         },
         "requirements": {"most_missing": str(draw(SHARE)), "most_tied": str(draw(SHARE))},
         "report": {"distribution": draw(st.lists(TEXT.map(str.strip), max_size=3, unique=True))},

@@ -1,5 +1,6 @@
 """What the tests of an office's tasks share: copies of studies, the real command line, and a forger's tools."""
 
+import io
 import json
 import os
 import shutil
@@ -10,8 +11,11 @@ from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import Any
 
+from pypdf import PdfWriter
+from pypdf.generic import ArrayObject, NameObject, StreamObject
+
 import rankdocket
-from rankdocket.canonical import sha256
+from rankdocket.canonical import Plain, digest_of, sha256
 from rankdocket.register import chain
 from rankdocket.register.manifest import SUMS_FILE, sha256sums
 
@@ -129,20 +133,44 @@ def keys_in(node: object) -> Iterator[str]:
 
 def forge(study: Path, edition: str, name: str, change: Callable[[str], str]) -> None:
     """Alter a file of an edition and repair everything that tells: list of digests, register line, chain."""
-    folder = study / "editions" / edition
-    before = (folder / name).read_text(encoding="utf-8")
+    path = study / "editions" / edition / name
+    before = path.read_text(encoding="utf-8")
     after = change(before)
     assert after != before
-    (folder / name).write_text(after, encoding="utf-8")
+    path.write_text(after, encoding="utf-8")
+    reseal(study, edition)
+
+
+def reseal(study: Path, edition: str) -> None:
+    """Repair what tells that a file was altered: list of digests, register line, chain."""
+    folder = study / "editions" / edition
     files = {path: data for path, data in snapshot(folder).items() if path != SUMS_FILE}
     sums = sha256sums(files)
     (folder / SUMS_FILE).write_bytes(sums)
+    rewrite_line(study, edition, {"sums": sha256(sums), "analysis": sha256(files["analysis.json"])})
+
+
+def repair_inputs(study: Path, edition: str) -> None:
+    """Repair what the register's line says of spec, data, plan and program, as a thorough forger would."""
+    folder = study / "editions" / edition
+    line = next(line for line in chain.read(study / "register.jsonl") if line.event.details["edition"] == edition)
+    named = line.event.details["data"]
+    assert isinstance(named, Mapping)
+    spec = sha256((folder / "spec.yaml").read_bytes())
+    data: dict[str, Plain] = {path: sha256((folder / path).read_bytes()) for path in named}
+    program = json.loads((folder / "versions.json").read_bytes())["program_digest"]
+    inputs = digest_of({"spec": spec, "data": data, "program": program})
+    plan = sha256((folder / "plan.json").read_bytes())
+    rewrite_line(study, edition, {"spec": spec, "data": data, "plan": plan, "inputs": inputs})
+
+
+def rewrite_line(study: Path, edition: str, members: Mapping[str, Plain]) -> None:
+    """Write other details into the register's line of an edition and chain all lines anew."""
     forged: tuple[chain.Line, ...] = ()
     for line in chain.read(study / "register.jsonl"):
         event = line.event
         if event.details.get("edition") == edition:
-            repaired = {**event.details, "sums": sha256(sums), "analysis": sha256(files["analysis.json"])}
-            event = replace(event, details=repaired)
+            event = replace(event, details={**event.details, **members})
         forged = (*forged, chain.compose(forged, event))
     (study / "register.jsonl").write_bytes(b"".join(line.raw + b"\n" for line in forged))
 
@@ -175,3 +203,16 @@ def copy_of_program(to: Path) -> Path:
     if not (SOURCES / "rankdocket" / "report_templates").is_dir():
         shutil.copytree(SOURCES.parent / "report_templates", to / "report_templates", ignore=without)
     return to / "src"
+
+
+def with_black_boxes(pdf: bytes) -> bytes:
+    """Return a PDF with a black box drawn over each page and not a letter of its text changed."""
+    writer = PdfWriter(clone_from=io.BytesIO(pdf))
+    for page in writer.pages:
+        box = StreamObject()
+        box.set_data(b"q 0 0 0 rg 60 60 480 700 re f Q")
+        drawn = page[NameObject("/Contents")]
+        page[NameObject("/Contents")] = ArrayObject([drawn.indirect_reference or drawn, writer._add_object(box)])
+    changed = io.BytesIO()
+    writer.write(changed)
+    return changed.getvalue()

@@ -8,13 +8,14 @@ import shutil
 import subprocess
 import sys
 from collections import Counter
+from fractions import Fraction
 from pathlib import Path
 
 import pytest
 
 import rankdocket.workflow.record_checker as checker
 from rankdocket.workflow.study_folder import open_study
-from workflow.office import STUDIES, Ran, Sealed, forge, numbers_in, replaced_once
+from workflow.office import DATA, SPEC, STUDIES, Ran, Sealed, copy_study, forge, numbers_in, replaced_once, run
 
 SOURCE = Path(checker.__file__)
 
@@ -66,14 +67,17 @@ def test_a_changed_rank_is_named(study: Path) -> None:
     assert f"ranks-A1.csv, line 6: rank_y is 11.5, made anew {was}." in ran.out
 
 
-def test_a_changed_count_is_named(study: Path) -> None:
-    """A count changed in analysis.json is counted anew over all orderings of the twelve rows."""
-    count = json.loads((study / "editions" / "1" / "analysis.json").read_bytes())["associations"]["A1"]["test"]["count"]
-    forge(study, "1", "analysis.json", replaced_once(f'"count": "{count}"', f'"count": "{int(count) + 2}"'))
+@pytest.mark.parametrize(
+    ("touched", "told"),
+    [(("README.txt",), "1 thing does not agree"), (("README.txt", "extracts/summary.txt"), "2 things do not agree")],
+)
+def test_what_disagrees_is_counted(study: Path, touched: tuple[str, ...], told: str) -> None:
+    """Touched files are told in the number that they have."""
+    for name in touched:
+        (study / "editions" / "1" / name).write_bytes(b"")
     ran = _check(study / "editions" / "1")
-    told = f"A1: count is {int(count) + 2}, made anew {count}."
-    assert ran.status == 1
-    assert told in ran.out
+    assert (ran.status, ran.err) == (1, "")
+    assert re.match(rf"{told} \(\d+ numbers, \d+ files looked at\):\n  1\. README\.txt ", ran.out)
 
 
 @pytest.mark.parametrize("name", ["report.html", "document.json"])
@@ -151,6 +155,47 @@ def test_the_checker_is_the_file_that_editions_carry(issued: Sealed) -> None:
     assert not any(
         keyword.arg == "strict" for node in ast.walk(tree) if isinstance(node, ast.Call) for keyword in node.keywords
     )
+
+
+def _study_at_alpha(folder: Path) -> Path:
+    """Write a study of six rows in two groups: 36 of 720 orderings are as far in the expected sign, p is one in twenty."""
+    study = copy_study("first-look", folder / "first-look")
+    rows = "".join(f"D{place},{60 if place <= 3 else 90},{1800 + place}\n" for place in range(1, 7))
+    (study / DATA).write_text(f"dough,rising_min,volume_ml\n{rows}", encoding="utf-8")
+    spec = (study / SPEC).read_text(encoding="utf-8")
+    decided = "alpha: 0.050\n  sidedness: one-sided\n\nrequirements:\n  fewest_complete_rows: 5\n  most_tied: 1"
+    (study / SPEC).write_text(spec.replace("alpha: 0.05", decided, 1), encoding="utf-8")
+    return study
+
+
+def test_a_p_filed_as_the_very_words_of_alpha_agrees(tmp_path: Path) -> None:
+    """With alpha 0.050 a p of exactly one in twenty is filed as 0.050; the checker compares values, not their digits."""
+    study = _study_at_alpha(tmp_path)
+    assert run("issue", ".", "--reason", "first issue", cwd=study).status == 0
+    edition = study / "editions" / "1"
+    found = json.loads((edition / "analysis.json").read_bytes())["associations"]["A1"]
+    assert (found["test"]["p"], found["test"]["count"], found["test"]["of"]) == ("0.050", "36", "720")
+    assert found["finding"]["word"] == "shown"
+    assert _check(edition).out.startswith("Everything agrees (")
+    forge(study, "1", "analysis.json", lambda text: text.replace('"p": "0.050"', '"p": "0.051"'))
+    assert "A1: p is 0.051, made anew 0.05." in _check(edition).out
+
+
+@pytest.mark.parametrize(
+    ("filed", "agrees"),
+    [
+        ("0.333333333333", True),
+        ("0.33333333333333", True),
+        ("0.33333333333334", False),
+        ("0.33333333333", False),
+        ("0.333333333334", False),
+    ],
+)
+def test_a_p_may_have_more_digits_when_all_are_right(filed: str, agrees: bool) -> None:
+    """A third is 0.333333333333 to twelve digits; more digits have to be right to the last, fewer are too few."""
+    problems: list[str] = []
+    checker.hold_p("p", filed, Fraction(1, 3), problems)
+    assert (problems == []) is agrees
 
 
 TIED = [

@@ -12,7 +12,7 @@ from rankdocket.document.model import Block, Document, Section, TableBlock
 from rankdocket.document.prose import all_prose, text_of
 from rankdocket.study.writer import spec_as_used
 from rankdocket.writing.caveats import CAVEATS
-from rankdocket.writing.section import Ingredient, IssueFacts, Story
+from rankdocket.writing.section import Before, Ingredient, IssueFacts, Story
 from rankdocket.writing.write import tell, write
 
 
@@ -49,18 +49,29 @@ class Told:
         return found
 
 
-def facts(
-    *, reason: str = "first issue", replaces: str | None = None, analysis: Analysis, plain: Mapping[str, Plain]
-) -> IssueFacts:
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Occasion:
+    """Why a report is told: the reason, what it replaces, whether it is a draft."""
+
+    reason: str = "first issue"
+    replaces: str | None = None
+    before: Before | None = None
+    is_draft: bool = False
+
+
+FIRST = Occasion()
+
+
+def facts(*, analysis: Analysis, plain: Mapping[str, Plain], occasion: Occasion = FIRST) -> IssueFacts:
     """Return what the workflow would know about an issue."""
     return IssueFacts(
-        edition="edition 1",
-        status="issued",
+        edition="draft 1A" if occasion.is_draft else "edition 1",
+        status="draft" if occasion.is_draft else "issued",
         date="2026-04-02",
         created="2026-04-02T10:00:00+00:00",
         time_source="the clock of the machine",
-        reason=reason,
-        replaces=replaces,
+        reason=occasion.reason,
+        replaces=occasion.replaces,
         spec_text=spec_as_used(analysis.spec),
         spec_digest="1" * 64,
         analysis_digest=sha256(readable_bytes(plain)),
@@ -68,14 +79,27 @@ def facts(
         program_digest="2" * 64,
         self_test="3 of 3 cases agreed",
         ingredients=(Ingredient("rankdocket", "0.1.0", "the program itself"),),
+        before=occasion.before,
     )
 
 
-def told(analysis: Analysis, *, reason: str = "first issue", replaces: str | None = None) -> Told:
+def told(analysis: Analysis, occasion: Occasion = FIRST) -> Told:
     """Put an analysis into words."""
     plain = analysis_to_plain(analysis)
-    issue = facts(reason=reason, replaces=replaces, analysis=analysis, plain=plain)
+    issue = facts(analysis=analysis, plain=plain, occasion=occasion)
     return Told(analysis, plain, tell(analysis, plain, issue), write(analysis, plain, issue))
+
+
+def replacing(
+    old: Analysis, *, reason: str = "a corrected file", plan_changed: bool = False, is_draft: bool = False
+) -> Occasion:
+    """Return the occasion of an edition that replaces one in which ``old`` was found."""
+    return Occasion(
+        reason=reason,
+        replaces="edition 1 of 2026-01-05",
+        before=Before(analysis_to_plain(old), plan_changed),
+        is_draft=is_draft,
+    )
 
 
 @cache

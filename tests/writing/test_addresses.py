@@ -7,11 +7,20 @@ from decimal import Decimal
 import pytest
 
 from analysis.invented import DEMONSTRATIONS, Invented
-from rankdocket.document.model import Citation, FieldList, Link, SignatureBlock, TableBlock
+from rankdocket.analysis.results import Estimate
+from rankdocket.document.model import Citation, FieldList, Link, Number, SignatureBlock, TableBlock
 from rankdocket.document.numbers import MINUS, look_up
 from rankdocket.document.prose import all_prose, lint_document, numbers_of
 from rankdocket.references import REFERENCES
-from writing.reports import EVERY_FINDING, Told, demonstration_report, sections_of, study_of_every_finding, told
+from writing.reports import (
+    EVERY_FINDING,
+    Told,
+    demonstration_report,
+    replacing,
+    sections_of,
+    study_of_every_finding,
+    told,
+)
 
 DRAWN = "alpha: 0.05, p_value: {by: permutation, permutations: 999, seed: 5}"
 ONE_SIDED = "alpha: 0.05, sidedness: one-sided"
@@ -19,7 +28,8 @@ SIGNED = {name: entry.replace("either", "negative") for name, entry in EVERY_FIN
 REPORTS: dict[str, Callable[[], Told]] = {
     **{name: lambda name=name: demonstration_report(name) for name in DEMONSTRATIONS},  # type: ignore[misc]
     "every finding": study_of_every_finding,
-    "drawn": lambda: told(replace(EVERY_FINDING, inference=DRAWN).analysed(), replaces="edition 1 of 2026-01-05"),
+    "drawn": lambda: told(replace(EVERY_FINDING, inference=DRAWN).analysed(), replacing(EVERY_FINDING.analysed())),
+    "draft": lambda: told(EVERY_FINDING.analysed(), replacing(Invented().analysed(), plan_changed=True, is_draft=True)),
     "withheld": lambda: told(replace(EVERY_FINDING, rows="leave_out: []").analysed()),
     "one-sided": lambda: told(replace(EVERY_FINDING, inference=ONE_SIDED, associations=SIGNED).analysed()),
     "nothing left": lambda: told(replace(Invented(), columns={"u": "- -", "v": "- -"}).analysed()),
@@ -45,6 +55,9 @@ def test_every_printed_number_is_one_of_its_printed_forms(report: Told) -> None:
         text = number.text.replace(MINUS, "-").replace(",", "").removesuffix(" (exactly)")
         if text.startswith("<"):
             assert Decimal(number.exact) < Decimal(text[2:])
+            continue
+        if text.startswith(">"):
+            assert Decimal(text[2:]) < Decimal(number.exact) < 1
             continue
         printed = Decimal(text.removesuffix("%"))
         numerator, _, denominator = number.exact.partition("/")
@@ -76,6 +89,23 @@ def test_every_pointer_has_a_target(report: Told) -> None:
         piece.target for content in all_prose(report.document) for piece in content.pieces if isinstance(piece, Link)
     }
     assert links <= keys
+
+
+def test_the_two_forms_of_a_worksheet_have_addresses_of_their_own(report: Told) -> None:
+    """However alike they look: each form of the worksheet points to the value that it leads to."""
+    for name, result in report.analysis.results.items():
+        if not isinstance(result.estimate, Estimate) or result.estimate.corrected is None:
+            continue
+        forms = report.block(f"forms-{name}")
+        assert isinstance(forms, FieldList)
+        rows = {
+            head: [piece.key for piece in content.pieces if isinstance(piece, Number)] for head, content in forms.rows
+        }
+        at = f"associations/{name}"
+        assert rows["Midrank form"] == [f"{at}/estimate/value"]
+        assert rows["Difference form"] == [f"{at}/estimate/squared_differences", f"{at}/estimate/corrected_form"]
+        assert rows["Tie terms"] == [f"{at}/ties_x/cube_sum", f"{at}/ties_y/cube_sum"]
+        assert rows["Terms of x and y"] == [f"{at}/estimate/x_term", f"{at}/estimate/y_term"]
 
 
 def test_what_is_cited_is_listed_and_nothing_else(report: Told) -> None:

@@ -6,15 +6,25 @@ from dataclasses import replace
 import pytest
 
 from analysis.invented import FALLING, INDEPENDENT, MIXED, RISING, Invented, association
-from rankdocket.document.model import CaveatBlock
+from rankdocket.document.model import CaveatBlock, Link, Paragraph
 from rankdocket.document.prose import lint, text_of
 from rankdocket.writing import caveats
 from rankdocket.writing.caveat import CaveatRule
 from rankdocket.writing.caveats import CAVEATS, requirements, results, study
-from writing.reports import EVERY_FINDING, Told, demonstration_report, study_of_every_finding, told
+from writing.reports import (
+    EVERY_FINDING,
+    Occasion,
+    Told,
+    demonstration_report,
+    study_of_every_finding,
+    told,
+)
 
 QUIET = Invented(columns={"u": RISING, "v": "1 3 2 5 4 7 6 9 8 10"})
 """Ten rows nearly in order: nothing to say but what is said of every report."""
+
+NEAR = "2 1 8 5 4 3 7 6 9 10"
+"""Ten values that rise with RISING: two-sided p 0.017."""
 
 TAU = {"A1": association(more="coefficient: Kendall tau-b")}
 LEFT_OUT = INDEPENDENT + ', leave_out: [{where: {v: "10"}, reason: the rig was broken}]'
@@ -32,7 +42,7 @@ SPEAKS: dict[str, Invented] = {
     "supplied_words": replace(QUIET, study="title: Load causes creep, question: Do they rise together?"),
     "not_estimable": replace(QUIET, columns={"u": RISING, "v": "5 " * 10}),
     "requirements": replace(QUIET, requirements="fewest_complete_rows: 11"),
-    "straddles_alpha": replace(QUIET, columns=TWELVE, inference=DRAWN.format(alpha="0.1")),
+    "undecided_by_draws": replace(QUIET, columns=TWELVE, inference=DRAWN.format(alpha="0.1")),
     "two_sided_rule": replace(QUIET, columns=LOPSIDED, inference="alpha: 0.3"),
     # n=10, sum of squared differences 58: exact p 0.049, while the interval of Bonett & Wright 2000 holds 0.
     "test_and_interval": replace(QUIET, columns={"u": RISING, "v": "3 4 1 9 2 5 6 8 10 7"}),
@@ -50,7 +60,7 @@ SPEAKS: dict[str, Invented] = {
 IS_SILENT: dict[str, Invented] = {
     **{rule.key: QUIET for rule in CAVEATS},
     "supplied_words": replace(QUIET, study="title: Load and creep, question: Do they rise together?"),
-    "straddles_alpha": replace(QUIET, columns=TWELVE, inference=DRAWN.format(alpha="0.05")),
+    "undecided_by_draws": replace(QUIET, columns=TWELVE, inference=DRAWN.format(alpha="0.05")),
     "two_sided_rule": replace(QUIET, columns=LOPSIDED, inference="alpha: 0.2"),
     "no_interval": QUIET,
     "interval_basis": replace(QUIET, associations=TAU),
@@ -112,8 +122,8 @@ def test_the_catalogue_holds_every_rule_once_with_a_weight_of_its_own() -> None:
 
 WORDS = {
     "dependent_rows": (
-        "Every test is withheld: the plan does not say whether rows are repeated or in time order. Rows that belong "
-        "together, treated as if they did not, give false findings far more often than alpha says."
+        "Every test and every interval is withheld: the plan does not say whether rows are repeated or in time order. "
+        "Rows that belong together, treated as if they did not, give false findings far more often than alpha says."
     ),
     "supplied_words": (
         "The words supplied at study.title say “causes”. That is more than a rank correlation can support; they are "
@@ -127,6 +137,10 @@ WORDS = {
         "A1: the requirement “enough complete rows” is not met: fewer complete rows than the plan asks for (found 10, "
         "limit 11). The estimate is given without a test."
     ),
+    "undecided_by_draws": (
+        "A1: p comes from drawn orderings. With the value at one end of its interval, 0.073 to 0.110, the finding would "
+        "be another one. A plan with more draws would settle the side."
+    ),
     "two_sided_rule": (
         "A1: the ties make the null lopsided. Counting orderings at least as far from zero gives p = 0.250; doubling "
         "the smaller tail would give 0.500. The plan’s rule is the first."
@@ -137,11 +151,11 @@ WORDS = {
     ),
     "perfect_agreement": (
         "A1: all rows follow one order, so that the sample holds no disagreement from which an error could be "
-        "estimated; for the interval half of the smallest visible disagreement was assumed."
+        "estimated; for the interval half of the disagreement of one row moved across the widest tie steps was assumed."
     ),
     "small_sample": (
-        "A1: with so few rows the data exclude little. The interval is indicative; the test from all orderings of the "
-        "rows is the primary result."
+        "A1: with so few rows the data exclude little. The interval is indicative; the p-value, counted over all "
+        "orderings of the rows, is exact."
     ),
     "left_out_rows": "The plan leaves out 1 of 10 rows of table trials; each is listed with its reason in section 2.",
     "incomplete_rows": (
@@ -163,12 +177,16 @@ def test_supplied_words_are_quoted_wherever_they_stand() -> None:
     """Title, questions, labels, reasons: each place is named, each phrase quoted as supplied."""
     invented = replace(
         QUIET,
-        study="title: Load proves it, question: Does load drive creep?",
+        study="title: Load proves it, question: Does load drive creep?, population: all that load causes, "
+        "rows_were_fixed_by: a trend towards more",
         variables={"u": "label: effect of load, scale: measured, unit: N"},
         associations={"A1": association().replace("Do u and v rise together?", "Is there no association?")},
-        rows=INDEPENDENT + ", independent_because: it is guaranteed",
+        rows=INDEPENDENT
+        + ", independent_because: it is guaranteed, leave_out: ["
+        + "{where: {v: '10'}, reason: a broken rig}, {where: {v: '9'}, reason: heat led to creep}]",
+        inference="alpha: 0.05, several_tests: {adjust: none, reason: it was proven elsewhere}",
     )
-    report = told(invented.analysed(), reason="The client wants highly significant results")
+    report = told(invented.analysed(), Occasion(reason="The client wants highly significant results"))
     found = "\n".join(report.caveats()["supplied_words"])
     for where, phrase in (
         ("study.title", "proves"),
@@ -177,8 +195,13 @@ def test_supplied_words_are_quoted_wherever_they_stand() -> None:
         ("associations.A1.question", "no association"),
         ("rows.independent_because", "guaranteed"),
         ("the reason for this edition", "highly significant"),
+        ("study.population", "causes"),
+        ("study.rows_were_fixed_by", "trend towards"),
+        ("inference.several_tests.reason", "proven"),
+        ("rows.leave_out.2.reason", "led to"),
     ):
         assert f"supplied at {where} say “{phrase}”" in found
+    assert "rows.leave_out.1" not in found
     assert lint(report.text())  # they are printed as supplied
 
 
@@ -206,22 +229,52 @@ def test_a_caveat_promises_nothing_for_what_cannot_be_estimated() -> None:
         QUIET,
         columns={"u": "1 2", "v": "1 2"},
         associations={"A1": association(role="exploratory")},
+        inference="alpha: 0.05, several_tests: {among: none, reason: one question}",
     )
     assert caveats_of(outside)["not_estimable"][0].endswith("It keeps its place in every table.")
 
 
 def test_a_small_sample_without_a_counted_test_promises_none() -> None:
-    """Where the test is withheld, or drawn, it is not called the primary result."""
+    """Where the test is withheld, or drawn, no p-value is called exact; without an interval nothing is indicative."""
     small = replace(QUIET, columns=SMALL_ORDERED)
-    for invented in (replace(small, rows="leave_out: []"), replace(small, inference=DRAWN.format(alpha="0.05"))):
+    for invented in (
+        replace(small, requirements="fewest_complete_rows: 6"),
+        replace(small, inference=DRAWN.format(alpha="0.05")),
+    ):
         assert caveats_of(invented)["small_sample"] == [
             "A1: with so few rows the data exclude little. The interval is indicative."
         ]
+    assert caveats_of(replace(small, rows="leave_out: []"))["small_sample"] == []
+
+
+def test_the_interval_of_four_rows_is_called_uninformative() -> None:
+    """One degree of freedom is left to its variance; five rows have two."""
+    four, five = (told(replace(QUIET, columns={"u": rows, "v": rows}).analysed()) for rows in ("1 2 3 4", "1 2 3 4 5"))
+    words = "A1: an interval from so few rows is uninformative; it is printed so that nothing is missing."
+    assert words in four.caveats()["small_sample"]
+    assert words not in five.caveats()["small_sample"]
+
+
+def test_associations_of_one_kind_share_a_caveat_about_small_samples() -> None:
+    """Nine rows are few, ten are not; each caveat is about the associations that it names, and no other."""
+    nine, ten = "1 2 3 4 5 6 7 8 9 -", RISING
+    report = told(
+        replace(
+            QUIET,
+            columns={"u": nine, "v": nine, "w": ten, "z": "1 3 2 5 4 7 6 9 8 10"},
+            associations={"A1": association(), "A2": association("v", "w"), "A3": association("w", "z")},
+            requirements="fewest_complete_rows: 3, most_missing: 1, most_tied: 1",
+        ).analysed()
+    )
+    (found,) = [found for rule in CAVEATS if rule.key == "small_sample" for found in rule.find(report.story)]
+    assert found.about == ("A1", "A2")
+    assert text_of(found.prose).startswith("A1 and A2: with so few rows")
 
 
 def test_perfect_order_without_an_interval_assumes_nothing_for_it() -> None:
-    """Three rows, and tau-b, have no interval."""
+    """Dependent rows, three rows, and tau-b, have no interval."""
     for invented in (
+        replace(QUIET, columns={"u": RISING, "v": RISING}, rows="leave_out: []"),
         replace(QUIET, columns={"u": "1 2 3", "v": "1 2 3"}),
         replace(QUIET, columns={"u": RISING, "v": RISING}, associations=TAU),
     ):
@@ -238,3 +291,107 @@ def test_a_report_points_from_an_association_to_its_caveats() -> None:
         numbers = [str(caveat.block.number) for caveat in report.story.caveats_about(name)]
         assert text_of(row[-1]) == (", ".join(numbers) or "–")
     assert EVERY_FINDING.associations.keys() == {text_of(row[0]) for row in table.rows}
+
+
+LEFT_OUT_OF_ALL = replace(
+    EVERY_FINDING, rows=INDEPENDENT + ", leave_out: [{where: {u: '12'}, reason: the rig was broken}]"
+)
+
+
+@pytest.mark.parametrize(
+    "invented",
+    [EVERY_FINDING, LEFT_OUT_OF_ALL, replace(EVERY_FINDING, rows="leave_out: []"), *SPEAKS.values()],
+    ids=["every finding", "rows left out", "dependent rows", *SPEAKS],
+)
+def test_a_caveat_is_about_every_association_that_it_names(invented: Invented) -> None:
+    """From the words of the caveat to the tables and back: each association lists it, and only those."""
+    report = told(invented.analysed())
+    names = list(report.analysis.results)
+    for caveat in report.story.caveats:
+        named = {piece.text for piece in caveat.block.prose.pieces if isinstance(piece, Link)} & set(names)
+        assert named <= set(caveat.about) <= set(names)
+        number = str(caveat.block.number)
+        listing = {text_of(row[0]) for row in report.table("results").rows if number in text_of(row[-1]).split(", ")}
+        assert listing == set(caveat.about)
+        for name in names:
+            note = report.section(f"association-{name}").blocks[-1]
+            assert isinstance(note, Paragraph)
+            links = {piece.target for piece in note.prose.pieces if isinstance(piece, Link)}
+            assert (caveat.block.key in links) == (name in caveat.about)
+
+
+def test_rows_left_out_concern_every_association_of_their_table() -> None:
+    """Whether or not the caveat names them."""
+    report = told(LEFT_OUT_OF_ALL.analysed())
+    (found,) = [found for rule in CAVEATS if rule.key == "left_out_rows" for found in rule.find(report.story)]
+    assert found.about == tuple(EVERY_FINDING.associations)
+
+
+PAIR = {"A1": association("u", "v"), "A2": association("u", "w"), "A3": association("u", "x")}
+FAMILY_OF_THREE = replace(QUIET, columns={"u": RISING, "v": NEAR, "w": MIXED, "x": MIXED}, associations=PAIR)
+"""The first p, 0.017, is 0.052 when adjusted; the interval of the association alone excludes 0."""
+
+
+def test_the_adjusted_p_is_held_against_the_interval() -> None:
+    """What adjustment moved over alpha is said to be adjusted, and the interval not to be (golden)."""
+    (found,) = caveats_of(FAMILY_OF_THREE)["test_and_interval"]
+    assert found.replace("\u00a0", " ") == (
+        "A1: test and interval point different ways (adjusted p = 0.052; interval 0.12 to 0.95). The interval is not "
+        "adjusted for the number of tests; the test decides about the association, the interval describes its size."
+    )
+    alone = {"A1": association("u", "v")}
+    assert caveats_of(replace(FAMILY_OF_THREE, associations=alone))["test_and_interval"] == []
+    unadjusted = "alpha: 0.05, several_tests: {adjust: none, reason: three questions}"
+    assert caveats_of(replace(FAMILY_OF_THREE, inference=unadjusted))["test_and_interval"] == []
+
+
+@pytest.mark.parametrize(
+    ("inference", "speaks"),
+    [
+        ("alpha: 0.05", True),
+        ("alpha: 0.05, confidence_level: 0.95", True),
+        ("alpha: 0.05, confidence_level: 0.950", True),
+        ("alpha: 0.05, confidence_level: 0.99", False),
+        ("alpha: 0.050, confidence_level: 0.951", False),
+    ],
+)
+def test_test_and_interval_are_compared_at_one_level_only(inference: str, speaks: bool) -> None:
+    """An interval of another level need not agree with alpha, and nothing is said of it."""
+    # n=10, sum of squared differences 58: exact p 0.049, while the interval of Bonett & Wright 2000 holds 0.
+    found = caveats_of(replace(QUIET, columns={"u": RISING, "v": "3 4 1 9 2 5 6 8 10 7"}, inference=inference))
+    assert bool(found["test_and_interval"]) == speaks
+
+
+def test_a_lopsided_null_is_spoken_of_only_where_it_was_counted() -> None:
+    """Between drawn tails the gap may be the draws’ own."""
+    counted, from_draws = (
+        caveats_of(replace(QUIET, columns=LOPSIDED, inference=inference))["two_sided_rule"]
+        for inference in ("alpha: 0.3", DRAWN.format(alpha="0.3"))
+    )
+    assert len(counted) == 1
+    assert from_draws == []
+
+
+@pytest.mark.parametrize("inference", ["alpha: 0.05", "alpha: 0.05, p_value: {by: permutation, seed: 5}"])
+def test_a_sample_that_could_show_nothing_is_said_to_be_one(inference: str) -> None:
+    """Four rows: the smallest two-sided p is 1/12; the caveat does not call such a result a reservation."""
+    four = replace(QUIET, columns={"u": "1 2 3 4", "v": "1 2 3 4"}, inference=inference)
+    (found,) = caveats_of(replace(four, requirements="fewest_complete_rows: 3"))["requirements"]
+    assert "no result of this plan with these rows could reach alpha" in found
+    assert found.endswith("That nothing was shown could not have come out otherwise.")
+
+
+def test_a_shared_alpha_that_could_still_be_reached_is_a_reservation() -> None:
+    """Four tests of five rows: 1/60 is below 0.05, four times 1/60 is not."""
+    five = {"u": "1 2 3 4 5", "v": "1 2 3 4 5"}
+    plan = {f"A{place}": association() for place in range(1, 5)}
+    found = caveats_of(replace(QUIET, columns=five, associations=plan, requirements="fewest_complete_rows: 3"))
+    assert len(found["requirements"]) == 4
+    assert all(sentence.endswith("The result stands with this reservation.") for sentence in found["requirements"])
+
+
+def test_draws_that_decide_clearly_bring_no_caveat() -> None:
+    """p far above alpha, and p far below it."""
+    for v in (MIXED, "1 3 2 5 4 7 6 9 8 10"):
+        drawn = replace(QUIET, columns={"u": RISING, "v": v}, inference=DRAWN.format(alpha="0.05"))
+        assert caveats_of(drawn)["undecided_by_draws"] == []

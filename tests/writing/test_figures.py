@@ -92,7 +92,9 @@ def test_alternative_texts_tell_the_figure_with_its_numbers() -> None:
     """Axes with their units, how many rows, which way, and the estimate (golden)."""
     report = demonstration_report("gasket-creep")
     raw, rank = raw_plot(report.story, "A1"), rank_plot(report.story, "A1")
-    told_in_words = "In these rows higher values of clamp load went with higher values of creep; rho 0.85 (95% interval 0.10 to 0.98)."
+    told_in_words = (
+        "Rows ranked higher on clamp load tended to be ranked higher on creep; rho 0.85 (95% interval 0.10 to 0.98)."
+    )
     assert (
         raw.alternative == f"Scatter of Creep (µm) against Clamp load (N), values as received, 7 rows. {told_in_words}"
     )

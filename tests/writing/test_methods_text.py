@@ -20,6 +20,7 @@ from writing.reports import Told, demonstration_report, study_of_every_finding, 
 
 BASE = Invented(columns={"u": RISING, "v": MIXED})
 TAU = {"A1": association(more="coefficient: Kendall tau-b")}
+FAMILY = {"A1": association(), "A2": association("v", "u")}
 DRAWN = "alpha: 0.05, p_value: {by: permutation, permutations: 999, seed: 20260402}"
 TWENTY = {"u": " ".join(map(str, range(1, 21))), "v": " ".join(str(7 * place % 23) for place in range(1, 21))}
 
@@ -46,35 +47,44 @@ RULES: dict[str, Description] = {
 
 ALL_CHECKS_BUT_SHAPE = {check.key for check in CHECKS if check.key != "shape"}
 RAN: dict[str, tuple[Invented, set[str]]] = {
-    "exact": (BASE, {"exact, no ties", "rho", "two-sided", "Holm", "interval", *ALL_CHECKS_BUT_SHAPE}),
+    "exact": (
+        replace(BASE, associations=FAMILY),
+        {"exact, no ties", "rho", "two-sided", "Holm", "interval", *ALL_CHECKS_BUT_SHAPE},
+    ),
+    # One test has nothing to be adjusted for.
+    "family of one": (BASE, {"exact, no ties", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE}),
     "ties": (
         replace(BASE, columns={"u": RISING, "v": "1 1 2 3 4 5 6 7 8 9"}),
-        {"exact, conditional on the ties", "rho", "two-sided", "Holm", "interval", *ALL_CHECKS_BUT_SHAPE},
+        {"exact, conditional on the ties", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
     ),
     "drawn": (
         replace(BASE, inference=DRAWN),
-        {"drawn permutations", "interval of a drawn p", "rho", "two-sided", "Holm", "interval", *ALL_CHECKS_BUT_SHAPE},
+        {"drawn permutations", "interval of a drawn p", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
     ),
     "tau-b": (
         replace(BASE, associations=TAU),
-        {"exact, no ties", "tau-b", "two-sided", "Holm", *ALL_CHECKS_BUT_SHAPE},
+        {"exact, no ties", "tau-b", "two-sided", *ALL_CHECKS_BUT_SHAPE},
     ),
     "one-sided": (
         replace(BASE, inference="alpha: 0.05, sidedness: one-sided"),
-        {"exact, no ties", "rho", "Holm", "interval", *ALL_CHECKS_BUT_SHAPE},
+        {"exact, no ties", "rho", "interval", *ALL_CHECKS_BUT_SHAPE},
     ),
     "not adjusted": (
         replace(BASE, inference="alpha: 0.05, several_tests: {adjust: none, reason: one question}"),
         {"exact, no ties", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
     ),
     "no family": (
-        replace(BASE, inference="alpha: 0.05, several_tests: {among: none, reason: one question}"),
+        replace(BASE, associations=FAMILY, inference="alpha: 0.05, several_tests: {among: none, reason: one question}"),
         {"exact, no ties", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
     ),
-    "test withheld": (replace(BASE, rows="leave_out: []"), {"rho", "Holm", "interval", *ALL_CHECKS_BUT_SHAPE}),
+    "dependent rows": (replace(BASE, associations=FAMILY, rows="leave_out: []"), {"rho", *ALL_CHECKS_BUT_SHAPE}),
+    "test withheld": (
+        replace(BASE, associations=FAMILY, requirements="fewest_complete_rows: 11"),
+        {"rho", "interval", *ALL_CHECKS_BUT_SHAPE},
+    ),
     "not estimable": (
-        replace(BASE, columns={"u": RISING, "v": "5 " * 10}),
-        {"Holm", *ALL_CHECKS_BUT_SHAPE - {"attainable_p"}},
+        replace(BASE, columns={"u": RISING, "v": "5 " * 10}, associations=FAMILY),
+        ALL_CHECKS_BUT_SHAPE - {"attainable_p"},
     ),
     "twenty rows": (
         replace(BASE, columns=TWENTY, inference=DRAWN),
@@ -83,7 +93,6 @@ RAN: dict[str, tuple[Invented, set[str]]] = {
             "interval of a drawn p",
             "rho",
             "two-sided",
-            "Holm",
             "interval",
             *ALL_CHECKS_BUT_SHAPE,
             "shape",
@@ -115,7 +124,8 @@ def test_every_rule_runs_in_one_of_the_studies() -> None:
 def test_exact_and_drawn_are_told_apart() -> None:
     """A study counted exactly says nothing of draws or seeds, and cites nobody for them."""
     exact, drawn = told(BASE.analysed()), told(replace(BASE, inference=DRAWN).analysed())
-    assert "drawn" not in text(exact)
+    assert "drawn at random" not in text(exact)
+    assert "error of drawing" not in text(exact)
     assert "seed" not in text(exact)
     assert "999 permutations drawn at random from seed 20260402" in text(drawn)
     assert "every order in which" not in text(drawn)
@@ -128,7 +138,7 @@ def test_a_description_ends_in_its_works() -> None:
     """Before the full stop, in brackets, short."""
     assert (
         "Holm’s step-down rule, which keeps the chance of any false finding in the family at or below alpha (Holm 1979)."
-        in text(told(BASE.analysed()))
+        in text(told(replace(BASE, associations=FAMILY).analysed()))
     )
 
 
@@ -142,13 +152,50 @@ def test_missing_cells_are_spoken_of_where_a_code_is_declared(codes: str) -> Non
 
 
 def test_the_family_is_described_as_it_is() -> None:
-    """Size, who, and what happens to members without a p (golden)."""
+    """Who is in it, what happens to members without a p, and for whom a finding is stated (golden)."""
     assert (
-        "The family of 5 associations (primary and secondary) holds A1, A2, A3, A4 and A5; an association that is not "
-        "estimable or whose test is withheld stays in it." in text(study_of_every_finding())
+        "The family (primary and secondary) holds A1, A2, A3, A4 and A5; an association that is not estimable or whose "
+        "test is withheld stays in it. A finding is stated for its members only. The p-values of the 5 associations of "
+        "the family were adjusted by Holm’s step-down rule" in text(study_of_every_finding())
     )
     alone = told(replace(BASE, inference="alpha: 0.05, several_tests: {among: none, reason: it was asked}").analysed())
-    assert "Reason given: it was asked" in text(alone)
+    assert (
+        "By the plan there is no family: each primary and secondary association is its own decision. Reason given: it "
+        "was asked." in text(alone)
+    )
+
+
+@pytest.mark.parametrize(
+    ("reason", "printed"),
+    [
+        ("it was asked", "Reason given: it was asked. The p-values"),
+        ("It was asked.", "Reason given: It was asked. The p-values"),
+        ("Who knows?", "Reason given: Who knows? The p-values"),
+    ],
+)
+def test_a_supplied_reason_closes_with_one_stop(reason: str, printed: str) -> None:
+    """A full stop is set where the words bring none, and never twice."""
+    inference = f"alpha: 0.05, several_tests: {{adjust: none, reason: {reason}}}"
+    assert printed in text(told(replace(BASE, inference=inference).analysed()))
+
+
+NOT_ADJUSTED = "Intervals were not adjusted for the number of tests: each holds for its association alone."
+
+
+def test_intervals_are_said_to_be_unadjusted_where_there_are_any() -> None:
+    """Whatever was done to the p-values; without an interval there is nothing to say."""
+    unadjusted = "alpha: 0.05, several_tests: {adjust: none, reason: one question}"
+    for invented in (BASE, replace(BASE, inference=unadjusted)):
+        assert NOT_ADJUSTED in text(told(invented.analysed()))
+    for invented in (replace(BASE, rows="leave_out: []"), replace(BASE, associations=TAU)):
+        assert "ntervals" not in text(told(invented.analysed()))
+
+
+def test_a_one_sided_bound_is_described_where_it_was_made() -> None:
+    """And only there."""
+    words = "For a one-sided test it is the bound on the side that the plan expects, at the same level."
+    assert words in text(told(RAN["one-sided"][0].analysed()))
+    assert words not in text(told(BASE.analysed()))
 
 
 @pytest.mark.parametrize("name", ["first-look", "gasket-creep", "weld-smoke"])

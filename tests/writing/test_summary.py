@@ -7,7 +7,7 @@ import pytest
 from analysis.invented import FALLING, RISING, Invented, association, read_texts
 from rankdocket.analysis.analyse import analyse
 from rankdocket.analysis.results import Estimate
-from rankdocket.document.model import Document, FieldList, Items, Paragraph
+from rankdocket.document.model import Document, FieldList, Items, Link, Paragraph
 from rankdocket.document.numbers import look_up
 from rankdocket.document.prose import text_of
 from rankdocket.writing.sections.summary import MOST_ASSOCIATIONS, MOST_CAVEATS
@@ -30,7 +30,7 @@ def test_the_summary_has_at_most_three_associations_and_three_caveats(name: str)
     assert len(answers(report.document)) == min(MOST_ASSOCIATIONS, len(report.analysis.results)) <= 3
     assert [len(block.items) for block in caveats] == [MOST_CAVEATS] == [3]
     more = len(report.analysis.results) > MOST_ASSOCIATIONS
-    assert any("The other associations" in text for text in paragraphs(report.document)) == more
+    assert any(text.startswith("The others: ") for text in paragraphs(report.document)) == more
 
 
 def test_primary_associations_come_first() -> None:
@@ -70,7 +70,7 @@ def test_the_main_number_is_the_one_of_the_results() -> None:
     report = demonstration_report("gasket-creep")
     (answer,) = answers(report.document)
     found = {label: text_of(content).replace("\u00a0", " ") for label, content in answer.rows}
-    assert found["Main number"] == "rho 0.85 (95% interval 0.10 to 0.98), n = 7 complete rows"
+    assert found["Main number"] == "rho 0.85 (95% interval 0.10 to 0.98), complete rows n = 7"
     row = [text_of(cell) for cell in report.table("results").rows[0]]
     assert row[3:12] == ["7", "29%, 0%", "Spearman rho", "0.85", "0.10 to 0.98", "0.024", "0.024", "positive", "shown"]
 
@@ -83,16 +83,43 @@ def test_what_has_no_estimate_has_no_main_number() -> None:
     assert text_of(answer.rows[1][1]) == "Not estimable: the second variable has one value in all complete rows."
 
 
-def test_what_this_edition_replaces_is_said_on_page_2_and_in_its_section() -> None:
-    """With the reason given; a first edition says that it is one."""
-    analysis = Invented().analysed()
-    first, second = told(analysis), told(analysis, reason="a corrected file", replaces="edition 1 of 2026-01-05")
-    assert paragraphs(first.document)[-1] == "Changes: this is the first edition."
-    assert (
-        paragraphs(second.document)[-1]
-        == "Changes: this edition replaces edition 1 of 2026-01-05. Reason: a corrected file"
+def test_the_other_associations_are_named_with_their_findings() -> None:
+    """In the order of the page; none is left out (golden)."""
+    report = study_of_every_finding()
+    assert "The others: A3 not shown, A4 withheld and A6 no finding stated. All stand in Table 5." in paragraphs(
+        report.document
     )
-    assert "edition 1 of 2026-01-05" in text_of(second.section("changes").blocks[0].prose)  # type: ignore[union-attr]
+    (note,) = [
+        block.prose
+        for block in report.document.summary.blocks
+        if isinstance(block, Paragraph) and text_of(block.prose).startswith("The others: ")
+    ]
+    assert {piece.target for piece in note.pieces if isinstance(piece, Link)} == {
+        "association-A3",
+        "association-A4",
+        "association-A6",
+        "results",
+    }
+
+
+def caveat_lines(report: Told) -> list[str]:
+    (items,) = [block for block in report.document.summary.blocks if isinstance(block, Items)]
+    return [text_of(item) for item in items.items]
+
+
+def test_of_one_kind_the_caveat_about_an_association_on_this_page_is_chosen() -> None:
+    """Perfect order of A1, which is only pointed to, gives way to that of A2, which is told of."""
+    plan = {
+        "A1": association(role="exploratory"),
+        **{f"A{place}": association(role="primary") for place in range(2, 5)},
+    }
+    study = Invented(columns={"u": RISING, "v": RISING, "w": "1 3 2 5 4 7 6 9 8 10"}, associations=plan)
+    lines = caveat_lines(told(study.analysed()))
+    assert lines[0].startswith("A2: all rows follow one order")
+    assert not any(line.startswith("A1: ") for line in lines)
+    # A caveat about none that is told of still stands where its kind has no other.
+    apart = {**{name: association("u", "w") for name in ("A2", "A3", "A4")}, "A1": plan["A1"]}
+    assert caveat_lines(told(replace(study, associations=apart).analysed()))[0].startswith("A1: all rows follow")
 
 
 def keys(report: Told) -> set[str]:

@@ -1,14 +1,16 @@
 """The walk of a study through the engine; this file is its table of contents."""
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from typing import Final
 
 import numpy as np
 
 from rankdocket.analysis.check import direction_of
 from rankdocket.analysis.checks import CHECKS
+from rankdocket.analysis.checks.independence import KEY as INDEPENDENCE
 from rankdocket.analysis.decide import decide
 from rankdocket.analysis.family import family_of
+from rankdocket.analysis.nulls import null_choice, smallest_possible_p
 from rankdocket.analysis.results import (
     Analysis,
     AssociationAnalysis,
@@ -24,12 +26,11 @@ from rankdocket.analysis.screen import screen_association
 from rankdocket.errors import InputError
 from rankdocket.stats.adjustment import AdjustmentRule
 from rankdocket.stats.adjustments import ADJUSTMENTS
-from rankdocket.stats.attainable import smallest_attainable_p
-from rankdocket.stats.choose_null import NullChoice, choose_null, count_tails
+from rankdocket.stats.choose_null import count_tails
 from rankdocket.stats.coefficient import Coefficient
 from rankdocket.stats.comparisons import pearson_r, t_value_p
 from rankdocket.stats.draws import stream
-from rankdocket.stats.interval import IntervalQuestion, NoInterval
+from rankdocket.stats.interval import Interval, IntervalQuestion, NoInterval
 from rankdocket.stats.intervals import interval_of
 from rankdocket.stats.nulls.monte_carlo import Draws
 from rankdocket.stats.ranks import Codes
@@ -80,13 +81,15 @@ def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnaly
         return AssociationAnalysis(
             screened, checks, estimate, estimate, NoInterval(estimate.reason), Comparisons(None, None, None), None
         )
-    smallest = smallest_attainable_p(screened.spec.coefficient, screened.x_ties, screened.y_ties, direction)
+    smallest = smallest_possible_p(screened, spec)
     if isinstance(estimate, Withheld):
         return AssociationAnalysis(
             screened, checks, estimate, estimate, NoInterval(estimate.reason), Comparisons(None, None, None), smallest
         )
     test = _test(screened, spec, checks, estimate.coefficient)
-    interval = interval_of(IntervalQuestion(estimate.coefficient, x, y, spec.inference.confidence_level, direction))
+    interval = _interval(
+        checks, IntervalQuestion(estimate.coefficient, x, y, spec.inference.confidence_level, direction)
+    )
     comparisons = Comparisons(
         t_value_p=t_value_p(estimate.coefficient, direction)
         if screened.spec.coefficient == "Spearman rho" and isinstance(test, RankTest)
@@ -102,18 +105,18 @@ def adjustment_of(spec: StudySpec) -> AdjustmentRule:
     return next(rule for rule in ADJUSTMENTS if rule.key == spec.inference.several_tests.adjust)
 
 
-def null_choice(screened: Screened, spec: StudySpec) -> NullChoice:
-    """Return which null the number of rows, the ties and the plan allow; no joint result is looked at."""
-    return choose_null(screened.spec.coefficient, screened.x_ties, screened.y_ties, spec.inference.p_value.by)
-
-
-def require_seed(spec: StudySpec, screened: dict[str, Screened]) -> None:
-    """Refuse a plan that needs draws and states no seed, naming every association concerned."""
+def without_seed(spec: StudySpec, screened: Mapping[str, Screened]) -> tuple[str, ...]:
+    """Return the associations whose test needs draws although the plan states no seed."""
     if spec.inference.p_value.seed is not None:
-        return
-    drawn = [
+        return ()
+    return tuple(
         name for name, rows in screened.items() if _will_be_tested(rows, spec) and null_choice(rows, spec).needs_draws
-    ]
+    )
+
+
+def require_seed(spec: StudySpec, screened: Mapping[str, Screened]) -> None:
+    """Refuse a plan that needs draws and states no seed, naming every association concerned."""
+    drawn = without_seed(spec, screened)
     if drawn:
         raise InputError(
             (
@@ -122,7 +125,7 @@ def require_seed(spec: StudySpec, screened: dict[str, Screened]) -> None:
                     "inference.p_value",
                     Message.SEED_MISSING,
                     f"the p-value of {', '.join(drawn)} needs drawn permutations and the plan states no seed.",
-                    "Write, with a number of your own: p_value: {by: exact when possible, seed: 417}. Nothing was computed.",
+                    "Write, with a number of your own: p_value: {by: exact when possible, seed: 417}.",
                 ),
             )
         )
@@ -183,6 +186,14 @@ def _test(
     return RankTest(
         direction, choice, tails, tails.p(direction), tails.interval(direction, spec.inference.confidence_level)
     )
+
+
+def _interval(checks: tuple[CheckOutcome, ...], question: IntervalQuestion) -> Interval | NoInterval:
+    """Return the interval; it needs independent rows as much as the test does, and is withheld with it."""
+    for outcome in checks:
+        if outcome.key == INDEPENDENCE and outcome.withholds != "nothing":
+            return NoInterval(outcome.reason)
+    return interval_of(question)
 
 
 def _pearson(screened: Screened, spec: StudySpec) -> float | None:

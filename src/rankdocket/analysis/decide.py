@@ -1,6 +1,7 @@
 """Hypotheses, p-values, alpha and the adjustment make findings: one word from a fixed list, decided on fractions."""
 
 from collections.abc import Mapping
+from dataclasses import replace
 from fractions import Fraction
 
 from rankdocket.analysis.family import basis_of, family_of
@@ -18,8 +19,33 @@ def decide(
     A family member without a p enters the adjustment as p = 1: it never lowers another’s adjusted p.
     """
     family = family_of(spec)
-    adjusted = dict(zip(family, adjustment.function(tuple(_p_or_one(results[name]) for name in family)), strict=True))
-    return {name: _finding(result, spec, adjusted.get(name)) for name, result in results.items()}
+    raw = {name: _p_or_one(results[name]) for name in family}
+    adjusted = _adjusted(raw, adjustment)
+    return {
+        name: replace(
+            _finding(result, spec, adjusted.get(name)),
+            undecided_by_draws=_is_undecided(result, spec, raw, adjustment),
+        )
+        for name, result in results.items()
+    }
+
+
+def _adjusted(raw: Mapping[str, Fraction], adjustment: AdjustmentRule) -> dict[str, Fraction]:
+    return dict(zip(raw, adjustment.function(tuple(raw.values())), strict=True))
+
+
+def _is_undecided(
+    result: AssociationAnalysis, spec: StudySpec, raw: Mapping[str, Fraction], adjustment: AdjustmentRule
+) -> bool:
+    """Return whether the error of the draws reaches over alpha, for an association that the plan decides."""
+    name = result.screened.spec.name
+    basis = basis_of(result.screened.spec, spec)
+    if basis == "outside the family" or not isinstance(result.test, RankTest) or result.test.p_interval is None:
+        return False
+    ends = [Fraction(end) for end in result.test.p_interval]
+    if basis == "family":
+        ends = [_adjusted({**raw, name: end}, adjustment)[name] for end in ends]
+    return ends[0] <= Fraction(spec.inference.alpha) < ends[1]
 
 
 def _p_or_one(result: AssociationAnalysis) -> Fraction:

@@ -193,11 +193,14 @@ class Finding:
         Whether the adjusted p of the family decided, the association’s own p, or nothing did.
     p_adjusted
         The adjusted p of a family member whose p is given.
+    undecided_by_draws
+        True when the ends of a drawn p’s interval lie on different sides of alpha, adjusted with the others fixed.
     """
 
     word: FindingWord | None
     basis: FindingBasis
     p_adjusted: Fraction | None
+    undecided_by_draws: bool = False
 
 
 @dataclass(frozen=True, slots=True)

@@ -4,9 +4,10 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Final
 
-from rankdocket.analysis.analyse import null_choice
+from rankdocket.analysis.analyse import without_seed
 from rankdocket.analysis.check import Check
 from rankdocket.analysis.checks import CHECKS
+from rankdocket.analysis.nulls import null_choice
 from rankdocket.analysis.plain import data_to_plain, screened_to_plain
 from rankdocket.analysis.results import CheckOutcome, Screened
 from rankdocket.analysis.screen import screen_all
@@ -28,6 +29,8 @@ class Screening:
     ----------
     outcomes
         Association → outcomes of the checks that show nothing joint.
+    seedless
+        Associations whose test needs drawn permutations although the plan states no seed: issuing would be refused.
     plain
         The same as plain data, with each variable alone.
     """
@@ -36,12 +39,15 @@ class Screening:
     data: StudyData
     screened: Mapping[str, Screened]
     outcomes: Mapping[str, tuple[CheckOutcome, ...]]
+    seedless: tuple[str, ...]
     plain: Mapping[str, Plain]
 
     @property
     def all_met(self) -> bool:
-        """True when no requirement is not met."""
-        return all(outcome.state != "not met" for outcomes in self.outcomes.values() for outcome in outcomes)
+        """True when no requirement is not met and the plan could be run."""
+        return not self.seedless and all(
+            outcome.state != "not met" for outcomes in self.outcomes.values() for outcome in outcomes
+        )
 
 
 def screen_study(spec: StudySpec, data: StudyData) -> Screening:
@@ -50,10 +56,11 @@ def screen_study(spec: StudySpec, data: StudyData) -> Screening:
     outcomes = {name: tuple(check.examine(rows, spec) for check in BLIND_CHECKS) for name, rows in screened.items()}
     plain: dict[str, Plain] = {
         "schema": SCHEMA,
+        "without_seed": list(without_seed(spec, screened)),
         **data_to_plain(spec, data),
         "associations": {name: _association(rows, outcomes[name], spec) for name, rows in screened.items()},
     }
-    return Screening(spec, data, screened, outcomes, plain)
+    return Screening(spec, data, screened, outcomes, without_seed(spec, screened), plain)
 
 
 def _association(rows: Screened, outcomes: tuple[CheckOutcome, ...], spec: StudySpec) -> dict[str, Plain]:

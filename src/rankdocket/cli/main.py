@@ -1,6 +1,8 @@
 """The command ``rankdocket``: which command, which exit status; the work is done in the workflow."""
 
+import signal
 import sys
+from types import FrameType
 from typing import Final, NoReturn
 
 import click
@@ -13,6 +15,7 @@ from rankdocket.cli.screen import screen_command
 from rankdocket.cli.verify import verify_command
 
 EXIT_INTERRUPTED: Final = 130
+"""Also when the system asks the program to end: either way nothing was sealed, and README knows one status for it."""
 
 COMMANDS: Final[tuple[OfficeCommand, ...]] = (screen_command, issue_command, verify_command, schema_command)
 
@@ -42,6 +45,8 @@ for _command in COMMANDS:
 def main() -> NoReturn:
     """Run the command line and end the process with its exit status."""
     as_json = "--json" in sys.argv  # also where the command line as a whole cannot be read
+    if signal.getsignal(signal.SIGTERM) is signal.SIG_DFL:  # who had such requests ignored goes on having them ignored
+        signal.signal(signal.SIGTERM, _interrupt)
     try:
         status = rankdocket.main(standalone_mode=False, prog_name="rankdocket")
     except click.UsageError as error:
@@ -55,3 +60,9 @@ def main() -> NoReturn:
         close_quietly()
         status = 0
     sys.exit(status if isinstance(status, int) else 0)
+
+
+def _interrupt(_number: int, _frame: FrameType | None) -> None:
+    # A second request must not cut short what takes back the first one's half-done work.
+    signal.signal(signal.SIGTERM, signal.SIG_IGN)
+    raise KeyboardInterrupt

@@ -3,6 +3,7 @@
 import difflib
 import json
 import os
+import signal
 import sys
 import traceback
 from collections.abc import Callable, Mapping
@@ -24,7 +25,7 @@ _LINE: Final = 60
 """So wide is the line that tells how far the work is."""
 
 NOTHING_COMPUTED: Final = "Nothing was computed."
-"""Said once whenever the user's files cannot be used: by a fault itself or behind the last one."""
+"""Said once, behind the last fault, whenever the user's files cannot be used."""
 
 ERROR_SCHEMA: Final = "urn:rankdocket:error:1"
 
@@ -59,7 +60,12 @@ def voiced(function: Callable[..., Any]) -> Callable[..., Any]:
 
 
 def answer(voice: Voice, work: Callable[[], Answer]) -> int:
-    """Do the work, print its answer or its error, and return the exit status."""
+    """Do the work, print its answer or its error, and return the exit status.
+
+    What is done stays done: from then on the process no longer ends on an interrupt or a request to end, which would
+    say that nothing was sealed. When the answer cannot be written, a reader who has gone leaves it to the status, and
+    a full disk behind standard output is said on standard error.
+    """
     try:
         found = work()
     except Exception as error:  # noqa: BLE001 - whatever a library raises, the user gets a sentence and status 4
@@ -67,6 +73,7 @@ def answer(voice: Voice, work: Callable[[], Answer]) -> int:
         if voice.debug:
             traceback.print_exception(error)
         return _failed(voice, _as_ours(error))
+    _end_only_by_itself()
     _clear(voice)
     try:
         if voice.as_json:
@@ -75,7 +82,16 @@ def answer(voice: Voice, work: Callable[[], Answer]) -> int:
             click.echo(found.words)
     except BrokenPipeError:
         close_quietly()
+    except OSError as error:
+        close_quietly()
+        click.echo(f"The work is done and its answer could not be written: {error.strerror or error}.", err=True)
+        return EXIT_FAILED
     return found.status
+
+
+def _end_only_by_itself() -> None:
+    for request in (signal.SIGINT, signal.SIGTERM):
+        signal.signal(request, signal.SIG_IGN)
 
 
 def close_quietly() -> None:
@@ -148,7 +164,8 @@ def _as_ours(error: Exception) -> RankdocketError:
     if isinstance(error, RankdocketError):
         return error
     if isinstance(error, OSError):
-        return RegisterError(f"{error.filename or 'a file'}: {error.strerror or error}. Nothing was sealed.")
+        where = error.filename or "a file that it did not name"
+        return RegisterError(f"The system refused {where}: {error.strerror or error}. Nothing was sealed.")
     return RankdocketError(
         f"The program itself failed ({type(error).__name__}: {error}). Nothing was sealed; --debug shows where it failed."
     )
@@ -158,7 +175,7 @@ def _failed(voice: Voice, error: RankdocketError) -> int:
     kinds = {InputError: "input", ComputeError: "compute", RenderError: "render", RegisterError: "register"}
     faults = error.faults if isinstance(error, InputError) else ()
     message = str(error)
-    if faults and NOTHING_COMPUTED not in message:
+    if faults:
         message = f"{message}\n{NOTHING_COMPUTED}"
     _say(voice.as_json, kinds.get(type(error), "program"), message, faults)
     return EXIT_INPUT if isinstance(error, InputError) else EXIT_FAILED

@@ -21,7 +21,7 @@ def require_reason(reason: str) -> None:
                     "",
                     Message.NOTHING_WRITTEN,
                     "an edition needs a reason, and this one is blank.",
-                    'Write: --reason "first issue". Nothing was computed.',
+                    'Write: --reason "first issue".',
                 ),
             )
         )

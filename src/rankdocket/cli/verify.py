@@ -20,7 +20,8 @@ def verify_command(study: str, edition: str | None, as_json: bool, quiet: bool, 
     """Recompute an edition of STUDY from its own record copy and say what agrees.
 
     The register's chain, the digests of all files, and every number, table and page are held against a fresh
-    computation. Ends with status 1 when something does not agree, and names it.
+    computation; every edition of the register has to be there. Ends with status 1 when something does not agree, and
+    names it.
     """
     voice = Voice(as_json, quiet, debug)
     return answer(voice, lambda: _verify(study, edition, voice))
@@ -30,18 +31,19 @@ def _verify(study: str, edition: str | None, voice: Voice) -> Answer:
     from rankdocket.cli.refusals import require_usable_time
 
     require_usable_time()
+    from rankdocket.workflow.differences import counted
     from rankdocket.workflow.verify import verify
 
     found = verify(study, edition=edition, progress=progress(voice))
+    seen = f"{counted(found.numbers, 'number')}, {counted(found.files, 'file')}"
     if found.agrees:
         lines = [
-            f"Everything agrees ({found.numbers} numbers, {found.files} files).",
+            f"Everything agrees ({seen}).",
             f"Edition {found.edition}: {found.grade}.",
         ]
     else:
-        lines = [
-            f"{len(found.problems)} things in edition {found.edition} do not agree ({found.numbers} numbers, {found.files} files looked at):"
-        ]
+        things = f"{counted(len(found.problems), 'thing')} {'does' if len(found.problems) == 1 else 'do'}"
+        lines = [f"{things} not agree (edition {found.edition}: {seen} looked at):"]
         lines += [f"  {number}. {problem}" for number, problem in enumerate(found.problems, start=1)]
     lines += list(found.remarks)
     plain: dict[str, Plain] = {

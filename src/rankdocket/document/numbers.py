@@ -95,9 +95,9 @@ class Numbers:
         return Number(key, exact, exact)
 
     def as_filed(self, key: str) -> Number:
-        """Return a decimal with all its digits (a rank, a level, a limit of the plan)."""
+        """Return a decimal with all its digits (a rank, a sum of squares), with commas from a thousand on."""
         exact = self._exact(key)
-        return Number(key, exact, _signed(f"{Decimal(exact):f}"))
+        return Number(key, exact, _signed(f"{Decimal(exact):,f}"))
 
     def level(self, key: str) -> Number:
         """Return a level or a size that the plan states, with the digits it has and the zero of the style."""
@@ -157,6 +157,8 @@ class Numbers:
         if value < smallest:
             return Number(key, exact, f"<{NARROW_SPACE}{self._styled(smallest)}")
         places = self.p_value_decimals
+        if _rounded(value, places) == 1:
+            return Number(key, exact, f">{NARROW_SPACE}{self._styled(1 - Decimal(1).scaleb(-places))}")
         while places < MOST_DECIMALS and self._misleads(_rounded(value, places), value):
             places += 1
         return Number(key, exact, self._styled(_rounded(value, places)))
@@ -167,21 +169,14 @@ class Numbers:
         value = Decimal(exact)
         if value >= Decimal(1).scaleb(-self.p_value_decimals) or value == self.alpha:
             return self.p_value(key)
-        places = min(-value.adjusted(), MOST_SMALL_DECIMALS)
-        while places < MOST_DECIMALS and _rounded(value, places) >= self.alpha > value:
-            places += 1
-        smallest = Decimal(1).scaleb(-places)
+        smallest = Decimal(1).scaleb(-MOST_SMALL_DECIMALS)
+        while smallest > self.alpha:
+            smallest = smallest.scaleb(-1)
         if value < smallest:
             return Number(key, exact, f"<{NARROW_SPACE}{self._styled(smallest)}")
-        return Number(key, exact, self._styled(_rounded(value, places)))
-
-    def comparison_p(self, key: str) -> Number:
-        """Return an approximate p-value that no finding rests on: four decimals, or a power of ten when smaller."""
-        exact = self._exact(key)
-        value = Decimal(exact)
-        places = self.p_value_decimals + 1
-        if _rounded(value, places) == 0:
-            return Number(key, exact, f"<{NARROW_SPACE}{self._styled(Decimal(1).scaleb(-places))}")
+        places = -value.adjusted()
+        while places < MOST_DECIMALS and self._misleads(_rounded(value, places), value):
+            places += 1
         return Number(key, exact, self._styled(_rounded(value, places)))
 
     def _misleads(self, printed: Decimal, value: Decimal) -> bool:

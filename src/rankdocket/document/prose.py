@@ -32,8 +32,6 @@ from rankdocket.document.model import (
 
 Slot: TypeAlias = "Piece | Prose"
 
-EMPTY: Final = Prose(())
-
 
 def prose(template: str, **slots: Slot) -> Prose:
     """Return ``template`` with each ``{slot}`` replaced.

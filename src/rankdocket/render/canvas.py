@@ -32,7 +32,6 @@ BLACK: Final = "#1b1b1b"
 INK: Final = "#174a52"
 """The one ink beside black: dark petrol."""
 
-PALE: Final = "#8a9496"
 PAPER: Final = "#ffffff"
 TEXT_SIZE: Final = 7.6
 SMALL_SIZE: Final = 7.0

@@ -39,7 +39,6 @@ _CODE_SIZE: Final = 0.8
 _CODE_BREAKS: Final = re.compile(r"(?<=[ /-])")
 
 _BREAKS: Final = re.compile(r"(?<=[ \n/–-])")
-_DECIMAL_MARK: Final = "."
 _BEFORE_MARK: Final = re.compile(r"[0-9]\.[0-9]")
 
 

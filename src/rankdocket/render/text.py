@@ -90,7 +90,7 @@ def csv_bytes(table: TableBlock) -> bytes:
     A cell that is one number is written by its exact value, any other by its text; a text that a spreadsheet
     would take for a formula begins with an apostrophe.
     """
-    lines = [[_safe(column.name) for column in table.columns]]
+    lines = [[defused(column.name) for column in table.columns]]
     lines += [[_csv_cell(cell) for cell in row] for row in table.rows + table.foot]
     return "".join(_csv_line(line) for line in lines).encode("utf-8")
 
@@ -100,15 +100,19 @@ def _csv_cell(cell: Prose) -> str:
         case (Number() as number,):
             return number.exact
         case _:
-            return _safe(prose_text(cell))
+            return defused(prose_text(cell))
 
 
-def _safe(text: str) -> str:
-    plain = text.replace(_MINUS, "-")
-    first = plain.lstrip(" \u00a0\u2007\u202f")[:1]
-    if first in _FORMULA_SIGNS and first and not _PLAIN_NUMBER.fullmatch(plain):
-        return f"'{plain}"
-    return plain
+def defused(text: str) -> str:
+    """Return text as a spreadsheet shows it without running it: a number with a plain minus, else an apostrophe if needed.
+
+    A true minus inside words stays: no spreadsheet takes it for a formula.
+    """
+    number = text.replace(_MINUS, "-")
+    if _PLAIN_NUMBER.fullmatch(number):
+        return number
+    first = text.lstrip(" \u00a0\u2007\u202f")[:1]
+    return f"'{text}" if first and first in _FORMULA_SIGNS else text
 
 
 def _csv_line(cells: Sequence[str]) -> str:

@@ -16,7 +16,7 @@ PAGE: Final = "page"
 PAGE_OF: Final = "of"
 PAGES: Final = "pages"
 CHECK_REGISTER: Final = "check the register for the current edition"
-SIGNATURE_HEADS: Final = ("Act", "Name", "Role", "Date and signature")
+SIGNATURE_HEADS: Final = ("Step", "Name", "Role", "Date and signature")
 SIGNATURES: Final = "Signatures"
 BETWEEN: Final = "\u2002·\u2002"
 

@@ -3,7 +3,9 @@
 from collections.abc import Iterator, Sequence
 
 from rankdocket.errors import Fault
+from rankdocket.study.decision import decision_faults
 from rankdocket.study.form import AssociationForm, DataForm, VariableForm
+from rankdocket.study.labels import nearest_label
 from rankdocket.study.messages import Message, fault
 from rankdocket.study.parts import Parts
 from rankdocket.study.wording import composed, shown, suggestion
@@ -27,7 +29,7 @@ def consistency_faults(parts: Parts) -> list[Fault]:
         if parts.sound(("associations", name), "between"):
             faults.extend(_between_faults(parts, name, association))
     faults.extend(_rows_faults(parts))
-    faults.extend(_inference_faults(parts))
+    faults.extend(decision_faults(parts))
     faults.extend(_twice(parts, ("report", "readers"), parts.report.readers))
     faults.extend(_twice(parts, ("report", "signatures"), parts.report.signatures))
     faults.extend(_twice(parts, ("report", "distribution"), parts.report.distribution))
@@ -139,7 +141,9 @@ def _label_faults(parts: Parts, name: str, variable: VariableForm) -> Iterator[F
         place = parts.value_place("variables", name, "other_spellings", spelling)
         if composed(label) not in labels:
             what = f"{shown(label)} is not in lowest_to_highest."
-            yield fault(place, field, Message.LABEL_UNKNOWN, what, suggestion(label, labels, "Labels"))
+            near = nearest_label(composed(label), labels)
+            remedy = f"nearest: {near}." if near is not None else f"Labels: {', '.join(labels)}."
+            yield fault(place, field, Message.LABEL_UNKNOWN, what, remedy)
         if composed(spelling) in labels:
             what = f"{shown(spelling)} is itself a label of lowest_to_highest."
             yield fault(place, field, Message.CONTRADICTION, what, "Strike it here or there.")
@@ -176,6 +180,11 @@ def _between_faults(parts: Parts, name: str, association: AssociationForm) -> It
     known = [v for v in (x, y) if v in parts.variables and parts.sound(("variables", v), "column")]
     forms = [parts.variables[v] for v in known]
     tables = [table for form in forms if (table := table_of(parts, form)) in parts.names("data")]
+    columns = [(table_of(parts, form), composed(form.column.name)) for form in forms]
+    if x != y and len(columns) == len(tables) == 2 and columns[0] == columns[1]:
+        what = f"{x} and {y} both read the column {shown(columns[0][1])} of {columns[0][0]}."
+        remedy = "Write two variables of different columns."
+        yield fault(place, field, Message.SAME_VARIABLE, what, remedy)
     if len(set(tables)) > 1:
         what = f"{x} stands in table {tables[0]}, {y} in table {tables[1]}."
         remedy = "Write two variables of one table; join the files before the study."
@@ -198,31 +207,6 @@ def _rows_faults(parts: Parts) -> Iterator[Fault]:
             what = "no column stands here."
             remedy = 'Write where: {station: "E07"}.'
             yield fault(place, f"rows.leave_out.{position + 1}.where", Message.KEY_MISSING, what, remedy)
-
-
-def _inference_faults(parts: Parts) -> Iterator[Fault]:
-    if parts.inference is None:
-        return
-    if parts.inference.sidedness == "one-sided" and parts.sound(("inference",), "sidedness"):
-        for name, association in parts.associations.items():
-            if parts.sound(("associations", name), "hypothesis") and association.hypothesis.expected_sign == "either":
-                place = parts.value_place("associations", name, "hypothesis", "expected_sign")
-                what = "either gives no side, and inference.sidedness is one-sided."
-                remedy = "Write positive or negative, or sidedness: two-sided."
-                field = f"associations.{name}.hypothesis.expected_sign"
-                yield fault(place, field, Message.SIGN_MISSING, what, remedy)
-    several, sound = parts.inference.several_tests, parts.sound(("inference",), "several_tests")
-    for key, word in (("adjust", several.adjust), ("among", several.among)):
-        if sound and word == "none" and several.reason is None:
-            what = f"reason is missing; {key}: none needs one."
-            place = parts.key_place("inference", "several_tests")
-            yield fault(place, "inference.several_tests", Message.NEEDED_BY_ANOTHER, what, "Write reason: …")
-    p_value = parts.inference.p_value
-    if parts.sound(("inference",), "p_value") and p_value.by == "permutation" and p_value.seed is None:
-        what = "seed is missing; by: permutation draws at random."
-        place = parts.key_place("inference", "p_value")
-        remedy = "Write seed: and a whole number chosen before the data are seen."
-        yield fault(place, "inference.p_value", Message.NEEDED_BY_ANOTHER, what, remedy)
 
 
 def _twice(parts: Parts, address: tuple[str, ...], entries: Sequence[str]) -> Iterator[Fault]:

@@ -9,7 +9,7 @@ from typing import Final
 from rankdocket.errors import Fault, InputError, Place
 from rankdocket.study.messages import Message, fault
 from rankdocket.study.spec import DataSpec
-from rankdocket.study.wording import FIRST_PLACES, first_rows, shown
+from rankdocket.study.wording import FIRST_PLACES, counted, first_places, first_rows, shown
 
 _CODECS: Final = {
     "utf-8": "utf-8",
@@ -129,21 +129,28 @@ def _absent_rows(count: int, spec: DataSpec, found: tuple[bool, bool, bool]) -> 
     """Return a fault for each row that the spec names and the file does not have."""
     has_names, has_units, has_data = found
     place = Place(spec.file)
-    length = f"the file has {count} line{'' if count == 1 else 's'}"
+    length = f"the file has {counted(count, 'line')}"
+    upto = f"and a row from 1 to {count}."
     field = f"data.{spec.name}"
     faults: list[Fault] = []
     if not has_names:
         what = f"no column names begin in row {spec.column_names_in_row}; {length}."
-        faults.append(fault(place, field, Message.ROW_NOT_THERE, what, "Write column_names_in_row as in the file."))
+        faults.append(fault(place, field, Message.ROW_NOT_THERE, what, f"Write column_names_in_row: {upto}"))
     if spec.units_in_row is not None and not has_units:
         what = f"no units begin in row {spec.units_in_row}; {length}."
-        faults.append(fault(place, field, Message.ROW_NOT_THERE, what, "Write units_in_row as in the file."))
+        remedy = f"Write units_in_row: {upto} Or leave it out."
+        faults.append(fault(place, field, Message.ROW_NOT_THERE, what, remedy))
     if has_names and not has_data:
         what = f"no data stand from row {spec.first_data_row} on; {length}."
-        faults.append(fault(place, field, Message.ROW_NOT_THERE, what, "Write first_data_row as in the file."))
+        below = max(spec.column_names_in_row, spec.units_in_row or 0) + 1
+        remedy = "Write column_names_in_row: and an earlier row."
+        if below <= count:
+            remedy = f"Write first_data_row: and a row from {below} to {count}."
+        faults.append(fault(place, field, Message.ROW_NOT_THERE, what, remedy))
     if spec.last_data_row is not None and spec.last_data_row > count:
         what = f"last_data_row is {spec.last_data_row}; {length}."
-        faults.append(fault(place, field, Message.ROW_NOT_THERE, what, f"Write {count}, or leave last_data_row out."))
+        remedy = f"Write last_data_row: {count}, or leave it out."
+        faults.append(fault(place, field, Message.ROW_NOT_THERE, what, remedy))
     return faults
 
 
@@ -166,8 +173,23 @@ def _decoded(data: bytes, spec: DataSpec) -> str:
         line = before.replace("\r\n", "\n").replace("\r", "\n").count("\n") + 1
         found = " ".join(f"{byte:02X}" for byte in data[error.start : error.start + FIRST_PLACES])
         what = f"the bytes {found} are no text of {encoding}; near {shown(before[-12:])}."
+        odd = _undecodable(data, encoding)
+        if odd:
+            what = f"{what[:-1]}; {first_places('line', odd)}."
         remedy = _encoding_remedy(data, spec) or "Write text_encoding as the file was saved."
         raise InputError((fault(Place(spec.file, line), field, Message.ENCODING, what, remedy),)) from None
+
+
+def _undecodable(data: bytes, encoding: str) -> list[int]:
+    """Return the lines that are no text of the encoding; none where a line end is more than one byte."""
+    odd: list[int] = []
+    lines = [] if encoding == "utf-16" else data.replace(b"\r\n", b"\n").replace(b"\r", b"\n").split(b"\n")
+    for number, line in enumerate(lines, start=1):
+        try:
+            line.decode(_CODECS[encoding])
+        except UnicodeDecodeError:
+            odd.append(number)
+    return odd
 
 
 def _encoding_remedy(data: bytes, spec: DataSpec) -> str:

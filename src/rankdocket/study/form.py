@@ -187,7 +187,7 @@ class HypothesisForm(Form):
     """What was expected in advance."""
 
     expected_sign: Annotated[ExpectedSign, kinds.OneOf(EXPECTED_SIGNS)] = Field(description="Expected direction.")
-    smallest_of_interest: Annotated[Decimal | None, kinds.DecimalNumber(_ZERO, _ONE, (_ZERO, _ONE))] = Field(
+    smallest_of_interest: Annotated[Decimal | None, kinds.Size(_ZERO, _ONE, (_ZERO, _ONE))] = Field(
         default=None, description="Smallest size of the coefficient that matters, without sign."
     )
 

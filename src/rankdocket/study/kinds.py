@@ -25,6 +25,7 @@ _TEXT_SCHEMA: Final = {"type": ["string", "number"]}
 _WHOLE: Final = re.compile(r"[0-9]+")
 _DECIMAL: Final = re.compile(r"([0-9]+(\.[0-9]+)?|\.[0-9]+)([eE][-+]?[0-9]{1,2})?")
 _DATE: Final = re.compile(r"[0-9]{4}-[0-9]{2}-[0-9]{2}")
+_MINUS_SIGNS: Final = ("-", "\u2212")
 _LONGEST_NUMBER: Final = 40
 """Characters of a number in a spec: twice the longest seed."""
 
@@ -190,12 +191,13 @@ class DecimalNumber(_Kind):
     def read(self, value: object) -> Decimal:
         """Return the number, exactly."""
         text = text_of(value)
+        self._refuse_sign(text)
         if _DECIMAL.fullmatch(text) is None or len(str(Decimal(text))) > _LONGEST_NUMBER:
             raise refuse(Message.NOT_A_NUMBER, f"{shown(text)} is not a number.", self._rescue(text))
         number = Decimal(text)
         if not self._holds(number):
-            share = " A share is written from 0 to 1: 20 percent is 0.20." if number > 1 else ""
-            raise refuse(Message.OUT_OF_RANGE, f"{text} is not possible here.", f"Write {self._range()}.{share}")
+            remedy = f"Write {self._range()}.{self._percent_hint(text)}"
+            raise refuse(Message.OUT_OF_RANGE, f"{text} is not possible here.", remedy)
         return number
 
     def schema(self) -> Schema:
@@ -220,8 +222,36 @@ class DecimalNumber(_Kind):
             return f"Write {pointed}."
         percent = pointed.removesuffix("%").strip()
         if pointed.endswith("%") and _DECIMAL.fullmatch(percent) is not None and len(percent) < _LONGEST_NUMBER:
-            return f"Write {Decimal(percent) / 100:f}."
+            share = Decimal(percent) / 100
+            if self._holds(share):
+                return f"Write {share:f}."
         return f"Write {self._range()}."
+
+    def _percent_hint(self, text: str) -> str:
+        """Return what the number is without percent, if that is possible here."""
+        share = Decimal(text).scaleb(-2)
+        if Decimal(text) <= 1 or not self._holds(share):
+            return ""
+        return f" {text} percent is {share:f}."
+
+    def _refuse_sign(self, text: str) -> None:
+        """Refuse a number with a minus as such: it can be read, and no number of a spec is below 0."""
+        if text.startswith(_MINUS_SIGNS) and _DECIMAL.fullmatch(text[1:]) is not None:
+            raise refuse(Message.OUT_OF_RANGE, f"{shown(text)} is below what is possible.", f"Write {self._range()}.")
+
+
+@dataclass(frozen=True, slots=True)
+class Size(DecimalNumber):
+    """How large a coefficient is, whichever its sign."""
+
+    def _refuse_sign(self, text: str) -> None:
+        """Refuse a number with a sign, and say the size that it has."""
+        bare = text[1:].replace(",", ".", 1)
+        if text.startswith((*_MINUS_SIGNS, "+")) and _DECIMAL.fullmatch(bare) is not None:
+            what = f"{shown(text)} has a sign; a size is written without its sign."
+            is_possible = len(bare) < _LONGEST_NUMBER and self._holds(Decimal(bare))
+            remedy = f"Write {bare}." if is_possible else f"Write {self._range()}."
+            raise refuse(Message.OUT_OF_RANGE, what, remedy)
 
 
 @dataclass(frozen=True, slots=True)

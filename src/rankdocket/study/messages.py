@@ -67,6 +67,12 @@ class Message(IntEnum):
     NO_ROW_MATCHED = 52
     FILE_NOT_READABLE = 53
     SEED_MISSING = 54
+    NO_SUCH_STUDY = 55
+    NO_SUCH_EDITION = 56
+    FAMILY_EMPTY = 57
+    NAMES_COMMENTED = 58
+    OTHER_SEPARATOR = 59
+    NO_DATA = 60
 
 
 MEANINGS: Final = {
@@ -124,6 +130,12 @@ MEANINGS: Final = {
     Message.NO_ROW_MATCHED: "a leave_out matches no row",
     Message.FILE_NOT_READABLE: "a file that the spec names cannot be read",
     Message.SEED_MISSING: "permutations must be drawn and no seed is stated",
+    Message.NO_SUCH_STUDY: "a study is asked for that is not there",
+    Message.NO_SUCH_EDITION: "an edition is asked for that the study does not have",
+    Message.FAMILY_EMPTY: "no association has a role of the family",
+    Message.NAMES_COMMENTED: "the row of the column names is marked as a comment",
+    Message.OTHER_SEPARATOR: "the fields of a data file are separated by another mark than the declared one",
+    Message.NO_DATA: "a data file holds no data",
 }
 """Message → what it means, in short."""
 

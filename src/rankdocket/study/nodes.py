@@ -85,7 +85,8 @@ def read_tree(text: str, path: str) -> tuple[MapNode | None, list[Fault]]:
     try:
         root = growth.document()
     except yaml.YAMLError as error:
-        return None, [*growth.faults, syntax_fault(error, text, path)]
+        found = syntax_fault(error, text, path)
+        return None, [*(one for one in growth.faults if not _follows(one, found)), found]
     except _TooLargeError:
         return None, growth.faults
     if isinstance(root, MapNode):
@@ -94,6 +95,12 @@ def read_tree(text: str, path: str) -> tuple[MapNode | None, list[Fault]]:
         remedy = "Write the keys study, data, rows, variables, associations and inference."
         growth.faults.append(fault(whole, "", Message.NO_KEYS, "no keys stand in the file.", remedy))
     return None, growth.faults
+
+
+def _follows(one: Fault, found: Fault) -> bool:
+    """Say whether a fault is only what a line in disorder made of the key above it or of those below."""
+    shaken = one.number in (Message.NOTHING_WRITTEN, Message.KEY_TWICE)
+    return shaken and (one.place.line or 0) >= (found.place.line or 0) - 1
 
 
 def plain_of(node: Node) -> PlainTree:

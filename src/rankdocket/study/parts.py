@@ -14,6 +14,7 @@ from rankdocket.study.form import (
     StudyForm,
     VariableForm,
 )
+from rankdocket.study.homes import is_misplaced
 from rankdocket.study.nodes import ListNode, MapNode, Node, TextNode
 
 
@@ -43,9 +44,11 @@ class Parts:
         return self.faulty.get(address, frozenset()).isdisjoint(keys)
 
     def names(self, section: str) -> list[str]:
-        """Return the names written in a section, those with faults included."""
+        """Return the names written in a section, those with faults included, keys that strayed among them not."""
         entry = self.tree.entries.get(section)
-        return list(entry.value.entries) if entry is not None and isinstance(entry.value, MapNode) else []
+        if entry is None or not isinstance(entry.value, MapNode):
+            return []
+        return [name for name, found in entry.value.entries.items() if not is_misplaced(section, name, found.value)]
 
     def key_place(self, *address: str | int) -> Place:
         """Return where the key at ``address`` stands, or the nearest key above it."""

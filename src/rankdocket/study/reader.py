@@ -20,6 +20,7 @@ from rankdocket.study.form import (
     StudyForm,
     VariableForm,
 )
+from rankdocket.study.homes import is_misplaced
 from rankdocket.study.messages import Message, fault, in_file_order
 from rankdocket.study.names import name_faults
 from rankdocket.study.nodes import MapNode, Node, PlainTree, plain_of, read_tree
@@ -125,7 +126,13 @@ class _Reading:
             self.faults.append(fault(entry.key_place, name, number, what, remedy))
             return {}
         self.faults.extend(name_faults(name, node))
-        read = {key: self._read(Part((name, key), e.key_place, e.value), form) for key, e in node.entries.items()}
+        entries = {key: entry for key, entry in node.entries.items() if not is_misplaced(name, key, entry.value)}
+        for key in node.entries.keys() - entries.keys():
+            what = f"{key} stands beside the entries of {name} and is a key of an entry."
+            remedy = "Indent it like the other keys of its entry."
+            place = node.entries[key].key_place
+            self.faults.append(fault(place, f"{name}.{key}", Message.WRONG_SHAPE, what, remedy))
+        read = {key: self._read(Part((name, key), e.key_place, e.value), form) for key, e in entries.items()}
         return {key: found for key, found in read.items() if found is not None}
 
     def _read(self, part: Part, form: type[F]) -> F | None:

@@ -7,8 +7,9 @@ from pydantic import BaseModel
 from pydantic_core import ErrorDetails
 
 from rankdocket.errors import Fault, Place
-from rankdocket.study.form import TRAP_WORDS
-from rankdocket.study.kinds import REFUSED
+from rankdocket.study.form import TRAP_WORDS, SpecForm
+from rankdocket.study.homes import homes_of
+from rankdocket.study.kinds import REFUSED, MissingCodes, OneOf
 from rankdocket.study.messages import Message, fault
 from rankdocket.study.nodes import ListNode, MapNode, Node, TextNode
 from rankdocket.study.wording import nearest, shown, suggestion
@@ -53,7 +54,8 @@ def fault_of(error: ErrorDetails, part: Part, form: type[BaseModel]) -> Fault:
         return unknown_key(reached.key_place, reached.address, keys_of(form, error["loc"]), owner)
     if kind == "missing":
         key = str(error["loc"][-1])
-        return fault(reached.key_place, field, Message.KEY_MISSING, f"{key} is missing.", f"Write {key}: …")
+        remedy = _line_of(key, error["loc"], form)
+        return fault(reached.key_place, field, Message.KEY_MISSING, f"{key} is missing.", remedy)
     what, remedy = _SHAPES[kind]
     context = error.get("ctx", {})
     wanted = context.get("min_length", context.get("max_length"))
@@ -69,17 +71,36 @@ def unknown_key(place: Place, address: tuple[str, ...], keys: list[str], owner: 
         what = f'"{key}" is a word that YAML reads as true, false or nothing, and not a key of {owner}.'
         return fault(place, ".".join(address), Message.YAML_TRAP, what, f"nearest: {near}." if near else "")
     what = f"{shown(key)} is not a key of {owner}."
+    home = homes_of(key)
+    if home:
+        is_section = key in SpecForm.model_fields
+        step = "Write it without indentation." if is_section else "Write it there, indented like the keys beside it."
+        return fault(place, ".".join(address), Message.KEY_UNKNOWN, f"{what} It is {home}.", step)
     return fault(place, ".".join(address), Message.KEY_UNKNOWN, what, suggestion(key, keys, "Its keys"))
 
 
 def keys_of(form: type[BaseModel], address: tuple[int | str, ...]) -> list[str]:
     """Return the keys that may stand where the last part of ``address`` stands."""
+    return list(_form_at(form, address).model_fields)
+
+
+def _form_at(form: type[BaseModel], address: tuple[int | str, ...]) -> type[BaseModel]:
     for step in address[:-1]:
         inner = form.model_fields[step].annotation if step in form.model_fields else None
         for candidate in (inner, *getattr(inner, "__args__", ())):
             if isinstance(candidate, type) and issubclass(candidate, BaseModel):
                 form = candidate
-    return list(form.model_fields)
+    return form
+
+
+def _line_of(key: str, address: tuple[int | str, ...], form: type[BaseModel]) -> str:
+    """Return what to write for a key that is missing, as far as its kind says."""
+    for kind in _form_at(form, address).model_fields[key].metadata:
+        if isinstance(kind, OneOf):
+            return f"Write {key}: and one of: {', '.join(kind.words)}."
+        if isinstance(kind, MissingCodes):
+            return f'Write {key}: [""] if an empty cell means missing, or {key}: [] when there are no codes.'
+    return f"Write {key}: …"
 
 
 def _follow(part: Part, address: tuple[int | str, ...]) -> _Reached:

@@ -7,9 +7,10 @@ from rankdocket.canonical import digest_of, sha256
 from rankdocket.errors import Fault, InputError, Place
 from rankdocket.study.delimited import Record, Records, lines_of, records_of
 from rankdocket.study.messages import Message, fault, in_file_order
+from rankdocket.study.misread import content_fault, separator_fault
 from rankdocket.study.spec import DataSpec
 from rankdocket.study.table import SourceFile, Table
-from rankdocket.study.wording import FIRST_PLACES, composed, first_rows, looks_alike, shown, suggestion
+from rankdocket.study.wording import composed, counted, first_places, first_rows, looks_alike, shown, suggestion
 
 
 def read_table(data: bytes, spec: DataSpec) -> Table:
@@ -33,9 +34,14 @@ def read_table(data: bytes, spec: DataSpec) -> Table:
     InputError
         With every fault of the file's form.
     """
-    records = records_of(lines_of(data, spec), spec)
+    lines = lines_of(data, spec)
+    records = _records(lines, spec)
     names = [composed(name) for name in records.names.fields]
     faults = [*_name_faults(names, records.names, spec), *_length_faults(records, spec)]
+    if faults or len(names) == 1:
+        separated = separator_fault(lines, spec)
+        # With the right separator the names and the fields are others.
+        faults = faults if separated is None else [separated]
     if faults:
         raise InputError(in_file_order(faults))
     units = [] if records.units is None else [composed(unit) for unit in records.units.fields]
@@ -49,6 +55,21 @@ def read_table(data: bytes, spec: DataSpec) -> Table:
         columns=columns,
         row_numbers=tuple(record.line for record in records.data),
     )
+
+
+def _records(lines: list[str], spec: DataSpec) -> Records:
+    found = content_fault(lines, spec)
+    if found is not None:
+        raise InputError((found,))
+    try:
+        return records_of(lines, spec)
+    except InputError as error:
+        # A quoted field that ends before another separator looks like quotation marks that do not match.
+        quoted = any(one.number == Message.QUOTATION for one in error.faults)
+        separated = separator_fault(lines, spec) if quoted else None
+        if separated is None:
+            raise
+        raise InputError((separated,)) from None
 
 
 def cells_of(table: Table, column: str) -> tuple[str, ...] | None:
@@ -74,15 +95,15 @@ def _name_faults(names: Sequence[str], record: Record, spec: DataSpec) -> list[F
     place = Place(spec.file, record.line)
     field = f"row {record.line}"
     faults: list[Fault] = []
-    blank = [str(position) for position, name in enumerate(names, start=1) if not name]
+    blank = [position for position, name in enumerate(names, start=1) if not name]
     if blank:
-        what = f"the column name is blank in field {', '.join(blank[:FIRST_PLACES])} of {len(names)}."
+        what = f"the column name is blank in {first_places('field', blank)}; the row has {len(names)}."
         remedy = "Give every column a name in the file, or write column_names_in_row."
         faults.append(fault(place, field, Message.COLUMN_NAMES, what, remedy))
     for name, count in Counter(names).items():
         if name and count > 1:
-            places = [str(position) for position, other in enumerate(names, start=1) if other == name]
-            what = f"the column name {shown(name)} stands in fields {', '.join(places[:FIRST_PLACES])}."
+            places = [position for position, other in enumerate(names, start=1) if other == name]
+            what = f"the column name {shown(name)} stands in {first_places('field', places)}."
             faults.append(fault(place, field, Message.COLUMN_NAMES, what, "Rename one of them in the file."))
     return faults
 
@@ -95,7 +116,7 @@ def _length_faults(records: Records, spec: DataSpec) -> list[Fault]:
         return []
     first = odd[0]
     what = (
-        f"{len(first.fields)} field{'' if len(first.fields) == 1 else 's'} where the names in row "
+        f"{counted(len(first.fields), 'field')} where the names in row "
         f"{records.names.line} give {expected}; {first_rows([record.line for record in odd])}."
     )
     remedy = "Check separator, quotation marks and, for lines that are no data, comment_mark or last_data_row."

@@ -81,7 +81,8 @@ def _written_otherwise(column: Column, unread: Sequence[Cell], numbers: Mapping[
     if forms:
         remedy = f"If the file writes its numbers so, write: {forms[0].spec_lines()}"
     else:
-        remedy = "Mend the file at its source, or declare the text in missing_codes if it means missing."
+        line = codes_line(column.table, list(dict.fromkeys(cell.text.strip() for cell in unread)))
+        remedy = f"Mend the file at its source; or, if these mean missing, write: {line}"
     return fault(column.place(first), column.field(first), Message.NUMBER_NOT_READABLE, what, remedy)
 
 
@@ -121,13 +122,14 @@ def _no_number(column: Column, cells: Sequence[Cell]) -> Fault:
     if text.startswith(LIMIT_MARKS):
         remedy = "A value beyond a limit of measurement is no number; such columns cannot be ranked here."
     elif text.lstrip("+-\u2212").casefold() in ("inf", "infinity", "∞", "nan"):
-        remedy = "Infinity is no measurement; mend the file at its source, or declare the text in missing_codes."
+        line = codes_line(column.table, list(counts))
+        remedy = f"Infinity is no measurement. Mend the file at its source; or, if these mean missing, write: {line}"
     else:
-        remedy = f"If these mean missing write: {_codes_line(column.table, list(counts))}"
+        remedy = f"If these mean missing write: {codes_line(column.table, list(counts))}"
     return fault(column.place(first), column.field(first), Message.NUMBER_NOT_READABLE, what, remedy)
 
 
-def _codes_line(table: Table, texts: Sequence[str]) -> str:
+def codes_line(table: Table, texts: Sequence[str]) -> str:
     """Return the line of ``missing_codes`` with the first of the texts added."""
     codes = table.spec.missing_codes
     added = list(texts[:FIRST_PLACES])

@@ -4,21 +4,18 @@ from collections import Counter
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from decimal import Decimal
-from typing import Final
 
 from rankdocket.errors import Fault, InputError
 from rankdocket.study.cells import plain_digits, read_number
+from rankdocket.study.labels import nearest_label
 from rankdocket.study.messages import Message, fault, in_file_order
 from rankdocket.study.spec import StudySpec, VariableSpec
 from rankdocket.study.table import Table, VariableValues
 from rankdocket.study.tables import cells_of, column_fault
 from rankdocket.study.units import unit_faults
-from rankdocket.study.unreadable import Cell, Column, unreadable_faults
-from rankdocket.study.wording import composed, first_rows, nearest, shown
+from rankdocket.study.unreadable import Cell, Column, codes_line, unreadable_faults
+from rankdocket.study.wording import MOST_LISTED, composed, first_rows, shown
 from rankdocket.vocabulary import NOT_APPLICABLE
-
-MOST_LABELS: Final = 20
-"""Labels that a message lists; a scale that people use has fewer."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -127,7 +124,8 @@ def _count_faults(column: Column, values: tuple[Decimal, ...]) -> list[Fault]:
         return []
     first = odd[0]
     what = f"found {shown(first.text)}. A count is a whole number from 0; {first_rows([cell.row for cell in odd])}."
-    remedy = "Write scale: measured if the column is no count, or declare a code in missing_codes."
+    line = codes_line(column.table, list(dict.fromkeys(cell.text.strip() for cell in odd)))
+    remedy = f"Write scale: measured if the column is no count; or, if these mean missing, write: {line}"
     return [fault(column.place(first), column.field(first), Message.NOT_A_COUNT, what, remedy)]
 
 
@@ -137,9 +135,10 @@ def _two_valued_faults(column: Column, values: tuple[Decimal, ...]) -> list[Faul
         return []
     third = next(cell for cell, value in zip(column.cells, values, strict=True) if value == distinct[2])
     counts = Counter(values)
-    listed = ", ".join(f"{plain_digits(value)} in {counts[value]}" for value in distinct[:MOST_LABELS])
+    listed = ", ".join(f"{plain_digits(value)} in {counts[value]}" for value in distinct[:MOST_LISTED])
     what = f"{shown(third.text)} is a third value; a two-valued column has two. Rows by value: {listed}."
-    remedy = "Write another scale, or declare a code in missing_codes."
+    line = codes_line(column.table, [third.text.strip()])
+    remedy = f"Write another scale; or, if {shown(third.text)} means missing, write: {line}"
     return [fault(column.place(third), column.field(third), Message.MORE_THAN_TWO, what, remedy)]
 
 
@@ -166,7 +165,7 @@ def _labels(column: Column, spec: VariableSpec) -> _Reading:
 
 def _label_fault(column: Column, cells: list[Cell], labels: list[str]) -> Fault:
     first = cells[0]
-    near = nearest(composed(first.text), labels)
+    near = nearest_label(composed(first.text), labels)
     hint = f" (nearest: {shown(near)})" if near is not None else ""
     rows = first_rows([cell.row for cell in cells])
     what = f"{shown(first.text)} is not in lowest_to_highest{hint}; {rows}."
@@ -178,8 +177,8 @@ def _label_fault(column: Column, cells: list[Cell], labels: list[str]) -> Fault:
 
 def _order_fault(column: Column, spec: VariableSpec) -> Fault:
     found = list(dict.fromkeys(composed(cell.text) for cell in column.cells))
-    listed = ", ".join(shown(label) for label in found[:MOST_LABELS])
-    more = f" and {len(found) - MOST_LABELS} more" if len(found) > MOST_LABELS else ""
+    listed = ", ".join(shown(label) for label in found[:MOST_LISTED])
+    more = f" and {len(found) - MOST_LISTED} more" if len(found) > MOST_LISTED else ""
     what = f"the scale is {spec.scale} but no order is given. Labels found, as they come: {listed}{more}."
     remedy = "Write lowest_to_highest: [lowest, …, highest]. Alphabetical order is never used."
     return fault(spec.place, f"variables.{spec.name}", Message.ORDER_MISSING, what, remedy)

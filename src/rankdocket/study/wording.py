@@ -11,6 +11,9 @@ SHOWN_LENGTH: Final = 60
 FIRST_PLACES: Final = 5
 """Places that a message lists before it says how many there are."""
 
+MOST_LISTED: Final = 20
+"""Names or labels that a message lists before it says how many there are."""
+
 
 def shown(text: str) -> str:
     """Return ``text`` in quotes, shortened, with every character that cannot be seen as ``<U+00A0>``."""
@@ -26,21 +29,31 @@ def nearest(word: str, words: Iterable[str]) -> str | None:
 
 
 def suggestion(word: str, words: Sequence[str], name: str) -> str:
-    """Return "nearest: …." or, when nothing is near, the whole list introduced by ``name``."""
+    """Return "nearest: …." or, when nothing is near, the list introduced by ``name``."""
     near = nearest(word, words)
     if near is not None:
         return f"nearest: {near}."
-    return f"{name}: {', '.join(words)}." if words else ""
+    if not words:
+        return ""
+    more = f" and {len(words) - MOST_LISTED} more" if len(words) > MOST_LISTED else ""
+    return f"{name}: {', '.join(words[:MOST_LISTED])}{more}."
+
+
+def counted(number: int, thing: str) -> str:
+    """Return "1 row" or "2 rows"."""
+    return f"{number} {thing}" if number == 1 else f"{number} {thing}s"
+
+
+def first_places(thing: str, places: Sequence[int]) -> str:
+    """Return "1 field: 18", "2 fields: 18, 41" or "212 fields, the first five: 2, 3, 4, 5, 6"."""
+    listed = ", ".join(str(place) for place in places[:FIRST_PLACES])
+    more = "" if len(places) <= FIRST_PLACES else ", the first five"
+    return f"{counted(len(places), thing)}{more}: {listed}"
 
 
 def first_rows(rows: Sequence[int]) -> str:
-    """Return "1 row: 18", "2 rows: 18, 41" or "212 rows, the first five: 2, 3, 4, 5, 6"."""
-    listed = ", ".join(str(row) for row in rows[:FIRST_PLACES])
-    if len(rows) == 1:
-        return f"1 row: {listed}"
-    if len(rows) <= FIRST_PLACES:
-        return f"{len(rows)} rows: {listed}"
-    return f"{len(rows)} rows, the first five: {listed}"
+    """Return the rows of a data file by :func:`first_places`."""
+    return first_places("row", rows)
 
 
 def composed(text: str) -> str:

@@ -3,6 +3,7 @@
 Issuing and verifying call the same function: an edition agrees when making it again gives the same bytes.
 """
 
+import json
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from importlib.resources import files
@@ -14,17 +15,20 @@ from rankdocket.analysis.results import Analysis
 from rankdocket.canonical import Plain, canonical_bytes, digest_of, readable_bytes, sha256
 from rankdocket.document.model import Document
 from rankdocket.document.plain import document_to_plain
-from rankdocket.render.rendition import render
+from rankdocket.render.rendition import Rendition, render
 from rankdocket.study.plan import plan_of
 from rankdocket.study.writer import spec_as_used
 from rankdocket.vocabulary import Status
 from rankdocket.workflow.moment import Moment
+from rankdocket.workflow.received import received_name
 from rankdocket.workflow.record_tables import record_tables
 from rankdocket.workflow.study_folder import Study
-from rankdocket.writing.section import Ingredient, IssueFacts
+from rankdocket.writing.section import Before, Ingredient, IssueFacts
 from rankdocket.writing.write import write
 
 VERSIONS_SCHEMA: Final = "urn:rankdocket:versions:1"
+ANALYSIS_BEFORE: Final = "before/analysis.json"
+PLAN_BEFORE: Final = "before/plan.json"
 CHECKER: Final = "check.py"
 PACKAGE: Final = "rankdocket.workflow"
 
@@ -41,6 +45,8 @@ class Issue:
         "2" or "1A", as the folder is called.
     replaces
         "edition 1 of 2026-04-02", or ``None``.
+    before
+        analysis.json and plan.json of the edition that is replaced, by their names here; empty for a first edition.
     register_before
         The register's bytes before this edition's line.
     head_before
@@ -54,6 +60,7 @@ class Issue:
     moment: Moment
     reason: str
     replaces: str | None
+    before: Mapping[str, bytes]
     register_before: bytes
     head_before: str
     ingredients: tuple[Ingredient, ...]
@@ -100,8 +107,6 @@ def make_edition(study: Study, issue: Issue, progress: Progress) -> Made:
     document = write(analysis, plain, _facts(study, issue, sha256(analysis_bytes), spec_text))
     rendition = render(document, progress=progress)
     made = {
-        "report.pdf": rendition.pdf,
-        "report.html": rendition.html,
         "analysis.json": analysis_bytes,
         "document.json": readable_bytes(document_to_plain(document)),
         "spec.yaml": study.spec_bytes,
@@ -111,18 +116,23 @@ def make_edition(study: Study, issue: Issue, progress: Progress) -> Made:
         "register-extract.jsonl": issue.register_before,
         CHECKER: files(PACKAGE).joinpath("record_checker.py").read_bytes(),
         "README.txt": _readme(study, issue),
+        **issue.before,
         **{received_name(path): content for path, content in study.received.items()},
         **record_tables(analysis, plain),
-        **{f"tables/{key}.csv": content for key, content in rendition.tables.items()},
-        **{f"figures/{key}.svg": content for key, content in rendition.figures.items()},
-        **{f"extracts/{name}": content for name, content in rendition.extracts.items()},
+        **rendition_files(rendition),
     }
     return Made(made, analysis, plain, document, rendition.pages)
 
 
-def received_name(path: str) -> str:
-    """Return where a data file stands in the record copy: below ``received/``, whatever folder it came from."""
-    return path if path.startswith("received/") else f"received/{path}"
+def rendition_files(rendition: Rendition) -> dict[str, bytes]:
+    """Return the files that are set from a document, by their names in an edition."""
+    return {
+        "report.pdf": rendition.pdf,
+        "report.html": rendition.html,
+        **{f"tables/{key}.csv": content for key, content in rendition.tables.items()},
+        **{f"figures/{key}.svg": content for key, content in rendition.figures.items()},
+        **{f"extracts/{name}": content for name, content in rendition.extracts.items()},
+    }
 
 
 def plan_digest(study: Study) -> str:
@@ -146,6 +156,16 @@ def _facts(study: Study, issue: Issue, analysis_digest: str, spec_text: str) -> 
         program_digest=issue.program_digest,
         self_test=issue.self_test,
         ingredients=issue.ingredients,
+        before=_before(study, issue),
+    )
+
+
+def _before(study: Study, issue: Issue) -> Before | None:
+    if not issue.before:
+        return None
+    return Before(
+        plain=json.loads(issue.before[ANALYSIS_BEFORE]),
+        plan_changed=issue.before[PLAN_BEFORE] != canonical_bytes(plan_of(study.spec)),
     )
 
 
@@ -188,6 +208,9 @@ What it was made from
   plan.json                      the planned keys in canonical form (RFC 8785)
 {data}
                                  the data as received
+
+What it replaces (from the second edition on)
+  before/                        analysis.json and plan.json of the edition before, as its own record holds them
 
 How it was made, and how to check it
   versions.json                  program, libraries, and the shipped cases recomputed before issue

@@ -42,7 +42,7 @@ def now() -> Moment:
                     "",
                     Message.DATE,
                     f"{given!r} is not a number of seconds since 1970.",
-                    "Write a whole number, or unset it. Nothing was computed.",
+                    "Write a whole number, or unset it.",
                 ),
             )
         ) from None

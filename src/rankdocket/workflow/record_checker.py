@@ -66,7 +66,8 @@ def main(folder: Path) -> int:
     except (OSError, ValueError, KeyError, TypeError, ArithmeticError) as error:
         problems.append(f"the record cannot be read to its end: {type(error).__name__}, {error}.")
     if problems:
-        print(f"{len(problems)} things do not agree ({numbers} numbers, {files} files looked at):")
+        things = "1 thing does" if len(problems) == 1 else f"{len(problems)} things do"
+        print(f"{things} not agree ({numbers} numbers, {files} files looked at):")
         for place, problem in enumerate(problems, start=1):
             print(f"  {place}. {problem}")
     else:
@@ -82,6 +83,14 @@ def hold(what: str, filed: object, anew: object, problems: list[str]) -> None:
     """Note a value that is not what it is when made anew."""
     if filed != anew:
         problems.append(f"{what} is {filed}, made anew {anew}.")
+
+
+def hold_p(what: str, filed: str, value: Fraction, problems: list[str]) -> None:
+    """Note a p that is not the one made anew: to 12 digits, or to as many more as keep it on its side of alpha."""
+    digits = Context(prec=max(DIGITS, len(Decimal(filed).as_tuple().digits)), rounding=ROUND_HALF_EVEN)
+    anew = Fraction(digits.divide(Decimal(value.numerator), Decimal(value.denominator)))
+    if Fraction(filed) != anew:
+        problems.append(f"{what} is {filed}, made anew {decimal_text(anew)}.")
 
 
 def check_digests(folder: Path, problems: list[str]) -> int:
@@ -163,7 +172,7 @@ def check_test(name: str, found: Any, ranks: tuple[list[int], list[int]], proble
     """Derive p from its count, and count all orderings where there are few enough; return whether it was done."""
     test = found["test"]
     for key, count in (("p", "count"), ("p_greater", "count_greater"), ("p_less", "count_less")):
-        hold(f"{name}: {key}", test[key], filed_text(p_of(test, int(test[count]))), problems)
+        hold_p(f"{name}: {key}", test[key], p_of(test, int(test[count])), problems)
     if not test["method"].startswith("exact") or len(ranks[0]) > MOST_ROWS_COUNTED:
         return False
     tally = orderings(*ranks, found["coefficient"])
@@ -200,7 +209,7 @@ def check_findings(folder: Path, analysis: Any, problems: list[str]) -> None:
     for name, found in sorted(analysis["associations"].items()):
         finding = found["finding"]
         if "p_adjusted" in finding:
-            hold(f"{name}: p_adjusted", finding["p_adjusted"], filed_text(adjusted[name]), problems)
+            hold_p(f"{name}: p_adjusted", finding["p_adjusted"], adjusted[name], problems)
         if name not in p_values or finding["basis"] == "outside the family":
             continue
         word = "not shown"
@@ -279,12 +288,6 @@ def coefficient(numerator: int, x_square: int, y_square: int) -> Decimal:
     wide = Context(prec=80)
     exact = wide.divide(Decimal(numerator), wide.sqrt(Decimal(x_square * y_square)))
     return Context(prec=DIGITS, rounding=ROUND_HALF_EVEN).plus(exact)
-
-
-def filed_text(value: Fraction) -> str:
-    """Return a fraction as it is filed: at most 12 significant digits, half to even, without an exponent."""
-    narrow = Context(prec=DIGITS, rounding=ROUND_HALF_EVEN)
-    return decimal_text(Fraction(narrow.divide(Decimal(value.numerator), Decimal(value.denominator))))
 
 
 def decimal_text(value: Fraction) -> str:

@@ -3,16 +3,16 @@
 import csv
 import io
 from collections.abc import Iterable, Mapping
-from decimal import Decimal, InvalidOperation
+from decimal import Decimal
 from typing import Final
 
 from rankdocket.analysis.filing import filed
 from rankdocket.analysis.results import Analysis, AssociationAnalysis, Estimate, RankTest
 from rankdocket.canonical import Plain
 from rankdocket.document.numbers import look_up
+from rankdocket.render.text import defused
 from rankdocket.stats.interval import Interval
 
-_FORMULA_SIGNS: Final = ("=", "+", "-", "@", "\t", "\r")
 _ABSENT: Final = ""
 
 
@@ -94,16 +94,5 @@ def _csv(head: tuple[str, ...], rows: Iterable[tuple[str, ...]]) -> bytes:
     writer = csv.writer(text, lineterminator="\n")
     writer.writerow(head)
     for row in rows:
-        writer.writerow([_defused(cell) for cell in row])
+        writer.writerow([defused(cell) for cell in row])
     return text.getvalue().encode("utf-8")
-
-
-def _defused(cell: str) -> str:
-    """Text that a spreadsheet would run as a formula gets an apostrophe; a number never does."""
-    if not cell.startswith(_FORMULA_SIGNS):
-        return cell
-    try:
-        Decimal(cell)
-    except InvalidOperation:
-        return f"'{cell}"
-    return cell

@@ -44,8 +44,9 @@ def require_agreement(outcomes: tuple[CaseOutcome, ...]) -> None:
     """
     failed = [outcome.name for outcome in outcomes if not outcome.agrees]
     if failed:
+        do = "does" if len(failed) == 1 else "do"
         raise ComputeError(
-            f"{len(failed)} of {len(outcomes)} shipped cases do not come out on this machine: {', '.join(failed)}. "
+            f"{len(failed)} of {len(outcomes)} shipped cases {do} not come out on this machine: {', '.join(failed)}. "
             "Nothing was sealed; do not rely on a result of this installation."
         )
 

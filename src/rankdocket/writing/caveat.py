@@ -9,9 +9,9 @@ from rankdocket.writing.section import Story
 
 @dataclass(frozen=True, slots=True)
 class FoundCaveat:
-    """A caveat found: the association it concerns (``None``: the whole study) and its words."""
+    """A caveat found: the associations that it names (none: the whole study) and its words."""
 
-    about: str | None
+    about: tuple[str, ...]
     prose: Prose
 
 

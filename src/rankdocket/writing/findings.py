@@ -1,11 +1,12 @@
 """Findings in words: what the plan’s rule made of an association, claiming no more than the evidence."""
 
+from rankdocket.analysis.checks.attainable_p import KEY as ATTAINABLE
 from rankdocket.analysis.results import Estimate, Finding, NotEstimable, RankTest, Withheld
 from rankdocket.document.model import Number, Prose
 from rankdocket.document.prose import only, prose
 from rankdocket.stats.interval import Interval
 from rankdocket.vocabulary import ExpectedSign
-from rankdocket.writing.phrases import address, coefficient_symbol, interval_range, p_equals
+from rankdocket.writing.phrases import address, coefficient_symbol, interval_values, p_equals
 from rankdocket.writing.section import Story
 
 
@@ -24,7 +25,9 @@ def finding_sentence(story: Story, name: str) -> Prose:
     if isinstance(result.test, (Withheld, NotEstimable)):
         return prose("The test is withheld: {reason}. The estimate stands without one.", reason=result.test.reason)
     if finding.word is None:
-        return only("The plan places this association outside the family, so that no finding is stated for it.")
+        if story.analysis.family:
+            return only("The plan places this association outside the family, so that no finding is stated for it.")
+        return only("The plan states no finding for an exploratory association.")
     expected = result.screened.spec.hypothesis.expected_sign
     deciding = deciding_p(story, name)
     rule = (
@@ -86,7 +89,7 @@ def size_sentence(story: Story, name: str) -> Prose:
     elif -limit < low and high < limit:
         template = "The whole interval lies within plus or minus the smallest size of interest, {size}."
     else:
-        template = "The interval holds values of {symbol} on both sides of the smallest size of interest, {size}."
+        template = "The interval holds values of {symbol} both smaller and larger in size than the smallest size of interest, {size}."
         return prose(template, symbol=symbol, size=size)
     return prose(template, size=size)
 
@@ -107,10 +110,23 @@ def _is_adjusted(story: Story) -> bool:
 
 def _still_open(story: Story, name: str) -> Prose:
     result = story.analysis.results[name]
+    if any(outcome.key == ATTAINABLE and outcome.state == "not met" for outcome in result.checks):
+        return only(" No result of this plan with these rows could have been shown.")
     if not isinstance(result.interval, Interval) or not isinstance(result.test, RankTest):
         return only(" That does not show that there is none.")
+    values = interval_values(story, name)
+    symbol = coefficient_symbol(result.screened.spec)
+    if result.interval.low > 0 or result.interval.high < 0:
+        return prose(
+            " The interval of this association alone holds values of {symbol} {values}; it is {why}, and the test decides.",
+            symbol=symbol,
+            values=values,
+            why="built differently from the test"
+            if story.analysis.findings[name].p_adjusted in (None, result.test.p)
+            else "not adjusted for the number of tests",
+        )
     return prose(
-        " That does not show that there is none: the interval still holds values of {symbol} from {range}.",
-        symbol=coefficient_symbol(result.screened.spec),
-        range=interval_range(story, name),
+        " That does not show that there is none: the interval still holds values of {symbol} {values}.",
+        symbol=symbol,
+        values=values,
     )

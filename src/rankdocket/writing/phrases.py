@@ -2,7 +2,7 @@
 
 from typing import Final
 
-from rankdocket.analysis.results import AssociationAnalysis, Estimate, RankTest
+from rankdocket.analysis.results import AssociationAnalysis, Estimate, RankTest, Withheld
 from rankdocket.document.model import Emphasis, Link, Prose, Supplied
 from rankdocket.document.prose import joined, listed, only, prose, text_of
 from rankdocket.stats.interval import Interval
@@ -66,31 +66,47 @@ def address(name: str, *steps: str) -> str:
 
 
 def estimate_with_interval(story: Story, name: str) -> Prose:
-    """Return "0.85 (95% interval 0.27 to 0.98)", or the reason why no interval stands there."""
+    """Return "0.85 (95% interval 0.27 to 0.98)", or that no interval stands there."""
     result = story.analysis.results[name]
-    numbers = story.numbers
     if not isinstance(result.estimate, Estimate):
         return only(state_word(result))
-    value = address(name, "estimate", "value")
-    estimate = numbers.coefficient(value)
+    estimate = story.numbers.coefficient(address(name, "estimate", "value"))
     if not isinstance(result.interval, Interval):
-        return prose("{estimate} (no interval: {why})", estimate=estimate, why=result.interval.reason)
-    return prose(
-        "{estimate} ({level} interval {range})",
-        estimate=estimate,
-        level=level(story),
-        range=interval_range(story, name),
-    )
+        return prose("{estimate} (no interval)", estimate=estimate)
+    template = {
+        "two-sided": "{estimate} ({level} interval {range})",
+        "greater": "{estimate} ({level} lower bound: {range})",
+        "less": "{estimate} ({level} upper bound: {range})",
+    }[result.interval.direction]
+    return prose(template, estimate=estimate, level=level(story), range=interval_range(story, name))
 
 
 def interval_range(story: Story, name: str) -> Prose:
-    """Return "0.27 to 0.98"; both limits have the decimals of the estimate, or more where they need them."""
+    """Return "0.27 to 0.98", or of a one-sided bound "from 0.27 up" or "up to 0.98".
+
+    Limits have the decimals of the estimate, or more where they need them.
+    """
+    interval = story.analysis.results[name].interval
+    if not isinstance(interval, Interval):
+        raise TypeError(f"{name} has no interval")
     decimals = story.numbers.decimals_for(address(name, "estimate", "value"))
-    return prose(
-        "{low} to {high}",
-        low=story.numbers.coefficient(address(name, "interval", "low"), decimals),
-        high=story.numbers.coefficient(address(name, "interval", "high"), decimals),
-    )
+    low = story.numbers.coefficient(address(name, "interval", "low"), decimals)
+    high = story.numbers.coefficient(address(name, "interval", "high"), decimals)
+    match interval.direction:
+        case "two-sided":
+            return prose("{low} to {high}", low=low, high=high)
+        case "greater":
+            return prose("from {low} up", low=low)
+        case "less":
+            return prose("up to {high}", high=high)
+
+
+def interval_values(story: Story, name: str) -> Prose:
+    """Return the same as it reads after "values of rho": "from 0.27 to 0.98"."""
+    words = interval_range(story, name)
+    interval = story.analysis.results[name].interval
+    two_sided = isinstance(interval, Interval) and interval.direction == "two-sided"
+    return prose("from {range}", range=words) if two_sided else words
 
 
 def level(story: Story) -> Prose:
@@ -103,13 +119,15 @@ def state_word(result: AssociationAnalysis) -> str:
     estimate = result.estimate
     if isinstance(estimate, Estimate):
         raise TypeError("this association has an estimate")
-    return f"{'withheld' if type(estimate).__name__ == 'Withheld' else 'not estimable'}: {estimate.reason}"
+    return f"{'withheld' if isinstance(estimate, Withheld) else 'not estimable'}: {estimate.reason}"
 
 
 def p_equals(story: Story, key: str) -> Prose:
     """Return "p = 0.024" or "p < 0.001"."""
     number = story.numbers.p_value(key)
-    return prose("{p}\u00a0{number}" if number.text.startswith("<") else "{p}\u00a0=\u00a0{number}", p=P, number=number)
+    return prose(
+        "{p}\u00a0{number}" if number.text.startswith(("<", ">")) else "{p}\u00a0=\u00a0{number}", p=P, number=number
+    )
 
 
 def p_with_count(story: Story, name: str) -> Prose:
@@ -137,20 +155,36 @@ def p_with_count(story: Story, name: str) -> Prose:
 
 
 def direction_sentence(story: Story, name: str) -> Prose:
-    """Return which way the two variables went together in these rows, without a word about size."""
+    """Return which way the two variables went together in these rows.
+
+    Only a finding that is shown is described as a tendency of the rows; otherwise the sign of the coefficient is put
+    into words and no more.
+    """
     result = story.analysis.results[name]
     x, y = variables_of(story, result.screened.spec)
     if not isinstance(result.estimate, Estimate):
         return only("")
     numerator = result.estimate.coefficient.numerator
     if numerator == 0:
-        return prose("In these rows {x} and {y} leaned in neither direction together", x=label(x), y=label(y))
-    template = (
-        "In these rows higher values of {x} went with higher values of {y}"
-        if numerator > 0
-        else "In these rows higher values of {x} went with lower values of {y}"
-    )
+        template = "In these rows the ranks of {x} and {y} leaned neither the same way nor opposite ways"
+    elif story.analysis.findings[name].word in ("shown", "shown, opposite sign"):
+        template = (
+            "Rows ranked higher on {x} tended to be ranked higher on {y}"
+            if numerator > 0
+            else "Rows ranked higher on {x} tended to be ranked lower on {y}"
+        )
+    else:
+        template = (
+            "In these rows the ranks of {x} and {y} leaned the same way"
+            if numerator > 0
+            else "In these rows the ranks of {x} and {y} leaned opposite ways"
+        )
     return prose(template, x=label(x), y=label(y))
+
+
+def full_stop(text: str) -> Supplied:
+    """Return supplied words that close a sentence, with a full stop where they bring none."""
+    return Supplied(text if text.rstrip().endswith((".", "!", "?", "…")) else f"{text.rstrip()}.")
 
 
 def sentences(*parts: Prose) -> Prose:

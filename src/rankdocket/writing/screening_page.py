@@ -73,6 +73,12 @@ def _questions(screening: Screening) -> Iterator[str]:
             if outcome.state in ("not met", "doubtful"):
                 asked = True
                 yield f"{name}: {_LABELS[outcome.key].lower()} is {outcome.state}: {outcome.reason}{_figures(screening, name, outcome)}."
+    if screening.seedless:
+        asked = True
+        yield (
+            f"{', '.join(screening.seedless)}: permutations must be drawn and the plan states no seed. Write one, as "
+            "p_value: {by: exact when possible, seed: 417} with a number of your own."
+        )
     if not asked:
         yield "None: every requirement that can be looked at now is met."
 

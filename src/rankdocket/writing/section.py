@@ -1,6 +1,6 @@
 """What a section is, and what every section is written from."""
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 
 from rankdocket.analysis.results import Analysis
@@ -17,6 +17,14 @@ class Ingredient:
     what: str
     version: str
     role: str
+
+
+@dataclass(frozen=True, slots=True)
+class Before:
+    """The edition that this one replaces: its analysis.json, and whether its planned keys were others."""
+
+    plain: Mapping[str, Plain]
+    plan_changed: bool
 
 
 @dataclass(frozen=True, slots=True)
@@ -45,6 +53,8 @@ class IssueFacts:
         SHA-256 over the program’s own files.
     self_test
         Sentence on the cases recomputed before this edition was sealed.
+    before
+        The edition that is replaced, where there is one.
     """
 
     edition: str
@@ -61,14 +71,15 @@ class IssueFacts:
     program_digest: str
     self_test: str
     ingredients: tuple[Ingredient, ...]
+    before: Before | None = None
 
 
 @dataclass(frozen=True, slots=True)
 class NumberedCaveat:
-    """A caveat with its number in this report and the association it concerns, if one."""
+    """A caveat with its number in this report and the associations it names, none for one about the whole study."""
 
     block: CaveatBlock
-    about: str | None
+    about: tuple[str, ...]
     weight: int
 
 
@@ -84,7 +95,7 @@ class Story:
 
     def caveats_about(self, name: str) -> tuple[NumberedCaveat, ...]:
         """Return the caveats of one association, in number order."""
-        return tuple(caveat for caveat in self.caveats if caveat.about == name)
+        return tuple(caveat for caveat in self.caveats if name in caveat.about)
 
 
 @dataclass(frozen=True, slots=True)

@@ -107,8 +107,8 @@ BONETT_WRIGHT: Final = IntervalMethod(
     bonett_wright,
     Description(
         "The interval was computed on the inverse hyperbolic tangent scale with the variance of Bonett and Wright; a "
-        "coefficient nearer to one than half of the smallest discordance that the ties could show was replaced by "
-        "that cap, and the limit beyond it was set to one. Its level is approximate.",
+        "coefficient nearer to one than a cap, half of the discordance of one row moved across the widest tie steps, "
+        "was replaced by that cap, and the limit beyond it was set to one. Its level is approximate.",
         ("bonett2000",),
     ),
 )

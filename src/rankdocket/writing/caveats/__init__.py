@@ -12,7 +12,7 @@ CAVEATS: Final[tuple[CaveatRule, ...]] = (
     study.SUPPLIED_WORDS,
     results.NOT_ESTIMABLE,
     requirements.REQUIREMENTS,
-    results.STRADDLES_ALPHA,
+    results.UNDECIDED,
     results.TWO_SIDED_RULE,
     results.TEST_AND_INTERVAL,
     results.PERFECT,

@@ -1,6 +1,8 @@
 """Requirements that were not met or are doubtful, each with what follows from it."""
 
 from rankdocket.analysis.checks import CHECKS
+from rankdocket.analysis.checks.attainable_p import KEY as ATTAINABLE
+from rankdocket.analysis.checks.independence import KEY as INDEPENDENCE
 from rankdocket.analysis.results import AssociationAnalysis, CheckOutcome, NotEstimable, Withheld
 from rankdocket.document.model import Number, Prose
 from rankdocket.document.prose import only, prose
@@ -8,7 +10,7 @@ from rankdocket.writing.caveat import CaveatRule, FoundCaveat
 from rankdocket.writing.phrases import address, pointer
 from rankdocket.writing.section import Story
 
-_SHARED = "independence"
+_SHARED = INDEPENDENCE
 """The one check whose outcome is the same for every association: it gets a single caveat of its own."""
 
 
@@ -31,7 +33,7 @@ def measure(story: Story, name: str, outcome: CheckOutcome, side: str) -> Number
 
 def _find(story: Story) -> tuple[FoundCaveat, ...]:
     return tuple(
-        FoundCaveat(name, _words(story, name, outcome))
+        FoundCaveat((name,), _words(story, name, outcome))
         for name, result in story.analysis.results.items()
         for outcome in result.checks
         if outcome.state in ("not met", "doubtful") and outcome.key not in (_SHARED, "not_constant")
@@ -53,11 +55,11 @@ def _words(story: Story, name: str, outcome: CheckOutcome) -> Prose:
         state=outcome.state,
         reason=outcome.reason,
         held=held,
-        after=_what_is_given(story.analysis.results[name]),
+        after=_what_is_given(story.analysis.results[name], outcome),
     )
 
 
-def _what_is_given(result: AssociationAnalysis) -> str:
+def _what_is_given(result: AssociationAnalysis, outcome: CheckOutcome) -> str:
     """Return what stands in the end: one requirement may leave a result that another withholds."""
     if isinstance(result.estimate, NotEstimable):
         return "No coefficient exists for these rows."
@@ -65,6 +67,8 @@ def _what_is_given(result: AssociationAnalysis) -> str:
         return "Neither an estimate nor a test is given."
     if isinstance(result.test, Withheld):
         return "The estimate is given without a test."
+    if outcome.key == ATTAINABLE and outcome.state == "not met":
+        return "That nothing was shown could not have come out otherwise."
     return "The result stands with this reservation."
 
 
@@ -77,9 +81,9 @@ def _find_shared(story: Story) -> tuple[FoundCaveat, ...]:
     }
     return tuple(
         FoundCaveat(
-            None,
+            (),
             prose(
-                "Every test is withheld: {reason}. Rows that belong together, treated as if they did not, "
+                "Every test and every interval is withheld: {reason}. Rows that belong together, treated as if they did not, "
                 "give false findings far more often than alpha says.",
                 reason=reason,
             ),

@@ -7,8 +7,12 @@ from rankdocket.analysis.results import Estimate, NotEstimable, RankTest
 from rankdocket.document.prose import prose
 from rankdocket.stats.interval import Interval
 from rankdocket.writing.caveat import CaveatRule, FoundCaveat
+from rankdocket.writing.findings import deciding_p
 from rankdocket.writing.phrases import P, address, interval_range, p_equals, pointer, pointers
 from rankdocket.writing.section import Story
+
+FEWEST: Final = 4
+"""With as many rows the interval spans nearly everything (Bonett & Wright's variance has one degree of freedom)."""
 
 SMALL: Final = 10
 """Below this many rows an interval is read as indicative only (house rule after simulation)."""
@@ -17,7 +21,7 @@ SMALL: Final = 10
 def _not_estimable(story: Story) -> tuple[FoundCaveat, ...]:
     return tuple(
         FoundCaveat(
-            name,
+            (name,),
             prose(
                 "{name} is not estimable: {reason}. It keeps its place in {places}.",
                 name=pointer(name),
@@ -40,12 +44,12 @@ def _perfect(story: Story) -> tuple[FoundCaveat, ...]:
         if coefficient.numerator**2 == coefficient.x_square * coefficient.y_square:
             found.append(
                 FoundCaveat(
-                    name,
+                    (name,),
                     prose(
                         "{name}: all rows follow one order, so that the sample holds no disagreement from which an error "
                         "could be estimated{interval}.",
                         name=pointer(name),
-                        interval="; for the interval half of the smallest visible disagreement was assumed"
+                        interval="; for the interval half of the disagreement of one row moved across the widest tie steps was assumed"
                         if isinstance(result.interval, Interval)
                         else "",
                     ),
@@ -60,63 +64,72 @@ def _small(story: Story) -> tuple[FoundCaveat, ...]:
         for name, result in story.analysis.results.items()
         if isinstance(result.interval, Interval) and result.screened.flow.complete < SMALL
     }
+    lone = tuple(name for name, result in small.items() if result.screened.flow.complete == FEWEST)
     counted = tuple(
-        name for name, result in small.items() if isinstance(result.test, RankTest) and result.test.tails.is_exact
+        name
+        for name, result in small.items()
+        if name not in lone and isinstance(result.test, RankTest) and result.test.tails.is_exact
     )
-    others = tuple(name for name in small if name not in counted)
+    others = tuple(name for name in small if name not in (*lone, *counted))
     few = "{names}: with so few rows the data exclude little. The interval is indicative"
-    templates = {few + "; the test from all orderings of the rows is the primary result.": counted, few + ".": others}
+    templates = {few + "; the p-value, counted over all orderings of the rows, is exact.": counted, few + ".": others}
+    templates["{names}: an interval from so few rows is uninformative; it is printed so that nothing is missing."] = (
+        lone
+    )
     return tuple(
-        FoundCaveat(None, prose(template, names=pointers(names))) for template, names in templates.items() if names
+        FoundCaveat(names, prose(template, names=pointers(names))) for template, names in templates.items() if names
     )
 
 
 def _disagree(story: Story) -> tuple[FoundCaveat, ...]:
-    alpha = Fraction(story.analysis.spec.inference.alpha)
+    inference = story.analysis.spec.inference
+    if inference.confidence_level != 1 - inference.alpha:
+        return ()  # test and interval are held against different levels: they need not point the same way
     found = []
     for name, result in story.analysis.results.items():
+        finding = story.analysis.findings[name]
         if not isinstance(result.test, RankTest) or not isinstance(result.interval, Interval):
             continue
+        deciding = result.test.p if finding.p_adjusted is None else finding.p_adjusted
         excludes_zero = result.interval.low > 0 or result.interval.high < 0
-        if excludes_zero == (result.test.p <= alpha):
+        if excludes_zero == (deciding <= Fraction(inference.alpha)):
             continue
+        adjusted = finding.p_adjusted is not None and finding.p_adjusted != result.test.p
         found.append(
             FoundCaveat(
-                name,
+                (name,),
                 prose(
-                    "{name}: test and interval point different ways ({p}; interval {range}). They are built "
-                    "differently; the test decides about the association, the interval describes its size.",
+                    "{name}: test and interval point different ways ({kind}{p}; interval {range}). {why}; the test decides "
+                    "about the association, the interval describes its size.",
                     name=pointer(name),
-                    p=p_equals(story, address(name, "test", "p")),
+                    kind="adjusted " if adjusted else "",
+                    p=deciding_p(story, name),
                     range=interval_range(story, name),
+                    why="The interval is not adjusted for the number of tests"
+                    if adjusted
+                    else "They are built differently",
                 ),
             )
         )
     return tuple(found)
 
 
-def _straddles(story: Story) -> tuple[FoundCaveat, ...]:
-    alpha = float(story.analysis.spec.inference.alpha)
-    found = []
-    for name, result in story.analysis.results.items():
-        if not isinstance(result.test, RankTest) or result.test.p_interval is None:
-            continue
-        low, high = result.test.p_interval
-        if low <= alpha <= high:
-            found.append(
-                FoundCaveat(
-                    name,
-                    prose(
-                        "{name}: {p} comes from drawn orderings, and the interval of the value that all orderings "
-                        "would give, {low} to {high}, holds alpha. A plan with more draws would settle the side.",
-                        name=pointer(name),
-                        p=P,
-                        low=story.numbers.p_value(address(name, "test", "p_low")),
-                        high=story.numbers.p_value(address(name, "test", "p_high")),
-                    ),
-                )
-            )
-    return tuple(found)
+def _undecided(story: Story) -> tuple[FoundCaveat, ...]:
+    return tuple(
+        FoundCaveat(
+            (name,),
+            prose(
+                "{name}: {p} comes from drawn orderings. With the value at one end of its interval, {low} to {high}, the "
+                "finding would be another one. A plan with more draws would settle the side.",
+                name=pointer(name),
+                p=P,
+                low=story.numbers.attainable_p(address(name, "test", "p_low")),
+                high=story.numbers.attainable_p(address(name, "test", "p_high")),
+            ),
+        )
+        for name, finding in story.analysis.findings.items()
+        if finding.undecided_by_draws
+    )
 
 
 def _conventions(story: Story) -> tuple[FoundCaveat, ...]:
@@ -124,12 +137,12 @@ def _conventions(story: Story) -> tuple[FoundCaveat, ...]:
     found = []
     for name, result in story.analysis.results.items():
         doubled = result.comparisons.doubled_p
-        if doubled is None or not isinstance(result.test, RankTest):
-            continue
+        if doubled is None or not isinstance(result.test, RankTest) or not result.test.tails.is_exact:
+            continue  # between drawn tails the gap may be the draws' own
         if (doubled <= alpha) != (result.test.p <= alpha):
             found.append(
                 FoundCaveat(
-                    name,
+                    (name,),
                     prose(
                         "{name}: the ties make the null lopsided. Counting orderings at least as far from zero gives "
                         "{p}; doubling the smaller tail would give {doubled}. The plan’s rule is the first.",
@@ -146,5 +159,5 @@ NOT_ESTIMABLE = CaveatRule("not_estimable", 80, _not_estimable)
 PERFECT = CaveatRule("perfect_agreement", 55, _perfect)
 SMALL_SAMPLE = CaveatRule("small_sample", 50, _small)
 TEST_AND_INTERVAL = CaveatRule("test_and_interval", 70, _disagree)
-STRADDLES_ALPHA = CaveatRule("straddles_alpha", 75, _straddles)
+UNDECIDED = CaveatRule("undecided_by_draws", 75, _undecided)
 TWO_SIDED_RULE = CaveatRule("two_sided_rule", 72, _conventions)

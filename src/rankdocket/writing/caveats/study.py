@@ -1,5 +1,6 @@
 """Caveats about the whole study: supplied words, rows left out, what an interval rests on, and the usual cautions."""
 
+from rankdocket.analysis.checks.independence import KEY as INDEPENDENCE
 from rankdocket.analysis.results import Estimate, RankTest
 from rankdocket.document.model import Emphasis, Link, Supplied
 from rankdocket.document.prose import lint, listed, only, prose
@@ -20,6 +21,15 @@ def supplied_texts(story: Story) -> tuple[tuple[str, str], ...]:
     texts += [(f"variables.{name}.label", variable.label) for name, variable in spec.variables.items()]
     if spec.rows.independent_because is not None:
         texts.append(("rows.independent_because", spec.rows.independent_because))
+    optional = {
+        "study.population": spec.study.population,
+        "study.rows_were_fixed_by": spec.study.rows_were_fixed_by,
+        "inference.several_tests.reason": spec.inference.several_tests.reason,
+    }
+    texts += [(where, text) for where, text in optional.items() if text is not None]
+    texts += [
+        (f"rows.leave_out.{place}.reason", item.reason) for place, item in enumerate(spec.rows.leave_out, start=1)
+    ]
     texts.append(("the reason for this edition", story.facts.reason))
     return tuple(texts)
 
@@ -31,7 +41,7 @@ def _supplied(story: Story) -> tuple[FoundCaveat, ...]:
         if hits:
             found.append(
                 FoundCaveat(
-                    None,
+                    (),
                     prose(
                         "The words supplied at {where} say {phrases}. That is more than a rank correlation can support; "
                         "they are printed as supplied and are not a result.",
@@ -62,7 +72,7 @@ def _incomplete(story: Story) -> tuple[FoundCaveat, ...]:
     )
     return (
         FoundCaveat(
-            None,
+            names,
             prose(
                 "Rows lacking a value were set aside for the association concerned ({parts} of the rows that the plan does "
                 "not leave out). That is harmless "
@@ -81,7 +91,11 @@ def _left_out(story: Story) -> tuple[FoundCaveat, ...]:
             first_of_table.setdefault(variables[result.screened.spec.x].table, name)
     return tuple(
         FoundCaveat(
-            None,
+            tuple(
+                other
+                for other, result in story.analysis.results.items()
+                if variables[result.screened.spec.x].table == table
+            ),
             prose(
                 "The plan leaves out {count} of {read} rows of table {table}; each is listed with its reason in section "
                 "{section}.",
@@ -100,7 +114,7 @@ def _interval_rests_on(story: Story) -> tuple[FoundCaveat, ...]:
         return ()
     return (
         FoundCaveat(
-            None,
+            (),
             prose(
                 "The intervals rest on a variance that holds for normal-type dependence {cite}. Where the spread of one "
                 "variable changes with the other, or nearly perfect order comes with a few gross errors, or values are "
@@ -113,9 +127,11 @@ def _interval_rests_on(story: Story) -> tuple[FoundCaveat, ...]:
 
 def _no_interval_for_tau(story: Story) -> tuple[FoundCaveat, ...]:
     return tuple(
-        FoundCaveat(name, prose("{name}: {reason}.", name=pointer(name), reason=result.interval.reason))
+        FoundCaveat((name,), prose("{name}: {reason}.", name=pointer(name), reason=result.interval.reason))
         for name, result in story.analysis.results.items()
-        if isinstance(result.estimate, Estimate) and not isinstance(result.interval, Interval)
+        if isinstance(result.estimate, Estimate)
+        and not isinstance(result.interval, Interval)
+        and not any(outcome.key == INDEPENDENCE and outcome.withholds != "nothing" for outcome in result.checks)
     )
 
 
@@ -123,9 +139,9 @@ def _association_only(story: Story) -> tuple[FoundCaveat, ...]:
     del story  # holds for every rank correlation
     return (
         FoundCaveat(
-            None,
+            (),
             only(
-                "A rank correlation says that two variables tended to move together in these rows. It does not say why, "
+                "A rank correlation, where one is given, describes how two variables moved together in these rows. It does not say why, "
                 "and a third quantity that moves with both can bring it about."
             ),
         ),
@@ -137,7 +153,7 @@ def _independence_null(story: Story) -> tuple[FoundCaveat, ...]:
         return ()
     return (
         FoundCaveat(
-            None,
+            (),
             prose(
                 "The test is one of independence: under dependence without a common direction it can reject more often "
                 "than alpha says {cite}. The plots are there to be looked at.",
@@ -151,7 +167,7 @@ def _decision(story: Story) -> tuple[FoundCaveat, ...]:
     del story  # holds for every report
     return (
         FoundCaveat(
-            None,
+            (),
             only(
                 "The statistics here support a decision and do not make it. Decisions about health, safety or law belong "
                 "to those licensed to take them and to the codes that hold locally."

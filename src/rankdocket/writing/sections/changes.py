@@ -1,23 +1,145 @@
 """Section 7: what changed since the edition before; the heading stands in every report."""
 
-from rankdocket.document.model import Paragraph, Section, Supplied
-from rankdocket.document.prose import only, prose
-from rankdocket.writing.section import SectionRule, Story
+from dataclasses import replace
+
+from rankdocket.document.model import Block, Column, Emphasis, Items, Paragraph, Prose, Section, Supplied, TableBlock
+from rankdocket.document.numbers import Numbers, look_up
+from rankdocket.document.prose import listed, only, prose
+from rankdocket.writing.findings import finding_word
+from rankdocket.writing.phrases import EN_DASH_CELL, P, address, full_stop, pointer
+from rankdocket.writing.section import Before, SectionRule, Story
 
 
 def write(story: Story) -> Section:
-    """Return the changes section."""
+    """Return the changes section: reason, data, plan, and every association before and now."""
     facts = story.facts
+    blocks: list[Block]
     if facts.replaces is None:
-        words = only("First edition: nothing was issued before it.")
-    else:
+        blocks = [Paragraph(only("First edition: nothing was issued before it."))]
+    elif facts.before is None:
         words = prose(
-            "This edition replaces {old}. Reason given: {reason} The numbers of the edition before stand in its own record "
-            "copy, which is kept.",
+            "This edition replaces {old}, whose record was not at hand: nothing could be set against it. Reason given: "
+            "{reason}",
             old=Supplied(facts.replaces),
-            reason=Supplied(facts.reason),
+            reason=full_stop(facts.reason),
         )
-    return Section("changes", "7", only("Changes since the last edition"), (Paragraph(words),))
+        blocks = [Paragraph(words)]
+    else:
+        template = (
+            "This is a draft of an edition that would replace {old}. Reason given: {reason}{moved}"
+            if facts.status == "draft"
+            else "This edition replaces {old}. Reason given: {reason}{moved}"
+        )
+        opening = prose(
+            template, old=Supplied(facts.replaces), reason=full_stop(facts.reason), moved=moved_findings(story)
+        )
+        blocks = [Paragraph(opening), Items(_inputs(story, facts.before)), _table(story, facts.before)]
+    return Section("changes", "7", only("Changes since the last edition"), tuple(blocks))
+
+
+def moved_findings(story: Story) -> Prose:
+    """Return which findings changed, as one sentence with a blank before it; empty for a first edition."""
+    before = story.facts.before
+    if before is None:
+        return only("")
+    moved = tuple(name for name in _names(story, before) if _finding_before(before, name) != _finding_now(story, name))
+    if not moved:
+        return only(" No finding changed.")
+    return prose(" Findings changed: {names}.", names=listed(tuple(_named(story, name) for name in moved)))
+
+
+def _inputs(story: Story, before: Before) -> tuple[Prose, ...]:
+    sentences = []
+    for name, table in story.analysis.data.tables.items():
+        code = Emphasis(name, "code")
+        if _old(before, f"tables/{name}/digest") == table.source.digest:
+            sentences.append(prose("Table {table}: the file is the same, byte for byte.", table=code))
+        elif _old(before, f"tables/{name}/values_digest") == table.source.values_digest:
+            sentences.append(prose("Table {table}: the bytes differ, the values read are the same.", table=code))
+        else:
+            sentences.append(prose("Table {table}: the values differ.", table=code))
+    sentences.append(
+        only("The planned keys of the spec differ; both plans stand in the record copy, this one and the one before.")
+        if before.plan_changed
+        else only("The planned keys of the spec are the same.")
+    )
+    return tuple(sentences)
+
+
+def _table(story: Story, before: Before) -> TableBlock:
+    return TableBlock(
+        key="changes-table",
+        number="8",
+        caption=only("Each association in the edition before and in this one"),
+        columns=(
+            Column(only("Association"), "association", share=2),
+            Column(only("Finding before"), "finding_before", share=4),
+            Column(only("Finding now"), "finding", share=4),
+            Column(only("Estimate before"), "estimate_before", "decimal", share=3),
+            Column(only("Estimate now"), "estimate", "decimal", share=3),
+            Column(prose("{p} before", p=P), "p_before", "decimal", share=3),
+            Column(prose("{p} now", p=P), "p", "decimal", share=3),
+        ),
+        rows=tuple(_row(story, before, name) for name in _names(story, before)),
+        notes=(only("Values of the edition before are as its own record holds them; they were not computed again."),),
+    )
+
+
+def _row(story: Story, before: Before, name: str) -> tuple[Prose, ...]:
+    old = replace(story.numbers, plain=before.plain)
+    estimate, p = address(name, "estimate", "value"), address(name, "test", "p")
+    return (
+        _named(story, name),
+        only(_finding_before(before, name)),
+        only(_finding_now(story, name)),
+        only(Supplied(old.coefficient(estimate).text)) if _stands(old, estimate) else EN_DASH_CELL,
+        only(story.numbers.coefficient(estimate)) if _stands(story.numbers, estimate) else EN_DASH_CELL,
+        only(Supplied(old.p_value(p).text)) if _stands(old, p) else EN_DASH_CELL,
+        only(story.numbers.p_value(p)) if _stands(story.numbers, p) else EN_DASH_CELL,
+    )
+
+
+def _finding_before(before: Before, name: str) -> str:
+    word = _old(before, address(name, "finding", "word"))
+    if word is None:
+        return "not in that plan"
+    return "no finding stated" if word == "no finding" else word
+
+
+def _finding_now(story: Story, name: str) -> str:
+    if name not in story.analysis.results:
+        return "not in this plan"
+    return finding_word(story.analysis.findings[name])
+
+
+def _names(story: Story, before: Before) -> tuple[str, ...]:
+    """Return the associations of both plans, those of the plan before first."""
+    return tuple(dict.fromkeys([*_associations(before), *story.analysis.results]))
+
+
+def _named(story: Story, name: str) -> Prose:
+    """Return a link to an association’s spread, or its name alone where this plan has no such association."""
+    return only(pointer(name)) if name in story.analysis.results else only(Supplied(name))
+
+
+def _associations(before: Before) -> tuple[str, ...]:
+    associations = before.plain["associations"]
+    return tuple(associations) if isinstance(associations, dict) else ()
+
+
+def _old(before: Before, key: str) -> str | None:
+    try:
+        return str(look_up(before.plain, key))
+    except KeyError:
+        return None
+
+
+def _stands(numbers: Numbers, key: str) -> bool:
+    try:
+        look_up(numbers.plain, key)
+    except KeyError:
+        return False
+    return True
 
 
 SECTION = SectionRule("changes", write)

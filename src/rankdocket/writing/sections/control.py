@@ -3,7 +3,7 @@
 from rankdocket.document.model import Block, FieldList, Link, Paragraph, Prose, SignatureBlock, SignatureLine, Supplied
 from rankdocket.document.prose import listed, only, prose
 from rankdocket.study.spec import Person
-from rankdocket.writing.section import Story
+from rankdocket.writing.section import IssueFacts, Story
 
 
 def control_page(story: Story) -> tuple[Block, ...]:
@@ -18,7 +18,7 @@ def control_page(story: Story) -> tuple[Block, ...]:
         ("Reason for issue", only(Supplied(facts.reason))),
         (
             "Replaces",
-            only(Supplied(facts.replaces)) if facts.replaces else only("nothing: no earlier edition was issued"),
+            _replaced(facts),
         ),
         ("Written for", listed(tuple(only(reader) for reader in spec.report.readers))),
     ]
@@ -37,6 +37,14 @@ def control_page(story: Story) -> tuple[Block, ...]:
             "note",
         ),
     )
+
+
+def _replaced(facts: IssueFacts) -> Prose:
+    if facts.replaces is None:
+        return only("nothing: no earlier edition was issued")
+    if facts.status == "draft":
+        return prose("nothing; the edition it prepares would replace {old}", old=Supplied(facts.replaces))
+    return only(Supplied(facts.replaces))
 
 
 def _distribution(names: tuple[str, ...]) -> Prose:

@@ -1,5 +1,7 @@
 """Section 2: what was received, how it was read, and from the rows read to the rows used."""
 
+from collections.abc import Mapping
+
 from rankdocket.document.model import (
     Block,
     Column,
@@ -15,7 +17,7 @@ from rankdocket.document.model import (
 from rankdocket.document.prose import joined, listed, only, prose
 from rankdocket.study.spec import DataSpec
 from rankdocket.vocabulary import NOT_APPLICABLE
-from rankdocket.writing.phrases import address, pointer
+from rankdocket.writing.phrases import address, label_head, pointer
 from rankdocket.writing.section import SectionRule, Story
 
 SHORT_DIGEST = 12
@@ -27,7 +29,13 @@ def write(story: Story) -> Section:
     blocks: list[Block] = [_received(story), FieldList(_rows_facts(story), key="rows")]
     blocks.append(_flow(story))
     left_out = _left_out(story)
-    blocks.append(Items(left_out, numbered=True) if left_out else Paragraph(only("The plan leaves out no row.")))
+    if left_out:
+        blocks += [Paragraph(only("Rows left out by the plan, each with its reason:")), Items(left_out, numbered=True)]
+    else:
+        blocks.append(Paragraph(only("The plan leaves out no row.")))
+    own = _own_codes(story)
+    if own:
+        blocks += [Paragraph(only("Missing codes that hold for one column alone:")), Items(own)]
     return Section("data", "2", only("Data"), tuple(blocks))
 
 
@@ -67,13 +75,11 @@ def _received(story: Story) -> TableBlock:
 
 def _reading(spec: DataSpec) -> Prose:
     names = {",": "comma", ";": "semicolon", "\t": "tab", "|": "bar"}
-    codes = listed(
-        tuple(
-            prose("{code} ({meaning})", code=_literal(code), meaning=Supplied(meaning))
-            for code, meaning in spec.missing_codes.items()
-        )
+    missing = (
+        prose("missing: {codes}", codes=_codes(spec.missing_codes))
+        if spec.missing_codes
+        else only("no missing codes for the table as a whole")
     )
-    missing = prose("missing: {codes}", codes=codes) if spec.missing_codes else only("no missing codes")
     return joined(
         (
             prose("{separator} separated", separator=names[spec.separator]),
@@ -82,6 +88,20 @@ def _reading(spec: DataSpec) -> Prose:
             missing,
         ),
         "; ",
+    )
+
+
+def _own_codes(story: Story) -> tuple[Prose, ...]:
+    return tuple(
+        prose("{variable}: {codes}", variable=label_head(variable), codes=_codes(variable.missing_codes))
+        for variable in story.analysis.spec.variables.values()
+        if variable.missing_codes
+    )
+
+
+def _codes(codes: Mapping[str, str]) -> Prose:
+    return listed(
+        tuple(prose("{code} ({meaning})", code=_literal(code), meaning=Supplied(text)) for code, text in codes.items())
     )
 
 

@@ -20,7 +20,7 @@ def write(story: Story) -> Section:
         _listing(story, name, table, position)
         for position, (name, table) in enumerate(story.analysis.data.tables.items(), start=1)
     ]
-    return Section("listing", "B", only("Data listing"), tuple(blocks))
+    return Section("listing", "B", only("Data listing"), tuple(blocks), opens="page")
 
 
 def _listing(story: Story, name: str, table: Table, position: int) -> TableBlock:

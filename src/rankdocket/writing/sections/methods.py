@@ -15,7 +15,7 @@ from rankdocket.stats.rho import RHO
 from rankdocket.stats.tau import TAU_B
 from rankdocket.vocabulary import COEFFICIENTS, CoefficientName
 from rankdocket.writing.citations import cite
-from rankdocket.writing.phrases import address, pointers
+from rankdocket.writing.phrases import address, full_stop, pointers
 from rankdocket.writing.section import SectionRule, Story
 
 
@@ -135,7 +135,7 @@ def _nulls(story: Story) -> Prose:
 
 def _sides(story: Story) -> Prose:
     inference = story.analysis.spec.inference
-    if not any(isinstance(result.test, RankTest) for result in story.analysis.results.values()):
+    if not _any_test(story):
         return only("")
     alpha = story.numbers.level("inference/alpha")
     if inference.sidedness == "two-sided":
@@ -143,44 +143,58 @@ def _sides(story: Story) -> Prose:
     else:
         sides = only(
             "Tests were one-sided in the direction that the plan expects: orderings whose coefficient lay at least as far "
-            "in that direction were counted, comparing whole numbers; the interval is the matching one-sided bound."
+            "in that direction were counted, comparing whole numbers."
         )
     return joined(
         (sides, prose("Alpha was {alpha}; a p-value at or below it, compared as fractions, decided.", alpha=alpha))
     )
 
 
+def _any_test(story: Story) -> bool:
+    return any(isinstance(result.test, RankTest) for result in story.analysis.results.values())
+
+
 def _family(story: Story) -> Prose:
-    inference = story.analysis.spec.inference
+    several = story.analysis.spec.inference.several_tests
     rule = adjustment_of(story.analysis.spec)
-    if not story.analysis.family:
-        return prose(
-            "The plan declares no family: each primary and secondary association is its own decision. Reason given: {reason}",
-            reason=Supplied(inference.several_tests.reason or "none"),
+    parts: list[Prose] = []
+    if story.analysis.family:
+        parts.append(
+            prose(
+                "The family ({among}) holds {names}; an association that is not estimable or whose test is withheld stays "
+                "in it. A finding is stated for its members only.",
+                among=several.among,
+                names=pointers(story.analysis.family),
+            )
         )
-    members = prose(
-        "The family of {size} associations ({among}) holds {names}; an association that is not estimable or whose test is "
-        "withheld stays in it.",
-        size=story.numbers.whole("inference/family_size"),
-        among=inference.several_tests.among,
-        names=pointers(story.analysis.family),
-    )
-    if inference.several_tests.reason is not None:
-        members = joined((members, prose("Reason given: {reason}", reason=Supplied(inference.several_tests.reason))))
+    else:
+        parts.append(
+            only("By the plan there is no family: each primary and secondary association is its own decision.")
+        )
+    if several.reason is not None:
+        parts.append(prose("Reason given: {reason}", reason=full_stop(several.reason)))
+    if not _any_test(story) or not story.analysis.family:
+        return joined(tuple(parts))
     if rule.key == "none":
-        return joined((members, described(rule.describe)))
-    return joined((members, described(rule.describe, family=story.numbers.whole("inference/family_size"))))
+        parts.append(described(rule.describe))
+    elif len(story.analysis.family) > 1:
+        parts.append(described(rule.describe, family=story.numbers.whole("inference/family_size")))
+    return joined(tuple(parts))
 
 
 def _intervals(story: Story) -> Prose:
-    ran = {
-        result.interval.method for result in story.analysis.results.values() if isinstance(result.interval, Interval)
-    }
-    return joined(tuple(described(method.describe) for method in INTERVAL_METHODS if method.key in ran))
+    given = [result.interval for result in story.analysis.results.values() if isinstance(result.interval, Interval)]
+    ran = {interval.method for interval in given}
+    parts = [described(method.describe) for method in INTERVAL_METHODS if method.key in ran]
+    if any(interval.direction != "two-sided" for interval in given):
+        parts.append(only("For a one-sided test it is the bound on the side that the plan expects, at the same level."))
+    if parts:
+        parts.append(only("Intervals were not adjusted for the number of tests: each holds for its association alone."))
+    return joined(tuple(parts))
 
 
 def _comparisons(story: Story) -> Prose:
-    if not any(isinstance(result.test, RankTest) for result in story.analysis.results.values()):
+    if not _any_test(story):
         return only("")
     return prose(
         "For comparison only, {table} gives what other habits would have said; no finding rests on it.",

@@ -12,7 +12,10 @@ def write(story: Story) -> Section:
         ("Time of issue", prose("{time} ({source})", time=Supplied(facts.created), source=Supplied(facts.time_source))),
         ("Spec, SHA-256", only(Emphasis(facts.spec_digest, "code"))),
         ("analysis.json, SHA-256", only(Emphasis(facts.analysis_digest, "code"))),
-        ("Register before this edition", only(Emphasis(facts.head_before, "code"))),
+        (
+            "Register before this edition",
+            only(Emphasis(facts.head_before, "code")) if facts.head_before.strip("0") else only("no line stood in it"),
+        ),
         ("Program files, SHA-256", only(Emphasis(facts.program_digest, "code"))),
         ("Self-test", only(Supplied(facts.self_test))),
     ]

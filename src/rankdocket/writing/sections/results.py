@@ -56,7 +56,7 @@ def master_table(story: Story) -> TableBlock:
             Column(only("Tied x, y"), "tied", "right", share=3),
             Column(only("Coefficient"), "coefficient", share=3),
             Column(only("Estimate"), "estimate", "decimal", share=3),
-            Column(prose("{level} interval", level=level(story)), "interval", "right", share=4),
+            Column(_interval_head(story), "interval", "right", share=4),
             Column(prose("{p}, {sided}", p=P, sided=sided), "p", "decimal", share=3),
             Column(prose("{p}, adjusted ({rule})", p=P, rule=adjusted), "p_adjusted", "decimal", share=3),
             Column(only("Expected"), "expected_sign", share=3),
@@ -66,6 +66,13 @@ def master_table(story: Story) -> TableBlock:
         rows=tuple(_master_row(story, name, result) for name, result in story.analysis.results.items()),
         notes=_master_notes(story),
     )
+
+
+def _interval_head(story: Story) -> Prose:
+    """Return which interval it is; where p-values are adjusted, that intervals are not."""
+    sided, several = story.analysis.spec.inference.sidedness, story.analysis.spec.inference.several_tests.adjust
+    template = "{level} interval" if sided == "two-sided" else "{level} bound, one-sided"
+    return prose(template if several == "none" else template + ", unadjusted", level=level(story))
 
 
 def _master_row(story: Story, name: str, result: AssociationAnalysis) -> tuple[Prose, ...]:
@@ -114,11 +121,15 @@ def _master_notes(story: Story) -> tuple[Prose, ...]:
     notes = [
         only(
             "Every association of the plan has its row, whatever became of it. Caveats that concern the whole study are "
-            "not repeated here."
+            "not repeated here. Each interval holds for its association alone."
         )
     ]
     if any(finding.word is None for finding in story.analysis.findings.values()):
-        notes.append(only("No finding is stated for an association outside the family; its p-value is not adjusted."))
+        notes.append(
+            only("No finding is stated for an association outside the family; its p-value is not adjusted.")
+            if story.analysis.family
+            else only("No finding is stated for an exploratory association.")
+        )
     return tuple(notes)
 
 
@@ -147,52 +158,45 @@ def _planned_and_found(story: Story) -> FieldList:
 
 
 def _comparisons(story: Story) -> TableBlock | None:
-    rows = []
-    for name, result in story.analysis.results.items():
-        if not isinstance(result.estimate, Estimate):
-            continue
-        comparisons, numbers = result.comparisons, story.numbers
-        rows.append(
-            (
-                only(pointer(name)),
-                only(numbers.p_value(address(name, "test", "p")))
-                if isinstance(result.test, RankTest)
-                else EN_DASH_CELL,
-                EN_DASH_CELL
-                if comparisons.t_value_p is None
-                else only(numbers.comparison_p(address(name, "comparisons", "t_value_p"))),
-                EN_DASH_CELL
-                if comparisons.doubled_p is None
-                else only(numbers.comparison_p(address(name, "comparisons", "doubled_p"))),
-                EN_DASH_CELL
-                if comparisons.pearson is None
-                else only(numbers.coefficient(address(name, "comparisons", "pearson"))),
-                EN_DASH_CELL
-                if result.estimate.short_form is None
-                else only(numbers.coefficient(address(name, "comparisons", "short_form"))),
-            )
-        )
-    if not rows:
+    estimated = tuple(name for name, result in story.analysis.results.items() if isinstance(result.estimate, Estimate))
+    if not estimated:
         return None
+    doubled = any(story.analysis.results[name].comparisons.doubled_p is not None for name in estimated)
+    columns = (
+        Column(only("Association"), "association", share=2),
+        Column(prose("{p}, as used", p=P), "p", "decimal", share=3),
+        Column(prose("{p} from the t value", p=P), "p_t", "decimal", share=3),
+        Column(prose("{p} by doubling the smaller tail", p=P), "p_doubled", "decimal", share=4),
+        Column(only("Product-moment coefficient of the values (Pearson)"), "pearson", "decimal", share=5),
+        Column(only("Short form without tie terms"), "short_form", "decimal", share=4),
+    )
+    shown = tuple(place for place, column in enumerate(columns) if doubled or column.name != "p_doubled")
     return TableBlock(
         key="comparisons",
         number="6",
         caption=only("What other habits would have said; no finding rests on these values"),
-        columns=(
-            Column(only("Association"), "association", share=2),
-            Column(prose("{p}, as used", p=P), "p", "decimal", share=3),
-            Column(prose("{p} from the t value", p=P), "p_t", "decimal", share=3),
-            Column(prose("{p} by doubling the smaller tail", p=P), "p_doubled", "decimal", share=4),
-            Column(only("Product-moment coefficient of the values (Pearson)"), "pearson", "decimal", share=5),
-            Column(only("Short form without tie terms"), "short_form", "decimal", share=4),
-        ),
-        rows=tuple(rows),
+        columns=tuple(columns[place] for place in shown),
+        rows=tuple(tuple(_comparison_row(story, name)[place] for place in shown) for name in estimated),
         notes=(
             only(
-                "The t value approximates the null and gives too small a p-value in small samples; the short form is wrong "
-                "where there are ties; the product-moment coefficient answers another question."
+                "The t value only approximates the null, worst with few rows and many ties; the short form is wrong where "
+                "there are ties; the product-moment coefficient answers another question."
             ),
         ),
+    )
+
+
+def _comparison_row(story: Story, name: str) -> tuple[Prose, ...]:
+    result, numbers = story.analysis.results[name], story.numbers
+    comparisons, at = result.comparisons, address(name, "comparisons")
+    has_short_form = isinstance(result.estimate, Estimate) and result.estimate.short_form is not None
+    return (
+        only(pointer(name)),
+        only(numbers.p_value(address(name, "test", "p"))) if isinstance(result.test, RankTest) else EN_DASH_CELL,
+        EN_DASH_CELL if comparisons.t_value_p is None else only(numbers.p_value(f"{at}/t_value_p")),
+        EN_DASH_CELL if comparisons.doubled_p is None else only(numbers.p_value(f"{at}/doubled_p")),
+        EN_DASH_CELL if comparisons.pearson is None else only(numbers.coefficient(f"{at}/pearson")),
+        only(numbers.coefficient(f"{at}/short_form")) if has_short_form else EN_DASH_CELL,
     )
 
 
@@ -227,7 +231,9 @@ def _spread(story: Story, name: str, position: int) -> Section:
         blocks.append(Paragraph(finding_sentence(story, name), "answer"))
         blocks.append(FieldList(_numbers(story, name), key=f"numbers-{name}"))
     blocks.append(Paragraph(_caveats(story, name), "note"))
-    return Section(f"association-{name}", f"6.{position}", title, tuple(blocks), opens="page")
+    # Only a spread with plots fills a page of its own.
+    opens: Literal["page", "here"] = "page" if isinstance(result.estimate, Estimate) else "here"
+    return Section(f"association-{name}", f"6.{position}", title, tuple(blocks), opens=opens)
 
 
 def _numbers(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
@@ -251,6 +257,18 @@ def _numbers(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
         rows.append(("Estimate", only(state_word(result))))
         return tuple(rows)
     rows.append((result.screened.spec.coefficient, estimate_with_interval(story, name)))
+    if not isinstance(result.interval, Interval):
+        rows.append(("Interval", prose("none: {reason}", reason=result.interval.reason)))
+    elif result.interval.cap_binds:
+        rows.append(
+            (
+                "Cap",
+                only(
+                    "the estimate lay beyond the cap that the tie steps set; the interval is that of the cap, its outer "
+                    "limit set to one in size"
+                ),
+            )
+        )
     if isinstance(result.test, RankTest):
         rows += [
             (
@@ -274,8 +292,8 @@ def _numbers(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
                     prose(
                         "{level} interval of p over all orderings: {low} to {high}",
                         level=level(story),
-                        low=numbers.p_value(address(name, "test", "p_low")),
-                        high=numbers.p_value(address(name, "test", "p_high")),
+                        low=numbers.attainable_p(address(name, "test", "p_low")),
+                        high=numbers.attainable_p(address(name, "test", "p_high")),
                     ),
                 )
             )

@@ -4,7 +4,7 @@ from typing import Final
 
 from rankdocket.analysis.results import Estimate
 from rankdocket.document.model import Block, FieldList, Items, Link, Paragraph, Prose, Section, Supplied
-from rankdocket.document.prose import joined, only, prose
+from rankdocket.document.prose import joined, listed, only, prose
 from rankdocket.vocabulary import FINDINGS
 from rankdocket.writing.findings import finding_sentence, finding_word
 from rankdocket.writing.phrases import (
@@ -13,9 +13,12 @@ from rankdocket.writing.phrases import (
     coefficient_symbol,
     direction_sentence,
     estimate_with_interval,
+    full_stop,
+    pointer,
     state_word,
 )
 from rankdocket.writing.section import NumberedCaveat, Story
+from rankdocket.writing.sections.changes import moved_findings
 
 MOST_ASSOCIATIONS: Final = 3
 """So many associations fit on one page; the rest is pointed to."""
@@ -36,13 +39,23 @@ def summary(story: Story) -> Section:
         blocks.append(
             Paragraph(
                 prose(
-                    "The other associations of the plan stand in {table}.",
+                    "The others: {others}. All stand in {table}.",
+                    others=listed(
+                        tuple(
+                            prose(
+                                "{name} {word}",
+                                name=pointer(name),
+                                word=finding_word(story.analysis.findings[name]),
+                            )
+                            for name in more
+                        )
+                    ),
                     table=Link("results", "Table 5"),
                 ),
                 "note",
             )
         )
-    heaviest = _heaviest(story)
+    heaviest = _heaviest(story, shown)
     blocks.append(
         Paragraph(
             prose("To be read with the result (all caveats: section {section}):", section=Link("requirements", "5"))
@@ -53,10 +66,14 @@ def summary(story: Story) -> Section:
     return Section("summary", "", only("Summary"), tuple(blocks), opens="page")
 
 
-def _heaviest(story: Story) -> tuple[NumberedCaveat, ...]:
-    """Return the heaviest caveats, one of each kind, so that one kind does not crowd out the others."""
+def _heaviest(story: Story, told: tuple[str, ...]) -> tuple[NumberedCaveat, ...]:
+    """Return the heaviest caveats, one of each kind, those first that concern an association told of on this page."""
+
+    def place(caveat: NumberedCaveat) -> tuple[int, bool]:
+        return -caveat.weight, bool(caveat.about) and not set(told) & set(caveat.about)
+
     chosen: dict[int, NumberedCaveat] = {}
-    for caveat in sorted(story.caveats, key=lambda caveat: -caveat.weight):
+    for caveat in sorted(story.caveats, key=place):
         chosen.setdefault(caveat.weight, caveat)
     return tuple(chosen.values())[:MOST_CAVEATS]
 
@@ -103,7 +120,7 @@ def _answer(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
             (
                 "Main number",
                 prose(
-                    "{symbol} {estimate}, {n}\u00a0=\u00a0{rows} complete rows",
+                    "{symbol} {estimate}, complete rows {n}\u00a0=\u00a0{rows}",
                     symbol=coefficient_symbol(spec),
                     estimate=estimate_with_interval(story, name),
                     n=N,
@@ -118,10 +135,12 @@ def _answer(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
 
 
 def _changes(story: Story) -> Prose:
-    if story.facts.replaces is None:
-        return only("Changes: this is the first edition.")
-    return prose(
-        "Changes: this edition replaces {old}. Reason: {reason}",
-        old=Supplied(story.facts.replaces),
-        reason=Supplied(story.facts.reason),
+    facts = story.facts
+    if facts.replaces is None:
+        return only("Changes: nothing was issued before.")
+    template = (
+        "Changes: draft of an edition that would replace {old}. Reason: {reason}{moved}"
+        if facts.status == "draft"
+        else "Changes: this edition replaces {old}. Reason: {reason}{moved}"
     )
+    return prose(template, old=Supplied(facts.replaces), reason=full_stop(facts.reason), moved=moved_findings(story))

@@ -32,8 +32,8 @@ def write(story: Story) -> Section:
     )
     opening = (
         only(
-            "Each worksheet holds the complete rows of one association with both midranks. Two textbook forms are worked out "
-            "below it; they must agree, and do, to every filed digit."
+            "Each worksheet holds the complete rows of one association with both midranks, and below them the sums from "
+            "which the coefficient follows; for rho two textbook forms are worked out side by side."
         )
         if parts
         else only("There is no worksheet: not one of the associations has an estimate.")
@@ -77,37 +77,35 @@ def _table(story: Story, name: str, result: AssociationAnalysis, position: int) 
             ),
         )
     x, y = variables_of(story, result.screened.spec)
+    # Rank differences lead to rho; tau-b has no use for them.
+    differences = isinstance(result.estimate, Estimate) and result.estimate.squared_differences is not None
+    ranks = ("rank_x", "rank_y", "difference", "squared") if differences else ("rank_x", "rank_y")
+    heads = {"rank_x": "Rank of x", "rank_y": "Rank of y", "difference": "Difference", "squared": "Squared"}
     foot: tuple[tuple[Prose, ...], ...] = ()
-    if isinstance(result.estimate, Estimate) and result.estimate.squared_differences is not None:
-        foot = (
-            (
-                only("Sum, all rows"),
-                *(only("") for _ in range(5)),
-                only(numbers.as_filed(address(name, "estimate", "squared_differences"))),
-            ),
-        )
+    if differences:
+        total = only(numbers.as_filed(address(name, "estimate", "squared_differences")))
+        foot = ((only("Sum, all rows"), *(only("") for _ in range(5)), total),)
     return TableBlock(
         key=f"worksheet-table-{name}",
         number=f"A.{position}",
-        caption=prose("Complete rows of {name} with midranks and rank differences", name=pointer(name)),
+        caption=prose(
+            "Complete rows of {name} with midranks and rank differences"
+            if differences
+            else "Complete rows of {name} with midranks",
+            name=pointer(name),
+        ),
         columns=(
             Column(only("Line of the file"), "row", "right", share=2),
             Column(only(label_head(x)), "x", "right", share=4),
             Column(only(label_head(y)), "y", "right", share=4),
-            Column(only("Rank of x"), "rank_x", "decimal", share=3),
-            Column(only("Rank of y"), "rank_y", "decimal", share=3),
-            Column(only("Difference"), "difference", "decimal", share=3),
-            Column(only("Squared"), "squared", "decimal", share=3),
+            *(Column(only(heads[rank]), rank, "decimal", share=3) for rank in ranks),
         ),
         rows=tuple(
             (
                 only(numbers.label(f"{at}/row/{line}")),
                 only(Supplied(rows[line].x_literal)),
                 only(Supplied(rows[line].y_literal)),
-                *(
-                    only(numbers.as_filed(f"{at}/{column}/{line}"))
-                    for column in ("rank_x", "rank_y", "difference", "squared")
-                ),
+                *(only(numbers.as_filed(f"{at}/{rank}/{line}")) for rank in ranks),
             )
             for line in printed
         ),
@@ -131,7 +129,7 @@ def _two_forms(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
         ),
         (
             "Midrank form",
-            prose("products over the root of both squares: rho\u00a0=\u00a0{rho}", rho=numbers.as_filed(f"{at}/value")),
+            prose("products over the root of both squares: rho\u00a0=\u00a0{rho}", rho=numbers.level(f"{at}/value")),
         ),
         (
             "Tie terms",
@@ -155,7 +153,7 @@ def _two_forms(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
             prose(
                 "both terms less the sum of squared differences ({sum}), over twice the root of their product: rho\u00a0=\u00a0{rho}",
                 sum=numbers.as_filed(f"{at}/squared_differences"),
-                rho=numbers.as_filed(f"{at}/corrected_form"),
+                rho=numbers.level(f"{at}/corrected_form"),
             ),
         ),
     )
@@ -172,7 +170,7 @@ def _counts(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
         ),
         (
             "tau-b",
-            prose("the first over the root of the product of the others: {tau}", tau=numbers.as_filed(f"{at}/value")),
+            prose("the first over the root of the product of the others: {tau}", tau=numbers.level(f"{at}/value")),
         ),
     )
 

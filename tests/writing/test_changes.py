@@ -1,0 +1,208 @@
+"""Section 7 and page 2: what changed since the edition before, input by input and association by association."""
+
+from dataclasses import replace
+
+import pytest
+
+from analysis.invented import INDEPENDENT, MIXED, RISING, Invented, association, read_texts
+from rankdocket.analysis.analyse import analyse
+from rankdocket.analysis.results import Analysis
+from rankdocket.document.model import FieldList, Items, Link, Number, Paragraph, Supplied, TableBlock
+from rankdocket.document.prose import text_of
+from writing.reports import EVERY_FINDING, Occasion, Told, replacing, study_of_every_finding, told
+
+NOW = EVERY_FINDING.analysed()
+
+
+def opening(report: Told) -> str:
+    """Return the first sentences of section 7."""
+    block = report.section("changes").blocks[0]
+    assert isinstance(block, Paragraph)
+    return text_of(block.prose)
+
+
+def page_2(report: Told) -> str:
+    """Return the last sentences of the summary."""
+    block = report.document.summary.blocks[-1]
+    assert isinstance(block, Paragraph)
+    return text_of(block.prose)
+
+
+def inputs(report: Told) -> list[str]:
+    """Return what is said of tables and plan."""
+    block = report.section("changes").blocks[1]
+    assert isinstance(block, Items)
+    return [text_of(item) for item in block.items]
+
+
+def rows(report: Told) -> list[list[str]]:
+    """Return the table of section 7 as it is printed."""
+    return [[text_of(cell).replace("\u202f", " ") for cell in row] for row in report.table("changes-table").rows]
+
+
+def test_a_first_edition_has_nothing_before_it() -> None:
+    """The section stands in every report, without a table."""
+    report = told(NOW)
+    assert opening(report) == "First edition: nothing was issued before it."
+    assert page_2(report) == "Changes: nothing was issued before."
+    assert len(report.section("changes").blocks) == 1
+
+
+def test_an_edition_says_what_it_replaces_and_that_no_finding_changed() -> None:
+    """On page 2 and in its section (golden)."""
+    report = told(NOW, replacing(NOW))
+    assert opening(report) == (
+        "This edition replaces edition 1 of 2026-01-05. Reason given: a corrected file. No finding changed."
+    )
+    assert page_2(report) == (
+        "Changes: this edition replaces edition 1 of 2026-01-05. Reason: a corrected file. No finding changed."
+    )
+
+
+def test_a_draft_says_what_it_would_replace() -> None:
+    """It replaces nothing itself: in its section, on page 2 and on the control page (golden)."""
+    report = told(NOW, replacing(NOW, is_draft=True))
+    assert opening(report) == (
+        "This is a draft of an edition that would replace edition 1 of 2026-01-05. Reason given: a corrected file. "
+        "No finding changed."
+    )
+    assert page_2(report) == (
+        "Changes: draft of an edition that would replace edition 1 of 2026-01-05. Reason: a corrected file. No finding "
+        "changed."
+    )
+    control = report.document.control[0]
+    assert isinstance(control, FieldList)
+    assert text_of(dict(control.rows)["Replaces"]) == (
+        "nothing; the edition it prepares would replace edition 1 of 2026-01-05"
+    )
+
+
+@pytest.mark.parametrize(
+    ("reason", "printed"),
+    [
+        ("a corrected file", "a corrected file."),
+        ("A corrected file.", "A corrected file."),
+        ("corrected! ", "corrected! "),
+        ("why not?", "why not?"),
+        ("and so on …", "and so on …"),
+        ("blank at the end ", "blank at the end."),
+    ],
+)
+def test_a_reason_closes_with_one_stop(reason: str, printed: str) -> None:
+    """Wherever it stands inside a sentence of ours."""
+    report = told(NOW, replacing(NOW, reason=reason))
+    assert f"Reason given: {printed} No finding changed." in opening(report)
+    assert f"Reason: {printed} No finding changed." in page_2(report)
+
+
+BEFORE = replace(
+    EVERY_FINDING,
+    columns={**EVERY_FINDING.columns, "mixed": RISING + " 12 11"},
+    associations={
+        **{name: entry for name, entry in EVERY_FINDING.associations.items() if name != "A2"},
+        "A9": association("u", "rising", role="secondary"),
+    },
+)
+"""Another file, A2 not yet in the plan, and A9 that is no longer in it."""
+
+
+def test_every_association_stands_before_and_now() -> None:
+    """Findings, estimates and p, also of what is in one plan only (golden; values as in the two analyses)."""
+    report = told(NOW, replacing(BEFORE.analysed(), plan_changed=True))
+    assert rows(report) == [
+        ["A1", "shown", "shown", "1.000", "1.000", "< 0.001", "< 0.001"],
+        ["A3", "shown", "not shown", "0.993", "0.51", "< 0.001", "0.094"],
+        ["A4", "withheld", "withheld", "1.000", "1.000", "–", "–"],
+        ["A5", "not estimable", "not estimable", "–", "–", "–", "–"],
+        ["A6", "no finding stated", "no finding stated", "−0.970", "−0.36", "< 0.001", "0.116"],
+        ["A9", "shown", "not in this plan", "1.000", "–", "< 0.001", "–"],
+        ["A2", "not in that plan", "shown, opposite sign", "–", "−1.000", "–", "< 0.001"],
+    ]
+    assert [column.name for column in report.table("changes-table").columns] == [
+        "association",
+        "finding_before",
+        "finding",
+        "estimate_before",
+        "estimate",
+        "p_before",
+        "p",
+    ]
+
+
+def test_findings_that_moved_are_named_also_one_that_went_with_its_association() -> None:
+    """On page 2 as in section 7; the name of an association that is gone points nowhere."""
+    report = told(NOW, replacing(BEFORE.analysed(), plan_changed=True))
+    assert opening(report).endswith(" Findings changed: A3, A9 and A2.")
+    assert page_2(report).endswith(" Findings changed: A3, A9 and A2.")
+    fewer = replace(EVERY_FINDING, associations={"A1": EVERY_FINDING.associations["A1"]})
+    assert opening(told(fewer.analysed(), replacing(NOW))).endswith(" Findings changed: A2, A3, A4, A5 and A6.")
+    (row,) = [row for row in report.table("changes-table").rows if text_of(row[0]) == "A9"]
+    assert isinstance(row[0].pieces[0], Supplied)
+    assert not any(isinstance(piece, Link) and piece.text == "A9" for cell in row for piece in cell.pieces)
+
+
+def test_values_of_the_edition_before_are_no_numbers_of_this_one() -> None:
+    """They stand in another analysis.json; only what is found now has an address."""
+    report = told(NOW, replacing(BEFORE.analysed()))
+    table = report.table("changes-table")
+    places = {column.name: place for place, column in enumerate(table.columns)}
+    for row in table.rows:
+        for name in ("estimate_before", "p_before"):
+            assert not any(isinstance(piece, Number) for piece in row[places[name]].pieces)
+        for name in ("estimate", "p"):
+            assert text_of(row[places[name]]) == "–" or isinstance(row[places[name]].pieces[0], Number)
+
+
+def with_file(text: str) -> Analysis:
+    """Return a study of two associations read from the text of its file."""
+    invented = Invented(columns={"u": RISING, "v": MIXED})
+    return analyse(*read_texts(invented.spec_text(), {"received/trials.csv": text}))
+
+
+FILE = Invented(columns={"u": RISING, "v": MIXED}).data_text()
+
+
+@pytest.mark.parametrize(
+    ("before", "plan_changed", "said"),
+    [
+        (FILE, False, ["the file is the same, byte for byte.", "The planned keys of the spec are the same."]),
+        (FILE.replace("\n", "\r\n"), False, ["the bytes differ, the values read are the same.", "The planned keys"]),
+        (FILE.replace("10,5", "10,50"), False, ["the values differ.", "The planned keys of the spec are the same."]),
+        (FILE, True, ["the file is the same, byte for byte.", "The planned keys of the spec differ; both plans stand"]),
+    ],
+    ids=["same", "other bytes", "other values", "other plan"],
+)
+def test_each_input_is_compared_with_the_one_before(before: str, plan_changed: bool, said: list[str]) -> None:
+    """Bytes, values, plan: each has its own sentence."""
+    table, plan = inputs(told(with_file(FILE), replacing(with_file(before), plan_changed=plan_changed)))
+    assert table == f"Table trials: {said[0]}"
+    assert plan.startswith(said[1])
+
+
+def test_the_table_of_findings_is_one_of_the_numbered_tables() -> None:
+    """No two tables of a report share a number."""
+    report = told(NOW, replacing(NOW))
+    numbers = [
+        block.number
+        for section in (report.document.summary, *report.document.sections)
+        for block in section.blocks
+        if isinstance(block, TableBlock)
+    ]
+    assert len(numbers) == len(set(numbers))
+    assert report.table("changes-table").number in numbers
+
+
+def test_a_reason_or_a_change_touches_no_result() -> None:
+    """The results section of a later edition is that of the first."""
+    first, later = study_of_every_finding(), told(NOW, replacing(BEFORE.analysed()))
+    assert first.section("results-section") == later.section("results-section")
+    assert INDEPENDENT in EVERY_FINDING.rows
+
+
+def test_a_record_that_is_not_at_hand_is_said_to_be_missing() -> None:
+    """An edition whose predecessor was deleted from the disk does not pass for a first edition."""
+    report = told(NOW, Occasion(reason="new data", replaces="edition 1 of 2026-04-02"))
+    assert opening(report) == (
+        "This edition replaces edition 1 of 2026-04-02, whose record was not at hand: nothing could be set against it. "
+        "Reason given: new data."
+    )
