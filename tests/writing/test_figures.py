@@ -130,3 +130,10 @@ def two_of_one() -> Invented:
     return replace(
         TIED, associations={"A1": association(), "A2": association("v", "u", more="coefficient: Kendall tau-b")}
     )
+
+
+def test_a_caption_says_when_marks_stand_for_several_rows() -> None:
+    """One mark a row is promised only where every row has a mark of its own."""
+    assert "one mark a row" in text_of(raw_plot(demonstration_report("gasket-creep").story, "A1").caption)
+    tied = text_of(raw_plot(told(TIED.analysed()).story, "A1").caption)
+    assert "a larger mark stands for several equal rows" in tied

@@ -5,6 +5,7 @@ which words, and what the schema says cannot drift apart.
 """
 
 import re
+from abc import ABC, abstractmethod
 from collections.abc import Mapping
 from dataclasses import dataclass
 from datetime import date
@@ -46,16 +47,16 @@ def text_of(value: object) -> str:
 
 
 @dataclass(frozen=True, slots=True)
-class _Kind:
+class _Kind(ABC):
     """What all kinds share: pydantic asks them to read, and asks for their schema."""
 
+    @abstractmethod
     def read(self, value: object) -> object:
         """Return the value that stands in the spec as what the key means."""
-        raise NotImplementedError
 
+    @abstractmethod
     def schema(self) -> Schema:
         """Return the JSON Schema of what ``read`` accepts."""
-        raise NotImplementedError
 
     def __get_pydantic_core_schema__(self, source: object, handler: GetCoreSchemaHandler) -> core_schema.CoreSchema:
         return core_schema.no_info_plain_validator_function(self.read)

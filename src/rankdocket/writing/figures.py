@@ -82,7 +82,13 @@ def raw_plot(story: Story, name: str) -> FigureBlock:
         key=f"{name}-raw",
         number=f"{name}a",
         kind="raw-plot",
-        caption=_caption("Raw plot: {x} and {y}, one mark a row ({n}\u00a0=\u00a0{rows}).", story, name),
+        caption=_caption(
+            "Raw plot: {x} and {y}, one mark a row ({n}\u00a0=\u00a0{rows})."
+            if len(points) == len(result.screened.rows)
+            else "Raw plot: {x} and {y}; a larger mark stands for several equal rows ({n}\u00a0=\u00a0{rows}).",
+            story,
+            name,
+        ),
         alternative=_alternative(story, name, "values as received"),
         data={
             "x": _axis(story, x),
@@ -108,12 +114,16 @@ def rank_plot(story: Story, name: str) -> FigureBlock:
         ),
         alternative=_alternative(story, name, "midranks"),
         data={
-            "x_label": f"Rank of {x.label}",
-            "y_label": f"Rank of {y.label}",
+            "x_label": _rank_label(x),
+            "y_label": _rank_label(y),
             "n": len(result.screened.rows),
             "points": tuple({"x": px, "y": py, "count": rows} for (px, py), rows in points.items()),
         },
     )
+
+
+def _rank_label(variable: VariableSpec) -> str:
+    return capitalised(variable.label) if variable.scale == "already ranked" else f"Rank of {variable.label}"
 
 
 def _midranks(row: CompleteRow) -> tuple[str, str]:
