@@ -20,6 +20,9 @@ NARROW_SPACE: Final = "\u202f"
 MOST_DECIMALS: Final = 15
 """A filed value has 12 significant digits; more decimals than this never separate two of them in print."""
 
+DRAWN: Final = "drawn permutations"
+"""The method of a test, as analysis.json files it, whose p-value was not counted over all orderings."""
+
 MOST_SMALL_DECIMALS: Final = 6
 """Decimals of a smallest attainable p: beyond them it is told apart from nobody's alpha."""
 
@@ -151,7 +154,9 @@ class Numbers:
         while smallest > self.alpha:
             smallest = smallest.scaleb(-1)
         if value == self.alpha:
-            return Number(key, exact, f"{self._styled(self.alpha)} (exactly)")
+            # "Exact" is said of counted orderings only, never of drawn ones (house rule).
+            equal = self._styled(self.alpha)
+            return Number(key, exact, equal if self._is_drawn(key) else f"{equal} (exactly)")
         if value == 1:
             return Number(key, exact, "1")
         if value < smallest:
@@ -178,6 +183,14 @@ class Numbers:
         while places < MOST_DECIMALS and self._misleads(_rounded(value, places), value):
             places += 1
         return Number(key, exact, self._styled(_rounded(value, places)))
+
+    def _is_drawn(self, key: str) -> bool:
+        """Return whether the p-value at ``key`` belongs to an association whose permutations were drawn."""
+        association = "/".join(key.split("/")[:2])
+        try:
+            return look_up(self.plain, f"{association}/test/method") == DRAWN
+        except KeyError:
+            return False
 
     def _misleads(self, printed: Decimal, value: Decimal) -> bool:
         crossed = (printed <= self.alpha) != (value <= self.alpha) or printed == self.alpha
