@@ -2,9 +2,10 @@
 
 import os
 import pty
+import signal
 import subprocess
 import sys
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
 from pathlib import Path
 
 import pytest
@@ -16,8 +17,12 @@ REASON = "first issue"
 
 
 @pytest.fixture
-def here(capsys: pytest.CaptureFixture[str], monkeypatch: pytest.MonkeyPatch) -> Callable[..., Ran]:
-    """The command line in this very process: the same words, streams and exit status without a second of start-up."""
+def here(capsys: pytest.CaptureFixture[str], monkeypatch: pytest.MonkeyPatch) -> Iterator[Callable[..., Ran]]:
+    """The command line in this very process: the same words, streams and exit status without a second of start-up.
+
+    What it makes of interrupts and requests to end is taken back after each test.
+    """
+    before = {request: signal.getsignal(request) for request in (signal.SIGINT, signal.SIGTERM)}
 
     def run_here(*words: str, cwd: Path) -> Ran:
         monkeypatch.chdir(cwd)
@@ -30,7 +35,9 @@ def here(capsys: pytest.CaptureFixture[str], monkeypatch: pytest.MonkeyPatch) ->
         assert isinstance(ended.value.code, int)
         return Ran(ended.value.code, printed.out, printed.err)
 
-    return run_here
+    yield run_here
+    for request, handler in before.items():
+        signal.signal(request, handler)
 
 
 @pytest.fixture
