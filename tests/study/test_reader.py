@@ -377,6 +377,38 @@ FOUND_IN_PANEL = (
         ),
     ),
     (
+        "permutations: 20000",
+        "permutations: 20000, most_draws: 19999",
+        (
+            "s.yaml:78:63: inference.p_value.most_draws: most_draws is 19999, and 20000 permutations are drawn to begin "
+            "with. Write 20000 or more; 20000 draws once. (message 40)"
+        ),
+    ),
+    (
+        "permutations: 20000",
+        "budget: {seconds: 0}",
+        (
+            "s.yaml:78:48: inference.p_value.budget.seconds: 0 is not possible here. Write a number more than 0 and at "
+            "most 86400. (message 31)"
+        ),
+    ),
+    (
+        "permutations: 20000",
+        "budget: {memory: 0 MiB}",
+        (
+            "s.yaml:78:47: inference.p_value.budget.memory: 0 MiB is not possible here. Write a whole number and its "
+            "unit, MiB or GiB, up to 64 GiB; such as 1 GiB. (message 31)"
+        ),
+    ),
+    (
+        "permutations: 20000",
+        "budget: {memory: 1 GB}",
+        (
+            's.yaml:78:47: inference.p_value.budget.memory: "1 GB" is not an amount of memory. Write a whole number and '
+            "its unit, MiB or GiB, up to 64 GiB; such as 1 GiB. (message 30)"
+        ),
+    ),
+    (
         "decimals: {coefficient: 3",
         "decimals: {coeficient: 3",
         (

@@ -2,10 +2,12 @@
 
 from rankdocket.study.consistency import table_of
 from rankdocket.study.form import (
+    MOST_PERMUTATIONS,
     AssociationForm,
     DataForm,
     InferenceForm,
     PersonForm,
+    PValueForm,
     RowsForm,
     StudyForm,
     VariableForm,
@@ -13,6 +15,7 @@ from rankdocket.study.form import (
 from rankdocket.study.parts import Parts
 from rankdocket.study.spec import (
     AssociationSpec,
+    BudgetSpec,
     DataSpec,
     HypothesisSpec,
     InferenceSpec,
@@ -139,9 +142,20 @@ def _inference(parts: Parts, form: InferenceForm) -> InferenceSpec:
         sidedness=form.sidedness,
         confidence_level=form.confidence_level,
         several_tests=SeveralTestsSpec(several.adjust, several.among, several.reason),
-        p_value=PValueSpec(p_value.by, p_value.permutations, p_value.seed),
+        p_value=PValueSpec(
+            p_value.by,
+            p_value.permutations,
+            _most_draws(p_value),
+            p_value.seed,
+            BudgetSpec(p_value.budget.seconds, p_value.budget.memory),
+        ),
         place=parts.key_place("inference"),
     )
+
+
+def _most_draws(form: PValueForm) -> int:
+    """Return the ceiling of draws: as written, or ten times the first ones."""
+    return form.most_draws or min(10 * form.permutations, MOST_PERMUTATIONS)
 
 
 def _requirements(parts: Parts) -> RequirementsSpec:

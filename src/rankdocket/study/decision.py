@@ -4,7 +4,7 @@ from collections.abc import Iterator
 from typing import Final
 
 from rankdocket.errors import Fault
-from rankdocket.study.form import InferenceForm
+from rankdocket.study.form import InferenceForm, PValueForm
 from rankdocket.study.messages import Message, fault
 from rankdocket.study.parts import Parts
 from rankdocket.vocabulary import ROLES, Family
@@ -26,12 +26,21 @@ def decision_faults(parts: Parts) -> Iterator[Fault]:
     if parts.sound(("inference",), "several_tests"):
         yield from _family_faults(parts, parts.inference)
         yield from _reason_faults(parts, parts.inference)
-    p_value = parts.inference.p_value
-    if parts.sound(("inference",), "p_value") and p_value.by == "permutation" and p_value.seed is None:
+    if parts.sound(("inference",), "p_value"):
+        yield from _draw_faults(parts, parts.inference.p_value)
+
+
+def _draw_faults(parts: Parts, p_value: PValueForm) -> Iterator[Fault]:
+    if p_value.by == "permutation" and p_value.seed is None:
         what = "seed is missing; by: permutation draws at random."
         place = parts.key_place("inference", "p_value")
         remedy = "Write seed: and a whole number chosen before the data are seen."
         yield fault(place, "inference.p_value", Message.NEEDED_BY_ANOTHER, what, remedy)
+    if p_value.most_draws is not None and p_value.most_draws < p_value.permutations:
+        what = f"most_draws is {p_value.most_draws}, and {p_value.permutations} permutations are drawn to begin with."
+        place = parts.value_place("inference", "p_value", "most_draws")
+        remedy = f"Write {p_value.permutations} or more; {p_value.permutations} draws once."
+        yield fault(place, "inference.p_value.most_draws", Message.CONTRADICTION, what, remedy)
 
 
 def _sign_faults(parts: Parts) -> Iterator[Fault]:

@@ -54,6 +54,8 @@ THOUSANDS_MARKS: Final = (",", ".", " ", "'", "\u2019", "\u00a0", "\u202f")
 LAST_ROW: Final = 100_000_000
 MOST_PERMUTATIONS: Final = 10_000_000
 FEWEST_PERMUTATIONS: Final = 999
+MOST_SECONDS: Final = Decimal(86_400)
+MOST_MEMORY: Final = 64 * 2**30
 LARGEST_SEED: Final = 2**63 - 1
 MOST_DECIMALS: Final = 6
 SMALLEST_N: Final = 3
@@ -216,6 +218,17 @@ class SeveralTestsForm(Form):
     reason: OptionalProse = Field(default=None, description="Why nothing is adjusted; required then.")
 
 
+class BudgetForm(Form):
+    """What an exact p may cost."""
+
+    seconds: Annotated[Decimal, kinds.DecimalNumber(_ZERO, MOST_SECONDS, (_ZERO,))] = Field(
+        default=Decimal(10), description="Processor seconds that an exact p may be forecast to take."
+    )
+    memory: Annotated[int, kinds.Memory(MOST_MEMORY)] = Field(
+        default=2**30, description="Memory that an exact p may be forecast to take, such as 512 MiB or 1 GiB."
+    )
+
+
 class PValueForm(Form):
     """How p is computed."""
 
@@ -223,6 +236,12 @@ class PValueForm(Form):
     permutations: Annotated[int, kinds.WholeNumber(FEWEST_PERMUTATIONS, MOST_PERMUTATIONS)] = Field(
         default=99_999, description="Random permutations drawn where p is not exact."
     )
+    most_draws: Annotated[int | None, kinds.WholeNumber(FEWEST_PERMUTATIONS, MOST_PERMUTATIONS)] = Field(
+        default=None,
+        description="Ceiling up to which more are drawn while the error of the draws leaves the side of alpha open; "
+        "ten times permutations by default.",
+    )
+    budget: BudgetForm = Field(default_factory=BudgetForm, description="What an exact p may cost.")
     seed: Annotated[int | None, kinds.WholeNumber(0, LARGEST_SEED)] = Field(
         default=None, description="Whole number from which random draws start; needed when permutations are drawn."
     )

@@ -26,6 +26,8 @@ _TEXT_SCHEMA: Final = {"type": ["string", "number"]}
 _WHOLE: Final = re.compile(r"[0-9]+")
 _DECIMAL: Final = re.compile(r"([0-9]+(\.[0-9]+)?|\.[0-9]+)([eE][-+]?[0-9]{1,2})?")
 _DATE: Final = re.compile(r"[0-9]{4}-[0-9]{2}-[0-9]{2}")
+_MEMORY: Final = re.compile(r"(0|[1-9][0-9]*) (MiB|GiB)")
+_MEMORY_UNITS: Final = {"MiB": 2**20, "GiB": 2**30}
 _MINUS_SIGNS: Final = ("-", "\u2212")
 _LONGEST_NUMBER: Final = 40
 """Characters of a number in a spec: twice the longest seed."""
@@ -239,6 +241,35 @@ class DecimalNumber(_Kind):
         """Refuse a number with a minus as such: it can be read, and no number of a spec is below 0."""
         if text.startswith(_MINUS_SIGNS) and _DECIMAL.fullmatch(text[1:]) is not None:
             raise refuse(Message.OUT_OF_RANGE, f"{shown(text)} is below what is possible.", f"Write {self._range()}.")
+
+
+@dataclass(frozen=True, slots=True)
+class Memory(_Kind):
+    """An amount of memory as "512 MiB" or "1 GiB" (IEC 80000-13), read as bytes."""
+
+    most: int
+
+    def read(self, value: object) -> int:
+        """Return the bytes."""
+        text = text_of(value)
+        parts = _MEMORY.fullmatch(text)
+        remedy = f"Write a whole number and its unit, MiB or GiB, up to {memory_text(self.most)}; such as 1 GiB."
+        if parts is None or len(text) > _LONGEST_NUMBER:
+            raise refuse(Message.NOT_A_NUMBER, f"{shown(text)} is not an amount of memory.", remedy)
+        amount = int(parts[1]) * _MEMORY_UNITS[parts[2]]
+        if not 0 < amount <= self.most:
+            raise refuse(Message.OUT_OF_RANGE, f"{text} is not possible here.", remedy)
+        return amount
+
+    def schema(self) -> Schema:
+        """A whole number above 0 and a unit."""
+        return {"type": "string", "pattern": "^[1-9][0-9]* (MiB|GiB)$"}
+
+
+def memory_text(amount: int) -> str:
+    """Return bytes as :class:`Memory` reads them, in the largest unit that leaves a whole number."""
+    unit = next(unit for unit in ("GiB", "MiB") if amount % _MEMORY_UNITS[unit] == 0)
+    return f"{amount // _MEMORY_UNITS[unit]} {unit}"
 
 
 @dataclass(frozen=True, slots=True)

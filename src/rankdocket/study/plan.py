@@ -4,6 +4,7 @@ from decimal import Decimal
 
 from rankdocket.canonical import Plain
 from rankdocket.study.cells import plain_digits
+from rankdocket.study.kinds import memory_text
 from rankdocket.study.spec import (
     AssociationSpec,
     DataSpec,
@@ -98,6 +99,11 @@ def _inference(inference: InferenceSpec) -> Plain:
             "permutations": inference.p_value.permutations,
             # A seed may be larger than a JSON number can be everywhere.
             "seed": None if seed is None else str(seed),
+            "most_draws": inference.p_value.most_draws,
+            "budget": {
+                "seconds": _shortest(inference.p_value.budget.seconds),
+                "memory": memory_text(inference.p_value.budget.memory),
+            },
         },
     }
 

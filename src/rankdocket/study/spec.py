@@ -180,12 +180,25 @@ class SeveralTestsSpec:
 
 
 @dataclass(frozen=True, slots=True)
+class BudgetSpec:
+    """What an exact null may be forecast to cost: processor seconds (above 0) and bytes of memory (above 0)."""
+
+    seconds: Decimal
+    memory: int
+
+
+@dataclass(frozen=True, slots=True)
 class PValueSpec:
-    """How p is got.  ``seed`` may be absent as long as no draw is needed."""
+    """How p is got.
+
+    ``seed`` may be absent as long as no draw is needed; ``most_draws`` is at least ``permutations``.
+    """
 
     by: PBy
     permutations: int
+    most_draws: int
     seed: int | None
+    budget: BudgetSpec
 
 
 @dataclass(frozen=True, slots=True)

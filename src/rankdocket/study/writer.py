@@ -7,6 +7,7 @@ from typing import Final, TypeAlias
 
 from rankdocket import vocabulary
 from rankdocket.study.form import ENCODINGS, NAME_PATTERN, TAB_WORD, TRAP_WORDS
+from rankdocket.study.kinds import memory_text
 from rankdocket.study.spec import (
     AssociationSpec,
     DataSpec,
@@ -142,7 +143,13 @@ def _inference(inference: InferenceSpec) -> _Value:
         "sidedness": inference.sidedness,
         "confidence_level": inference.confidence_level,
         "several_tests": {"adjust": several.adjust, "among": several.among, "reason": several.reason},
-        "p_value": {"by": p_value.by, "permutations": p_value.permutations, "seed": p_value.seed},
+        "p_value": {
+            "by": p_value.by,
+            "permutations": p_value.permutations,
+            "most_draws": p_value.most_draws,
+            "seed": p_value.seed,
+            "budget": {"seconds": p_value.budget.seconds, "memory": memory_text(p_value.budget.memory)},
+        },
     }
 
 
