@@ -13,6 +13,8 @@ if TYPE_CHECKING:
     from rankdocket.stats.adjustments import adjusted as adjusted
     from rankdocket.stats.intervals.bonett_wright import bonett_wright_limits as bonett_wright_limits
     from rankdocket.stats.tables import critical_value as critical_value
+    from rankdocket.stats.tables import critical_value_approximate as critical_value_approximate
+    from rankdocket.stats.tables import critical_value_large_sample as critical_value_large_sample
     from rankdocket.stats.tables import null_counts as null_counts
     from rankdocket.workflow.issue import issue as issue
     from rankdocket.workflow.report import report as report
@@ -25,6 +27,8 @@ _HOME: Final = MappingProxyType(
         "associate": "rankdocket.analysis.arrays",
         "bonett_wright_limits": "rankdocket.stats.intervals.bonett_wright",
         "critical_value": "rankdocket.stats.tables",
+        "critical_value_approximate": "rankdocket.stats.tables",
+        "critical_value_large_sample": "rankdocket.stats.tables",
         "issue": "rankdocket.workflow.issue",
         "null_counts": "rankdocket.stats.tables",
         "report": "rankdocket.workflow.report",
@@ -39,6 +43,8 @@ __all__ = [
     "associate",
     "bonett_wright_limits",
     "critical_value",
+    "critical_value_approximate",
+    "critical_value_large_sample",
     "issue",
     "null_counts",
     "report",

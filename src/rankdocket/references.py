@@ -73,6 +73,12 @@ REFERENCES: Final = _catalogue(
         "Journal of the American Statistical Association 112: 1211–1220.",
     ),
     Reference(
+        "david1951",
+        "David et al. 1951",
+        "David ST, Kendall MG, Stuart A (1951). Some questions of distribution in the theory of rank correlation. "
+        "Biometrika 38: 131–140.",
+    ),
+    Reference(
         "dwass1957",
         "Dwass 1957",
         "Dwass M (1957). Modified randomization tests for nonparametric hypotheses. Annals of Mathematical "
@@ -117,6 +123,18 @@ REFERENCES: Final = _catalogue(
         "Kruskal 1958",
         "Kruskal WH (1958). Ordinal measures of association. Journal of the American Statistical Association 53: "
         "814–861.",
+    ),
+    Reference(
+        "lugannani1980",
+        "Lugannani & Rice 1980",
+        "Lugannani R, Rice S (1980). Saddle point approximation for the distribution of the sum of independent random "
+        "variables. Advances in Applied Probability 12: 475–490.",
+    ),
+    Reference(
+        "mccullagh2014",
+        "McCullagh 2014",
+        "McCullagh P (2014). An asymptotic approximation for the permanent of a doubly stochastic matrix. Journal of "
+        "Statistical Computation and Simulation 84: 404–414.",
     ),
     Reference(
         "neslehova2007",

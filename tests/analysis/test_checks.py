@@ -45,7 +45,7 @@ class Case:
 
 
 FEWER = "fewer complete rows than the plan asks for"
-DRAWN = "alpha: 0.05, p_value: {by: permutation, permutations: 999, seed: 5}"
+DRAWN = "alpha: 0.05, p_value: {by: permutation, permutations: 999, most_draws: 999, seed: 5}"
 LACK = "more rows lack a value than the plan allows"
 CONSTANT = "a variable has one value in all complete rows"
 SILENT = "the plan does not say whether rows are repeated or in time order"

@@ -261,8 +261,8 @@ def test_dependent_rows_give_their_own_reason_for_the_missing_interval() -> None
     [
         ("alpha: 0.05", Fraction(2, 3_628_800)),
         (ONE_SIDED, Fraction(1, 3_628_800)),
-        ("alpha: 0.05, p_value: {by: permutation, permutations: 999, seed: 5}", Fraction(1, 1000)),
-        ("alpha: 0.05, p_value: {by: permutation, permutations: 1999, seed: 5}", Fraction(1, 2000)),
+        ("alpha: 0.05, p_value: {by: permutation, permutations: 999, most_draws: 999, seed: 5}", Fraction(1, 1000)),
+        ("alpha: 0.05, p_value: {by: permutation, permutations: 1999, most_draws: 1999, seed: 5}", Fraction(1, 2000)),
     ],
 )
 def test_the_smallest_p_is_that_of_the_null_that_is_used(inference: str, smallest: Fraction) -> None:

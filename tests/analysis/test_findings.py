@@ -19,9 +19,11 @@ from rankdocket.stats.null import TailCounts
 from rankdocket.vocabulary import FAMILIES, FINDINGS, FindingWord
 
 ONE_SIDED = "alpha: 0.05, sidedness: one-sided"
-MANY = " ".join(str(place) for place in range(1, 41))
-MANY_TOO = " ".join(str((place * 17) % 41) for place in range(1, 41))
-DRAWN = "alpha: 0.05, p_value: {permutations: 999, seed: 11}"
+MANY = " ".join(str(place // 3) for place in range(60))
+MANY_TOO = " ".join(str(place * 17 % 61 // 3) for place in range(60))
+"""Twenty values three times each: far more orderings than any budget lets be counted."""
+
+DRAWN = "alpha: 0.05, p_value: {permutations: 999, most_draws: 999, seed: 11}"
 
 
 def word(v: str, sign: str, *, inference: str = "alpha: 0.05", **parts: Any) -> FindingWord | None:
@@ -183,7 +185,7 @@ def test_losing_a_test_never_lowers_the_adjusted_p_of_another(thousandths: list[
 def drawn(**changes: Any) -> Invented:
     """Return a study whose p-values need drawn permutations."""
     return replace(
-        Invented(columns={"u": MANY, "v": MANY_TOO, "w": f"{MANY_TOO} 41".partition(" ")[2]}, inference=DRAWN),
+        Invented(columns={"u": MANY, "v": MANY_TOO, "w": f"{MANY_TOO} 20".partition(" ")[2]}, inference=DRAWN),
         **changes,
     )
 
@@ -203,7 +205,7 @@ def test_a_plan_that_needs_draws_and_names_no_seed_is_refused() -> None:
 
 def test_a_constant_column_asks_for_no_seed() -> None:
     """There is nothing to draw for."""
-    constant = drawn(inference="alpha: 0.05", columns={"u": MANY, "v": "5 " * 40})
+    constant = drawn(inference="alpha: 0.05", columns={"u": MANY, "v": "5 " * 60})
     assert constant.analysed().findings["A1"].word == "not estimable"
 
 
@@ -248,7 +250,8 @@ def as_if_drawn(result: AssociationAnalysis, hits: int) -> AssociationAnalysis:
     assert isinstance(result.test, RankTest)
     tails = TailCounts("drawn permutations", hits, DRAWS, hits, DRAWS)
     p_interval = tails.interval("two-sided", Decimal("0.95"))
-    return replace(result, test=replace(result.test, tails=tails, p=tails.p("two-sided"), p_interval=p_interval))
+    null = replace(result.test.null, tails=tails)
+    return replace(result, test=replace(result.test, null=null, p=tails.p("two-sided"), p_interval=p_interval))
 
 
 def with_hits(*hits: int, role: str = "primary", several: str = "") -> dict[str, Finding]:
@@ -269,15 +272,15 @@ def test_draws_leave_open_what_the_adjusted_ends_of_their_interval_leave_open() 
     """Five tests, 9 of 1,000: p 0.009 (0.0035 to 0.0157) is 0.045 adjusted and shown; 5 times 0.0157 is above alpha."""
     finding = with_hits(8, 500, 600, 700, 800)["A1"]
     assert (finding.word, finding.p_adjusted) == ("shown", Fraction(45, 1000))
-    assert finding.undecided_by_draws
+    assert finding.undecided
 
 
 def test_draws_whose_raw_interval_holds_alpha_may_still_decide() -> None:
     """Second of five, 44 of 1,000: p 0.044 (0.031 to 0.058) is 0.176 adjusted; 4 times 0.031 is above alpha as well."""
     findings = with_hits(0, 43, 600, 700, 800)
     assert (findings["A2"].word, findings["A2"].p_adjusted) == ("not shown", Fraction(176, 1000))
-    assert not findings["A2"].undecided_by_draws
-    assert not findings["A1"].undecided_by_draws  # 0.001 (0 to 0.0037): 5 times 0.0037 is below alpha
+    assert not findings["A2"].undecided
+    assert not findings["A1"].undecided  # 0.001 (0 to 0.0037): 5 times 0.0037 is below alpha
 
 
 @pytest.mark.parametrize(
@@ -298,22 +301,22 @@ def test_draws_whose_raw_interval_holds_alpha_may_still_decide() -> None:
 @pytest.mark.parametrize("several", ["", OWN_P, UNADJUSTED])
 def test_a_drawn_p_is_undecided_from_where_its_interval_reaches_alpha(hits: int, undecided: bool, several: str) -> None:
     """Clearly above or below alpha, the error of the draws changes nothing; alone, adjustment does not either."""
-    assert with_hits(hits, several=several)["A1"].undecided_by_draws == undecided
+    assert with_hits(hits, several=several)["A1"].undecided == undecided
 
 
 def test_the_others_are_held_fixed_when_an_end_is_adjusted() -> None:
     """Each of three is judged by its own ends; an exact p is never undecided."""
-    assert {name: found.undecided_by_draws for name, found in with_hits(10, 16, 300).items()} == {
+    assert {name: found.undecided for name, found in with_hits(10, 16, 300).items()} == {
         "A1": True,  # 0.011 (0.005 to 0.0183): 3 times 0.0183 is above alpha, 3 times 0.005 is below
         "A2": True,  # 0.017 (0.0092 to 0.0259): 2 times 0.0259 is above alpha
         "A3": False,
     }
-    assert not any(found.undecided_by_draws for found in with_p("0.049", "0.051").findings.values())
+    assert not any(found.undecided for found in with_p("0.049", "0.051").findings.values())
 
 
 def test_without_a_finding_nothing_is_undecided() -> None:
     """Outside the family the plan decides nothing, and a withheld test has no p."""
-    assert not with_hits(49, role="exploratory", several=OWN_P)["A1"].undecided_by_draws
+    assert not with_hits(49, role="exploratory", several=OWN_P)["A1"].undecided
     analysis = Invented().analysed()
     results = {"A1": replace(as_if_drawn(analysis.results["A1"], 49), test=Withheld("the plan says so"))}
-    assert not decide(results, analysis.spec, adjustment_of(analysis.spec))["A1"].undecided_by_draws
+    assert not decide(results, analysis.spec, adjustment_of(analysis.spec))["A1"].undecided

@@ -1,6 +1,7 @@
 """The analysis as it is filed: text and whole numbers only, at addresses that every printed number can point to."""
 
 import json
+import re
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import replace
 from decimal import Decimal
@@ -54,7 +55,14 @@ def test_the_canonical_form_exists_and_reads_back(plain: dict[str, Plain]) -> No
     assert json.loads(filed_bytes) == json.loads(readable_bytes(plain))
     assert canonical_bytes(json.loads(filed_bytes)) == filed_bytes
     assert b"NaN" not in filed_bytes
-    assert b"null" not in filed_bytes
+    assert re.search(rb"[:\[,]null\b", filed_bytes) is None
+
+
+def test_a_count_that_is_none_is_null() -> None:
+    """Thirty-one untied rows have a p-value and no count; nothing else is null."""
+    column = " ".join(str(place) for place in range(1, 32))
+    made = analysis_to_plain(Invented(columns={"u": column, "v": column}).analysed())
+    assert [address for address, value in leaves(made) if value is None] == ["associations/A1/test/count"]
 
 
 def test_every_leaf_is_found_at_its_address(plain: dict[str, Plain]) -> None:
@@ -157,7 +165,7 @@ def test_a_seed_and_smallest_sizes_are_filed_as_text() -> None:
     invented = replace(
         Invented(),
         associations={"A1": association(more="smallest_of_interest: 0.30"), "A2": association()},
-        inference=f"alpha: 0.05, p_value: {{permutations: 999, seed: {seed}}}",
+        inference=f"alpha: 0.05, p_value: {{permutations: 999, most_draws: 999, seed: {seed}}}",
     )
     plain = analysis_to_plain(invented.analysed())
     assert look_up(plain, "inference/seed") == str(seed)

@@ -10,14 +10,14 @@ from rankdocket.analysis.screening import Screening, screen_study
 from rankdocket.document.numbers import look_up
 from rankdocket.writing.screening_page import screening_page
 
-MANY = " ".join(str(place) for place in range(1, 41))
-MANY_TOO = " ".join(str((place * 17) % 41) for place in range(1, 41))
-FEW = "1 2 3 4 5" + f" {MISSING}" * 35
+MANY = " ".join(str(place // 3) for place in range(60))
+MANY_TOO = " ".join(str(place * 17 % 61 // 3) for place in range(60))
+FEW = " ".join(str(place // 3) if place % 3 == 0 and place < 15 else MISSING for place in range(60))
 PLAN = {"A1": association(), "A2": association("u", "w")}
 LARGE = Invented(columns={"u": MANY, "v": MANY_TOO, "w": FEW}, associations=PLAN)
-"""A1 has forty rows, whose orderings are too many to count; A2 has five."""
+"""A1 has sixty rows with many ties, whose orderings are too many to count; A2 has five."""
 
-SEEDED = "alpha: 0.05, p_value: {seed: 11}"
+SEEDED = "alpha: 0.05, p_value: {most_draws: 99999, seed: 11}"
 
 
 def screening(invented: Invented) -> Screening:
@@ -35,7 +35,7 @@ def test_what_needs_draws_and_has_no_seed_is_named() -> None:
 
 @pytest.mark.parametrize(
     "parts",
-    [{"rows": "leave_out: []"}, {"requirements": "fewest_complete_rows: 41, most_missing: 1, most_tied: 1"}],
+    [{"rows": "leave_out: []"}, {"requirements": "fewest_complete_rows: 61, most_missing: 1, most_tied: 1"}],
     ids=["dependent rows", "too few rows"],
 )
 def test_a_test_that_will_be_withheld_asks_for_no_seed(parts: dict[str, Any]) -> None:
@@ -54,7 +54,7 @@ def test_the_page_asks_for_a_seed_where_one_is_missing() -> None:
 
 
 def test_the_page_tells_the_smallest_p_of_the_null_that_will_be_used() -> None:
-    """From the usual 99,999 draws no p lies below 1/100,000; five rows, counted through, reach 1/60."""
+    """From 99,999 draws no p lies below 1/100,000; five rows, counted through, reach 1/60."""
     page = screening_page(screening(replace(LARGE, inference=SEEDED)))
-    assert "A1: 40 complete rows; the smallest possible p is 0.00001." in page
+    assert "A1: 60 complete rows; the smallest possible p is 0.00001." in page
     assert "A2: 5 complete rows; the smallest possible p is 0.017." in page

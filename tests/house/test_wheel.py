@@ -34,7 +34,8 @@ def test_the_wheel_holds_program_looks_and_cases(wheel: Path) -> None:
         for path in TEMPLATES.rglob("*")
         if path.is_file()
     }
-    assert modules | looks | {"rankdocket/py.typed", "rankdocket/workflow/self_test.json"} <= names
+    data = {"workflow/self_test.json", "stats/nulls/spearman_counts.npz", "stats/nulls/cumulant_polys.json"}
+    assert modules | looks | {"rankdocket/py.typed"} | {f"rankdocket/{name}" for name in data} <= names
     tops = {name.split("/")[0] for name in names}
     assert {top for top in tops if not top.endswith(".dist-info")} == {"rankdocket"}
     assert [name for name in names if "cache" in name] == []

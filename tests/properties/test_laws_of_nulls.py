@@ -11,14 +11,14 @@ from hypothesis import strategies as st
 
 from properties.oracles import enumerated_null, numerator
 from rankdocket.stats.attainable import attainable_range, smallest_attainable_p, tails_at_limit
-from rankdocket.stats.choose_null import choose_null, count_tails, exact_null_of
+from rankdocket.stats.choose_null import exact_null_of
 from rankdocket.stats.draws import stream
 from rankdocket.stats.null import TailCounts
-from rankdocket.stats.nulls.monte_carlo import Draws
+from rankdocket.stats.nulls.monte_carlo import DrawingPlan
 from rankdocket.stats.ranks import tie_groups
 from rankdocket.stats.rho import rho
-from rankdocket.stats.tau import tau_b
 from rankdocket.vocabulary import COEFFICIENTS, CoefficientName, Direction
+from stats.asked import answer_of
 
 few_rows = st.integers(2, 6).flatmap(
     lambda n: st.tuples(
@@ -47,9 +47,9 @@ def _tails_by_enumeration(name: CoefficientName, x: list[int], y: list[int]) -> 
 
 
 def _exact(name: CoefficientName, x: list[int], y: list[int]) -> TailCounts:
-    coefficient = {"Spearman rho": rho, "Kendall tau-b": tau_b}[name](_codes(x), _codes(y))
-    choice = choose_null(name, tie_groups(_codes(x)), tie_groups(_codes(y)), "exact when possible")
-    return count_tails(choice, _codes(x), _codes(y), observed=coefficient, draws=None)
+    tails = answer_of(x, y, name).tails
+    assert isinstance(tails, TailCounts)
+    return tails
 
 
 @given(names, few_rows)
@@ -175,10 +175,8 @@ def test_drawn_permutations_agree_with_the_exact_null_within_their_stated_error(
 ) -> None:
     """The exact p-values lie in the intervals that the drawn counts state, at a level of 0.9999."""
     x, y = data
-    coefficient = {"Spearman rho": rho, "Kendall tau-b": tau_b}[name](_codes(x), _codes(y))
-    choice = choose_null(name, tie_groups(_codes(x)), tie_groups(_codes(y)), "permutation")
-    draws = Draws(20_000, stream(11, "test", name))
-    drawn = count_tails(choice, _codes(x), _codes(y), observed=coefficient, draws=draws)
+    drawn = answer_of(x, y, name, drawing=DrawingPlan(20_000, 20_000, stream(11, "test", name))).tails
+    assert isinstance(drawn, TailCounts)
     exact = _exact(name, x, y)
     assert drawn.of == 20_000
     for direction in ("greater", "less", "two-sided"):
@@ -198,7 +196,5 @@ def test_drawn_permutations_do_not_depend_on_the_order_of_the_rows(
     counts = set()
     for rows in (pairs, pairs[::-1], sorted(pairs), sorted(pairs, key=lambda row: (row[1], -row[0]))):
         x, y = (_codes(list(column)) for column in zip(*rows, strict=True))
-        coefficient = {"Spearman rho": rho, "Kendall tau-b": tau_b}[name](x, y)
-        choice = choose_null(name, tie_groups(x), tie_groups(y), "permutation")
-        counts.add(count_tails(choice, x, y, observed=coefficient, draws=Draws(500, stream(3, "order"))))
+        counts.add(answer_of(x, y, name, drawing=DrawingPlan(500, 500, stream(3, "order"))).tails)
     assert len(counts) == 1

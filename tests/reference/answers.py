@@ -3,7 +3,15 @@
 from collections.abc import Mapping
 from typing import Any
 
-from rankdocket import adjusted, associate, bonett_wright_limits, critical_value, null_counts
+from rankdocket import (
+    adjusted,
+    associate,
+    bonett_wright_limits,
+    critical_value,
+    critical_value_approximate,
+    critical_value_large_sample,
+    null_counts,
+)
 from rankdocket.vocabulary import Sidedness
 
 SIDES: Mapping[str, Sidedness] = {"one": "one-sided", "two": "two-sided"}
@@ -18,6 +26,10 @@ def answer(function: str, inputs: Mapping[str, Any]) -> dict[str, Any] | None:
         return {"total": table.total, "counts": table.counts}
     if function == "critical_value":
         return _critical_value(inputs["n"], inputs["alpha"], inputs["sides"])
+    if function == "critical_value_approximate":
+        return _critical_value_approximate(inputs["n"], inputs["alpha"], inputs["sides"])
+    if function == "critical_value_large_sample":
+        return _critical_value_large_sample(inputs["n"], inputs["alpha"], inputs["sides"])
     if function == "adjusted_p" and inputs["method"] == "holm":
         return {"adjusted": adjusted(inputs["p"], rule="Holm")}
     if function == "ci_bonett_wright":
@@ -34,6 +46,21 @@ def _critical_value(n: int, alpha: float, sides: str) -> dict[str, Any]:
         "critical_sum_d2": found.sum_d2,
         "attained_p": found.attained_p,
     }
+
+
+def _critical_value_approximate(n: int, alpha: float, sides: str) -> dict[str, Any]:
+    found = critical_value_approximate(n, alpha, sidedness=SIDES[sides])
+    return {
+        "attainable": found.attainable,
+        "critical_rs": found.rho,
+        "critical_sum_d2": found.sum_d2,
+        "attained_p": found.attained_p,
+    }
+
+
+def _critical_value_large_sample(n: int, alpha: float, sides: str) -> dict[str, Any]:
+    rule = critical_value_large_sample(n, alpha, sidedness=SIDES[sides])
+    return {"z": rule.z, "critical_rs": rule.value}
 
 
 def _association(x: list[float | None], y: list[float | None]) -> dict[str, Any]:

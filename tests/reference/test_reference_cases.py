@@ -1,4 +1,4 @@
-"""What others computed or printed: each case is answered, listed as beyond reach, or of a kind not answered."""
+"""What others computed or printed: each case is answered or of a kind not answered."""
 
 import ast
 from pathlib import Path
@@ -6,7 +6,6 @@ from pathlib import Path
 import pytest
 
 from rankdocket import critical_value
-from rankdocket.errors import ComputeError
 from reference.answers import answer
 from reference.checker import Case, disagreements, inputs_of, misprints, reference_cases
 
@@ -16,6 +15,8 @@ ANSWERED = (
     "adjusted_p",
     "ci_bonett_wright",
     "critical_value",
+    "critical_value_approximate",
+    "critical_value_large_sample",
     "dataset_pair",
     "exact_conditional",
     "null_counts",
@@ -26,8 +27,6 @@ NOT_ANSWERED = (
     "chatterjee_xi",
     "ci_fieller",
     "ci_fisher",
-    "critical_value_approximate",
-    "critical_value_large_sample",
     "difference_no_variable_shared",
     "difference_one_variable_shared",
     "difference_two_groups",
@@ -42,25 +41,6 @@ NOT_ANSWERED = (
 
 ADJUSTMENTS_NOT_ANSWERED = ("bh", "bonferroni", "by", "hochberg")
 
-BEYOND_REACH = (
-    "crit_one_001_n20",
-    "crit_one_01_n20",
-    "crit_two_01_n21",
-    "crit_two_01_n22",
-    "crit_two_02_n18",
-    "crit_two_02_n19",
-    "crit_two_02_n20",
-    "crit_two_05_n18",
-    "crit_two_05_n20",
-    "crit_two_05_n21",
-    "crit_two_10_n18",
-    "crit_two_10_n19",
-    "crit_two_10_n20",
-    "crit_two_10_n21",
-    "crit_two_10_n22",
-)
-"""Critical values for more rows than the exact engine enumerates without ties."""
-
 
 def _is_answerable(case: Case) -> bool:
     if case["function"] == "adjusted_p":
@@ -68,8 +48,7 @@ def _is_answerable(case: Case) -> bool:
     return case["function"] in ANSWERED
 
 
-ANSWERABLE = tuple(case for case in CASES if _is_answerable(case) and case["id"] not in BEYOND_REACH)
-OUT_OF_REACH = tuple(case for case in CASES if case["id"] in BEYOND_REACH)
+ANSWERABLE = tuple(case for case in CASES if _is_answerable(case))
 
 
 def _name(case: Case) -> str:
@@ -90,19 +69,6 @@ def test_answer_rounds_to_what_was_printed(case: Case) -> None:
     got = answer(case["function"], inputs_of(case))
     assert got is not None
     assert misprints(case, got) == []
-
-
-@pytest.mark.parametrize("case", OUT_OF_REACH, ids=_name)
-def test_what_is_listed_as_beyond_reach_is_refused(case: Case) -> None:
-    """A critical value that cannot be enumerated is refused with a sentence, not approximated."""
-    with pytest.raises(ComputeError, match="is tabulated for 1 to"):
-        answer(case["function"], inputs_of(case))
-
-
-def test_every_case_beyond_reach_exists() -> None:
-    """The list of cases beyond reach names existing cases of one function only."""
-    assert {case["id"] for case in OUT_OF_REACH} == set(BEYOND_REACH)
-    assert {case["function"] for case in OUT_OF_REACH} == {"critical_value"}
 
 
 def test_functions_are_all_listed() -> None:
@@ -188,7 +154,15 @@ def test_answers_contain_no_arithmetic() -> None:
     assert [type(node).__name__ for node in used if not isinstance(node, ALLOWED)] == []
     called = {node.func.id for node in used if isinstance(node, ast.Call) and isinstance(node.func, ast.Name)}
     own = {node.name for node in used if isinstance(node, ast.FunctionDef)}
-    public = {"adjusted", "associate", "bonett_wright_limits", "critical_value", "null_counts"}
+    public = {
+        "adjusted",
+        "associate",
+        "bonett_wright_limits",
+        "critical_value",
+        "critical_value_approximate",
+        "critical_value_large_sample",
+        "null_counts",
+    }
     assert called <= own | public
     methods = {node.func.attr for node in used if isinstance(node, ast.Call) and isinstance(node.func, ast.Attribute)}
     assert methods == {"p"}

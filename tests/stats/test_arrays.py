@@ -10,6 +10,7 @@ import pytest
 
 from rankdocket import associate
 from rankdocket.stats.interval import Interval, NoInterval
+from rankdocket.stats.null import TailShares
 
 
 def test_lists_arrays_and_series_are_read_alike() -> None:
@@ -54,12 +55,44 @@ def test_p_says_where_it_comes_from() -> None:
     few = associate([1, 2, 3, 4, 5], [2, 1, 4, 3, 5])
     assert few.exact is not None
     assert few.p == few.exact.p("two-sided") == Fraction(2, 15)
-    rows = np.random.default_rng(3).normal(size=(2, 60))
+    rows = np.random.default_rng(3).integers(0, 20, size=(2, 60))
     drawn = associate(rows[0], rows[1], permutations=500, seed=4)
     assert drawn.exact is None
     assert drawn.tails is not None
     assert (drawn.tails.method, drawn.tails.of) == ("drawn permutations", 500)
     assert associate(rows[0], rows[1], permutations=500, seed=4).p == drawn.p
+    more = associate(rows[0], rows[1], permutations=500, most_draws=4000, seed=4)
+    assert more.null is not None
+    assert more.null.looks[0].draws == 500
+
+
+def test_many_untied_rows_have_a_series_and_no_count() -> None:
+    """Above the shipped counts p is a share with a stated error; nothing is drawn."""
+    rows = np.random.default_rng(3).normal(size=(2, 60))
+    result = associate(rows[0], rows[1])
+    assert result.exact is None
+    assert isinstance(result.tails, TailShares)
+    assert result.p == result.tails.p("two-sided")
+    assert 0 < result.tails.share("two-sided").error < result.p
+
+
+def test_a_budget_that_is_not_positive_is_a_reason() -> None:
+    """The coefficient stands; that there is no p-value is said, not raised."""
+    for seconds, memory in ((0, 2**30), (-1, 2**30), (float("nan"), 2**30), (10, 0), (10, -1)):
+        result = associate([1, 2, 3, 4], [1, 2, 4, 3], budget_seconds=seconds, budget_memory=memory)
+        assert result.rho == 0.8
+        assert (result.p, result.exact, result.tails, result.null, result.null_choice) == (None,) * 5
+        assert result.null_reason == "The budget of the null is not positive."
+    assert associate([1, 2], [1, 2], budget_seconds=0).null_reason == "There are fewer than three complete rows."
+
+
+def test_the_critical_value_comes_with_the_null() -> None:
+    """Ten untied rows: 0.648 at 5% on two sides (published tables)."""
+    null = associate(range(10), [3, 0, 1, 2, 5, 4, 7, 6, 9, 8]).null
+    assert null is not None
+    assert null.critical is not None
+    assert null.critical.two_sided is not None
+    assert round(null.critical.two_sided.numerator / 330, 3) == 0.648
 
 
 def test_perfect_order_has_an_exact_p_without_enumeration() -> None:

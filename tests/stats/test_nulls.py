@@ -13,28 +13,20 @@ import pytest
 
 from rankdocket.errors import ComputeError
 from rankdocket.stats.attainable import attainable_range, smallest_attainable_p
-from rankdocket.stats.choose_null import (
-    BYTES_BUDGET,
-    OPERATIONS_BUDGET,
-    choose_null,
-    count_tails,
-    exact_null_of,
-)
+from rankdocket.stats.choose_null import DEFAULT_BUDGET, NANOSECONDS, Budget, Route, choose_null, exact_null_of
 from rankdocket.stats.draws import stream
 from rankdocket.stats.forecast import ROWS_LIMIT
 from rankdocket.stats.null import ExactNull, TailCounts, exact_null
-from rankdocket.stats.nulls.monte_carlo import Draws, drawn_tails, permutations_of
-from rankdocket.stats.ranks import TieGroups, tie_groups
-from rankdocket.stats.rho import rho
-from rankdocket.stats.tau import tau_b
+from rankdocket.stats.nulls.untied import reach
+from rankdocket.stats.ranks import TieGroups
 from rankdocket.vocabulary import COEFFICIENTS, CoefficientName
+from stats.asked import answer_of
 
 
 def _tails(x: list[int], y: list[int], name: CoefficientName = "Spearman rho") -> TailCounts:
-    x_codes, y_codes = np.array(x), np.array(y)
-    coefficient = {"Spearman rho": rho, "Kendall tau-b": tau_b}[name](x_codes, y_codes)
-    choice = choose_null(name, tie_groups(x_codes), tie_groups(y_codes), "exact when possible")
-    return count_tails(choice, x_codes, y_codes, observed=coefficient, draws=None)
+    tails = answer_of(x, y, name).tails
+    assert isinstance(tails, TailCounts)
+    return tails
 
 
 def test_exact_p_with_ties_is_conditional_on_them() -> None:
@@ -98,102 +90,84 @@ def test_an_exact_p_value_has_no_error_of_drawing() -> None:
     assert _tails([1, 2, 3], [1, 2, 3]).interval("greater", Decimal("0.95")) is None
 
 
-@pytest.mark.parametrize("rows", [12, 17])
-def test_untied_rows_are_counted_completely_as_far_as_the_budget_reaches(rows: int) -> None:
-    """Up to 17 untied rows are enumerated."""
-    untied = TieGroups((1,) * rows)
-    choice = choose_null("Spearman rho", untied, untied, "exact when possible")
-    assert (choice.method, choice.needs_draws) == ("exact, no ties", False)
+def _route(name: CoefficientName, x: tuple[int, ...], y: tuple[int, ...], budget: Budget = DEFAULT_BUDGET) -> Route:
+    return choose_null(name, TieGroups(x), TieGroups(y), "exact when possible", budget).route
 
 
 @pytest.mark.parametrize(
-    ("name", "x", "y"),
+    ("name", "x", "y", "route"),
     [
-        ("Spearman rho", (1,) * 18, (1,) * 18),
-        ("Spearman rho", (1,) * 65_537, (1,) * 65_537),
-        ("Spearman rho", (40, 41, 42), (1,) * 123),
-        ("Spearman rho", (1, 500_000), (2, 499_999)),
-        ("Kendall tau-b", (5,) * 9, (4,) * 10 + (5,)),
-        ("Kendall tau-b", (1,) * 1_000, (1,) * 1_000),
-        ("Kendall tau-b", (1,) * 65_537, (30_000, 35_537)),
+        ("Spearman rho", (1,) * 3, (1,) * 3, "counted beforehand"),
+        ("Spearman rho", (1,) * reach(), (1,) * reach(), "counted beforehand"),
+        ("Spearman rho", (1,) * (reach() + 1), (1,) * (reach() + 1), "series"),
+        ("Spearman rho", (1,) * 65_537, (1,) * 65_537, "series"),
+        ("Spearman rho", (2, *(1,) * 14), (1,) * 16, "whole"),
+        ("Spearman rho", (30, 33, 37), (31, 33, 36), "whole"),
+        ("Spearman rho", (1,) * 200, (90, 110), "whole"),
+        ("Spearman rho", (3,) * 20, (4,) * 15, "draws"),
+        ("Spearman rho", (1, 500_000), (2, 499_999), "draws"),
+        ("Kendall tau-b", (1,) * 60, (1,) * 60, "whole"),
+        ("Kendall tau-b", (20, 20, 20), (1,) * 60, "whole"),
+        ("Kendall tau-b", (5,) * 9, (4,) * 10 + (5,), "draws"),
+        ("Kendall tau-b", (1,) * 65_537, (30_000, 35_537), "draws"),
     ],
 )
-def test_what_is_beyond_the_budget_is_drawn(name: CoefficientName, x: tuple[int, ...], y: tuple[int, ...]) -> None:
-    """A count that would be too long or too large is not begun, and the forecast says why."""
-    choice = choose_null(name, TieGroups(x), TieGroups(y), "exact when possible")
-    assert choice.needs_draws
-    forecast = choice.forecast
-    assert forecast is None or max(forecast.operations, forecast.bytes, forecast.states) < 2**53
-    assert forecast is None or forecast.operations > OPERATIONS_BUDGET or forecast.bytes > BYTES_BUDGET
-
-
-@pytest.mark.parametrize(
-    ("name", "x", "y", "of_operations", "of_bytes"),
-    [
-        ("Spearman rho", (1,) * 37, (6, 7, 7, 8, 9), False, True),
-        ("Spearman rho", (1,) * 66, (20, 21, 25), False, True),
-        ("Kendall tau-b", (47, 48), (47, 48), True, False),
-        ("Spearman rho", (2,) * 18 + (1,), (6, 7, 7, 8, 9), True, True),
-        ("Spearman rho", (1,) * 17, (1,) * 17, False, False),
-    ],
-)
-def test_either_budget_alone_is_enough_to_stop_a_complete_count(
-    name: CoefficientName, x: tuple[int, ...], y: tuple[int, ...], of_operations: bool, of_bytes: bool
+def test_the_surest_null_within_the_budget_is_taken(
+    name: CoefficientName, x: tuple[int, ...], y: tuple[int, ...], route: Route
 ) -> None:
-    """Time without memory, memory without time, both, and neither."""
-    choice = choose_null(name, TieGroups(x), TieGroups(y), "exact when possible")
-    assert choice.forecast is not None
-    exceeded = (choice.forecast.operations > OPERATIONS_BUDGET, choice.forecast.bytes > BYTES_BUDGET)
-    assert exceeded == (of_operations, of_bytes)
-    assert choice.needs_draws == any(exceeded)
+    """Tables first, then complete counts, then tails alone; a series without ties, draws with them."""
+    assert _route(name, x, y) == route
+
+
+def test_a_smaller_budget_leads_down_the_ways_in_their_order() -> None:
+    """As time runs short a whole null gives way to its tails, whole numbers to doubles, and these to draws."""
+    x, y = (6, 7, 8, 9, 10), (4, 7, 8, 9, 12)
+    order: list[Route] = ["whole", "tails, whole numbers", "tails, doubles", "draws"]
+    met = [_route("Spearman rho", x, y, Budget(NANOSECONDS * 20 // 2**step, 2**30)) for step in range(12)]
+    assert [route for route in order if route in met] == list(dict.fromkeys(met))
+    assert (met[0], met[-1]) == ("whole", "draws")
+
+
+def test_memory_alone_can_exceed_the_budget() -> None:
+    """With time without end and a mebibyte nothing is counted whole."""
+    x, y = (6, 7, 8, 9, 10), (4, 7, 8, 9, 12)
+    assert _route("Spearman rho", x, y, Budget(10**18, 2**20)) == "draws"
+    assert _route("Spearman rho", x, y, Budget(10**18, 2**30)) == "whole"
+
+
+def test_what_exceeded_the_budget_is_told() -> None:
+    """A null that is drawn for want of time carries the cheapest forecast that was beyond it; a counted one its own."""
+    x, y = TieGroups((3,) * 20), TieGroups((4,) * 15)
+    drawn = choose_null("Spearman rho", x, y, "exact when possible")
+    assert drawn.exceeded is not None
+    assert not DEFAULT_BUDGET.holds(drawn.exceeded)
+    counted = choose_null("Spearman rho", TieGroups((5, 5)), TieGroups((4, 6)), "exact when possible")
+    assert counted.forecast is not None
+    assert DEFAULT_BUDGET.holds(counted.forecast)
+    assert choose_null("Spearman rho", x, y, "permutation").exceeded is None
 
 
 @pytest.mark.parametrize("name", COEFFICIENTS)
 def test_a_reason_is_one_sentence_without_numbers(name: CoefficientName) -> None:
     """Every reason can be printed as it stands."""
-    few, many = TieGroups((1,) * 5), TieGroups((1,) * 3_000)
+    few, many, tied = TieGroups((1,) * 5), TieGroups((1,) * 3_000), TieGroups((3,) * 20)
     reasons = {
         choose_null(name, few, few, "exact when possible").reason,
         choose_null(name, few, few, "permutation").reason,
         choose_null(name, many, many, "exact when possible").reason,
+        choose_null(name, tied, tied, "exact when possible").reason,
     }
-    assert len(reasons) == 3
+    assert len(reasons) == 4
     for reason in reasons:
         assert re.fullmatch(r"[A-Z][^0-9]*\.", reason)
 
 
 def test_draws_are_demanded_when_they_are_needed() -> None:
-    """A drawn null without a stream is an error of the caller."""
-    x = np.arange(5)
-    choice = choose_null("Spearman rho", tie_groups(x), tie_groups(x), "permutation")
+    """A drawn null without a plan of drawing is an error of the caller."""
+    x = TieGroups((3,) * 20).codes().tolist()
+    y = TieGroups((4,) * 15).codes().tolist()
     with pytest.raises(ComputeError, match="needs drawn permutations"):
-        count_tails(choice, x, x, observed=rho(x, x), draws=None)
-
-
-def test_permutations_are_permutations_and_all_are_likely() -> None:
-    """Each row holds every place once; of 24,000 rows of three, every order comes about 4,000 times."""
-    blocks = list(permutations_of(3, Draws(24_000, stream(5, "permutations"))))
-    rows = np.concatenate(blocks)
-    assert rows.shape == (24_000, 3)
-    orders, counts = np.unique(rows, axis=0, return_counts=True)
-    assert orders.tolist() == [[0, 1, 2], [0, 2, 1], [1, 0, 2], [1, 2, 0], [2, 0, 1], [2, 1, 0]]
-    # Five standard deviations of a count with chance 1/6.
-    assert np.abs(counts - 4_000).max() < 5 * (24_000 * 5 / 36) ** 0.5
-
-
-def test_many_rows_are_drawn_in_blocks() -> None:
-    """More keys than are held at a time give the same number of permutations."""
-    blocks = list(permutations_of(400_000, Draws(5, stream(5, "blocks"))))
-    assert [len(block) for block in blocks] == [2, 2, 1]
-    assert np.array_equal(np.sort(blocks[2][0]), np.arange(400_000))
-
-
-def test_draws_of_constant_variables_are_all_as_extreme() -> None:
-    """Without variation every permutation ties with the data."""
-    tails = drawn_tails(
-        "Kendall tau-b", np.zeros(4, dtype=np.int64), np.arange(4), observed=0, draws=Draws(10, stream(1, "a"))
-    )
-    assert (tails.greater, tails.less, tails.two_sided, tails.of) == (10, 10, 10, 10)
+        answer_of(x, y)
 
 
 def test_a_stream_belongs_to_its_address() -> None:

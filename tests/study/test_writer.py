@@ -55,7 +55,7 @@ def test_every_default_is_written() -> None:
         "    permutations: 99999",
         "    most_draws: 999990",
         "      seconds: 10",
-        "      memory: \"1 GiB\"",
+        '      memory: "1 GiB"',
         "  most_tied: 0.50",
         "  readers: [client, reviewer]",
         "  signatures: [prepared, checked, released]",

@@ -30,7 +30,7 @@ TAU = {"A1": association(more="coefficient: Kendall tau-b")}
 LEFT_OUT = INDEPENDENT + ', leave_out: [{where: {v: "10"}, reason: the rig was broken}]'
 SMALL_ORDERED = {"u": "1 2 3 4 5", "v": "1 3 2 5 4"}
 LOPSIDED = {"u": "1 1 1 2", "v": "1 1 1 2"}
-DRAWN = "alpha: {alpha}, p_value: {{by: permutation, permutations: 999, seed: 5}}"
+DRAWN = "alpha: {alpha}, p_value: {{by: permutation, permutations: 999, most_draws: 999, seed: 5}}"
 TWELVE = {"u": RISING + " 11 12", "v": MIXED + " 12 11"}
 """Twelve rows whose p is 0.094 over all orderings."""
 
@@ -42,7 +42,7 @@ SPEAKS: dict[str, Invented] = {
     "supplied_words": replace(QUIET, study="title: Load causes creep, question: Do they rise together?"),
     "not_estimable": replace(QUIET, columns={"u": RISING, "v": "5 " * 10}),
     "requirements": replace(QUIET, requirements="fewest_complete_rows: 11"),
-    "undecided_by_draws": replace(QUIET, columns=TWELVE, inference=DRAWN.format(alpha="0.1")),
+    "undecided": replace(QUIET, columns=TWELVE, inference=DRAWN.format(alpha="0.1")),
     "two_sided_rule": replace(QUIET, columns=LOPSIDED, inference="alpha: 0.3"),
     # n=10, sum of squared differences 58: exact p 0.049, while the interval of Bonett & Wright 2000 holds 0.
     "test_and_interval": replace(QUIET, columns={"u": RISING, "v": "3 4 1 9 2 5 6 8 10 7"}),
@@ -60,7 +60,7 @@ SPEAKS: dict[str, Invented] = {
 IS_SILENT: dict[str, Invented] = {
     **{rule.key: QUIET for rule in CAVEATS},
     "supplied_words": replace(QUIET, study="title: Load and creep, question: Do they rise together?"),
-    "undecided_by_draws": replace(QUIET, columns=TWELVE, inference=DRAWN.format(alpha="0.05")),
+    "undecided": replace(QUIET, columns=TWELVE, inference=DRAWN.format(alpha="0.05")),
     "two_sided_rule": replace(QUIET, columns=LOPSIDED, inference="alpha: 0.2"),
     "no_interval": QUIET,
     "interval_basis": replace(QUIET, associations=TAU),
@@ -137,9 +137,9 @@ WORDS = {
         "A1: the requirement “enough complete rows” is not met: fewer complete rows than the plan asks for (found 10, "
         "limit 11). The estimate is given without a test."
     ),
-    "undecided_by_draws": (
-        "A1: p comes from drawn orderings. With the value at one end of its interval, 0.073 to 0.110, the finding would "
-        "be another one. A plan with more draws would settle the side."
+    "undecided": (
+        "A1: undecided by these draws. With p at one end of its interval, 0.070 to 0.106, the finding would be another "
+        "one. The ceiling of draws that the plan sets was reached; a plan with more would settle the side."
     ),
     "two_sided_rule": (
         "A1: the ties make the null lopsided. Counting orderings at least as far from zero gives p = 0.250; doubling "
@@ -394,4 +394,4 @@ def test_draws_that_decide_clearly_bring_no_caveat() -> None:
     """p far above alpha, and p far below it."""
     for v in (MIXED, "1 3 2 5 4 7 6 9 8 10"):
         drawn = replace(QUIET, columns={"u": RISING, "v": v}, inference=DRAWN.format(alpha="0.05"))
-        assert caveats_of(drawn)["undecided_by_draws"] == []
+        assert caveats_of(drawn)["undecided"] == []

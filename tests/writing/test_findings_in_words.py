@@ -112,7 +112,7 @@ SENTENCES = {
         ),
     ),
     "not shown, too few draws": (
-        of(RISING, inference="alpha: 0.0009, p_value: {by: permutation, permutations: 999, seed: 5}"),
+        of(RISING, inference="alpha: 0.0009, p_value: {by: permutation, permutations: 999, most_draws: 999, seed: 5}"),
         (
             "By the rule of the plan the expected positive association was not shown: the adjusted p = 0.001 lay above "
             "alpha, 0.0009. No result of this plan with these rows could have been shown."

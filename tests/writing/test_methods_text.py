@@ -11,17 +11,22 @@ from rankdocket.analysis.checks import CHECKS
 from rankdocket.document.prose import text_of
 from rankdocket.references import Description
 from rankdocket.stats.adjustments.holm import HOLM
+from rankdocket.stats.critical import CRITICAL_VALUES
 from rankdocket.stats.intervals.bonett_wright import BONETT_WRIGHT
-from rankdocket.stats.null import MONTE_CARLO_INTERVAL, NULL_DESCRIPTIONS, TWO_SIDED
+from rankdocket.stats.null import MONTE_CARLO_INTERVAL, MONTE_CARLO_LOOKS, NULL_DESCRIPTIONS, TWO_SIDED
+from rankdocket.stats.ranks import TieGroups
 from rankdocket.stats.rho import RHO
 from rankdocket.stats.tau import TAU_B
 from rankdocket.writing.sections.methods import method_paragraphs
+from stats.asked import only_doubles
 from writing.reports import Told, demonstration_report, study_of_every_finding, told
 
 BASE = Invented(columns={"u": RISING, "v": MIXED})
 TAU = {"A1": association(more="coefficient: Kendall tau-b")}
 FAMILY = {"A1": association(), "A2": association("v", "u")}
-DRAWN = "alpha: 0.05, p_value: {by: permutation, permutations: 999, seed: 20260402}"
+DRAWN = "alpha: 0.05, p_value: {by: permutation, permutations: 999, most_draws: 999, seed: 20260402}"
+FORTY = " ".join(map(str, range(1, 41)))
+TWELVE_DIGITS = (("u", TieGroups((4, 5, 6, 7, 8)), 1), ("v", TieGroups((3, 6, 6, 7, 8)), -1))
 TWENTY = {"u": " ".join(map(str, range(1, 21))), "v": " ".join(str(7 * place % 23) for place in range(1, 21))}
 
 
@@ -40,6 +45,8 @@ RULES: dict[str, Description] = {
     "tau-b": TAU_B,
     "two-sided": TWO_SIDED,
     "interval of a drawn p": MONTE_CARLO_INTERVAL,
+    "looks": MONTE_CARLO_LOOKS,
+    "critical values": CRITICAL_VALUES,
     "Holm": HOLM.describe,
     "interval": BONETT_WRIGHT.describe,
     **{check.key: check.demand for check in CHECKS},
@@ -49,33 +56,44 @@ ALL_CHECKS_BUT_SHAPE = {check.key for check in CHECKS if check.key != "shape"}
 RAN: dict[str, tuple[Invented, set[str]]] = {
     "exact": (
         replace(BASE, associations=FAMILY),
-        {"exact, no ties", "rho", "two-sided", "Holm", "interval", *ALL_CHECKS_BUT_SHAPE},
+        {"critical values", "exact, no ties", "rho", "two-sided", "Holm", "interval", *ALL_CHECKS_BUT_SHAPE},
     ),
     # One test has nothing to be adjusted for.
-    "family of one": (BASE, {"exact, no ties", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE}),
+    "family of one": (
+        BASE,
+        {"critical values", "exact, no ties", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
+    ),
     "ties": (
         replace(BASE, columns={"u": RISING, "v": "1 1 2 3 4 5 6 7 8 9"}),
-        {"exact, conditional on the ties", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
+        {"critical values", "exact, conditional on the ties", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
     ),
     "drawn": (
         replace(BASE, inference=DRAWN),
-        {"drawn permutations", "interval of a drawn p", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
+        {
+            "critical values",
+            "drawn permutations",
+            "interval of a drawn p",
+            "rho",
+            "two-sided",
+            "interval",
+            *ALL_CHECKS_BUT_SHAPE,
+        },
     ),
     "tau-b": (
         replace(BASE, associations=TAU),
-        {"exact, no ties", "tau-b", "two-sided", *ALL_CHECKS_BUT_SHAPE},
+        {"critical values", "exact, no ties", "tau-b", "two-sided", *ALL_CHECKS_BUT_SHAPE},
     ),
     "one-sided": (
         replace(BASE, inference="alpha: 0.05, sidedness: one-sided"),
-        {"exact, no ties", "rho", "interval", *ALL_CHECKS_BUT_SHAPE},
+        {"critical values", "exact, no ties", "rho", "interval", *ALL_CHECKS_BUT_SHAPE},
     ),
     "not adjusted": (
         replace(BASE, inference="alpha: 0.05, several_tests: {adjust: none, reason: one question}"),
-        {"exact, no ties", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
+        {"critical values", "exact, no ties", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
     ),
     "no family": (
         replace(BASE, associations=FAMILY, inference="alpha: 0.05, several_tests: {among: none, reason: one question}"),
-        {"exact, no ties", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
+        {"critical values", "exact, no ties", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
     ),
     "dependent rows": (replace(BASE, associations=FAMILY, rows="leave_out: []"), {"rho", *ALL_CHECKS_BUT_SHAPE}),
     "test withheld": (
@@ -89,8 +107,37 @@ RAN: dict[str, tuple[Invented, set[str]]] = {
     "twenty rows": (
         replace(BASE, columns=TWENTY, inference=DRAWN),
         {
+            "critical values",
             "drawn permutations",
             "interval of a drawn p",
+            "rho",
+            "two-sided",
+            "interval",
+            *ALL_CHECKS_BUT_SHAPE,
+            "shape",
+        },
+    ),
+    "looks": (
+        replace(BASE, inference=DRAWN.replace("most_draws: 999", "most_draws: 1999")),
+        {"critical values", "drawn permutations", "looks", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE},
+    ),
+    "above the table": (
+        replace(BASE, columns={"u": FORTY, "v": " ".join(str(7 * place % 41) for place in range(1, 41))}),
+        {"critical values", "Edgeworth series", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE, "shape"},
+    ),
+    "far above the table": (
+        replace(BASE, columns={"u": FORTY, "v": FORTY}),
+        {"critical values", "saddlepoint", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE, "shape"},
+    ),
+    "twelve digits": (
+        replace(
+            BASE,
+            columns={name: " ".join(map(str, codes.codes()[::step])) for name, codes, step in TWELVE_DIGITS},
+            inference=f"alpha: 0.05, p_value: {{budget: {{seconds: {only_doubles(TWELVE_DIGITS[0][1], TWELVE_DIGITS[1][1])}}}}}",
+        ),
+        {
+            "critical values",
+            "exact algorithm, 12 digits",
             "rho",
             "two-sided",
             "interval",
@@ -127,7 +174,7 @@ def test_exact_and_drawn_are_told_apart() -> None:
     assert "drawn at random" not in text(exact)
     assert "error of drawing" not in text(exact)
     assert "seed" not in text(exact)
-    assert "999 permutations drawn at random from seed 20260402" in text(drawn)
+    assert "permutations drawn at random from seed 20260402, 999 to begin with" in text(drawn)
     assert "every order in which" not in text(drawn)
     works = {"dwass1957", "phipson2010", "clopper1934"}
     assert not works & set(exact.document.references)

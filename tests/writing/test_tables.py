@@ -118,7 +118,9 @@ def test_a_cap_that_binds_is_said_to_bind() -> None:
 
 def test_the_error_of_the_draws_ends_above_0() -> None:
     """No draw as extreme as the data: the lower end is 0, which is printed as a bound (golden)."""
-    report = study(RISING, inference="alpha: 0.05, p_value: {by: permutation, permutations: 999, seed: 5}")
+    report = study(
+        RISING, inference="alpha: 0.05, p_value: {by: permutation, permutations: 999, most_draws: 999, seed: 5}"
+    )
     rows = fields(report, "numbers-A1")
     assert look_up(report.plain, "associations/A1/test/p_low") == "0"
     assert text_of(rows["Error of the draws"]) == ("95% interval of p over all orderings: <\u202f0.000001 to 0.004")
@@ -224,7 +226,7 @@ def test_missing_codes_of_one_column_are_listed_with_the_column() -> None:
 def test_large_sums_are_grouped_in_the_worksheet() -> None:
     """Thirty opposed rows: the sum of squared differences is (30³ − 30)/3 = 8,990."""
     thirty = [str(place) for place in range(1, 31)]
-    drawn = "alpha: 0.05, p_value: {permutations: 999, seed: 5}"
+    drawn = "alpha: 0.05, p_value: {permutations: 999, most_draws: 999, seed: 5}"
     report = told(
         replace(Invented(columns={"u": " ".join(thirty), "v": " ".join(reversed(thirty))}), inference=drawn).analysed()
     )

@@ -1,6 +1,8 @@
 """The walk of a study through the engine; this file is its table of contents."""
 
 from collections.abc import Callable, Mapping
+from decimal import Decimal
+from fractions import Fraction
 from typing import Final
 
 import numpy as np
@@ -10,7 +12,8 @@ from rankdocket.analysis.checks import CHECKS
 from rankdocket.analysis.checks.independence import KEY as INDEPENDENCE
 from rankdocket.analysis.decide import decide
 from rankdocket.analysis.family import family_of
-from rankdocket.analysis.nulls import null_choice, smallest_possible_p
+from rankdocket.analysis.filing import filed
+from rankdocket.analysis.nulls import budget_of, drawing_plan, levels_of, null_choice, smallest_possible_p
 from rankdocket.analysis.results import (
     Analysis,
     AssociationAnalysis,
@@ -26,19 +29,19 @@ from rankdocket.analysis.screen import screen_association
 from rankdocket.errors import InputError
 from rankdocket.stats.adjustment import AdjustmentRule
 from rankdocket.stats.adjustments import ADJUSTMENTS
-from rankdocket.stats.choose_null import count_tails
 from rankdocket.stats.coefficient import Coefficient
 from rankdocket.stats.comparisons import pearson_r, t_value_p
-from rankdocket.stats.draws import stream
 from rankdocket.stats.interval import Interval, IntervalQuestion, NoInterval
 from rankdocket.stats.intervals import interval_of
-from rankdocket.stats.nulls.monte_carlo import Draws
+from rankdocket.stats.null import TailCounts
+from rankdocket.stats.null_result import NullQuestion, NullResult, null_result
 from rankdocket.stats.ranks import Codes
 from rankdocket.stats.rho import rho, short_form, tie_corrected_rho
 from rankdocket.stats.tau import tau_b
 from rankdocket.study.messages import Message, fault
 from rankdocket.study.spec import StudySpec
 from rankdocket.study.table import StudyData
+from rankdocket.vocabulary import Direction
 
 FEWEST_ROWS: Final = 3
 """With fewer rows every untied pairing agrees or disagrees perfectly: a coefficient says nothing."""
@@ -175,17 +178,36 @@ def _test(
     for outcome in checks:
         if outcome.withholds != "nothing":
             return Withheld(outcome.reason)
-    x, y = _rank_codes(screened)
     choice = null_choice(screened, spec)
-    rule = spec.inference.p_value
-    draws = None
-    if choice.needs_draws and rule.seed is not None:
-        draws = Draws(rule.permutations, stream(rule.seed, spec.study.number, screened.spec.name, "permutations"))
-    tails = count_tails(choice, x, y, observed=observed, draws=draws)
     direction = direction_of(screened, spec)
-    return RankTest(
-        direction, choice, tails, tails.p(direction), tails.interval(direction, spec.inference.confidence_level)
+    inference = spec.inference
+    address = (spec.study.number, screened.spec.name, "permutations") if choice.needs_draws else ()
+    null = null_result(
+        choice,
+        _rank_codes(screened),
+        NullQuestion(
+            observed, direction, Fraction(inference.alpha), levels_of(screened.spec, spec), inference.confidence_level
+        ),
+        budget_of(spec),
+        drawing_plan(spec, address),
     )
+    p = null.tails.p(direction)
+    return RankTest(
+        direction,
+        choice,
+        null,
+        # A share is its twelve digits: whoever adjusts the filed p must come to the same adjusted p.
+        p if isinstance(null.tails, TailCounts) else Fraction(filed(p)),
+        _p_interval(null, direction, inference.confidence_level),
+        address,
+    )
+
+
+def _p_interval(null: NullResult, direction: Direction, level: Decimal) -> tuple[float, float] | None:
+    """Return where p lies: after several looks by the interval of the last one, which shares the level with them."""
+    if null.looks:
+        return null.looks[-1].low, null.looks[-1].high
+    return null.tails.interval(direction, level)
 
 
 def _interval(checks: tuple[CheckOutcome, ...], question: IntervalQuestion) -> Interval | NoInterval:

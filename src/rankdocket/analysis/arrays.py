@@ -11,14 +11,15 @@ from typing import Final, TypeAlias
 import numpy as np
 
 from rankdocket.stats.attainable import tails_at_limit
-from rankdocket.stats.choose_null import NullChoice, choose_null, count_tails
+from rankdocket.stats.choose_null import NANOSECONDS, Budget, NullChoice, choose_null
 from rankdocket.stats.coefficient import Coefficient
 from rankdocket.stats.comparisons import pearson_r, t_value_p
 from rankdocket.stats.draws import stream
 from rankdocket.stats.interval import Interval, IntervalQuestion, NoInterval
 from rankdocket.stats.intervals import interval_of
-from rankdocket.stats.null import TailCounts
-from rankdocket.stats.nulls.monte_carlo import Draws
+from rankdocket.stats.null import TailCounts, Tails
+from rankdocket.stats.null_result import NullQuestion, NullResult, null_result
+from rankdocket.stats.nulls.monte_carlo import DrawingPlan
 from rankdocket.stats.ranks import Codes, TieGroups, dense_codes, tie_groups
 from rankdocket.stats.rho import rho, short_form, squared_differences
 from rankdocket.stats.tau import tau_b
@@ -27,6 +28,9 @@ Exact: TypeAlias = int | Fraction | Decimal
 
 FEWEST_ROWS: Final = 3
 """With two rows the coefficient could only be 1 or −1."""
+
+MOST_SECONDS: Final = Decimal(10**9)
+"""A longer budget is none."""
 
 TAILS_KEPT: Final = 8
 """Results whose tails are remembered."""
@@ -50,8 +54,11 @@ class ArrayAssociation:
         The complete values as codes in their order.
     pearson_r
         Product-moment correlation of the values, for comparison; ``None`` when undefined.
-    level, permutations, seed
+    level, permutations, most_draws, seed
         As asked.
+    budget
+        What an exact null may be forecast to cost; ``None`` when the one asked for was not positive, and then there
+        is no p-value.
     """
 
     n_rows: int
@@ -64,7 +71,9 @@ class ArrayAssociation:
     pearson_r: float | None
     level: Decimal
     permutations: int
+    most_draws: int
     seed: int
+    budget: Budget | None
 
     @property
     def rho(self) -> float | None:
@@ -107,19 +116,34 @@ class ArrayAssociation:
         return None if self.reason else t_value_p(self.coefficient, "two-sided")
 
     @property
+    def null_reason(self) -> str | None:
+        """Why there is no p-value, as a sentence; ``None`` when there is one."""
+        return self.reason or ("The budget of the null is not positive." if self.budget is None else None)
+
+    @property
     def exact(self) -> TailCounts | None:
-        """Exact tails of rho; ``None`` when there is no rho or a complete count is beyond the budget."""
-        return None if self.reason else _exact_tails(self)
+        """Exact tails of rho; ``None`` when there is no p-value or a complete count is beyond the budget."""
+        return None if self.null_reason else _exact_tails(self)
 
     @property
-    def null_choice(self) -> NullChoice:
+    def null_choice(self) -> NullChoice | None:
         """Which null would be used, and why; data at a limit of the attainable range need none."""
-        return choose_null("Spearman rho", self._x_groups, self._y_groups, "exact when possible")
+        if self.budget is None:
+            return None
+        return choose_null("Spearman rho", self._x_groups, self._y_groups, "exact when possible", self.budget)
 
     @property
-    def tails(self) -> TailCounts | None:
-        """The tails of rho: exact when possible, drawn otherwise; ``None`` when there is no rho."""
-        return None if self.reason else self.exact or _drawn_tails(self)
+    def null(self) -> NullResult | None:
+        """Tails, two-sided critical values at 1 − ``level`` and what belongs to them; ``None`` without a p-value."""
+        return None if self.null_reason else _null(self)
+
+    @property
+    def tails(self) -> Tails | None:
+        """The tails of rho, from the surest null within the budget; ``None`` without a p-value."""
+        if self.null_reason:
+            return None
+        null = None if self.exact else self.null
+        return self.exact if null is None else null.tails
 
     @property
     def p(self) -> Fraction | None:
@@ -143,13 +167,16 @@ class ArrayAssociation:
         return tie_groups(_array(self.y_codes))
 
 
-def associate(
+def associate(  # noqa: PLR0913 - options of a public function, given by name
     x: Iterable[object],
     y: Iterable[object],
     *,
     level: Decimal | str | float = 0.95,
     permutations: int = 20_000,
+    most_draws: int | None = None,
     seed: int = 0,
+    budget_seconds: Decimal | float = 10,
+    budget_memory: int = 2**30,
 ) -> ArrayAssociation:
     """Return how two sequences of numbers are associated by rank.
 
@@ -162,8 +189,11 @@ def associate(
         Lists, arrays, series: numbers in the same order of rows.
     level
         Of the interval, above 0, below 1; a float is read as the shortest decimal that means it.
-    permutations, seed
-        For a null that has to be drawn.
+    permutations, most_draws, seed
+        For a null that has to be drawn: draws to begin with, ceiling of draws while their error leaves the side of
+        1 − ``level`` open (no more than ``permutations`` by default), start of the random stream.
+    budget_seconds, budget_memory
+        Processor seconds and bytes that an exact null may be forecast to take.
 
     Raises
     ------
@@ -175,8 +205,8 @@ def associate(
     chosen_level = Decimal(str(level))
     if not 0 < chosen_level < 1:
         raise ValueError(f"level must lie between 0 and 1, not be {level}")
-    if permutations < 1 or seed < 0:
-        raise ValueError("permutations must be at least 1 and seed at least 0")
+    if permutations < 1 or seed < 0 or (most_draws is not None and most_draws < permutations):
+        raise ValueError("permutations must be at least 1, most_draws no fewer, and seed at least 0")
     left, right = _numbers(x, "x"), _numbers(y, "y")
     if len(left) != len(right):
         raise ValueError(f"x has {len(left)} values and y has {len(right)}")
@@ -195,27 +225,44 @@ def associate(
         pearson_r=pearson_r(np.array(x_values, dtype=np.float64), np.array(y_values, dtype=np.float64)),
         level=chosen_level,
         permutations=permutations,
+        most_draws=permutations if most_draws is None else most_draws,
         seed=seed,
+        budget=_budget(budget_seconds, budget_memory),
     )
+
+
+def _budget(seconds: Decimal | float, memory: int) -> Budget | None:
+    """Return the budget, or ``None`` when there is nothing to spend."""
+    if not (seconds > 0 and memory > 0):  # not-a-number is not more than 0
+        return None
+    return Budget(int(min(Decimal(seconds), MOST_SECONDS) * NANOSECONDS), memory)
 
 
 @lru_cache(maxsize=TAILS_KEPT)
 def _exact_tails(result: ArrayAssociation) -> TailCounts | None:
-    x_codes, y_codes = _array(result.x_codes), _array(result.y_codes)
+    at_limit = tails_at_limit(result._x_groups, result._y_groups, result.coefficient)  # noqa: SLF001 - of this module
+    if at_limit is not None:
+        return at_limit
     choice = result.null_choice
-    if choice.needs_draws:
-        return tails_at_limit(tie_groups(x_codes), tie_groups(y_codes), result.coefficient)
-    return count_tails(choice, x_codes, y_codes, observed=result.coefficient, draws=None)
+    if choice is None or choice.route in ("draws", "series", "tails, doubles"):
+        return None
+    null = _null(result)
+    return null.tails if isinstance(null.tails, TailCounts) else None
 
 
 @lru_cache(maxsize=TAILS_KEPT)
-def _drawn_tails(result: ArrayAssociation) -> TailCounts:
-    return count_tails(
-        result.null_choice,
-        _array(result.x_codes),
-        _array(result.y_codes),
-        observed=result.coefficient,
-        draws=Draws(result.permutations, stream(result.seed, "arrays", "rho", "null")),
+def _null(result: ArrayAssociation) -> NullResult:
+    choice, budget = result.null_choice, result.budget
+    assert choice is not None
+    assert budget is not None
+    alpha = 1 - Fraction(result.level)
+    drawing = DrawingPlan(result.permutations, result.most_draws, stream(result.seed, "arrays", "rho", "null"))
+    return null_result(
+        choice,
+        (_array(result.x_codes), _array(result.y_codes)),
+        NullQuestion(result.coefficient, "two-sided", alpha, (alpha,), result.level),
+        budget,
+        drawing,
     )
 
 

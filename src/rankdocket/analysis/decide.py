@@ -24,7 +24,7 @@ def decide(
     return {
         name: replace(
             _finding(result, spec, adjusted.get(name)),
-            undecided_by_draws=_is_undecided(result, spec, raw, adjustment),
+            undecided=_is_undecided(result, spec, raw, adjustment),
         )
         for name, result in results.items()
     }
@@ -37,7 +37,7 @@ def _adjusted(raw: Mapping[str, Fraction], adjustment: AdjustmentRule) -> dict[s
 def _is_undecided(
     result: AssociationAnalysis, spec: StudySpec, raw: Mapping[str, Fraction], adjustment: AdjustmentRule
 ) -> bool:
-    """Return whether the error of the draws reaches over alpha, for an association that the plan decides."""
+    """Return whether the error of p reaches over alpha, for an association that the plan decides."""
     name = result.screened.spec.name
     basis = basis_of(result.screened.spec, spec)
     if basis == "outside the family" or not isinstance(result.test, RankTest) or result.test.p_interval is None:

@@ -1,17 +1,41 @@
-"""Which null an association gets, and how small a p that null can give; nothing joint is looked at."""
+"""Which null an association gets, from what the plan says of it; nothing joint is looked at."""
 
 from fractions import Fraction
 
 from rankdocket.analysis.check import direction_of
+from rankdocket.analysis.family import family_size
 from rankdocket.analysis.results import Screened
 from rankdocket.stats.attainable import smallest_attainable_p
-from rankdocket.stats.choose_null import NullChoice, choose_null
-from rankdocket.study.spec import StudySpec
+from rankdocket.stats.choose_null import NANOSECONDS, Budget, NullChoice, choose_null
+from rankdocket.stats.draws import stream
+from rankdocket.stats.nulls.monte_carlo import DrawingPlan
+from rankdocket.study.spec import AssociationSpec, StudySpec
 
 
 def null_choice(screened: Screened, spec: StudySpec) -> NullChoice:
     """Return which null the number of rows, the ties and the plan allow."""
-    return choose_null(screened.spec.coefficient, screened.x_ties, screened.y_ties, spec.inference.p_value.by)
+    return choose_null(
+        screened.spec.coefficient, screened.x_ties, screened.y_ties, spec.inference.p_value.by, budget_of(spec)
+    )
+
+
+def budget_of(spec: StudySpec) -> Budget:
+    """Return what the plan lets an exact null cost."""
+    budget = spec.inference.p_value.budget
+    return Budget(int(budget.seconds * NANOSECONDS), budget.memory)
+
+
+def drawing_plan(spec: StudySpec, address: tuple[str, ...]) -> DrawingPlan | None:
+    """Return how permutations are drawn from the stream at ``address``; ``None`` without address or seed."""
+    rule = spec.inference.p_value
+    if rule.seed is None or not address:
+        return None
+    return DrawingPlan(rule.permutations, rule.most_draws, stream(rule.seed, *address))
+
+
+def levels_of(association: AssociationSpec, spec: StudySpec) -> tuple[Fraction, ...]:
+    """Return the levels that a p-value may come to be held against: for Holm alpha over one, two, … of the family."""
+    return tuple(Fraction(spec.inference.alpha) / members for members in range(1, family_size(association, spec) + 1))
 
 
 def smallest_possible_p(screened: Screened, spec: StudySpec) -> Fraction:
@@ -23,5 +47,5 @@ def smallest_possible_p(screened: Screened, spec: StudySpec) -> Fraction:
         screened.spec.coefficient, screened.x_ties, screened.y_ties, direction_of(screened, spec)
     )
     if null_choice(screened, spec).needs_draws:
-        return max(smallest, Fraction(1, spec.inference.p_value.permutations + 1))
+        return max(smallest, Fraction(1, spec.inference.p_value.most_draws + 1))
     return smallest

@@ -2,7 +2,7 @@
 
 Whole numbers below 2**53 are JSON numbers, larger ones and every exact value are text; a value that is not
 whole is filed with 12 significant digits (:mod:`rankdocket.analysis.filing`).  An absent value has no key, or the
-key ``reason`` beside a ``state``; nothing is ever NaN or null.
+key ``reason`` beside a ``state``; nothing is ever NaN, and only the count of a p-value that is no count is null.
 """
 
 from collections import Counter
@@ -11,6 +11,7 @@ from fractions import Fraction
 from typing import Final
 
 from rankdocket.analysis.filing import exact_decimal, filed, filed_beside, half
+from rankdocket.analysis.null_plain import null_to_plain, rank_test_to_plain, series_to_plain
 from rankdocket.analysis.results import (
     Analysis,
     AssociationAnalysis,
@@ -25,6 +26,7 @@ from rankdocket.analysis.results import (
 from rankdocket.analysis.variables import VariableSummary, summarise
 from rankdocket.canonical import Plain
 from rankdocket.stats.interval import Interval
+from rankdocket.stats.nulls.monte_carlo import look_ends
 from rankdocket.stats.ranks import TieGroups
 from rankdocket.study.spec import StudySpec
 from rankdocket.study.table import StudyData, Table
@@ -47,6 +49,7 @@ def analysis_to_plain(analysis: Analysis) -> dict[str, Plain]:
             name: _association(result, analysis.findings[name], analysis.spec.inference.alpha)
             for name, result in analysis.results.items()
         },
+        **series_to_plain(tuple(analysis.results.values())),
         "tally": {
             "associations": len(analysis.results),
             "findings": dict(words),
@@ -108,6 +111,12 @@ def _inference(spec: StudySpec) -> dict[str, Plain]:
         "among": inference.several_tests.among,
         "p_by": inference.p_value.by,
         "permutations": inference.p_value.permutations,
+        "most_draws": inference.p_value.most_draws,
+        "looks": len(look_ends(inference.p_value.permutations, inference.p_value.most_draws)),
+        "budget": {
+            "seconds": str(inference.p_value.budget.seconds),
+            "memory": str(inference.p_value.budget.memory),
+        },
         "smallest_of_interest": smallest,
         **seed,
     }
@@ -169,6 +178,7 @@ def _association(result: AssociationAnalysis, finding: Finding, alpha: Decimal) 
         "coefficient": result.screened.spec.coefficient,
         "estimate": _estimate(result),
         "test": _test(result, alpha),
+        **_null(result, alpha),
         "interval": _interval(result),
         "comparisons": _comparisons(result, alpha),
         "finding": _finding(finding, alpha),
@@ -210,23 +220,13 @@ def _test(result: AssociationAnalysis, alpha: Decimal) -> dict[str, Plain]:
         case Withheld(reason):
             return {"state": "withheld", "reason": reason}
         case RankTest():
-            tails = test.tails
-            plain: dict[str, Plain] = {
-                "state": "tested",
-                "method": tails.method,
-                "why": test.choice.reason,
-                "direction": test.direction,
-                "count": str(tails.count(test.direction)),
-                "of": str(tails.of),
-                "count_greater": str(tails.greater),
-                "count_less": str(tails.less),
-                "p": filed_beside(test.p, alpha),
-                "p_greater": filed_beside(tails.p("greater"), alpha),
-                "p_less": filed_beside(tails.p("less"), alpha),
-            }
-            if test.p_interval is not None:
-                plain["p_low"], plain["p_high"] = filed(test.p_interval[0]), filed(test.p_interval[1])
-            return plain
+            return rank_test_to_plain(test, alpha)
+
+
+def _null(result: AssociationAnalysis, alpha: Decimal) -> dict[str, Plain]:
+    if not isinstance(result.test, RankTest) or not isinstance(result.estimate, Estimate):
+        return {}
+    return {"null": null_to_plain(result.test, result.estimate.coefficient, alpha)}
 
 
 def _interval(result: AssociationAnalysis) -> dict[str, Plain]:

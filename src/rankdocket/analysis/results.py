@@ -13,7 +13,8 @@ from typing import Literal, TypeAlias
 from rankdocket.stats.choose_null import NullChoice
 from rankdocket.stats.coefficient import Coefficient
 from rankdocket.stats.interval import Interval, NoInterval
-from rankdocket.stats.null import TailCounts
+from rankdocket.stats.null import Tails
+from rankdocket.stats.null_result import NullResult
 from rankdocket.stats.ranks import TieGroups
 from rankdocket.stats.rho import TieCorrectedForm
 from rankdocket.study.spec import AssociationSpec, StudySpec
@@ -138,19 +139,28 @@ class RankTest:
     ----------
     direction
         The tail or tails that the plan asks for.
-    tails
-        Counts in all of them.
+    null
+        What the chosen null says: tails in all directions, critical values, bars of its picture.
     p
-        The exact value ``count/of``, or (b + 1)/(B + 1) from drawn permutations.
+        The exact value ``count/of``, (b + 1)/(B + 1) from drawn permutations, or a share with twelve digits.
     p_interval
-        For drawn permutations the interval of p at the study’s confidence level, else ``None``.
+        Where p lies by the error of the draws, at the study’s confidence level, or by the stated error of a share;
+        ``None`` where p was counted.
+    stream
+        The address of the random stream; empty without draws.
     """
 
     direction: Direction
     choice: NullChoice
-    tails: TailCounts
+    null: NullResult
     p: Fraction
     p_interval: tuple[float, float] | None
+    stream: tuple[str, ...] = ()
+
+    @property
+    def tails(self) -> Tails:
+        """The tails at the observed coefficient."""
+        return self.null.tails
 
 
 @dataclass(frozen=True, slots=True)
@@ -193,14 +203,15 @@ class Finding:
         Whether the adjusted p of the family decided, the association’s own p, or nothing did.
     p_adjusted
         The adjusted p of a family member whose p is given.
-    undecided_by_draws
-        True when the ends of a drawn p’s interval lie on different sides of alpha, adjusted with the others fixed.
+    undecided
+        True when p has an error, by draws or by its method, and the ends of its interval lie on different sides of
+        alpha, adjusted with the others fixed.
     """
 
     word: FindingWord | None
     basis: FindingBasis
     p_adjusted: Fraction | None
-    undecided_by_draws: bool = False
+    undecided: bool = False
 
 
 @dataclass(frozen=True, slots=True)

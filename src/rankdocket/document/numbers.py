@@ -20,8 +20,14 @@ NARROW_SPACE: Final = "\u202f"
 MOST_DECIMALS: Final = 15
 """A filed value has 12 significant digits; more decimals than this never separate two of them in print."""
 
-DRAWN: Final = "drawn permutations"
-"""The method of a test, as analysis.json files it, whose p-value was not counted over all orderings."""
+COUNTED: Final = ("exact, no ties", "exact, conditional on the ties")
+"""Methods of a test, as analysis.json files them, whose p-values were counted over all orderings in whole numbers."""
+
+DURATIONS: Final = (("second", 1, 100), ("minute", 60, 100), ("hour", 3_600, 48), ("day", 86_400, 365))
+"""Units of a duration: name, seconds, and how many of it give way to the next unit."""
+
+MEMORIES: Final = (("MiB", 2**20), ("GiB", 2**30), ("TiB", 2**40))
+"""Units of memory (IEC 80000-13) with their bytes; a thousand of one give way to the next."""
 
 MOST_SMALL_DECIMALS: Final = 6
 """Decimals of a smallest attainable p: beyond them it is told apart from nobody's alpha."""
@@ -86,6 +92,14 @@ class Numbers:
         if isinstance(value, bool) or not isinstance(value, (str, int)):
             raise TypeError(f"{key} holds no number: {value!r}")
         return str(value)
+
+    def has(self, key: str) -> bool:
+        """Return whether anything stands at the address ``key``."""
+        try:
+            look_up(self.plain, key)
+        except KeyError:
+            return False
+        return True
 
     def whole(self, key: str) -> Number:
         """Return a count, with commas from a thousand on."""
@@ -156,7 +170,7 @@ class Numbers:
         if value == self.alpha:
             # "Exact" is said of counted orderings only, never of drawn ones (house rule).
             equal = self._styled(self.alpha)
-            return Number(key, exact, equal if self._is_drawn(key) else f"{equal} (exactly)")
+            return Number(key, exact, f"{equal} (exactly)" if self._is_counted(key) else equal)
         if value == 1:
             return Number(key, exact, "1")
         if value < smallest:
@@ -184,13 +198,30 @@ class Numbers:
             places += 1
         return Number(key, exact, self._styled(_rounded(value, places)))
 
-    def _is_drawn(self, key: str) -> bool:
-        """Return whether the p-value at ``key`` belongs to an association whose permutations were drawn."""
-        association = "/".join(key.split("/")[:2])
-        try:
-            return look_up(self.plain, f"{association}/test/method") == DRAWN
-        except KeyError:
-            return False
+    def duration(self, key: str) -> Number:
+        """Return a forecast of seconds in the unit that suits it: "40 minutes"; nobody waits longer than a year."""
+        exact = self._exact(key)
+        seconds = Decimal(exact)
+        for name, size, most in DURATIONS:
+            amount = _rounded(seconds / size, 0)
+            if amount < most:
+                shown = max(amount, Decimal(1))
+                return Number(key, exact, f"{shown} {name}{'' if shown == 1 else 's'}")
+        return Number(key, exact, "more than a year")
+
+    def memory(self, key: str) -> Number:
+        """Return a forecast of bytes in the unit that suits it: "1.2 GiB"."""
+        exact = self._exact(key)
+        for unit, size in MEMORIES:
+            amount = Decimal(exact) / size
+            if amount < 1_000:
+                return Number(key, exact, f"{_rounded(amount, 0 if amount >= 10 else 1)}{NARROW_SPACE}{unit}")
+        return Number(key, exact, f"more than a thousand{NARROW_SPACE}{MEMORIES[-1][0]}")
+
+    def _is_counted(self, key: str) -> bool:
+        """Return whether the p-value at ``key`` belongs to an association that has no test whose p was not counted."""
+        method = f"{'/'.join(key.split('/')[:2])}/test/method"
+        return not self.has(method) or look_up(self.plain, method) in COUNTED
 
     def _misleads(self, printed: Decimal, value: Decimal) -> bool:
         crossed = (printed <= self.alpha) != (value <= self.alpha) or printed == self.alpha

@@ -128,6 +128,16 @@ class Sheet:
             )
         )
 
+    def strokes(self, lines: Sequence[Sequence[Point]], *, weight: float) -> None:
+        """Draw several lines in the ink, each through its points, as one path."""
+        if not lines:
+            return
+        codes = [code for line in lines for code in (Path.MOVETO, *(Path.LINETO,) * (len(line) - 1))]
+        path = Path([point for line in lines for point in line], codes)
+        # The library decides when a path is made, not when it is written, whether corners may be left out.
+        path.should_simplify = False
+        self._path(path, weight=weight, face="none")
+
     def circles(self, marks: Sequence[tuple[Point, float]], *, weight: float, filled: bool) -> None:
         """Draw circles, each given by its centre and radius, as one path."""
         if not marks:

@@ -1,18 +1,21 @@
-"""Exact tables for data without ties: the null of the sum of squared rank differences, and critical values."""
+"""Tables for data without ties: the null of the sum of squared rank differences, and critical values."""
 
 from dataclasses import dataclass
 from decimal import Decimal
 from fractions import Fraction
+from math import ceil
 from typing import Final
 
 from rankdocket.errors import ComputeError
-from rankdocket.stats.choose_null import exact_null_of
-from rankdocket.stats.ranks import TieGroups
+from rankdocket.stats.critical import LargeSample, large_sample_value
+from rankdocket.stats.null import NullMethod
+from rankdocket.stats.nulls.series import STEP, series_critical, series_tails
+from rankdocket.stats.nulls.untied import reach, untied_null
 from rankdocket.stats.rho import short_form
-from rankdocket.vocabulary import Sidedness
+from rankdocket.vocabulary import Direction, Sidedness
 
-NMAX_UNTIED: Final = 17
-"""Most rows for which the untied null is tabulated: about 2 s on one core."""
+FEWEST_CRITICAL: Final = 3
+"""With fewer rows no coefficient but 1 and −1 exists, and half of all orders give each."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -52,18 +55,44 @@ class CriticalValue:
     attained_p: Fraction | None
 
 
+@dataclass(frozen=True, slots=True)
+class CriticalValueFound:
+    """A critical value by the counts where they reach, by a series above.
+
+    Attributes
+    ----------
+    attainable
+        False when even perfect order has a larger p-value; ``rho``, ``numerator``, ``sum_d2`` and ``attained_p`` are then
+        ``None``.
+    rho
+        The smallest attainable coefficient whose p-value is alpha or less.
+    numerator
+        Of rho over (n³ − n)/3: the sum of products of doubled centred ranks.
+    sum_d2
+        Its sum of squared rank differences.
+    attained_p
+        Its p-value; exact when ``method`` is "exact, no ties".
+    method
+        Where the p-value comes from.
+    """
+
+    attainable: bool
+    rho: Fraction | None
+    numerator: int | None
+    sum_d2: int | None
+    attained_p: Fraction | None
+    method: NullMethod
+
+
 def null_counts(n: int) -> NullCounts:
     """Return the exact null of the sum of squared rank differences of ``n`` untied rows (kendall1939).
 
     Raises
     ------
     ComputeError
-        If ``n`` is not between 1 and NMAX_UNTIED.
+        If ``n`` is not between 1 and the largest number of rows whose counts come with the program.
     """
-    if not 1 <= n <= NMAX_UNTIED:
-        raise ComputeError(f"The untied null is tabulated for 1 to {NMAX_UNTIED} rows, not for {n}.")
-    untied = TieGroups((1,) * n)
-    null = exact_null_of("Spearman rho", untied, untied)
+    null = untied_null(n)
     square = (n**3 - n) // 3
     # The numerator is the sum of products of doubled centred ranks: half the square less twice the sum wanted.
     sums = ((square - statistic) // 2 for statistic in reversed(null.statistics.tolist()))
@@ -85,9 +114,9 @@ def critical_value(n: int, alpha: Decimal | Fraction | float, *, sidedness: Side
     Raises
     ------
     ComputeError
-        If ``n`` is not between 1 and NMAX_UNTIED.
+        If ``n`` is not between 1 and the largest number of rows whose counts come with the program.
     """
-    limit = Fraction(repr(alpha)) if isinstance(alpha, float) else Fraction(alpha)
+    limit = _as_written(alpha)
     table = null_counts(n)
     sides = 1 if sidedness == "one-sided" else 2
     found = CriticalValue(False, None, None, None)
@@ -100,3 +129,89 @@ def critical_value(n: int, alpha: Decimal | Fraction | float, *, sidedness: Side
             break
         found = CriticalValue(True, short_form(n, Fraction(sum_d2)), sum_d2, p)
     return found
+
+
+def critical_value_approximate(
+    n: int, alpha: Decimal | Fraction | float, *, sidedness: Sidedness
+) -> CriticalValueFound:
+    """Return the critical value of rho without ties for any number of rows: exact as far as the counts reach.
+
+    Above them the Edgeworth series stands in, and the saddlepoint for p-values below one in a hundred thousand.
+
+    Parameters
+    ----------
+    n
+        Rows, at least 3.
+    alpha
+        Above 0, below 1; a float is read as the shortest decimal that means it.
+    sidedness
+        One-sided counts the upper tail, two-sided both.
+
+    Raises
+    ------
+    ComputeError
+        If ``n`` is too small.
+    """
+    _at_least_three(n)
+    largest = (n**3 - n) // 3
+    if n <= reach():
+        exact = critical_value(n, alpha, sidedness=sidedness)
+        numerator = None if exact.sum_d2 is None else largest - 2 * exact.sum_d2
+        return CriticalValueFound(
+            exact.attainable, exact.rho, numerator, exact.sum_d2, exact.attained_p, "exact, no ties"
+        )
+    found = series_critical(n, _as_written(alpha), sidedness)
+    if found is None:
+        return CriticalValueFound(False, None, None, None, None, series_tails(n, largest).method)
+    tails = series_tails(n, found)
+    return CriticalValueFound(
+        True, Fraction(found, largest), found, (largest - found) // 2, tails.p(_direction(sidedness)), tails.method
+    )
+
+
+def critical_value_large_sample(n: int, alpha: Decimal | Fraction | float, *, sidedness: Sidedness) -> LargeSample:
+    """Return the large-sample rule z/√(n − 1) with its true size without ties.
+
+    The size is exact as far as the counts reach and comes from the series above; it is 0 where z/√(n − 1) exceeds 1.
+
+    Parameters
+    ----------
+    n
+        Rows, at least 3.
+    alpha
+        Above 0, below 1; a float is read as the shortest decimal that means it.
+    sidedness
+        One-sided counts the upper tail, two-sided both.
+
+    Raises
+    ------
+    ComputeError
+        If ``n`` is too small.
+    """
+    _at_least_three(n)
+    direction = _direction(sidedness)
+    z, value = large_sample_value(n, _as_written(alpha), direction)
+    largest = (n**3 - n) // 3
+    steps_down = (largest - ceil(Fraction(value) * largest)) // STEP
+    if steps_down < 0:
+        return LargeSample(z, value, Fraction(0))
+    return LargeSample(z, value, _p(n, largest - STEP * steps_down, direction))
+
+
+def _p(n: int, numerator: int, direction: Direction) -> Fraction:
+    if n <= reach():
+        return untied_null(n).tails(numerator).p(direction)
+    return series_tails(n, numerator).p(direction)
+
+
+def _direction(sidedness: Sidedness) -> Direction:
+    return "greater" if sidedness == "one-sided" else "two-sided"
+
+
+def _at_least_three(n: int) -> None:
+    if n < FEWEST_CRITICAL:
+        raise ComputeError(f"A critical value needs at least {FEWEST_CRITICAL} rows, not {n}.")
+
+
+def _as_written(alpha: Decimal | Fraction | float) -> Fraction:
+    return Fraction(repr(alpha)) if isinstance(alpha, float) else Fraction(alpha)

@@ -73,9 +73,7 @@ def main(folder: Path) -> int:
     else:
         print(f"Everything agrees ({numbers} numbers, {files} files).")
     if left:
-        print(
-            f"Not counted anew, because permutations were drawn or more than {MOST_ROWS_COUNTED} rows ranked: {', '.join(left)}."
-        )
+        print(f"Not counted anew (p is no count, or more than {MOST_ROWS_COUNTED} rows): {', '.join(left)}.")
     return 1 if problems else 0
 
 
@@ -121,9 +119,8 @@ def check_associations(folder: Path, analysis: Any, problems: list[str]) -> list
     for name, found in sorted(analysis["associations"].items()):
         its_rows = rows.get(name, [])
         if len(its_rows) != found["rows"]["complete"]:
-            problems.append(
-                f"{name}: rows.csv has {len(its_rows)} rows, analysis.json says {found['rows']['complete']}."
-            )
+            said = found["rows"]["complete"]
+            problems.append(f"{name}: rows.csv has {len(its_rows)} rows, analysis.json says {said}.")
             continue
         x = doubled_midranks([Fraction(row["x_value"]) for row in its_rows])
         y = doubled_midranks([Fraction(row["y_value"]) for row in its_rows])
@@ -171,22 +168,30 @@ def check_estimate(name: str, found: Any, ranks: tuple[list[int], list[int]], pr
 def check_test(name: str, found: Any, ranks: tuple[list[int], list[int]], problems: list[str]) -> bool:
     """Derive p from its count, and count all orderings where there are few enough; return whether it was done."""
     test = found["test"]
+    if test["count"] is None:
+        return False
     for key, count in (("p", "count"), ("p_greater", "count_greater"), ("p_less", "count_less")):
         hold_p(f"{name}: {key}", test[key], p_of(test, int(test[count])), problems)
     if not test["method"].startswith("exact") or len(ranks[0]) > MOST_ROWS_COUNTED:
         return False
     tally = orderings(*ranks, found["coefficient"])
     numerator = sums_of(found["coefficient"], *ranks)[0]
-    counts = {
-        "greater": sum(times for value, times in tally.items() if value >= numerator),
-        "less": sum(times for value, times in tally.items() if value <= numerator),
-        "two-sided": sum(times for value, times in tally.items() if abs(value) >= abs(numerator)),
-    }
-    hold(f"{name}: count", test["count"], str(counts[test["direction"]]), problems)
-    hold(f"{name}: count_greater", test["count_greater"], str(counts["greater"]), problems)
-    hold(f"{name}: count_less", test["count_less"], str(counts["less"]), problems)
+    for key, side in (("count", test["direction"]), ("count_greater", "greater"), ("count_less", "less")):
+        hold(f"{name}: {key}", test[key], str(extreme(tally, side, numerator)), problems)
     hold(f"{name}: the number of orderings", test["of"], str(factorial(len(ranks[0]))), problems)
+    for side, value in found["null"]["critical"].items():
+        if value["state"] == "given":
+            count = str(extreme(tally, side, int(value["numerator"])))
+            hold(f"{name}: count at the critical value, {side}", value["count"], count, problems)
     return True
+
+
+def extreme(tally: dict[int, int], direction: str, end: int) -> int:
+    """Return the orderings with a numerator at least as extreme as ``end``."""
+    if direction == "two-sided":
+        return sum(times for value, times in tally.items() if abs(value) >= abs(end))
+    sign = 1 if direction == "greater" else -1
+    return sum(times for value, times in tally.items() if sign * value >= sign * end)
 
 
 def p_of(test: Any, count: int) -> Fraction:
@@ -200,7 +205,7 @@ def check_findings(folder: Path, analysis: Any, problems: list[str]) -> None:
     plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))
     family, alpha = analysis["inference"]["family"], Fraction(plan["inference"]["alpha"])
     p_values = {
-        name: p_of(found["test"], int(found["test"]["count"]))
+        name: Fraction(test["p"]) if (test := found["test"])["count"] is None else p_of(test, int(test["count"]))
         for name, found in analysis["associations"].items()
         if found["test"]["state"] == "tested"
     }
@@ -245,9 +250,8 @@ def check_results(folder: Path, analysis: Any, problems: list[str]) -> None:
         for column, cell in row.items():
             filed = look_up(its_own, RESULT_ADDRESSES.get(column, column))
             if cell != ("" if filed is None else str(filed)):
-                problems.append(
-                    f"results.csv, line {line}: {column} is {cell or 'blank'}, analysis.json has {filed or 'nothing'}."
-                )
+                has = f"{column} is {cell or 'blank'}, analysis.json has {filed or 'nothing'}"
+                problems.append(f"results.csv, line {line}: {has}.")
 
 
 def doubled_midranks(values: list[Fraction]) -> list[int]:
@@ -362,14 +366,11 @@ def check_printed(folder: Path, analysis: Any, problems: list[str]) -> int:
         if str(look_up(analysis, key)) != exact:
             problems.append(f"document.json: {key} is {exact}, analysis.json has {look_up(analysis, key)}.")
     for key, text in sorted(told.keys() | shown.keys()):
-        if told[key, text] > shown[key, text]:
-            problems.append(
-                f"document.json prints {key} as {text}, {told[key, text]} times; report.html {shown[key, text]} times."
-            )
-        elif told[key, text] < shown[key, text]:
-            problems.append(
-                f"report.html prints {key} as {text}, {shown[key, text]} times; document.json {told[key, text]} times."
-            )
+        in_words, on_page = told[key, text], shown[key, text]
+        if in_words > on_page:
+            problems.append(f"document.json prints {key} as {text}, {in_words} times; report.html {on_page} times.")
+        elif in_words < on_page:
+            problems.append(f"report.html prints {key} as {text}, {on_page} times; document.json {in_words} times.")
     return len(numbers)
 
 

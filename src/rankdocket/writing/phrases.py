@@ -6,6 +6,7 @@ from rankdocket.analysis.results import AssociationAnalysis, Estimate, RankTest,
 from rankdocket.document.model import Emphasis, Link, Prose, Supplied
 from rankdocket.document.prose import joined, listed, only, prose, text_of
 from rankdocket.stats.interval import Interval
+from rankdocket.stats.null import TailShares
 from rankdocket.study.spec import AssociationSpec, VariableSpec
 from rankdocket.writing.section import Story
 
@@ -13,8 +14,8 @@ N = Emphasis("n", "italic")
 P = Emphasis("p", "italic")
 EN_DASH_CELL = only("–")
 
-MOST_PRINTED: Final = 10**15
-"""A count over more orderings than this is not printed beside its p: nobody reads thirty digits."""
+MOST_PRINTED: Final = 10**33
+"""A count over more orderings than this, those of thirty rows, is not printed beside its p but filed only."""
 
 
 def label(variable: VariableSpec) -> Supplied:
@@ -131,10 +132,12 @@ def p_equals(story: Story, key: str) -> Prose:
 
 
 def p_with_count(story: Story, name: str) -> Prose:
-    """Return the p-value of an association with the count it comes from."""
+    """Return the p-value of an association with the count or the method it comes from."""
     result = story.analysis.results[name]
     if not isinstance(result.test, RankTest):
         return only("")
+    if isinstance(result.test.tails, TailShares):
+        return prose("{p}, {method}", p=p_equals(story, address(name, "test", "p")), method=method_words(story, name))
     if result.test.tails.of > MOST_PRINTED:
         return prose(
             "{p}, counted over all orderings of the rows; both whole numbers stand in analysis.json",
@@ -152,6 +155,16 @@ def p_with_count(story: Story, name: str) -> Prose:
         count=story.numbers.whole(count),
         of=story.numbers.whole(of),
     )
+
+
+def method_words(story: Story, name: str) -> Prose:
+    """Return where the p-value of a tested association comes from: "exact, no ties"."""
+    test = story.analysis.results[name].test
+    if not isinstance(test, RankTest):
+        raise TypeError(f"{name} has no test")
+    if test.tails.method == "exact algorithm, 12 digits":
+        return prose("exact algorithm, {digits} digits", digits=story.numbers.whole(address(name, "test", "digits")))
+    return only(test.tails.method)
 
 
 def direction_sentence(story: Story, name: str) -> Prose:

@@ -1,84 +1,125 @@
 """The exact null of Kendall’s concordant less discordant pairs, with or without ties.
 
 With ties in one variable at most, the discordant pairs of the distinct arrangements have a generating function
-in closed form.  With ties in both, the rows are taken one tie group at a time.
+in closed form; two two-valued variables are a fourfold table.  With other ties in both, the rows are taken one tie
+group at a time.
 """
 
-from math import comb
+from collections import Counter
+from math import comb, prod
 from typing import Final, TypeAlias
 
 import numpy as np
 import numpy.typing as npt
 
-from rankdocket.stats.forecast import (
-    DIGIT_BITS,
-    DIGIT_BYTES,
-    STATES_LIMIT,
-    STEP_OPERATIONS,
-    Forecast,
-    count_states,
-    distinct_arrangements,
-    fewer_states_first,
-    slot_bits,
-    states_by_members,
-)
+from rankdocket.stats.forecast import DIGIT_BITS, DIGIT_BYTES, Forecast, distinct_arrangements, slot_bits
 from rankdocket.stats.null import ExactNull, exact_null
 from rankdocket.stats.nulls.packed import Packed, merged, unpacked
-from rankdocket.stats.ranks import TieGroups
+from rankdocket.stats.ranks import Codes, TieGroups
 
 Integers: TypeAlias = npt.NDArray[np.object_]
 """Python integers, which no count can overflow."""
 
-SLOWER_THAN_RHO: Final = 3
-"""A step with ties in both variables took about three times the time of one of rho's (5.2 s for 1.7e9, one core)."""
+SUM_NANOSECONDS: Final = 24
+"""One sum in a vector of Python integers (this and the next two measured with 60 to 400 rows)."""
+
+SUM_DIGIT_PICOSECONDS: Final = 350
+"""What each digit of the largest count adds to it: most sums are made while counts are still short."""
+
+VALUE_NANOSECONDS: Final = 600
+"""What each value of the finished null costs."""
+
+VALUE_BYTES: Final = 300
+"""What each value of the finished null takes beside the digits of its count."""
+
+SLOT_NANOSECONDS: Final = 300
+"""What each slot of the last row of counts costs until it is a value of the null."""
+
+KEY_NANOSECONDS: Final = 380
+"""One partial dealing that is gone on from (this and the next two measured with twelve patterns of ties)."""
+
+STEP_NANOSECONDS: Final = 600
+"""One way to go on, beside the digits of its counts."""
+
+STEP_DIGIT_PICOSECONDS: Final = 1_500
+"""What each digit of its counts adds: they are multiplied, shifted and added."""
+
+LONG_DIGIT_PICOSECONDS: Final = 5_000
+"""The same in rows of counts above LONG_ROW digits, which leave a processor's cache (measured with 2 to 30 MiB)."""
+
+LONG_ROW: Final = 2**18
+
+KEY_BYTES: Final = 400
+"""What a partial dealing takes beside its counts."""
+
+STATES_IN_DETAIL: Final = 2**36
+"""Up to here, and up to ROWS_IN_DETAIL, partial dealings are counted, and an int64 holds all sums made for that."""
+
+ROWS_IN_DETAIL: Final = 2_000
 
 
 def tau_null(x: TieGroups, y: TieGroups) -> ExactNull:
     """Return the null of concordant less discordant pairs for variables with these tie groups."""
     has_ties = x.has_ties or y.has_ties
+    if x.distinct == y.distinct == 2:
+        return exact_null(x.n, _fourfold(x, y), has_ties)
     if x.has_ties and y.has_ties:
-        dealt, rows = fewer_states_first(x, y)
-        return exact_null(x.n, _both_tied(dealt, rows), has_ties)
+        return exact_null(x.n, _both_tied(*_cheaper_dealing(x, y)), has_ties)
     tied = x if x.has_ties else y
-    decided = _pairs(tied.n) - tied.pairs
-    discordant = _discordant_counts(tied)
-    return exact_null(x.n, {decided - 2 * number: count for number, count in enumerate(discordant)}, has_ties)
+    decided = _decided_pairs(tied)
+    counts: dict[int, int] = {}
+    for discordant, count in enumerate(_discordant_counts(tied)):
+        counts[decided - 2 * discordant] = counts[2 * discordant - decided] = count
+    return exact_null(x.n, counts, has_ties)
 
 
-def forecast_tau(x: TieGroups, y: TieGroups) -> Forecast | None:
-    """Return what :func:`tau_null` would cost, or ``None`` when its states are too many to list."""
+def forecast_tau(x: TieGroups, y: TieGroups) -> Forecast:
+    """Return what :func:`tau_null` would cost."""
+    if x.distinct == y.distinct == 2:
+        tables = min(*x.sizes, *y.sizes) + 1
+        digits = 1 + max(_bits_of_arrangements(x), _bits_of_arrangements(y)) // DIGIT_BITS
+        return Forecast(tables, tables * digits * VALUE_NANOSECONDS, tables * (VALUE_BYTES + digits * DIGIT_BYTES))
     if x.has_ties and y.has_ties:
-        if count_states(x) is None and count_states(y) is None:
-            return None
-        return _forecast_both_tied(*fewer_states_first(x, y))
+        return _forecast_both_tied(*_cheaper_dealing(x, y))
     tied = x if x.has_ties else y
-    decided = _pairs(tied.n) - tied.pairs
-    if decided > STATES_LIMIT:
-        return None
-    digits = 1 + slot_bits(distinct_arrangements(tied)) // DIGIT_BITS
-    factors = tied.n + sum(tied.sizes)
-    # Vectors of Python integers: each of their additions costs a part of a step, not of a digit.
-    operations = factors * (decided + 1) * (digits + STEP_OPERATIONS // 16)
-    return Forecast(decided + 1, operations, 2 * (decided + 1) * (digits + 8) * DIGIT_BYTES)
+    values = _decided_pairs(tied) + 1
+    digits = 1 + _bits_of_arrangements(tied) // DIGIT_BITS
+    sums = (values // 2 + 1) * sum(abs(power) for power in _powers(tied))
+    picoseconds = sums * (1_000 * SUM_NANOSECONDS + digits * SUM_DIGIT_PICOSECONDS)
+    return Forecast(
+        values, picoseconds // 1_000 + values * VALUE_NANOSECONDS, values * (VALUE_BYTES + digits * DIGIT_BYTES)
+    )
 
 
-def _pairs(n: int) -> int:
-    return n * (n - 1) // 2
+def _decided_pairs(groups: TieGroups) -> int:
+    return groups.n * (groups.n - 1) // 2 - groups.pairs
+
+
+def _powers(tied: TieGroups) -> list[int]:
+    """Return the power of 1 − q, 1 − q², … 1 − q^n in the generating function of discordant pairs."""
+    ending = Counter(tied.sizes)
+    powers, reaching = [], tied.distinct
+    for exponent in range(1, tied.n + 1):
+        powers.append(1 - reaching)
+        reaching -= ending[exponent]
+    return powers
 
 
 def _discordant_counts(tied: TieGroups) -> list[int]:
     """Return distinct arrangements with 0, 1, … discordant pairs beside an untied variable.
 
-    They are the coefficients of ∏_{i ≤ n}(1 − q^i) over the same product for every tie group.
+    They are the coefficients of ∏_{i ≤ n}(1 − q^i) over the same product for every tie group.  Read from the other
+    end they are the same, so only the first half is worked out, up to half of the decided pairs.
     """
-    decided = _pairs(tied.n) - tied.pairs
-    counts: Integers = np.zeros(decided + 1, dtype=object)
+    length = _decided_pairs(tied) // 2 + 1
+    counts: Integers = np.zeros(length, dtype=object)
     counts[0] = 1
-    powers = [1 - sum(size >= exponent for size in tied.sizes) for exponent in range(1, tied.n + 1)]
-    for exponent, power in enumerate(powers, start=1):
-        if power > 0 and exponent <= decided:
+    powers = list(enumerate(_powers(tied), start=1))[: length - 1]
+    # Products first: as long as nothing has been divided, the coefficients stay small.
+    for exponent, power in powers:
+        if power > 0:
             counts[exponent:] = counts[exponent:] - counts[:-exponent]
-    for exponent, power in enumerate(powers, start=1):
+    for exponent, power in powers:
         for _ in range(-power):
             counts = _strided_sums(counts, exponent)
     return [int(count) for count in counts]
@@ -93,6 +134,15 @@ def _strided_sums(counts: Integers, step: int) -> Integers:
     sums = np.add.accumulate(padded.reshape(rows, step), axis=0)
     divided: Integers = sums.reshape(-1)[:length]
     return divided
+
+
+def _fourfold(x: TieGroups, y: TieGroups) -> dict[int, int]:
+    """Return numerator → distinct arrangements of y for all fourfold tables with these margins."""
+    low_x, low_y, n = x.sizes[0], y.sizes[0], x.n
+    return {
+        both_low * n - low_x * low_y: comb(low_x, both_low) * comb(n - low_x, low_y - both_low)
+        for both_low in range(max(0, low_x + low_y - n), min(low_x, low_y) + 1)
+    }
 
 
 def _both_tied(dealt: TieGroups, rows: TieGroups) -> dict[int, int]:
@@ -135,7 +185,7 @@ def _deal_tie_group(
             fewest = max(0, members - dealt - (room_above - used_above))
             for number in range(fewest, min(size - used, members - dealt) + 1):
                 target = (state + number * place, dealt + number, lower + used)
-                raised = (low + number * score, slots * comb(dealt + number, number))
+                raised = (low + number * score, slots * comb(dealt + number, number) if number and dealt else slots)
                 present = following.get(target)
                 following[target] = raised if present is None else merged(present, raised, bits)
         partial = following
@@ -146,17 +196,115 @@ def _deal_tie_group(
     return finished
 
 
+def _cheaper_dealing(x: TieGroups, y: TieGroups) -> tuple[TieGroups, TieGroups]:
+    """Return the two variables, first the one whose values are better dealt to the rows of the other."""
+    return min((x, y), (y, x), key=lambda pair: _forecast_both_tied(*pair).nanoseconds)
+
+
 def _forecast_both_tied(dealt: TieGroups, rows: TieGroups) -> Forecast:
-    layers = states_by_members(dealt)
-    bits = slot_bits(distinct_arrangements(dealt))
-    span = 2 * (_pairs(dealt.n) - dealt.pairs) + 1
-    operations = before = widest = 0
+    """Return the cost of dealing value after value to tie group after tie group of the rows.
+
+    Partial dealings are counted to the last one; the ways to go on from each, and the spread of its scores, are taken
+    as if every tie group were used up in proportion.
+    """
+    sizes, n = dealt.sizes, dealt.n
+    states = prod(size + 1 for size in sizes)
+    digits_of_a_count = 1 + _bits_of_arrangements(dealt) // DIGIT_BITS
+    if states > STATES_IN_DETAIL or n > ROWS_IN_DETAIL:
+        half = (1 + _decided_pairs(dealt) // 2) * digits_of_a_count
+        picoseconds = 1_000 * (KEY_NANOSECONDS + 2 * STEP_NANOSECONDS) + 2 * _picoseconds_of(half)
+        keys = states * dealt.distinct
+        return Forecast(keys, keys * picoseconds // 1_000, states // n * (KEY_BYTES + half * DIGIT_BYTES))
+    lower = [_ways_to_use(sizes[:index]) for index in range(len(sizes))]
+    upper = [_ways_to_use(sizes[index:]) for index in range(len(sizes))]
+    room = [sum(sizes[index:]) for index in range(len(sizes) + 1)]
+    apart = [(n - left) ** 2 - sum(low**2 for low in sizes[:index]) for index, left in enumerate(room)]
+    decided = _mean_decided_pairs(sizes)
+    keys = picoseconds = widest = before = decided_in_rows = 0
     for members in rows.sizes:
-        after = before + members
-        width = max(1, span * after * after * bits // (dealt.n * dealt.n * DIGIT_BITS))
-        states = sum(layers[before : after + 1])
-        steps = sum(1 + min(size, members) // 2 for size in dealt.sizes)
-        operations += states * steps * (STEP_OPERATIONS + width) * SLOWER_THAN_RHO
-        widest = max(widest, 2 * states * width)
-        before = after
-    return Forecast(sum(layers), operations, widest * DIGIT_BYTES)
+        # Only pairs of different values among the lower ones have made scores of this group differ so far.
+        differing = [before * members * pairs // n**2 for pairs in apart]
+        digits = [
+            1 + digits_of_a_count * (1 + 2 * min(decided_in_rows + made, decided[before + members * (n - left) // n]))
+            for made, left in zip(differing, room, strict=True)
+        ]
+        for index, size in enumerate(sizes):
+            found = _partial_dealings((lower[index], upper[index]), (before, members), room[index])
+            most = min(size * (n - before), members * room[index])
+            fewest = max(0, members * room[index] - room[index + 1] * (n - before))
+            steps = found * (n + most - fewest) // n
+            keys += found
+            picoseconds += 1_000 * (found * KEY_NANOSECONDS + steps * STEP_NANOSECONDS)
+            # In a group of one row nothing is multiplied, and its digits cost half.
+            picoseconds += steps * _picoseconds_of((digits[index] + digits[index + 1]) // (4 if members == 1 else 2))
+            # Dealing the lowest value changes no counts, so that they are shared.
+            held = found if index > 1 else int(upper[0][before])
+            widest = max(widest, 2 * (found * KEY_BYTES + held * digits[index] * DIGIT_BYTES))
+        decided_in_rows += before * members
+        before += members
+    slots = 1 + 2 * min(_decided_pairs(dealt), _decided_pairs(rows))
+    return Forecast(keys, picoseconds // 1_000 + slots * SLOT_NANOSECONDS, widest + slots * VALUE_BYTES)
+
+
+def _picoseconds_of(digits: int) -> int:
+    return digits * (LONG_DIGIT_PICOSECONDS if digits > LONG_ROW else STEP_DIGIT_PICOSECONDS)
+
+
+def _partial_dealings(ways: tuple[Codes, Codes], group: tuple[int, int], room: int) -> int:
+    """Return how many partial dealings there are to a group (rows before it, its members) from some value on.
+
+    Parameters
+    ----------
+    ways
+        Ways to use the lower values, and this one with the higher ones, by members used in all.
+    group
+        Rows before the group, and its members.
+    room
+        Members of this value and the higher ones.
+    """
+    lower, upper = ways
+    before, members = group
+    found = 0
+    for dealt in range(min(members, len(lower) - 1) + 1):
+        # What was dealt lies among the lower values, and the rest of the group must find room above.
+        first = max(dealt, before + members - room)
+        last = min(len(lower) - 1, before + dealt)
+        if first <= last:
+            above = upper[before + dealt - last : before + dealt - first + 1]
+            found += int(np.dot(lower[first : last + 1], above[::-1]))
+    return found
+
+
+def _ways_to_use(sizes: tuple[int, ...]) -> Codes:
+    """Return, for 0, 1, … members used in all, in how many ways these tie groups can be used in part."""
+    ways: Codes = np.ones(1, dtype=np.int64)
+    for size in sizes:
+        ways = np.convolve(ways, np.ones(size + 1, dtype=np.int64))
+    return ways
+
+
+def _mean_decided_pairs(sizes: tuple[int, ...]) -> list[int]:
+    """Return, for 0, 1, … members used in all, the mean number of pairs of different values over all ways."""
+    ways, squares = np.ones(1, dtype=np.int64), np.zeros(1, dtype=np.int64)
+    for size in sizes:
+        all_parts, parts_squared = np.ones(size + 1, dtype=np.int64), np.arange(size + 1, dtype=np.int64) ** 2
+        squares = np.convolve(squares, all_parts) + np.convolve(ways, parts_squared)
+        ways = np.convolve(ways, all_parts)
+    return [
+        (used * used - square // number) // 2
+        for used, (square, number) in enumerate(zip(squares.tolist(), ways.tolist(), strict=True))
+    ]
+
+
+def _bits_of_arrangements(groups: TieGroups) -> int:
+    """Return the length of n!/∏t! in binary, to within a few digits."""
+    parts = sum(number * _bits_of_factorial(size) for size, number in Counter(groups.sizes).items())
+    return max(1, _bits_of_factorial(groups.n) - parts)
+
+
+def _bits_of_factorial(n: int) -> int:
+    """Return log₂ n! by its first terms, n log₂ n − n log₂ e + log₂(2πn)/2, rounded down."""
+    if n < 2:
+        return 0
+    logarithm = (n**64).bit_length() - 1
+    return (1_000 * n * logarithm - 64 * 1_443 * n + 32 * 1_000 * n.bit_length() + 64 * 1_000) // (64 * 1_000)

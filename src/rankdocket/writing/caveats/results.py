@@ -119,17 +119,26 @@ def _undecided(story: Story) -> tuple[FoundCaveat, ...]:
         FoundCaveat(
             (name,),
             prose(
-                "{name}: {p} comes from drawn orderings. With the value at one end of its interval, {low} to {high}, the "
-                "finding would be another one. A plan with more draws would settle the side.",
+                "{name}: undecided {by}. With {p} at one end of its interval, {low} to {high}, the finding would be "
+                "another one. {remedy}",
                 name=pointer(name),
+                by="by these draws" if _is_drawn(story, name) else "by this series",
                 p=P,
                 low=story.numbers.attainable_p(address(name, "test", "p_low")),
                 high=story.numbers.attainable_p(address(name, "test", "p_high")),
+                remedy="The ceiling of draws that the plan sets was reached; a plan with more would settle the side."
+                if _is_drawn(story, name)
+                else "The word printed is that of the value itself; the stated error does not settle the side.",
             ),
         )
         for name, finding in story.analysis.findings.items()
-        if finding.undecided_by_draws
+        if finding.undecided
     )
+
+
+def _is_drawn(story: Story, name: str) -> bool:
+    test = story.analysis.results[name].test
+    return isinstance(test, RankTest) and test.choice.needs_draws
 
 
 def _conventions(story: Story) -> tuple[FoundCaveat, ...]:
@@ -159,5 +168,5 @@ NOT_ESTIMABLE = CaveatRule("not_estimable", 80, _not_estimable)
 PERFECT = CaveatRule("perfect_agreement", 55, _perfect)
 SMALL_SAMPLE = CaveatRule("small_sample", 50, _small)
 TEST_AND_INTERVAL = CaveatRule("test_and_interval", 70, _disagree)
-UNDECIDED = CaveatRule("undecided_by_draws", 75, _undecided)
+UNDECIDED = CaveatRule("undecided", 75, _undecided)
 TWO_SIDED_RULE = CaveatRule("two_sided_rule", 72, _conventions)

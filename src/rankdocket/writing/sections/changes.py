@@ -3,7 +3,7 @@
 from dataclasses import replace
 
 from rankdocket.document.model import Block, Column, Emphasis, Items, Paragraph, Prose, Section, Supplied, TableBlock
-from rankdocket.document.numbers import Numbers, look_up
+from rankdocket.document.numbers import look_up
 from rankdocket.document.prose import listed, only, prose
 from rankdocket.writing.findings import finding_word
 from rankdocket.writing.phrases import EN_DASH_CELL, P, address, full_stop, pointer
@@ -92,10 +92,10 @@ def _row(story: Story, before: Before, name: str) -> tuple[Prose, ...]:
         _named(story, name),
         only(_finding_before(before, name)),
         only(_finding_now(story, name)),
-        only(Supplied(old.coefficient(estimate).text)) if _stands(old, estimate) else EN_DASH_CELL,
-        only(story.numbers.coefficient(estimate)) if _stands(story.numbers, estimate) else EN_DASH_CELL,
-        only(Supplied(old.p_value(p).text)) if _stands(old, p) else EN_DASH_CELL,
-        only(story.numbers.p_value(p)) if _stands(story.numbers, p) else EN_DASH_CELL,
+        only(Supplied(old.coefficient(estimate).text)) if old.has(estimate) else EN_DASH_CELL,
+        only(story.numbers.coefficient(estimate)) if story.numbers.has(estimate) else EN_DASH_CELL,
+        only(Supplied(old.p_value(p).text)) if old.has(p) else EN_DASH_CELL,
+        only(story.numbers.p_value(p)) if story.numbers.has(p) else EN_DASH_CELL,
     )
 
 
@@ -132,14 +132,6 @@ def _old(before: Before, key: str) -> str | None:
         return str(look_up(before.plain, key))
     except KeyError:
         return None
-
-
-def _stands(numbers: Numbers, key: str) -> bool:
-    try:
-        look_up(numbers.plain, key)
-    except KeyError:
-        return False
-    return True
 
 
 SECTION = SectionRule("changes", write)

@@ -8,9 +8,10 @@ from rankdocket.analysis.results import Estimate, RankTest
 from rankdocket.document.model import Block, Emphasis, Link, Number, Paragraph, Prose, Section, Supplied
 from rankdocket.document.prose import joined, only, prose, text_of
 from rankdocket.references import Description
+from rankdocket.stats.critical import CRITICAL_VALUES
 from rankdocket.stats.interval import Interval
 from rankdocket.stats.intervals import INTERVAL_METHODS
-from rankdocket.stats.null import MONTE_CARLO_INTERVAL, NULL_DESCRIPTIONS, TWO_SIDED
+from rankdocket.stats.null import MONTE_CARLO_INTERVAL, MONTE_CARLO_LOOKS, NULL_DESCRIPTIONS, TWO_SIDED, NullMethod
 from rankdocket.stats.rho import RHO
 from rankdocket.stats.tau import TAU_B
 from rankdocket.vocabulary import COEFFICIENTS, CoefficientName
@@ -123,14 +124,57 @@ def _nulls(story: Story) -> Prose:
         )
         if not names:
             continue
+        parts.append(described(description, associations=pointers(names), **_null_slots(story, method, names[0])))
         if method == "drawn permutations":
-            draws = story.numbers.whole(address(names[0], "test", "of"))
-            seed = story.numbers.label("inference/seed")
-            parts.append(described(description, associations=pointers(names), draws=draws, seed=seed))
-            parts.append(described(MONTE_CARLO_INTERVAL, level=story.numbers.percent("inference/confidence_level")))
-        else:
-            parts.append(described(description, associations=pointers(names)))
+            parts.append(_looks(story))
+    if parts:
+        parts.append(described(CRITICAL_VALUES))
     return joined(tuple(parts))
+
+
+def _null_slots(story: Story, method: NullMethod, name: str) -> dict[str, Number]:
+    """Return the numbers that a null's description has slots for."""
+    numbers, bounds = story.numbers, "series_bounds"
+    match method:
+        case "exact, no ties" | "exact, conditional on the ties":
+            return {}
+        case "exact algorithm, 12 digits":
+            return {"digits": numbers.whole(address(name, "test", "digits"))}
+        case "Edgeworth series":
+            return {
+                "rows": numbers.whole(f"{bounds}/rows"),
+                "absolute": numbers.as_filed(f"{bounds}/absolute"),
+                "relative": numbers.percent(f"{bounds}/relative"),
+                "least": numbers.as_filed(f"{bounds}/least_p"),
+            }
+        case "saddlepoint":
+            return {
+                "rows": numbers.whole(f"{bounds}/rows"),
+                "least": numbers.as_filed(f"{bounds}/least_p"),
+                "relative": numbers.percent(f"{bounds}/saddlepoint/0/relative"),
+                "near": numbers.as_filed(f"{bounds}/saddlepoint/0/least_p"),
+                "far": numbers.percent(f"{bounds}/saddlepoint/1/relative"),
+                "farthest": numbers.as_filed(f"{bounds}/saddlepoint/1/least_p"),
+            }
+        case "drawn permutations":
+            return {
+                "draws": numbers.whole("inference/permutations"),
+                "seed": numbers.label("inference/seed"),
+            }
+
+
+def _looks(story: Story) -> Prose:
+    """Return how the error of the draws was described, and what was done while it left a side open."""
+    rule = story.analysis.spec.inference.p_value
+    level = story.numbers.percent("inference/confidence_level")
+    if rule.most_draws == rule.permutations:
+        return described(MONTE_CARLO_INTERVAL, level=level)
+    return described(
+        MONTE_CARLO_LOOKS,
+        level=level,
+        looks=story.numbers.whole("inference/looks"),
+        most=story.numbers.whole("inference/most_draws"),
+    )
 
 
 def _sides(story: Story) -> Prose:

@@ -67,19 +67,11 @@ def _row(story: Story, variable: VariableSpec) -> tuple[Prose, ...]:
 
 
 def _point(story: Story, variable: VariableSpec, key: str) -> Prose:
-    if not _has(story, key):
+    if not story.numbers.has(key):
         return EN_DASH_CELL
     if story.analysis.data.variables[variable.name].labels:
         return only(Supplied(str(look_up(story.plain, key))))
     return only(story.numbers.as_filed(key))
-
-
-def _has(story: Story, key: str) -> bool:
-    try:
-        look_up(story.plain, key)
-    except KeyError:
-        return False
-    return True
 
 
 def _missing(story: Story, name: str) -> Prose:

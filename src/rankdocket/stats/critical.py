@@ -1,0 +1,143 @@
+"""Critical values: the coefficient nearest to 0 that reaches alpha with these rows and ties, and what a rule of thumb is worth."""
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+from fractions import Fraction
+from math import sqrt
+
+from scipy.special import ndtri
+
+from rankdocket.references import Description
+from rankdocket.stats.coefficient import Coefficient
+from rankdocket.stats.null import NullMethod
+from rankdocket.stats.outline import NullOutline, Weight
+from rankdocket.vocabulary import Direction
+
+
+@dataclass(frozen=True, slots=True)
+class Critical:
+    """The attainable coefficient nearest to 0 whose p-value is alpha or less, in one direction.
+
+    Attributes
+    ----------
+    numerator
+        Of the coefficient; its size where the direction is two-sided.
+    p
+        Its p-value, above 0, alpha at most.
+    count
+        Permutations at least as extreme, counted or drawn; ``None`` where shares are known only.
+    """
+
+    numerator: int
+    p: Fraction
+    count: int | None
+
+
+@dataclass(frozen=True, slots=True)
+class CriticalValues:
+    """Critical values in each direction; ``None`` where no coefficient of these rows and ties reaches alpha.
+
+    Attributes
+    ----------
+    method
+        Where the null comes from that they were read from.
+    of
+        The permutations that counts are held against; ``None`` where shares are known only.
+    """
+
+    method: NullMethod
+    of: int | None
+    greater: Critical | None
+    less: Critical | None
+    two_sided: Critical | None
+
+    def toward(self, direction: Direction) -> Critical | None:
+        """Return the critical value in ``direction``."""
+        match direction:
+            case "greater":
+                return self.greater
+            case "less":
+                return self.less
+            case "two-sided":
+                return self.two_sided
+
+
+@dataclass(frozen=True, slots=True)
+class LargeSample:
+    """What the large-sample rule z/√(n − 1) says, and its true size with these rows and ties.
+
+    Attributes
+    ----------
+    z
+        The normal quantile.
+    value
+        z/√(n − 1), above 0; it may exceed 1.
+    size
+        The share of all orderings whose rho reaches it: 0 to 1, alpha if the rule were right.
+    """
+
+    z: float
+    value: float
+    size: Fraction
+
+
+CRITICAL_VALUES = Description(
+    "A critical value is the attainable coefficient nearest to zero whose p-value is alpha or less with these rows and "
+    "ties; it was read from the same null as the p-value and is not adjusted for several tests.",
+    (),
+)
+
+
+def critical_values(outline: NullOutline, alpha: Fraction) -> CriticalValues:
+    """Return the critical values at ``alpha`` (above 0, below 1) of a null that is laid out whole."""
+    statistics, weights = outline.statistics.tolist(), outline.weights
+    together: dict[int, Weight] = {}
+    for statistic, weight in zip(statistics, weights, strict=True):
+        together[abs(statistic)] = together.get(abs(statistic), 0) + weight
+    counted = outline.method != "exact algorithm, 12 digits"
+    return CriticalValues(
+        outline.method,
+        outline.of if counted else None,
+        greater=_nearest_to_zero(zip(reversed(statistics), reversed(weights), strict=True), outline, alpha),
+        less=_nearest_to_zero(
+            ((-statistic, weight) for statistic, weight in zip(statistics, weights, strict=True)),
+            outline,
+            alpha,
+            sign=-1,
+        ),
+        two_sided=_nearest_to_zero(sorted(together.items(), reverse=True), outline, alpha),
+    )
+
+
+def large_sample_value(n: int, alpha: Fraction, direction: Direction) -> tuple[float, float]:
+    """Return z and z/√(n − 1) for ``n`` of at least 2 rows: common practice above about thirty rows, no source."""
+    z = -float(ndtri(float(alpha) / (2 if direction == "two-sided" else 1)))
+    return z, z / sqrt(n - 1)
+
+
+def large_sample(outline: NullOutline, observed: Coefficient, alpha: Fraction, direction: Direction) -> LargeSample:
+    """Return the large-sample rule for Spearman's rho with its true size under ``outline``."""
+    z, value = large_sample_value(observed.n, alpha, direction)
+    least = Fraction(value) ** 2 * observed.x_square * observed.y_square
+    reached: Weight = 0
+    for statistic, weight in zip(outline.statistics.tolist(), outline.weights, strict=True):
+        on_side = direction == "two-sided" or (statistic > 0) == (direction == "greater")
+        if on_side and statistic**2 >= least:
+            reached += weight
+    return LargeSample(z, value, Fraction(reached) / outline.of)
+
+
+def _nearest_to_zero(
+    from_the_end: Iterable[tuple[int, Weight]], outline: NullOutline, alpha: Fraction, sign: int = 1
+) -> Critical | None:
+    """Return the last value above 0 whose tail stays within alpha; values fall from the end of the null."""
+    found = None
+    tail: Weight = 0
+    for statistic, weight in from_the_end:
+        tail += weight
+        # At 0 and beyond, a tail says nothing against unrelated rows.
+        if statistic <= 0 or (p := outline.p(tail)) > alpha:
+            break
+        if weight:
+            found = Critical(sign * statistic, p, tail if isinstance(tail, int) else None)
+    return found
