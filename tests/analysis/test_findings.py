@@ -304,14 +304,32 @@ def test_a_drawn_p_is_undecided_from_where_its_interval_reaches_alpha(hits: int,
     assert with_hits(hits, several=several)["A1"].undecided == undecided
 
 
-def test_the_others_are_held_fixed_when_an_end_is_adjusted() -> None:
-    """Each of three is judged by its own ends; an exact p is never undecided."""
+def test_the_ends_of_a_whole_family_are_adjusted_together() -> None:
+    """Each of three is judged with all of them at their ends; without draws nothing is undecided."""
     assert {name: found.undecided for name, found in with_hits(10, 16, 300).items()} == {
         "A1": True,  # 0.011 (0.005 to 0.0183): 3 times 0.0183 is above alpha, 3 times 0.005 is below
         "A2": True,  # 0.017 (0.0092 to 0.0259): 2 times 0.0259 is above alpha
         "A3": False,
     }
     assert not any(found.undecided for found in with_p("0.049", "0.051").findings.values())
+
+
+def test_a_counted_p_is_undecided_when_the_draws_of_another_decide_it() -> None:
+    """Exact p 0.04 beside a drawn one around 0.025: Holm gives 0.04 or 0.05 and more, as the other one falls."""
+    analysis = replace(Invented(), associations={"A1": association(), "A2": association()}).analysed()
+    first = analysis.results["A1"]
+    assert isinstance(first.test, RankTest)
+    counted = replace(first, test=replace(first.test, p=Fraction("0.04")))
+    findings = {
+        hits: decide(
+            {"A1": counted, "A2": as_if_drawn(analysis.results["A2"], hits)},
+            analysis.spec,
+            adjustment_of(analysis.spec),
+        )
+        for hits in (2, 24, 900)
+    }
+    assert [findings[hits]["A1"].undecided for hits in (2, 24, 900)] == [False, True, False]
+    assert [findings[hits]["A1"].word for hits in (2, 900)] == ["shown", "not shown"]
 
 
 def test_without_a_finding_nothing_is_undecided() -> None:

@@ -16,7 +16,8 @@ def printed(seconds: str = "0", memory: str = "0") -> tuple[str, str]:
 @pytest.mark.parametrize(
     ("seconds", "words"),
     [
-        ("0.002", "1 second"),
+        ("0.002", "0.0020 seconds"),
+        ("0.236", "0.24 seconds"),
         ("1.4", "1 second"),
         ("12.5", "12 seconds"),
         ("99.4", "99 seconds"),
@@ -48,6 +49,21 @@ def test_a_duration_is_told_in_the_unit_that_suits_it(seconds: str, words: str) 
 def test_memory_is_told_in_the_unit_that_suits_it(memory: str, words: str) -> None:
     """One decimal below ten; the unit counts in powers of two, as its name says."""
     assert printed(memory=memory)[1].replace("\u202f", " ") == words
+
+
+@pytest.mark.parametrize(
+    ("error", "words"),
+    [
+        ("0.00000042", "0.00000042"),
+        ("0.000000421", "0.00000043"),
+        ("0.012", "0.012"),
+        ("0.0000000001", "< 0.000000001"),
+    ],
+)
+def test_an_error_is_rounded_up(error: str, words: str) -> None:
+    """What is stated is never smaller than what was found."""
+    numbers = Numbers({"error": error}, 2, 3, "leading zero", Decimal("0.05"))
+    assert numbers.error("error").text.replace("\u202f", " ") == words
 
 
 def test_an_address_is_known_or_not() -> None:

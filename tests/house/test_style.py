@@ -53,6 +53,12 @@ MAY_ROUND = {
     "render/ticks.py": "labels of axes, which are exact multiples of their step",
 }
 MOST_LINES = 400
+MAY_BE_LONGER = {
+    "src/rankdocket/workflow/record_checker.py": (
+        440,
+        "one file by decision: it leaves the house in every record copy",
+    ),
+}
 
 TOP = {
     ".ci",
@@ -111,10 +117,12 @@ def test_rounding_has_its_places() -> None:
 
 
 def test_files_fit_in_a_head() -> None:
-    """No file of the program and no template is longer than 400 lines."""
+    """No file of the program and no template is longer than 400 lines, but for the list, each for its reason."""
     files = [*SRC.rglob("*.py"), *(path for path in TEMPLATES.rglob("*") if path.is_file())]
     lengths = {path.relative_to(ROOT).as_posix(): len(path.read_text(encoding="utf-8").splitlines()) for path in files}
-    assert {name: length for name, length in lengths.items() if length > MOST_LINES} == {}
+    longer = {name: length for name, length in lengths.items() if length > MOST_LINES}
+    assert longer.keys() == MAY_BE_LONGER.keys()
+    assert all(length <= MAY_BE_LONGER[name][0] for name, length in longer.items())
 
 
 def test_everything_public_says_what_it_is() -> None:

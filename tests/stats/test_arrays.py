@@ -66,6 +66,18 @@ def test_p_says_where_it_comes_from() -> None:
     assert more.null.looks[0].draws == 500
 
 
+def test_nothing_is_drawn_without_a_seed() -> None:
+    """A seed is never a default: what would have to be drawn is not given, and why is said."""
+    rows = np.random.default_rng(3).integers(0, 20, size=(2, 60))
+    result = associate(rows[0], rows[1])
+    assert (result.p, result.null) == (None, None)
+    assert result.null_reason == "The p-value needs drawn permutations, and no seed was given."
+    at_the_end = associate(np.sort(rows[0]), np.sort(rows[0]))
+    assert at_the_end.null_reason is None
+    assert at_the_end.null is None
+    assert at_the_end.p is not None
+
+
 def test_many_untied_rows_have_a_series_and_no_count() -> None:
     """Above the shipped counts p is a share with a stated error; nothing is drawn."""
     rows = np.random.default_rng(3).normal(size=(2, 60))
@@ -78,11 +90,17 @@ def test_many_untied_rows_have_a_series_and_no_count() -> None:
 
 def test_a_budget_that_is_not_positive_is_a_reason() -> None:
     """The coefficient stands; that there is no p-value is said, not raised."""
-    for seconds, memory in ((0, 2**30), (-1, 2**30), (float("nan"), 2**30), (10, 0), (10, -1)):
+    for seconds, memory in ((0, 2**30), (-1, 2**30), (float("nan"), 2**30), (10, 0), (10, -1), (Decimal("NaN"), 1)):
         result = associate([1, 2, 3, 4], [1, 2, 4, 3], budget_seconds=seconds, budget_memory=memory)
         assert result.rho == 0.8
         assert (result.p, result.exact, result.tails, result.null, result.null_choice) == (None,) * 5
         assert result.null_reason == "The budget of the null is not positive."
+    for options in ({"budget_seconds": "lots"}, {"level": "95%"}, {"level": float("nan")}):
+        with pytest.raises(ValueError):
+            associate([1, 2, 3, 4], [1, 2, 4, 3], **options)
+    for options in ({"permutations": 1.5}, {"seed": 1.5}):
+        with pytest.raises(TypeError):
+            associate([1, 2, 3, 4], [1, 2, 4, 3], **options)
     assert associate([1, 2], [1, 2], budget_seconds=0).null_reason == "There are fewer than three complete rows."
 
 

@@ -62,6 +62,16 @@ def test_what_cannot_be_reached_has_no_critical_value() -> None:
     assert found.greater.p == Fraction(1, 24)
 
 
+def test_the_other_side_has_a_value_of_its_own_or_none() -> None:
+    """A lopsided null reaches as far on one side only; where both sides do, the other one begins at its own value."""
+    alone = critical_values(outline_of(exact_null_of("Spearman rho", *PATTERNS[1])), ALPHA).two_sided
+    both = critical_values(outline_of(exact_null_of("Spearman rho", *PATTERNS[0])), ALPHA).two_sided
+    assert alone is not None
+    assert both is not None
+    assert alone.opposite is None
+    assert both.opposite == -both.numerator
+
+
 def test_a_value_that_no_ordering_gives_is_no_critical_value() -> None:
     """Weights of 0 stand for values that do not occur: the critical value is one that does."""
     outline = NullOutline("exact, no ties", np.array([-8, 0, 4, 8], dtype=np.int64), (1, 98, 0, 1), 100)

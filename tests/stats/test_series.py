@@ -57,8 +57,8 @@ def by_saddlepoint(n: int, numerators: npt.NDArray[np.int64]) -> Reals:
     return np.array([lattice_tail(function, point, STEP / n**2) or np.nan for point in points.tolist()])
 
 
-# At n = 20, 22 and 26 these are the values of an earlier measurement by other code, to its digits; that one left out the value
-# next to 0 at n = 22, where t is worst.
+# Golden values: the approximations are this program's, held against the exact counts.  At n = 20, 22 and 26 an independent
+# prototype had printed the same two digits, but for t at n = 22, where it had left out the value next to 0.
 LARGEST_ERRORS = {
     by_t: "1.3e-3 1.2e-3 1.0e-3 8.9e-4 8.8e-4 8.7e-4 8.7e-4 8.6e-4 8.5e-4 8.3e-4 8.2e-4",
     by_z: "6.7e-3 6.3e-3 5.9e-3 5.6e-3 5.3e-3 5.1e-3 4.8e-3 4.6e-3 4.4e-3 4.3e-3 4.1e-3",
@@ -112,11 +112,13 @@ def test_the_saddlepoint_keeps_its_error_at_every_tenth_value(n: int) -> None:
     assert np.abs(found - exact[::10]).max() <= largest_error(by_saddlepoint, n)
 
 
-def test_the_series_improves_on_what_is_commonly_used() -> None:
-    """At each n the order of size is z, t, series to n⁻⁴, series to n⁻⁵."""
-    for n in range(FIRST_MEASURED, reach() + 1):
-        errors = [largest_error(method, n) for method in (by_z, by_t, by_shorter_series, by_series)]
-        assert errors == sorted(errors, reverse=True)
+@pytest.mark.parametrize("n", [FIRST_MEASURED, 25, reach()])
+def test_the_series_improves_on_what_is_commonly_used(n: int) -> None:
+    """Over all attainable values the order of the largest error is z, t, series to n⁻⁴, series to n⁻⁵."""
+    numerators, exact = upper_half(n)
+    methods = (by_z, by_t, by_shorter_series, by_series)
+    errors = [float(np.abs(method(n, numerators) - exact).max()) for method in methods]
+    assert errors == sorted(errors, reverse=True)
 
 
 def _in_bands(bands: tuple[ErrorBand, ...], found: Reals, exact: Reals, most: float) -> list[tuple[ErrorBand, float]]:

@@ -115,7 +115,7 @@ LARGE_SAMPLE_SIZES = (
     (60, "0.04936", "0.00910"),
     (100, "0.04962", "0.00947"),
 )
-"""n, true two-sided size of z/√(n − 1) at 0.05 and 0.01: measured beforehand by other code (exact, then series to n⁻⁴ and n⁻⁵)."""
+"""n, true two-sided size of z/√(n − 1) at 0.05 and 0.01: as an independent prototype printed it (exact, then series to n⁻⁴ and n⁻⁵)."""
 
 
 @pytest.mark.parametrize(("n", "at_5", "at_1"), LARGE_SAMPLE_SIZES)
@@ -153,3 +153,20 @@ def test_two_rows_have_no_critical_value() -> None:
     for ask in (critical_value_approximate, critical_value_large_sample):
         with pytest.raises(ComputeError, match="at least 3 rows, not 2"):
             ask(2, 0.05, sidedness="two-sided")
+
+
+@pytest.mark.parametrize("alpha", [0, 1, -1, 1.5, float("nan"), float("inf")])
+def test_a_level_that_is_none_is_refused(alpha: float) -> None:
+    """Alpha lies between 0 and 1."""
+    for function in (critical_value, critical_value_approximate, critical_value_large_sample):
+        with pytest.raises(ComputeError, match="alpha must lie between 0 and 1"):
+            function(10, alpha, sidedness="two-sided")
+
+
+def test_a_side_that_is_none_and_half_a_row_are_refused() -> None:
+    """Nothing is taken for something else."""
+    for function in (critical_value, critical_value_approximate, critical_value_large_sample):
+        with pytest.raises(ComputeError, match="sidedness must be one of"):
+            function(10, 0.05, sidedness="both")
+    with pytest.raises(ComputeError, match="not for 2"):
+        null_counts(2.5)

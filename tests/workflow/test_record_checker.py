@@ -8,12 +8,15 @@ import shutil
 import subprocess
 import sys
 from collections import Counter
+from decimal import Decimal
 from fractions import Fraction
 from pathlib import Path
 
 import pytest
 
 import rankdocket.workflow.record_checker as checker
+from rankdocket.stats.nulls.tied_forecast import forecast_rho, forecast_tails
+from rankdocket.stats.ranks import TieGroups
 from rankdocket.workflow.study_folder import open_study
 from workflow.office import DATA, SPEC, STUDIES, Ran, Sealed, copy_study, forge, numbers_in, replaced_once, run
 
@@ -107,6 +110,63 @@ def test_a_finding_changed_everywhere_is_decided_anew(study: Path) -> None:
     forge(study, "1", "analysis.json", replaced_once(f'"word": "{was}"', f'"word": "{told}"'))
     ran = _check(study / "editions" / "1")
     assert f"A1: the finding is {told}, made anew {was}." in ran.out
+
+
+@pytest.mark.parametrize(
+    ("key", "forged", "told"),
+    [
+        ("numerator", "296", "A1: critical value, two-sided: numerator is 296, made anew "),
+        ("value", "0.123", "A1: critical value, two-sided is 0.123, made anew "),
+        ("count", "1", "A1: critical value, two-sided: count is "),
+        ("of", "1", "A1: critical value, two-sided: count is "),
+        ("p", "0.000001", "A1: critical value, two-sided: p is 0.000001, made anew "),
+        ("state", "none", "A1: critical value, two-sided: state is none, made anew given."),
+    ],
+)
+def test_a_forged_critical_value_is_named(study: Path, key: str, forged: str, told: str) -> None:
+    """Whatever of a critical value is filed follows from all orderings, and is held against them."""
+
+    def forgery(text: str) -> str:
+        analysis = json.loads(text)
+        analysis["associations"]["A1"]["null"]["critical"]["two-sided"][key] = forged
+        return json.dumps(analysis)
+
+    forge(study, "1", "analysis.json", forgery)
+    ran = _check(study / "editions" / "1")
+    assert ran.status == 1
+    assert told in ran.out
+
+
+def test_a_forged_smallest_p_is_named(study: Path) -> None:
+    """The smallest attainable p is that of the farthest ordering."""
+
+    def forgery(text: str) -> str:
+        analysis = json.loads(text)
+        analysis["associations"]["A1"]["smallest_attainable_p"] = "0.01"
+        return json.dumps(analysis)
+
+    forge(study, "1", "analysis.json", forgery)
+    assert "A1: the smallest attainable p is 0.01, made anew " in _check(study / "editions" / "1").out
+
+
+def test_a_null_that_was_not_laid_out_is_not_asked_for(tmp_path: Path) -> None:
+    """Where the budget let the tails alone be counted there is no critical value to hold; the count still is."""
+    copy = copy_study("first-look", tmp_path / "first-look")
+    x, y = TieGroups((1, 2, 1, 3, 1, 2, 4)), TieGroups((1, 1, 3, 1, 5, 1, 2))
+    rows = zip(x.codes().tolist(), reversed(y.codes().tolist()), strict=True)
+    lines = [(copy / DATA).read_text("utf-8").splitlines()[0], *(f"E{i:02},{a},{b}" for i, (a, b) in enumerate(rows))]
+    (copy / DATA).write_text("\n".join(lines) + "\n", "utf-8")
+    forecasts = forecast_tails(x, y, "whole numbers"), forecast_rho(x, y)
+    seconds = Decimal(sum(forecast.nanoseconds for forecast in forecasts) // 2).scaleb(-9)
+    budget = f"alpha: 0.05\n  p_value: {{budget: {{seconds: {seconds}}}}}\n"
+    (copy / SPEC).write_text(replaced_once("alpha: 0.05\n", budget)((copy / SPEC).read_text("utf-8")), "utf-8")
+    assert run("issue", ".", "--reason", "first issue", cwd=copy).status == 0
+    edition = copy / "editions" / "1"
+    found = json.loads((edition / "analysis.json").read_bytes())["associations"]["A1"]
+    assert found["test"]["count"] is not None
+    assert "not worked out" in (edition / "report.html").read_text("utf-8")
+    ran = _check(edition)
+    assert (ran.status, ran.out.startswith("Everything agrees")) == (0, True)
 
 
 def test_files_touched_without_repair_are_named(study: Path) -> None:

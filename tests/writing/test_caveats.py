@@ -138,8 +138,8 @@ WORDS = {
         "limit 11). The estimate is given without a test."
     ),
     "undecided": (
-        "A1: undecided by these draws. With p at one end of its interval, 0.070 to 0.106, the finding would be another "
-        "one. The ceiling of draws that the plan sets was reached; a plan with more would settle the side."
+        "A1: undecided by these draws. With p at another place in its interval, 0.070 to 0.106, the finding would be another "
+        "one. The ceiling of draws that the plan sets was reached; a plan with more may settle the side."
     ),
     "two_sided_rule": (
         "A1: the ties make the null lopsided. Counting orderings at least as far from zero gives p = 0.250; doubling "

@@ -14,6 +14,7 @@ from rankdocket.stats.adjustments.holm import HOLM
 from rankdocket.stats.critical import CRITICAL_VALUES
 from rankdocket.stats.intervals.bonett_wright import BONETT_WRIGHT
 from rankdocket.stats.null import MONTE_CARLO_INTERVAL, MONTE_CARLO_LOOKS, NULL_DESCRIPTIONS, TWO_SIDED
+from rankdocket.stats.nulls.tau_exact import TAU_NULL_DESCRIPTIONS
 from rankdocket.stats.ranks import TieGroups
 from rankdocket.stats.rho import RHO
 from rankdocket.stats.tau import TAU_B
@@ -41,6 +42,7 @@ def words_of(description: Description) -> str:
 
 RULES: dict[str, Description] = {
     **NULL_DESCRIPTIONS,
+    **{f"tau: {method}": description for method, description in TAU_NULL_DESCRIPTIONS.items()},
     "rho": RHO,
     "tau-b": TAU_B,
     "two-sided": TWO_SIDED,
@@ -81,7 +83,11 @@ RAN: dict[str, tuple[Invented, set[str]]] = {
     ),
     "tau-b": (
         replace(BASE, associations=TAU),
-        {"critical values", "exact, no ties", "tau-b", "two-sided", *ALL_CHECKS_BUT_SHAPE},
+        {"critical values", "tau: exact, no ties", "tau-b", "two-sided", *ALL_CHECKS_BUT_SHAPE},
+    ),
+    "tau-b with ties": (
+        replace(BASE, columns={"u": RISING, "v": "1 1 2 3 4 5 6 7 8 9"}, associations=TAU),
+        {"critical values", "tau: exact, conditional on the ties", "tau-b", "two-sided", *ALL_CHECKS_BUT_SHAPE},
     ),
     "one-sided": (
         replace(BASE, inference="alpha: 0.05, sidedness: one-sided"),
@@ -126,7 +132,7 @@ RAN: dict[str, tuple[Invented, set[str]]] = {
         {"critical values", "Edgeworth series", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE, "shape"},
     ),
     "far above the table": (
-        replace(BASE, columns={"u": FORTY, "v": FORTY}),
+        replace(BASE, columns={"u": FORTY, "v": " ".join(map(str, [*range(3, 41), 1, 2]))}),
         {"critical values", "saddlepoint", "rho", "two-sided", "interval", *ALL_CHECKS_BUT_SHAPE, "shape"},
     ),
     "twelve digits": (
@@ -136,7 +142,6 @@ RAN: dict[str, tuple[Invented, set[str]]] = {
             inference=f"alpha: 0.05, p_value: {{budget: {{seconds: {only_doubles(TWELVE_DIGITS[0][1], TWELVE_DIGITS[1][1])}}}}}",
         ),
         {
-            "critical values",
             "exact algorithm, 12 digits",
             "rho",
             "two-sided",

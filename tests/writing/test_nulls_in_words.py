@@ -75,20 +75,28 @@ def test_one_row_more_is_a_series_with_its_error() -> None:
     assert "of" not in test
     assert test["method"] == "Edgeworth series"
     assert float(test["p_low"]) < float(test["p"]) < float(test["p_high"])
-    assert rows_of(found)["Error of the series"].startswith("p lies between ")
+    assert rows_of(found)["Error of approximation"].startswith("of p at most 0.0")
     assert "the Edgeworth series with exact cumulants" in found.text()
     assert "these bounds are extrapolated" in found.text()
-    assert "the share of all orderings for each stretch of values, by the series" in text_of(picture_of(found).caption)
+    assert "the share of all orderings at each stretch of values, by the series" in text_of(picture_of(found).caption)
 
 
 def test_a_tiny_p_above_the_table_comes_from_the_saddlepoint() -> None:
-    """Perfect agreement of forty rows: p is far below the reach of the series, above 0, and printed as below a limit."""
-    column = " ".join(str(place) for place in range(1, 41))
-    found = told(Invented(columns={"u": column, "v": column}).analysed())
+    """Nearly perfect agreement of forty rows: p is far below the reach of the series, above 0, printed as below a limit."""
+    columns = {"u": " ".join(map(str, range(1, 41))), "v": " ".join(map(str, [*range(2, 41), 1]))}
+    found = told(Invented(columns=columns).analysed())
     test = filed(found)["test"]
     assert test["method"] == "saddlepoint"
-    assert 0 < float(test["p"]) < 1e-15
+    assert 0 < float(test["p"]) < 1e-9
     assert "saddlepoint approximation" in found.text()
+
+
+def test_perfect_order_above_the_table_is_counted() -> None:
+    """At an end of the null the count is known in closed form: two of 40! orderings."""
+    column = " ".join(str(place) for place in range(1, 41))
+    found = told(Invented(columns={"u": column, "v": column}).analysed())
+    assert (filed(found)["test"]["method"], filed(found)["test"]["count"]) == ("exact, no ties", "2")
+    assert rows_of(found)["Null"].startswith("Exact, no ties. The data lie at an end of the null")
 
 
 def test_ties_within_the_budget_are_counted() -> None:
@@ -120,7 +128,7 @@ def test_a_smaller_budget_gives_twelve_digits() -> None:
     test = filed(found)["test"]
     assert (test["method"], test["count"]) == ("exact algorithm, 12 digits", None)
     assert rows_of(found)["Null"].startswith("Exact algorithm, 12 digits.")
-    assert "It would have needed about" in rows_of(found)["Null"]
+    assert "Whole numbers would have needed about" in rows_of(found)["Null"]
     assert len(test["p"].replace(".", "").lstrip("0")) <= 12
     assert abs(float(test["p"]) / float(filed(whole)["test"]["p"]) - 1) < 1e-11
     assert filed(whole)["test"]["count"] is not None
@@ -129,11 +137,12 @@ def test_a_smaller_budget_gives_twelve_digits() -> None:
 def test_what_the_budget_does_not_hold_is_said() -> None:
     """Where only the tails fit, no critical value and no picture is made, and the report says why."""
     found = five_by_five(str(only_doubles(*FIVE_BY_FIVE)))
-    words = "not worked out: the whole null would have taken more than the budget"
+    words = "not worked out: the whole null, from which it is read, would have taken more than the budget"
     assert rows_of(found)["Critical value, two-sided"] == words
     with pytest.raises(StopIteration):
         picture_of(found)
-    assert "shares" not in filed(found)["null"]
+    assert "bars" not in filed(found)["null"]
+    assert "A critical value is" not in found.text()
 
 
 def test_tails_in_whole_numbers_stand_beside_a_null_in_doubles() -> None:
@@ -153,7 +162,7 @@ def test_what_an_exact_count_would_have_needed_is_said() -> None:
     """Eighty rows in seven classes: drawn, with the forecast that spoke against counting and the plan's budget."""
     words = rows_of(report(80, 7, SEEDED))["Null"]
     assert words.startswith("Drawn permutations. A complete count was not attempted: its forecast exceeded the budget.")
-    assert "It would have needed about" in words
+    assert "A complete count would have needed about" in words
     assert "the budget was 10 seconds and 1.0\u202fGiB." in words
 
 
@@ -198,14 +207,52 @@ def test_the_critical_value_and_the_rule_of_thumb_stand_side_by_side() -> None:
     """Ten untied rows: 0.648 (published tables), and the large-sample value 1.96/3 = 0.653 with its true size."""
     found = told(Invented(columns={"u": RISING, "v": MIXED}).analysed())
     assert rows_of(found)["Critical value, two-sided"] == "rho of 0.648 or more in size has p\u00a0=\u00a00.049"
-    assert "would say 0.65; the true share of orderings that reach it is 0.0" in rows_of(found)["For comparison"]
+    assert "would say 0.65; the share of orderings that reach it is 0.0" in rows_of(found)["For comparison"]
+
+
+def test_too_few_draws_say_nothing_about_the_rows() -> None:
+    """From 999 draws no p lies below 0.001: at an alpha below, that is said of the draws, not of rows and ties."""
+    inference = "alpha: 0.0005, p_value: {by: permutation, permutations: 999, most_draws: 999, seed: 5}"
+    found = told(Invented(columns={"u": RISING, "v": RISING}, inference=inference).analysed())
+    assert rows_of(found)["Critical value, two-sided"] == "not placed: these draws are too few to place it"
+    assert "these draws are too few to place a critical value" in text_of(picture_of(found).caption)
+    assert "the draws that the plan allows are too few for a p of alpha or less" in found.text()
+    assert "no coefficient of these rows" not in found.text()
+    assert "no attainable value" not in found.text()
+
+
+def test_what_is_drawn_is_said_to_be_drawn() -> None:
+    """A critical value and a share from draws are estimates and named as such."""
+    rows = rows_of(report(80, 7, SEEDED))
+    assert rows["Critical value, two-sided"].startswith("by these draws, rho of ")
+    assert "the share of drawn orderings that reach it is" in rows["For comparison"]
+
+
+def test_a_critical_value_is_not_printed_as_larger_than_it_is() -> None:
+    """The value printed is one that the critical coefficient reaches."""
+    for made in (report(30), report(31), report(40, 3), report(60, None, "alpha: 0.05", "coefficient: Kendall tau-b")):
+        filed_value = abs(float(filed(made)["null"]["critical"]["two-sided"]["value"]))
+        words = rows_of(made)["Critical value, two-sided"].split()
+        assert float(words[2]) <= filed_value
+
+
+def test_a_coarse_null_hatches_what_is_there() -> None:
+    """Twenty rows, one of them apart in both: rho is -0.05 or 1; nothing is hatched where no value lies."""
+    nearly = " ".join(["5"] * 19 + ["7"])
+    picture = picture_of(told(Invented(columns={"u": nearly, "v": nearly}).analysed()))
+    (region,) = picture.data["regions"]  # type: ignore[misc]
+    assert 0.9 < float(region["from"]) <= 1  # type: ignore[arg-type,index,call-overload]
+    steps = picture.data["steps"]
+    assert isinstance(steps, tuple)
+    assert len(steps) == 2
+    assert all(float(step["low"]) > -0.1 and float(step["high"]) < 1.1 for step in steps)
 
 
 def test_a_lopsided_null_has_two_one_sided_critical_values() -> None:
     """Six equal values of eight: the upper and the lower side differ, and each is printed."""
     found = told(Invented(columns={"u": "1 1 1 1 1 1 2 3", "v": "1 1 1 1 1 2 2 3"}).analysed())
     rows = rows_of(found)
-    assert rows["Critical value, upper side"].startswith("rho of 0.819 or more")
+    assert rows["Critical value, upper side"].startswith("rho of 0.8189 or more")
     assert rows["Critical value, lower side"].startswith("cannot be reached")
 
 
@@ -233,6 +280,7 @@ def test_tau_has_its_null_and_its_picture() -> None:
 def test_the_bars_hold_nearly_everything(found: Any) -> None:
     """Shares of the picture sum to nearly 1, and edges rise."""
     null = filed(found())["null"]
-    assert 0.999 < sum(float(share) for share in null["shares"]) < 1.0000001
-    assert len(null["edges"]) == len(null["shares"]) + 1
-    assert all(float(left) < float(right) for left, right in pairwise(null["edges"]))
+    bars = null["bars"]
+    assert 0.999 < sum(float(share) for share in bars["share"]) < 1.0000001
+    assert len(bars["low"]) == len(bars["high"]) == len(bars["share"])
+    assert all(float(left) < float(right) for left, right in pairwise(bars["low"]))

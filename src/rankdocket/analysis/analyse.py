@@ -33,7 +33,7 @@ from rankdocket.stats.coefficient import Coefficient
 from rankdocket.stats.comparisons import pearson_r, t_value_p
 from rankdocket.stats.interval import Interval, IntervalQuestion, NoInterval
 from rankdocket.stats.intervals import interval_of
-from rankdocket.stats.null import TailCounts
+from rankdocket.stats.null import TailShares
 from rankdocket.stats.null_result import NullQuestion, NullResult, null_result
 from rankdocket.stats.ranks import Codes
 from rankdocket.stats.rho import rho, short_form, tie_corrected_rho
@@ -128,7 +128,7 @@ def require_seed(spec: StudySpec, screened: Mapping[str, Screened]) -> None:
                     "inference.p_value",
                     Message.SEED_MISSING,
                     f"the p-value of {', '.join(drawn)} needs drawn permutations and the plan states no seed.",
-                    "Write, with a number of your own: p_value: {by: exact when possible, seed: 417}.",
+                    "Add a number of your own to p_value, as in p_value: {by: exact when possible, seed: 417}.",
                 ),
             )
         )
@@ -191,23 +191,24 @@ def _test(
         budget_of(spec),
         drawing_plan(spec, address),
     )
-    p = null.tails.p(direction)
-    return RankTest(
-        direction,
-        choice,
-        null,
+    p, p_interval = _p_with_interval(null, direction, inference.confidence_level)
+    return RankTest(direction, choice, null, p, p_interval, address)
+
+
+def _p_with_interval(
+    null: NullResult, direction: Direction, level: Decimal
+) -> tuple[Fraction, tuple[float, float] | None]:
+    """Return p and where its error lets it lie."""
+    tails = null.tails
+    if isinstance(tails, TailShares):
+        share = tails.share(direction)
         # A share is its twelve digits: whoever adjusts the filed p must come to the same adjusted p.
-        p if isinstance(null.tails, TailCounts) else Fraction(filed(p)),
-        _p_interval(null, direction, inference.confidence_level),
-        address,
-    )
-
-
-def _p_interval(null: NullResult, direction: Direction, level: Decimal) -> tuple[float, float] | None:
-    """Return where p lies: after several looks by the interval of the last one, which shares the level with them."""
+        p = Fraction(filed(share.value))
+        return p, (float(max(Fraction(0), p - share.error)), float(min(Fraction(1), p + share.error)))
     if null.looks:
-        return null.looks[-1].low, null.looks[-1].high
-    return null.tails.interval(direction, level)
+        # After several looks, the interval of the last one, which shares the level with them.
+        return tails.p(direction), (null.looks[-1].low, null.looks[-1].high)
+    return tails.p(direction), tails.interval(direction, level)
 
 
 def _interval(checks: tuple[CheckOutcome, ...], question: IntervalQuestion) -> Interval | NoInterval:

@@ -2,10 +2,10 @@
 
 from collections.abc import Iterable
 from dataclasses import dataclass
-from decimal import Decimal
+from decimal import Decimal, InvalidOperation
 from fractions import Fraction
 from functools import lru_cache
-from math import isfinite
+from math import ceil, isfinite
 from typing import Final, TypeAlias
 
 import numpy as np
@@ -30,7 +30,8 @@ FEWEST_ROWS: Final = 3
 """With two rows the coefficient could only be 1 or −1."""
 
 MOST_SECONDS: Final = Decimal(10**9)
-"""A longer budget is none."""
+MOST_BYTES: Final = Decimal(2**60)
+"""A larger budget is none."""
 
 TAILS_KEPT: Final = 8
 """Results whose tails are remembered."""
@@ -72,7 +73,7 @@ class ArrayAssociation:
     level: Decimal
     permutations: int
     most_draws: int
-    seed: int
+    seed: int | None
     budget: Budget | None
 
     @property
@@ -118,7 +119,14 @@ class ArrayAssociation:
     @property
     def null_reason(self) -> str | None:
         """Why there is no p-value, as a sentence; ``None`` when there is one."""
-        return self.reason or ("The budget of the null is not positive." if self.budget is None else None)
+        if self.reason:
+            return self.reason
+        if self.budget is None:
+            return "The budget of the null is not positive."
+        choice = self.null_choice
+        if choice is not None and choice.needs_draws and self.seed is None and _at_limit(self) is None:
+            return "The p-value needs drawn permutations, and no seed was given."
+        return None
 
     @property
     def exact(self) -> TailCounts | None:
@@ -128,14 +136,21 @@ class ArrayAssociation:
     @property
     def null_choice(self) -> NullChoice | None:
         """Which null would be used, and why; data at a limit of the attainable range need none."""
-        if self.budget is None:
+        if self.reason or self.budget is None:
             return None
         return choose_null("Spearman rho", self._x_groups, self._y_groups, "exact when possible", self.budget)
 
     @property
     def null(self) -> NullResult | None:
-        """Tails, two-sided critical values at 1 − ``level`` and what belongs to them; ``None`` without a p-value."""
-        return None if self.null_reason else _null(self)
+        """Tails, critical values at 1 − ``level`` and what belongs to them; ``None`` without a p-value.
+
+        ``None`` as well where the p-value of data at a limit of the attainable range is known without the null, and
+        drawing the null would need a seed.
+        """
+        choice = self.null_choice
+        if self.null_reason or choice is None or (choice.needs_draws and self.seed is None):
+            return None
+        return _null(self)
 
     @property
     def tails(self) -> Tails | None:
@@ -174,7 +189,7 @@ def associate(  # noqa: PLR0913 - options of a public function, given by name
     level: Decimal | str | float = 0.95,
     permutations: int = 20_000,
     most_draws: int | None = None,
-    seed: int = 0,
+    seed: int | None = None,
     budget_seconds: Decimal | float = 10,
     budget_memory: int = 2**30,
 ) -> ArrayAssociation:
@@ -191,21 +206,26 @@ def associate(  # noqa: PLR0913 - options of a public function, given by name
         Of the interval, above 0, below 1; a float is read as the shortest decimal that means it.
     permutations, most_draws, seed
         For a null that has to be drawn: draws to begin with, ceiling of draws while their error leaves the side of
-        1 − ``level`` open (no more than ``permutations`` by default), start of the random stream.
+        1 − ``level`` open (no more than ``permutations`` by default), start of the random stream; without a seed
+        nothing is drawn, and a p-value that would need it is not given.
     budget_seconds, budget_memory
-        Processor seconds and bytes that an exact null may be forecast to take.
+        Processor seconds and bytes that an exact null may be forecast to take; where they are not above 0 there is
+        no p-value, and ``null_reason`` says so.
 
     Raises
     ------
     ValueError
-        If the lengths differ, a value is infinite, or an option is out of range.
+        If the lengths differ, a value is infinite, or another option is out of range or no number.
     TypeError
-        If a value is no number.
+        If a value is no number, or a count of draws or a seed no whole number.
     """
-    chosen_level = Decimal(str(level))
-    if not 0 < chosen_level < 1:
+    chosen_level = _decimal(level, "level")
+    if chosen_level.is_nan() or not 0 < chosen_level < 1:
         raise ValueError(f"level must lie between 0 and 1, not be {level}")
-    if permutations < 1 or seed < 0 or (most_draws is not None and most_draws < permutations):
+    for name, number in (("permutations", permutations), ("most_draws", most_draws), ("seed", seed)):
+        if number is not None and not isinstance(number, int):
+            raise TypeError(f"{name} must be a whole number, not {number!r}")
+    if permutations < 1 or (seed is not None and seed < 0) or (most_draws is not None and most_draws < permutations):
         raise ValueError("permutations must be at least 1, most_draws no fewer, and seed at least 0")
     left, right = _numbers(x, "x"), _numbers(y, "y")
     if len(left) != len(right):
@@ -233,14 +253,27 @@ def associate(  # noqa: PLR0913 - options of a public function, given by name
 
 def _budget(seconds: Decimal | float, memory: int) -> Budget | None:
     """Return the budget, or ``None`` when there is nothing to spend."""
-    if not (seconds > 0 and memory > 0):  # not-a-number is not more than 0
+    time, room = _decimal(seconds, "budget_seconds"), _decimal(memory, "budget_memory")
+    if time.is_nan() or room.is_nan() or time <= 0 or room <= 0:
         return None
-    return Budget(int(min(Decimal(seconds), MOST_SECONDS) * NANOSECONDS), memory)
+    return Budget(ceil(min(time, MOST_SECONDS) * NANOSECONDS), ceil(min(room, MOST_BYTES)))
+
+
+def _decimal(value: object, name: str) -> Decimal:
+    try:
+        return Decimal(str(value))
+    except InvalidOperation:
+        raise ValueError(f"{name} must be a number, not {value!r}") from None
+
+
+def _at_limit(result: ArrayAssociation) -> TailCounts | None:
+    x, y = (tie_groups(_array(codes)) for codes in (result.x_codes, result.y_codes))
+    return tails_at_limit(x, y, result.coefficient)
 
 
 @lru_cache(maxsize=TAILS_KEPT)
 def _exact_tails(result: ArrayAssociation) -> TailCounts | None:
-    at_limit = tails_at_limit(result._x_groups, result._y_groups, result.coefficient)  # noqa: SLF001 - of this module
+    at_limit = _at_limit(result)
     if at_limit is not None:
         return at_limit
     choice = result.null_choice
@@ -256,7 +289,9 @@ def _null(result: ArrayAssociation) -> NullResult:
     assert choice is not None
     assert budget is not None
     alpha = 1 - Fraction(result.level)
-    drawing = DrawingPlan(result.permutations, result.most_draws, stream(result.seed, "arrays", "rho", "null"))
+    drawing = None
+    if result.seed is not None:
+        drawing = DrawingPlan(result.permutations, result.most_draws, stream(result.seed, "arrays", "rho", "null"))
     return null_result(
         choice,
         (_array(result.x_codes), _array(result.y_codes)),

@@ -3,6 +3,7 @@
 from collections.abc import Mapping
 from dataclasses import replace
 from fractions import Fraction
+from typing import Literal
 
 from rankdocket.analysis.family import basis_of, family_of
 from rankdocket.analysis.results import AssociationAnalysis, Estimate, Finding, NotEstimable, RankTest
@@ -19,12 +20,13 @@ def decide(
     A family member without a p enters the adjustment as p = 1: it never lowers another’s adjusted p.
     """
     family = family_of(spec)
-    raw = {name: _p_or_one(results[name]) for name in family}
-    adjusted = _adjusted(raw, adjustment)
+    adjusted, lowest, highest = (
+        _adjusted({name: _p_at(results[name], end) for name in family}, adjustment) for end in (None, 0, 1)
+    )
     return {
         name: replace(
             _finding(result, spec, adjusted.get(name)),
-            undecided=_is_undecided(result, spec, raw, adjustment),
+            undecided=_is_undecided(result, spec, (lowest.get(name), highest.get(name))),
         )
         for name, result in results.items()
     }
@@ -35,21 +37,27 @@ def _adjusted(raw: Mapping[str, Fraction], adjustment: AdjustmentRule) -> dict[s
 
 
 def _is_undecided(
-    result: AssociationAnalysis, spec: StudySpec, raw: Mapping[str, Fraction], adjustment: AdjustmentRule
+    result: AssociationAnalysis, spec: StudySpec, adjusted_ends: tuple[Fraction | None, Fraction | None]
 ) -> bool:
-    """Return whether the error of p reaches over alpha, for an association that the plan decides."""
-    name = result.screened.spec.name
+    """Return whether the errors of p-values reach over alpha, for an association that the plan decides.
+
+    An adjusted p rises with every p of the family: with all of them at their lower ends, and at their upper ends, it
+    is as small and as large as these errors allow, whoever among the family has them.
+    """
     basis = basis_of(result.screened.spec, spec)
-    if basis == "outside the family" or not isinstance(result.test, RankTest) or result.test.p_interval is None:
+    if basis == "outside the family" or not isinstance(result.test, RankTest):
         return False
-    ends = [Fraction(end) for end in result.test.p_interval]
-    if basis == "family":
-        ends = [_adjusted({**raw, name: end}, adjustment)[name] for end in ends]
-    return ends[0] <= Fraction(spec.inference.alpha) < ends[1]
+    low, high = adjusted_ends if basis == "family" else (_p_at(result, 0), _p_at(result, 1))
+    return low is not None and high is not None and low <= Fraction(spec.inference.alpha) < high
 
 
-def _p_or_one(result: AssociationAnalysis) -> Fraction:
-    return result.test.p if isinstance(result.test, RankTest) else Fraction(1)
+def _p_at(result: AssociationAnalysis, end: Literal[0, 1] | None) -> Fraction:
+    """Return the p-value, or the lower or upper end of where its error lets it lie; 1 without a test."""
+    if not isinstance(result.test, RankTest):
+        return Fraction(1)
+    if end is None or result.test.p_interval is None:
+        return result.test.p
+    return Fraction(result.test.p_interval[end])
 
 
 def _finding(result: AssociationAnalysis, spec: StudySpec, adjusted: Fraction | None) -> Finding:

@@ -15,7 +15,6 @@ from rankdocket.stats.null import TailCounts
 from rankdocket.stats.null_result import NullResult
 from rankdocket.stats.nulls.series import SADDLEPOINT_BOUNDS, SERIES_ABSOLUTE, SERIES_BOUNDS, SWITCH
 from rankdocket.stats.nulls.untied import reach
-from rankdocket.stats.outline import Bar
 from rankdocket.vocabulary import Direction
 
 DIRECTIONS: Final[tuple[Direction, ...]] = ("two-sided", "greater", "less")
@@ -23,8 +22,10 @@ DIRECTIONS: Final[tuple[Direction, ...]] = ("two-sided", "greater", "less")
 EDGE_DIGITS: Final = 6
 """Digits of the edges of bars: a picture shows no more."""
 
-UNREACHED: Final = "no coefficient of these rows and ties reaches alpha"
-UNKNOWN: Final = "the whole null would have taken more than the budget"
+UNREACHED: Final = "no coefficient of these rows and ties has a p-value of alpha or less"
+UNPLACED: Final = "these draws are too few to place it"
+UNKNOWN: Final = "the whole null, from which it is read, would have taken more than the budget"
+"""Why there is no critical value."""
 
 
 def rank_test_to_plain(test: RankTest, alpha: Decimal) -> dict[str, Plain]:
@@ -44,7 +45,8 @@ def rank_test_to_plain(test: RankTest, alpha: Decimal) -> dict[str, Plain]:
             "count_less": str(tails.less),
         }
     else:
-        plain |= {"count": None, "digits": DIGITS, "error": filed(tails.share(test.direction).error)}
+        digits: dict[str, Plain] = {"digits": DIGITS} if tails.method == "exact algorithm, 12 digits" else {}
+        plain |= {"count": None, **digits, "error": filed(tails.share(test.direction).error)}
     plain |= {
         "p": filed_beside(test.p, alpha),
         "p_greater": filed_beside(tails.p("greater"), alpha),
@@ -69,14 +71,18 @@ def null_to_plain(test: RankTest, observed: Coefficient, alpha: Decimal) -> dict
         of: dict[str, Plain] = {} if null.critical.of is None else {"of": str(null.critical.of)}
         plain["method"] = null.critical.method
         plain["critical"] = {
-            direction: _critical(null.critical.toward(direction), observed, alpha)
+            direction: _critical(null.critical.toward(direction), observed, alpha, drawn=test.choice.needs_draws)
             | of
             | _edge(null, direction, observed)
             for direction in DIRECTIONS
         }
-    if null.bars:
-        plain["edges"] = [_in_coefficients(edge, observed) for edge in _edges(null.bars)]
-        plain["shares"] = [filed(bar.share) for bar in null.bars]
+    if null.picture is not None:
+        bars = null.picture.bars
+        plain["bars"] = {
+            "low": [_in_coefficients(bar.low, observed) for bar in bars],
+            "high": [_in_coefficients(bar.high, observed) for bar in bars],
+            "share": [filed(bar.share) for bar in bars],
+        }
     if null.large_sample is not None:
         rule = null.large_sample
         plain["large_sample"] = {"z": filed(rule.z), "value": filed(rule.value), "size": filed(rule.size)}
@@ -116,16 +122,20 @@ def _draws(test: RankTest) -> dict[str, Plain]:
             for look in test.null.looks
         ],
         "looks_taken": len(test.null.looks),
+        "look_level": str(test.null.look_level),
     }
-    if test.null.saddlepoint is not None:
+    if test.null.saddlepoint is not None and test.p_interval is not None:
+        low, high = test.p_interval
         plain["saddlepoint_p"] = filed(test.null.saddlepoint)
+        plain["saddlepoint_lies_in_the_interval"] = low <= test.null.saddlepoint <= high
     return plain
 
 
-def _critical(critical: Critical | None, observed: Coefficient, alpha: Decimal) -> dict[str, Plain]:
+def _critical(critical: Critical | None, observed: Coefficient, alpha: Decimal, *, drawn: bool) -> dict[str, Plain]:
     if critical is None:
-        return {"state": "none", "reason": UNREACHED}
+        return {"state": "none", "reason": UNPLACED if drawn else UNREACHED}
     count: dict[str, Plain] = {} if critical.count is None else {"count": str(critical.count)}
+    error: dict[str, Plain] = {} if critical.error == 0 else {"p_error": filed(critical.error)}
     square = Fraction(observed.x_square * observed.y_square)
     return {
         "state": "given",
@@ -133,20 +143,21 @@ def _critical(critical: Critical | None, observed: Coefficient, alpha: Decimal) 
         "value": root_ratio_text(Fraction(critical.numerator), square, DIGITS),
         "p": filed_beside(critical.p, alpha),
         **count,
+        **error,
     }
 
 
 def _edge(null: NullResult, direction: Direction, observed: Coefficient) -> dict[str, Plain]:
-    """Return where a rejection region begins in the picture: half a step of the lattice before the critical value."""
+    """Return where rejection regions begin in the picture: at the bar of the critical value, that of its opposite too."""
     critical = None if null.critical is None else null.critical.toward(direction)
-    if critical is None:
+    if critical is None or null.picture is None:
         return {}
-    half = Fraction(null.step, 2)
-    return {"edge": _in_coefficients(critical.numerator + (half if direction == "less" else -half), observed)}
-
-
-def _edges(bars: tuple[Bar, ...]) -> list[Fraction]:
-    return [bars[0].low, *(bar.high for bar in bars)]
+    half = null.picture.half
+    edge = critical.numerator + half if direction == "less" else critical.numerator - half
+    opposite: dict[str, Plain] = {}
+    if critical.opposite is not None:
+        opposite = {"opposite_edge": _in_coefficients(critical.opposite + half, observed)}
+    return {"edge": _in_coefficients(edge, observed), **opposite}
 
 
 def _in_coefficients(numerator: Fraction, observed: Coefficient) -> str:

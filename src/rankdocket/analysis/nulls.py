@@ -8,7 +8,7 @@ from rankdocket.analysis.results import Screened
 from rankdocket.stats.attainable import smallest_attainable_p
 from rankdocket.stats.choose_null import NANOSECONDS, Budget, NullChoice, choose_null
 from rankdocket.stats.draws import stream
-from rankdocket.stats.nulls.monte_carlo import DrawingPlan
+from rankdocket.stats.nulls.monte_carlo import DrawingPlan, LookQuestion, smallest_drawn_p
 from rankdocket.study.spec import AssociationSpec, StudySpec
 
 
@@ -38,14 +38,20 @@ def levels_of(association: AssociationSpec, spec: StudySpec) -> tuple[Fraction, 
     return tuple(Fraction(spec.inference.alpha) / members for members in range(1, family_size(association, spec) + 1))
 
 
-def smallest_possible_p(screened: Screened, spec: StudySpec) -> Fraction:
-    """Return the smallest p that rows, ties and null allow: no p from B draws lies below 1/(B + 1).
-
-    Both variables must take two values at least.
-    """
-    smallest = smallest_attainable_p(
+def smallest_of_rows(screened: Screened, spec: StudySpec) -> Fraction:
+    """Return the smallest p that rows and ties allow; both variables must take two values at least."""
+    return smallest_attainable_p(
         screened.spec.coefficient, screened.x_ties, screened.y_ties, direction_of(screened, spec)
     )
-    if null_choice(screened, spec).needs_draws:
-        return max(smallest, Fraction(1, spec.inference.p_value.most_draws + 1))
-    return smallest
+
+
+def smallest_possible_p(screened: Screened, spec: StudySpec) -> Fraction:
+    """Return the smallest p that rows, ties and null allow: drawn permutations show none below their own number."""
+    smallest = smallest_of_rows(screened, spec)
+    if not null_choice(screened, spec).needs_draws:
+        return smallest
+    rule = spec.inference.p_value
+    question = LookQuestion(
+        direction_of(screened, spec), spec.inference.confidence_level, levels_of(screened.spec, spec)
+    )
+    return max(smallest, smallest_drawn_p(rule.permutations, rule.most_draws, question))

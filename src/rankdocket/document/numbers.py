@@ -7,7 +7,7 @@ of alpha on which a p-value lies.
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
-from decimal import ROUND_HALF_EVEN, Context, Decimal
+from decimal import ROUND_HALF_EVEN, ROUND_UP, Context, Decimal
 from fractions import Fraction
 from typing import Final
 
@@ -31,6 +31,9 @@ MEMORIES: Final = (("MiB", 2**20), ("GiB", 2**30), ("TiB", 2**40))
 
 MOST_SMALL_DECIMALS: Final = 6
 """Decimals of a smallest attainable p: beyond them it is told apart from nobody's alpha."""
+
+MOST_ERROR_DECIMALS: Final = 9
+"""Decimals of a stated error: beyond them it moves no printed p."""
 
 NEAR_ONE: Final = Decimal("0.95")
 """From here on a coefficient gets one more decimal (JCGM 100:2008, 7.2.6: three digits near unity)."""
@@ -202,12 +205,23 @@ class Numbers:
         """Return a forecast of seconds in the unit that suits it: "40 minutes"; nobody waits longer than a year."""
         exact = self._exact(key)
         seconds = Decimal(exact)
+        if seconds < 1:
+            return Number(key, exact, f"{_first_digits(seconds, ROUND_HALF_EVEN):f} seconds")
         for name, size, most in DURATIONS:
             amount = _rounded(seconds / size, 0)
             if amount < most:
                 shown = max(amount, Decimal(1))
                 return Number(key, exact, f"{shown} {name}{'' if shown == 1 else 's'}")
         return Number(key, exact, "more than a year")
+
+    def error(self, key: str) -> Number:
+        """Return how wrong a p-value can be, with its first digits, rounded up; "< 0.000001" where it is smaller."""
+        exact = self._exact(key)
+        value = Decimal(exact)
+        smallest = Decimal(1).scaleb(-MOST_ERROR_DECIMALS)
+        if value < smallest:
+            return Number(key, exact, f"<{NARROW_SPACE}{self._styled(smallest)}")
+        return Number(key, exact, self._styled(_first_digits(value, ROUND_UP)))
 
     def memory(self, key: str) -> Number:
         """Return a forecast of bytes in the unit that suits it: "1.2 GiB"."""
@@ -232,6 +246,11 @@ class Numbers:
         if self.style == "no leading zero" and abs(value) < 1:
             text = text.replace("0.", ".", 1)
         return _signed(text)
+
+
+def _first_digits(value: Decimal, rounding: str) -> Decimal:
+    """Return a value above 0 with its first two digits."""
+    return value.quantize(Decimal(1).scaleb(value.adjusted() - 1), rounding=rounding)
 
 
 def _rounded(value: Decimal, places: int) -> Decimal:

@@ -14,8 +14,8 @@ from rankdocket.stats.nulls.untied import reach, untied_null
 from rankdocket.stats.ranks import TieGroups
 from rankdocket.vocabulary import CoefficientName, PBy
 
-NULLS_KEPT: Final = 16
-"""Nulls remembered: tails, critical values and picture of one association need the same one."""
+NULLS_KEPT: Final = 2
+"""Nulls remembered, each of them up to the budget's memory: neighbouring associations often share their ties."""
 
 Route: TypeAlias = Literal["counted beforehand", "whole", "tails, whole numbers", "tails, doubles", "series", "draws"]
 """How a null is got, from the surest to the one with the largest error."""
@@ -23,9 +23,13 @@ Route: TypeAlias = Literal["counted beforehand", "whole", "tails, whole numbers"
 NANOSECONDS: Final = 10**9
 
 WITHIN: Final = "A complete count was made: its forecast lay within the budget."
+ONLY_TAILS: Final = (
+    "The orderings at least as extreme as the data were counted: the forecast of that lay within the budget, that of the "
+    "whole null beyond it."
+)
 ONLY_DOUBLES: Final = (
-    "A complete count in whole numbers would have exceeded the budget; the same programme in floating-point numbers "
-    "stayed within it."
+    "The orderings at least as extreme as the data were summed up in floating-point numbers: the forecast of that lay "
+    "within the budget, that of a count in whole numbers beyond it."
 )
 BEYOND: Final = "A complete count was not attempted: its forecast exceeded the budget."
 TOO_MANY_ROWS: Final = "A complete count was not attempted: there are more rows than are counted one and all."
@@ -38,6 +42,10 @@ class Budget:
 
     nanoseconds: int
     bytes: int
+
+    def less(self, spent: Forecast | None) -> "Budget":
+        """Return the time that is left after a forecast has been spent; memory is free again."""
+        return self if spent is None else Budget(self.nanoseconds - spent.nanoseconds, self.bytes)
 
     def holds(self, forecast: Forecast) -> bool:
         """Return whether a forecast stays within the budget."""
@@ -114,8 +122,8 @@ def _choose_untied(n: int) -> NullChoice:
     return NullChoice(
         "series",
         "Edgeworth series",
-        "There are no ties and more rows than the counts that come with the program reach; a series with a stated error "
-        "takes their place.",
+        "There are no ties and more rows than the counts that come with the program reach; an approximation with a stated "
+        "error takes their place.",
         None,
     )
 
@@ -130,7 +138,8 @@ def _choose(name: CoefficientName, x: TieGroups, y: TieGroups, budget: Budget) -
             return NullChoice(route, "exact algorithm, 12 digits", ONLY_DOUBLES, forecast, _cheapest(exceeded))
         else:
             method: NullMethod = "exact, conditional on the ties" if x.has_ties or y.has_ties else "exact, no ties"
-            return NullChoice(route, method, WITHIN, forecast, _cheapest(exceeded))
+            reason = WITHIN if route == "whole" else ONLY_TAILS
+            return NullChoice(route, method, reason, forecast, _cheapest(exceeded))
     return NullChoice("draws", "drawn permutations", BEYOND, None, _cheapest(exceeded))
 
 

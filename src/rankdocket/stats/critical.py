@@ -1,9 +1,9 @@
 """Critical values: the coefficient nearest to 0 that reaches alpha with these rows and ties, and what a rule of thumb is worth."""
 
 from collections.abc import Iterable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fractions import Fraction
-from math import sqrt
+from math import isqrt, sqrt
 
 from scipy.special import ndtri
 
@@ -26,11 +26,18 @@ class Critical:
         Its p-value, above 0, alpha at most.
     count
         Permutations at least as extreme, counted or drawn; ``None`` where shares are known only.
+    error
+        The true p-value lies within ``p`` ± ``error``, by the statement of its method; 0 where it was counted.
+    opposite
+        In the two-sided direction the numerator below 0 nearest to 0 that is at least as far from it; ``None`` where
+        there is none, and in the other directions.
     """
 
     numerator: int
     p: Fraction
     count: int | None
+    error: Fraction = Fraction(0)
+    opposite: int | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -83,7 +90,7 @@ class LargeSample:
 
 CRITICAL_VALUES = Description(
     "A critical value is the attainable coefficient nearest to zero whose p-value is alpha or less with these rows and "
-    "ties; it was read from the same null as the p-value and is not adjusted for several tests.",
+    "ties; it was read from the null laid out whole and is not adjusted for several tests.",
     (),
 )
 
@@ -105,7 +112,9 @@ def critical_values(outline: NullOutline, alpha: Fraction) -> CriticalValues:
             alpha,
             sign=-1,
         ),
-        two_sided=_nearest_to_zero(sorted(together.items(), reverse=True), outline, alpha),
+        two_sided=_with_opposite(
+            _nearest_to_zero(sorted(together.items(), reverse=True), outline, alpha), statistics, weights
+        ),
     )
 
 
@@ -118,26 +127,46 @@ def large_sample_value(n: int, alpha: Fraction, direction: Direction) -> tuple[f
 def large_sample(outline: NullOutline, observed: Coefficient, alpha: Fraction, direction: Direction) -> LargeSample:
     """Return the large-sample rule for Spearman's rho with its true size under ``outline``."""
     z, value = large_sample_value(observed.n, alpha, direction)
-    least = Fraction(value) ** 2 * observed.x_square * observed.y_square
+    least = _least_root(Fraction(value) ** 2 * observed.x_square * observed.y_square)
     reached: Weight = 0
     for statistic, weight in zip(outline.statistics.tolist(), outline.weights, strict=True):
         on_side = direction == "two-sided" or (statistic > 0) == (direction == "greater")
-        if on_side and statistic**2 >= least:
+        if on_side and abs(statistic) >= least:
             reached += weight
     return LargeSample(z, value, Fraction(reached) / outline.of)
+
+
+def _with_opposite(found: Critical | None, statistics: list[int], weights: tuple[Weight, ...]) -> Critical | None:
+    if found is None:
+        return None
+    beyond = (
+        statistic
+        for statistic, weight in zip(statistics, weights, strict=True)
+        if weight and statistic <= -found.numerator
+    )
+    return replace(found, opposite=max(beyond, default=None))
+
+
+def _least_root(square: Fraction) -> int:
+    """Return the least whole number whose square is at least ``square``."""
+    root = isqrt(square.numerator // square.denominator)
+    return root if root * root >= square else root + 1
 
 
 def _nearest_to_zero(
     from_the_end: Iterable[tuple[int, Weight]], outline: NullOutline, alpha: Fraction, sign: int = 1
 ) -> Critical | None:
     """Return the last value above 0 whose tail stays within alpha; values fall from the end of the null."""
-    found = None
+    last: tuple[int, Weight] | None = None
     tail: Weight = 0
     for statistic, weight in from_the_end:
         tail += weight
         # At 0 and beyond, a tail says nothing against unrelated rows.
-        if statistic <= 0 or (p := outline.p(tail)) > alpha:
+        if statistic <= 0 or not outline.is_within(tail, alpha):
             break
         if weight:
-            found = Critical(sign * statistic, p, tail if isinstance(tail, int) else None)
-    return found
+            last = statistic, tail
+    if last is None:
+        return None
+    statistic, tail = last
+    return Critical(sign * statistic, outline.p(tail), tail if isinstance(tail, int) else None)

@@ -214,11 +214,6 @@ class TailShares:
         """Twice the smaller tail, at most 1: the other two-sided convention (gibbons1975)."""
         return min(Fraction(1), 2 * min(self.p("greater"), self.p("less")))
 
-    def interval(self, direction: Direction, level: Decimal) -> tuple[float, float]:  # noqa: ARG002 - as for counts
-        """Return where p lies by the error that its method states, within 0 to 1; no level belongs to it."""
-        share = self.share(direction)
-        return float(max(Fraction(0), share.value - share.error)), float(min(Fraction(1), share.value + share.error))
-
 
 Tails: TypeAlias = TailCounts | TailShares
 """Tails as counts where permutations were counted or drawn, as shares otherwise."""

@@ -7,19 +7,23 @@ from math import isqrt
 from typing import Final
 
 from rankdocket.errors import ComputeError
+from rankdocket.stats.attainable import tails_at_limit
 from rankdocket.stats.choose_null import Budget, NullChoice, exact_null_of, shares_within
 from rankdocket.stats.coefficient import Coefficient
 from rankdocket.stats.critical import Critical, CriticalValues, LargeSample, critical_values, large_sample
-from rankdocket.stats.null import TailCounts, TailShares
+from rankdocket.stats.null import Tails
 from rankdocket.stats.nulls.monte_carlo import DrawingPlan, Look, LookQuestion, drawn_null
 from rankdocket.stats.nulls.saddlepoint import saddlepoint_tail
 from rankdocket.stats.nulls.series import STEP, series_tails
 from rankdocket.stats.nulls.tied_doubles import rho_shares, rho_tails_doubles
 from rankdocket.stats.nulls.tied_integers import rho_tails_integers
-from rankdocket.stats.outline import Bar, NullOutline, bars_of, lattice_between, outline_of, step_of
+from rankdocket.stats.outline import NullOutline, Picture, lattice_between, outline_of, picture_of
 from rankdocket.stats.ranks import Codes, TieGroups, tie_groups
 from rankdocket.stats.tables import CriticalValueFound, critical_value_approximate, critical_value_large_sample
 from rankdocket.vocabulary import Direction
+
+SMOOTH_CLASSES: Final = 5
+"""Values that a variable takes at least for the saddlepoint to be near: with fewer its errors reach the size of p."""
 
 SEEN_DEVIATIONS: Final = 4
 """The picture of a series ends at this many standard deviations: some thirty orderings in a million lie beyond."""
@@ -60,24 +64,25 @@ class NullResult:
         At the observed coefficient.
     critical
         Critical values; ``None`` where only the tails could be worked out within the budget.
-    bars
-        The null laid out; empty in the same case.
-    step
-        How far apart the places of the lattice lie on which numerators stand, 1 or more; 0 without bars.
+    picture
+        The null laid out; ``None`` in the same case.
     large_sample
         The large-sample rule and its true size; ``None`` for tau-b and where the null is not laid out.
     looks
         The looks at drawn permutations, in order; empty without draws.
+    look_level
+        The level of the interval of each look; ``None`` without draws.
     saddlepoint
-        For drawn permutations of rho: an approximation of p by another way, as a check on the draws.
+        For drawn permutations of rho: an approximation of p by another way, as a check on the draws.  ``None`` where
+        a variable has fewer than SMOOTH_CLASSES values: over so coarse a lattice no smooth approximation is near.
     """
 
-    tails: TailCounts | TailShares
+    tails: Tails
     critical: CriticalValues | None
-    bars: tuple[Bar, ...]
-    step: int
+    picture: Picture | None
     large_sample: LargeSample | None
     looks: tuple[Look, ...] = ()
+    look_level: Decimal | None = None
     saddlepoint: float | None = None
 
 
@@ -115,9 +120,9 @@ def null_result(
             null = exact_null_of(observed.name, x, y)
             return _laid_out(null.tails(observed.numerator), outline_of(null), question)
         case "tails, whole numbers":
-            return _beside(rho_tails_integers(x, y, observed.numerator), (x, y), question, budget)
+            return _beside(rho_tails_integers(x, y, observed.numerator), (x, y), question, budget.less(choice.forecast))
         case "tails, doubles":
-            return _beside(rho_tails_doubles(x, y, observed.numerator), (x, y), question, budget)
+            return _beside(rho_tails_doubles(x, y, observed.numerator), (x, y), question, budget.less(choice.forecast))
         case "series":
             return _from_series(question)
         case "draws":
@@ -126,19 +131,17 @@ def null_result(
             return _drawn(rows, question, drawing)
 
 
-def _laid_out(tails: TailCounts | TailShares, outline: NullOutline, question: NullQuestion) -> NullResult:
+def _laid_out(tails: Tails, outline: NullOutline, question: NullQuestion) -> NullResult:
     rule = None
     if question.observed.name == "Spearman rho":
         rule = large_sample(outline, question.observed, question.alpha, question.direction)
-    return NullResult(tails, critical_values(outline, question.alpha), bars_of(outline), step_of(outline), rule)
+    return NullResult(tails, critical_values(outline, question.alpha), picture_of(outline), rule)
 
 
-def _beside(
-    tails: TailCounts | TailShares, groups: tuple[TieGroups, TieGroups], question: NullQuestion, budget: Budget
-) -> NullResult:
-    """Return tails with the null laid out in doubles, where the budget allows that."""
+def _beside(tails: Tails, groups: tuple[TieGroups, TieGroups], question: NullQuestion, budget: Budget) -> NullResult:
+    """Return tails with the null laid out in doubles, where what is left of the budget allows that."""
     if not shares_within(*groups, budget):
-        return NullResult(tails, None, (), 0, None)
+        return NullResult(tails, None, None, None)
     statistics, shares = rho_shares(*groups)
     return _laid_out(tails, NullOutline("exact algorithm, 12 digits", statistics, tuple(shares.tolist()), 1), question)
 
@@ -155,12 +158,12 @@ def _drawn(rows: tuple[Codes, Codes], question: NullQuestion, drawing: DrawingPl
     outline = NullOutline("drawn permutations", drawn.statistics, tuple(drawn.hits.tolist()), drawn.tails.of)
     laid_out = _laid_out(drawn.tails, outline, question)
     check = _saddlepoint(tie_groups(rows[0]), tie_groups(rows[1]), question)
-    return replace(laid_out, looks=drawn.looks, saddlepoint=check)
+    return replace(laid_out, looks=drawn.looks, look_level=drawn.look_level, saddlepoint=check)
 
 
 def _saddlepoint(x: TieGroups, y: TieGroups, question: NullQuestion) -> float | None:
     """Return the saddlepoint approximation of the p-value, or ``None`` where there is none."""
-    if question.observed.name != "Spearman rho":
+    if question.observed.name != "Spearman rho" or min(x.distinct, y.distinct) < SMOOTH_CLASSES:
         return None
     numerator = question.observed.numerator
     mirrored = TieGroups(tuple(reversed(y.sizes)))
@@ -180,34 +183,38 @@ def _from_series(question: NullQuestion) -> NullResult:
     observed, n = question.observed, question.observed.n
     one_sided = critical_value_approximate(n, question.alpha, sidedness="one-sided")
     two_sided = critical_value_approximate(n, question.alpha, sidedness="two-sided")
+    untied = TieGroups((1,) * n)
     return NullResult(
-        series_tails(n, observed.numerator),
+        # At the ends of the null the count is known in closed form, whatever n.
+        tails_at_limit(untied, untied, observed) or series_tails(n, observed.numerator),
         CriticalValues(
-            "Edgeworth series",
+            two_sided.method,
             None,
-            greater=_critical(one_sided, sign=1),
-            less=_critical(one_sided, sign=-1),
-            two_sided=_critical(two_sided, sign=1),
+            greater=_critical(one_sided, "greater"),
+            less=_critical(one_sided, "less"),
+            two_sided=_critical(two_sided, "two-sided"),
         ),
-        _series_bars(n, observed.x_square),
-        STEP,
+        _series_picture(n, observed.x_square),
         critical_value_large_sample(
             n, question.alpha, sidedness="two-sided" if question.direction == "two-sided" else "one-sided"
         ),
     )
 
 
-def _critical(found: CriticalValueFound, *, sign: int) -> Critical | None:
+def _critical(found: CriticalValueFound, direction: Direction) -> Critical | None:
     if found.numerator is None or found.attained_p is None:
         return None
-    return Critical(sign * found.numerator, found.attained_p, None)
+    numerator = -found.numerator if direction == "less" else found.numerator
+    opposite = -found.numerator if direction == "two-sided" else None
+    return Critical(numerator, found.attained_p, None, found.error, opposite)
 
 
-def _series_bars(n: int, largest: int) -> tuple[Bar, ...]:
+def _series_picture(n: int, largest: int) -> Picture:
     """Return the bars of an untied null from its series; ``largest`` is the numerator of perfect agreement."""
     seen = SEEN_DEVIATIONS * isqrt(largest**2 // (n - 1))
     # The places are those of perfect agreement less multiples of the step, the same on both sides.
     end = largest - (largest - seen) // STEP * STEP
     lattice = lattice_between(-end, end, STEP)
     beyond = [series_tails(n, lattice.start(bar)).p("greater") for bar in range(lattice.bars + 1)]
-    return tuple(lattice.bar(bar, max(Fraction(0), beyond[bar] - beyond[bar + 1])) for bar in range(lattice.bars))
+    shares = (max(Fraction(0), beyond[bar] - beyond[bar + 1]) for bar in range(lattice.bars))
+    return Picture(tuple(lattice.bar(bar, share) for bar, share in enumerate(shares) if share), lattice.half)

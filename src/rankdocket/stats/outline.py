@@ -14,6 +14,9 @@ from rankdocket.stats.ranks import Codes
 MOST_BARS: Final = 60
 """Up to here every place of the lattice gets a bar of its own; above, neighbours share one."""
 
+FEWEST_BARS: Final = 30
+"""With fewer places a bar is as narrow as if there were so many."""
+
 UNSEEN: Final = Fraction(1, 100_000)
 """Values at an end that hold no more than this share of all orderings together are too rare to be drawn."""
 
@@ -51,6 +54,13 @@ class NullOutline:
             return Fraction(int(weight) + 1, self.of + 1)
         return Fraction(weight) / self.of
 
+    def is_within(self, weight: Weight, level: Fraction) -> bool:
+        """Return whether :meth:`p` of a tail is ``level`` or less, without reducing a fraction of long numbers."""
+        if isinstance(weight, float):
+            return Fraction(weight) <= level * self.of
+        one_more = self.method == "drawn permutations"
+        return (weight + one_more) * level.denominator <= level.numerator * (self.of + one_more)
+
 
 @dataclass(frozen=True, slots=True)
 class Bar:
@@ -78,6 +88,15 @@ class Lattice:
     each: int
     bars: int
 
+    @property
+    def half(self) -> Fraction:
+        """How far a bar reaches beyond its first and last place.
+
+        Half a step, so that bars touch; less where there are few places, whose bars would reach past the ends.
+        """
+        narrow = Fraction(self.bars * self.step, 2 * FEWEST_BARS)
+        return min(Fraction(self.step, 2), narrow) if self.each == 1 else Fraction(self.step, 2)
+
     def start(self, bar: int) -> int:
         """Return the first place of a bar."""
         return self.first + bar * self.each * self.step
@@ -88,8 +107,7 @@ class Lattice:
 
     def bar(self, bar: int, share: Fraction) -> Bar:
         """Return a bar with its share."""
-        half = Fraction(self.step, 2)
-        return Bar(self.start(bar) - half, self.start(bar + 1) - half, share)
+        return Bar(self.start(bar) - self.half, self.start(bar + 1) - self.step + self.half, share)
 
 
 def outline_of(null: ExactNull) -> NullOutline:
@@ -105,25 +123,37 @@ def lattice_between(low: int, high: int, step: int) -> Lattice:
     return Lattice(low - (bars * each - places) // 2 * step, step, each, bars)
 
 
-def step_of(outline: NullOutline) -> int:
-    """Return how far apart the places of the lattice lie on which the numerators stand; 1 for a single value."""
-    return gcd(*(high - low for low, high in pairwise(outline.statistics.tolist()))) or 1
+@dataclass(frozen=True, slots=True)
+class Picture:
+    """A null laid out in bars.
+
+    Attributes
+    ----------
+    bars
+        From the lowest to the highest value that can be seen; those without any ordering are left out.
+    half
+        How far a bar reaches beyond its first and last value, above 0.
+    """
+
+    bars: tuple[Bar, ...]
+    half: Fraction
 
 
-def bars_of(outline: NullOutline) -> tuple[Bar, ...]:
-    """Return bars of one width from the lowest to the highest value that can be seen, empty ones included.
+def picture_of(outline: NullOutline) -> Picture:
+    """Return bars of one width, each with equally many places of the lattice on which the numerators lie.
 
-    Each holds equally many places of the lattice on which the numerators lie, so that no unevenness comes from the
-    binning itself.
+    So no unevenness comes from the binning itself.
     """
     statistics = outline.statistics.tolist()
     first = _first_seen(outline.weights.__getitem__, len(statistics), outline.of)
     last = len(statistics) - 1 - _first_seen(lambda place: outline.weights[-1 - place], len(statistics), outline.of)
-    lattice = lattice_between(statistics[first], statistics[last], step_of(outline))
+    step = gcd(*(high - low for low, high in pairwise(statistics))) or 1
+    lattice = lattice_between(statistics[first], statistics[last], step)
     weights: list[Weight] = [0] * lattice.bars
     for place in range(first, last + 1):
         weights[lattice.bar_of(statistics[place])] += outline.weights[place]
-    return tuple(lattice.bar(bar, Fraction(weight) / outline.of) for bar, weight in enumerate(weights))
+    bars = tuple(lattice.bar(bar, Fraction(weight) / outline.of) for bar, weight in enumerate(weights) if weight)
+    return Picture(bars, lattice.half)
 
 
 def _first_seen(weight_at: Callable[[int], Weight], length: int, of: int) -> int:
@@ -131,6 +161,6 @@ def _first_seen(weight_at: Callable[[int], Weight], length: int, of: int) -> int
     met: Weight = 0
     for place in range(length):
         met += weight_at(place)
-        if Fraction(met) > UNSEEN * of:
+        if met * UNSEEN.denominator > UNSEEN.numerator * of:
             return place
     return length - 1

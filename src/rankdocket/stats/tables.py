@@ -12,7 +12,7 @@ from rankdocket.stats.null import NullMethod
 from rankdocket.stats.nulls.series import STEP, series_critical, series_tails
 from rankdocket.stats.nulls.untied import reach, untied_null
 from rankdocket.stats.rho import short_form
-from rankdocket.vocabulary import Direction, Sidedness
+from rankdocket.vocabulary import SIDEDNESS, Direction, Sidedness
 
 FEWEST_CRITICAL: Final = 3
 """With fewer rows no coefficient but 1 and −1 exists, and half of all orders give each."""
@@ -74,6 +74,8 @@ class CriticalValueFound:
         Its p-value; exact when ``method`` is "exact, no ties".
     method
         Where the p-value comes from.
+    error
+        The true p-value lies within ``attained_p`` ± ``error`` and may so exceed alpha; 0 when it is exact.
     """
 
     attainable: bool
@@ -82,6 +84,7 @@ class CriticalValueFound:
     sum_d2: int | None
     attained_p: Fraction | None
     method: NullMethod
+    error: Fraction = Fraction(0)
 
 
 def null_counts(n: int) -> NullCounts:
@@ -114,11 +117,12 @@ def critical_value(n: int, alpha: Decimal | Fraction | float, *, sidedness: Side
     Raises
     ------
     ComputeError
-        If ``n`` is not between 1 and the largest number of rows whose counts come with the program.
+        If ``n`` is not between 1 and the largest number of rows whose counts come with the program, or ``alpha`` or
+        ``sidedness`` is none.
     """
     limit = _as_written(alpha)
     table = null_counts(n)
-    sides = 1 if sidedness == "one-sided" else 2
+    sides = 1 if _direction(sidedness) == "greater" else 2
     found = CriticalValue(False, None, None, None)
     at_most = 0
     for sum_d2, count in table.counts:
@@ -150,7 +154,7 @@ def critical_value_approximate(
     Raises
     ------
     ComputeError
-        If ``n`` is too small.
+        If ``n`` is too small, or ``alpha`` or ``sidedness`` is none.
     """
     _at_least_three(n)
     largest = (n**3 - n) // 3
@@ -164,8 +168,9 @@ def critical_value_approximate(
     if found is None:
         return CriticalValueFound(False, None, None, None, None, series_tails(n, largest).method)
     tails = series_tails(n, found)
+    share = tails.share(_direction(sidedness))
     return CriticalValueFound(
-        True, Fraction(found, largest), found, (largest - found) // 2, tails.p(_direction(sidedness)), tails.method
+        True, Fraction(found, largest), found, (largest - found) // 2, share.value, tails.method, share.error
     )
 
 
@@ -186,7 +191,7 @@ def critical_value_large_sample(n: int, alpha: Decimal | Fraction | float, *, si
     Raises
     ------
     ComputeError
-        If ``n`` is too small.
+        If ``n`` is too small, or ``alpha`` or ``sidedness`` is none.
     """
     _at_least_three(n)
     direction = _direction(sidedness)
@@ -205,6 +210,8 @@ def _p(n: int, numerator: int, direction: Direction) -> Fraction:
 
 
 def _direction(sidedness: Sidedness) -> Direction:
+    if sidedness not in SIDEDNESS:
+        raise ComputeError(f"sidedness must be one of {', '.join(SIDEDNESS)}, not {sidedness!r}.")
     return "greater" if sidedness == "one-sided" else "two-sided"
 
 
@@ -214,4 +221,10 @@ def _at_least_three(n: int) -> None:
 
 
 def _as_written(alpha: Decimal | Fraction | float) -> Fraction:
-    return Fraction(repr(alpha)) if isinstance(alpha, float) else Fraction(alpha)
+    try:
+        level = Fraction(repr(alpha)) if isinstance(alpha, float) else Fraction(alpha)
+    except (ValueError, OverflowError):
+        level = Fraction(0)
+    if not 0 < level < 1:
+        raise ComputeError(f"alpha must lie between 0 and 1, not be {alpha}.")
+    return level

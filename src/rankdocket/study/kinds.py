@@ -233,7 +233,7 @@ class DecimalNumber(_Kind):
     def _percent_hint(self, text: str) -> str:
         """Return what the number is without percent, if that is possible here."""
         share = Decimal(text).scaleb(-2)
-        if Decimal(text) <= 1 or not self._holds(share):
+        if self.high > 1 or Decimal(text) <= 1 or not self._holds(share):
             return ""
         return f" {text} percent is {share:f}."
 

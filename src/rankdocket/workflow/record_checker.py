@@ -5,8 +5,8 @@ anew and holds the worksheets against them; recomputes each coefficient in whole
 the rows where there are few enough; derives p, adjusted p and finding from the counts; holds results.csv against
 analysis.json; and looks up every printed number of document.json in analysis.json and in report.html.
 
-It does not read the spec and the data as received, does not recompute intervals and drawn permutations, and does
-not open the PDF.
+It does not read the spec and the data as received, does not recompute intervals, drawn permutations and the bars of a
+null, and does not open the PDF.
 """
 
 # ruff: noqa: T201 - it speaks to a person at a terminal
@@ -115,7 +115,7 @@ def check_associations(folder: Path, analysis: Any, problems: list[str]) -> list
     problems.extend(
         f"rows.csv: there is no association {name}." for name in sorted(rows.keys() - analysis["associations"].keys())
     )
-    left = []
+    left, alpha = [], Fraction(analysis["inference"]["alpha"])
     for name, found in sorted(analysis["associations"].items()):
         its_rows = rows.get(name, [])
         if len(its_rows) != found["rows"]["complete"]:
@@ -127,7 +127,7 @@ def check_associations(folder: Path, analysis: Any, problems: list[str]) -> list
         check_worksheet(folder, name, (its_rows, x, y), problems)
         if found["estimate"]["state"] == "estimated":
             check_estimate(name, found, (x, y), problems)
-        if found["test"]["state"] == "tested" and not check_test(name, found, (x, y), problems):
+        if found["test"]["state"] == "tested" and not check_test(name, found, (x, y), alpha, problems):
             left.append(name)
     return left
 
@@ -165,33 +165,62 @@ def check_estimate(name: str, found: Any, ranks: tuple[list[int], list[int]], pr
     hold(f"{name}: the coefficient", Decimal(found["estimate"]["value"]), coefficient(*sums), problems)
 
 
-def check_test(name: str, found: Any, ranks: tuple[list[int], list[int]], problems: list[str]) -> bool:
+def check_test(name: str, found: Any, ranks: tuple[list[int], list[int]], alpha: Fraction, problems: list[str]) -> bool:
     """Derive p from its count, and count all orderings where there are few enough; return whether it was done."""
     test = found["test"]
     if test["count"] is None:
         return False
-    for key, count in (("p", "count"), ("p_greater", "count_greater"), ("p_less", "count_less")):
-        hold_p(f"{name}: {key}", test[key], p_of(test, int(test[count])), problems)
+    for key, counted in (("p", "count"), ("p_greater", "count_greater"), ("p_less", "count_less")):
+        hold_p(f"{name}: {key}", test[key], p_of(test, int(test[counted])), problems)
+    if "draws" in test:
+        last = test["draws"]["looks"][-1]
+        hold(f"{name}: the last look", (last["draws"], last["count"]), (int(test["of"]), int(test["count"])), problems)
     if not test["method"].startswith("exact") or len(ranks[0]) > MOST_ROWS_COUNTED:
         return False
     tally = orderings(*ranks, found["coefficient"])
-    numerator = sums_of(found["coefficient"], *ranks)[0]
+    numerator, *squares = sums_of(found["coefficient"], *ranks)
     for key, side in (("count", test["direction"]), ("count_greater", "greater"), ("count_less", "less")):
-        hold(f"{name}: {key}", test[key], str(extreme(tally, side, numerator)), problems)
-    hold(f"{name}: the number of orderings", test["of"], str(factorial(len(ranks[0]))), problems)
-    for side, value in found["null"]["critical"].items():
-        if value["state"] == "given":
-            count = str(extreme(tally, side, int(value["numerator"])))
-            hold(f"{name}: count at the critical value, {side}", value["count"], count, problems)
+        count = sum(times for size, times in sizes(tally, side) if size >= turned(numerator, side))
+        hold(f"{name}: {key}", test[key], str(count), problems)
+    of = factorial(len(ranks[0]))
+    hold(f"{name}: the number of orderings", test["of"], str(of), problems)
+    most_extreme = Fraction(sizes(tally, test["direction"])[0][1], of)
+    hold_p(f"{name}: the smallest attainable p", found["smallest_attainable_p"], most_extreme, problems)
+    for side, filed in found["null"]["critical"].items() if "method" in found["null"] else ():
+        end, count = critical(sizes(tally, side), alpha * of)
+        what = f"{name}: critical value, {side}"
+        hold(f"{what}: state", filed["state"], "given" if count else "none", problems)
+        if count and filed["state"] == "given":
+            hold(f"{what}: numerator", turned(int(filed["numerator"]), side), end, problems)
+            hold(what, turned(Decimal(filed["value"]), side), coefficient(end, *squares), problems)
+            if "count" in filed:
+                hold(f"{what}: count", (filed["count"], filed["of"]), (str(count), str(of)), problems)
+                hold_p(f"{what}: p", filed["p"], Fraction(count, of), problems)
     return True
 
 
-def extreme(tally: dict[int, int], direction: str, end: int) -> int:
-    """Return the orderings with a numerator at least as extreme as ``end``."""
-    if direction == "two-sided":
-        return sum(times for value, times in tally.items() if abs(value) >= abs(end))
-    sign = 1 if direction == "greater" else -1
-    return sum(times for value, times in tally.items() if sign * value >= sign * end)
+def turned(value: Any, side: str) -> Any:
+    """Return how far a value lies toward a side: the same, the opposite, or its size."""
+    return abs(value) if side == "two-sided" else -value if side == "less" else value
+
+
+def sizes(tally: dict[int, int], side: str) -> list[tuple[int, int]]:
+    """Return how many orderings lie how far toward a side, the farthest first."""
+    found: Counter[int] = Counter()
+    for value, times in tally.items():
+        found[turned(value, side)] += times
+    return sorted(found.items(), reverse=True)
+
+
+def critical(farthest_first: list[tuple[int, int]], most: Fraction) -> tuple[int, int]:
+    """Return the value nearest to 0 that at most so many orderings reach, and how many do; 0 of none."""
+    nearest, tail = (0, 0), 0
+    for size, times in farthest_first:
+        tail += times
+        if size <= 0 or tail > most:
+            break
+        nearest = size, tail
+    return nearest
 
 
 def p_of(test: Any, count: int) -> Fraction:

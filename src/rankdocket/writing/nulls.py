@@ -1,11 +1,16 @@
 """The null in words: which one and why, the error of its p-value, the draws, critical values."""
 
+from collections.abc import Mapping
+from decimal import Decimal
+from types import MappingProxyType
 from typing import Final, TypeAlias
 
-from rankdocket.analysis.null_plain import UNKNOWN
+from rankdocket.analysis.null_plain import UNKNOWN, UNPLACED, UNREACHED
 from rankdocket.analysis.results import RankTest
 from rankdocket.document.model import Number, Prose, Supplied
+from rankdocket.document.numbers import MINUS
 from rankdocket.document.prose import joined, only, prose
+from rankdocket.stats.choose_null import Route
 from rankdocket.stats.null import NullMethod
 from rankdocket.vocabulary import Direction
 from rankdocket.writing.phrases import address, coefficient_symbol, level, method_words, p_equals, sentences
@@ -17,21 +22,33 @@ BOUNDED: Final[tuple[NullMethod, ...]] = ("Edgeworth series", "saddlepoint")
 """Methods whose p-value has a stated error that can be seen in print."""
 
 FEWEST_DECIMALS: Final = 3
-"""Decimals of a critical value at least."""
+MOST_DECIMALS: Final = 6
+"""Decimals of a critical value at least and at most."""
+
+_TOLD: Final[Mapping[Route, str]] = MappingProxyType(
+    {"draws": "A complete count", "tails, doubles": "Whole numbers", "tails, whole numbers": "The whole null"}
+)
+"""Ways of which it is told what a surer one would have needed, and that one."""
 
 
 def null_sentence(story: Story, name: str) -> Prose:
     """Return which null an association got and why, with what an exact count would have needed."""
     test = _test(story, name)
-    method = method_words(story, name)
-    words = prose("{method}. {why}", method=_capitalised(method), why=test.choice.reason)
+    method = _capitalised(method_words(story, name))
+    if test.choice.route == "series" and test.tails.is_exact:
+        return prose(
+            "{method}. The data lie at an end of the null, where the count is known whatever the number of rows.",
+            method=method,
+        )
+    words = prose("{method}. {why}", method=method, why=test.choice.reason)
     needed = address(name, "test", "exact_count")
-    if test.choice.route not in ("draws", "tails, doubles") or not story.numbers.has(needed):
+    if test.choice.route not in _TOLD or not story.numbers.has(needed):
         return words
     return sentences(
         words,
         prose(
-            "It would have needed about {duration} and {memory}; the budget was {most} and {room}.",
+            "{what} would have needed about {duration} and {memory}; the budget was {most} and {room}.",
+            what=_TOLD[test.choice.route],
             duration=story.numbers.duration(f"{needed}/seconds"),
             memory=story.numbers.memory(f"{needed}/memory"),
             most=story.numbers.duration("inference/budget/seconds"),
@@ -44,46 +61,62 @@ def error_rows(story: Story, name: str) -> tuple[Row, ...]:
     """Return how wrong a p-value can be, and how it was drawn; nothing for one that was counted."""
     test, numbers = _test(story, name), story.numbers
     at = address(name, "test")
-    ends = {"low": f"{at}/p_low", "high": f"{at}/p_high"}
     if test.stream:
-        shown = {end: numbers.attainable_p(key) for end, key in ends.items()}
-        error = prose("{level} interval of p over all orderings: {low} to {high}", level=level(story), **shown)
+        error = prose(
+            "{level} interval of p over all orderings: {low} to {high}",
+            level=level(story),
+            low=numbers.attainable_p(f"{at}/p_low"),
+            high=numbers.attainable_p(f"{at}/p_high"),
+        )
         return ("Error of the draws", error), ("Draws", _draws(story, name))
     if test.tails.method in BOUNDED:
-        shown = {end: numbers.attainable_p(key) for end, key in ends.items()}
-        return (("Error of the series", prose("p lies between {low} and {high} by the stated bound", **shown)),)
+        error = prose("of p at most {error} either way, as stated in the methods", error=numbers.error(f"{at}/error"))
+        return (("Error of approximation", error),)
     return ()
 
 
 def critical_rows(story: Story, name: str) -> tuple[Row, ...]:
     """Return the critical values for two sides and for one, and what the large-sample rule is worth here."""
     rows = [("Critical value, two-sided", _critical(story, name, "two-sided"))]
-    if _is_symmetric(story, name):
+    if _is_symmetric(story, name) and not _test(story, name).stream:
         rows.append(("Critical value, one-sided", _critical(story, name, "greater")))
     else:
         rows.append(("Critical value, upper side", _critical(story, name, "greater")))
         rows.append(("Critical value, lower side", _critical(story, name, "less")))
     rule = address(name, "null", "large_sample")
     if story.numbers.has(rule):
-        rows.append(
-            (
-                "For comparison",
-                prose(
-                    "the large-sample rule, a normal quantile over the root of n less one, would say {value}; the true "
-                    "share of orderings that reach it is {size}, not {alpha}",
-                    value=story.numbers.coefficient(f"{rule}/value"),
-                    size=story.numbers.attainable_p(f"{rule}/size"),
-                    alpha=story.numbers.level("inference/alpha"),
-                ),
-            )
-        )
+        rows.append(("For comparison", _rule_of_thumb(story, name, rule)))
     return tuple(rows)
 
 
+def _rule_of_thumb(story: Story, name: str, rule: str) -> Prose:
+    """Return what the large-sample rule would say, and the share of orderings that reach it."""
+    null, numbers = _test(story, name).null, story.numbers
+    value = numbers.coefficient(f"{rule}/value")
+    said = "the large-sample rule, a normal quantile over the root of n less one, would say {value}"
+    if null.large_sample is not None and null.large_sample.size == 0:
+        template = said + "; none of the {drawn}orderings reaches it, instead of a share of {alpha}"
+        size = {}
+    else:
+        template = said + "; the share of {drawn}orderings that reach it is {size}, where the rule means {alpha}"
+        size = {"size": numbers.attainable_p(f"{rule}/size")}
+    return prose(
+        template,
+        value=value,
+        drawn="drawn " if _test(story, name).stream else "",
+        alpha=numbers.level("inference/alpha"),
+        **size,
+    )
+
+
 def critical_number(story: Story, name: str, direction: Direction) -> Number:
-    """Return a critical value that is attainable: neighbours on a fine lattice need three decimals to be told apart."""
-    decimals = max(FEWEST_DECIMALS, story.numbers.coefficient_decimals)
-    return story.numbers.coefficient(address(name, "null", "critical", direction, "value"), decimals)
+    """Return a critical value with at least three decimals, and more until it is not printed as larger in size."""
+    at = address(name, "null", "critical", direction, "value")
+    fewest = max(FEWEST_DECIMALS, story.numbers.coefficient_decimals)
+    numbers = [story.numbers.coefficient(at, decimals) for decimals in range(fewest, MOST_DECIMALS + 1)]
+    sizes = [abs(Decimal(number.text.replace(MINUS, "-"))) for number in numbers]
+    exact = abs(Decimal(numbers[0].exact))
+    return next((number for number, size in zip(numbers, sizes, strict=True) if size <= exact), numbers[-1])
 
 
 def _test(story: Story, name: str) -> RankTest:
@@ -129,16 +162,17 @@ def _critical(story: Story, name: str, direction: Direction) -> Prose:
     null = _test(story, name).null
     if null.critical is None:
         return only(f"not worked out: {UNKNOWN}")
-    critical = null.critical.toward(direction)
-    if critical is None:
-        return only("cannot be reached: no coefficient of these rows and ties has a p-value of alpha or less")
+    drawn = bool(_test(story, name).stream)
+    if null.critical.toward(direction) is None:
+        return only(f"not placed: {UNPLACED}" if drawn else f"cannot be reached: {UNREACHED}")
     template = {
-        "two-sided": "{symbol} of {value} or more in size has {p}",
-        "greater": "{symbol} of {value} or more has {p}",
-        "less": "{symbol} of {value} or less has {p}",
+        "two-sided": "{by}{symbol} of {value} or more in size has {p}",
+        "greater": "{by}{symbol} of {value} or more has {p}",
+        "less": "{by}{symbol} of {value} or less has {p}",
     }[direction]
     return prose(
         template,
+        by="by these draws, " if drawn else "",
         symbol=coefficient_symbol(story.analysis.results[name].screened.spec),
         value=critical_number(story, name, direction),
         p=p_equals(story, f"{at}/p"),
@@ -146,8 +180,7 @@ def _critical(story: Story, name: str, direction: Direction) -> Prose:
 
 
 def _is_symmetric(story: Story, name: str) -> bool:
-    """Return whether the critical values on both sides are each other's mirror image."""
-    critical = _test(story, name).null.critical
-    if critical is None or critical.greater is None or critical.less is None:
-        return critical is None or critical.greater is critical.less
-    return critical.greater.numerator == -critical.less.numerator and critical.greater.p == critical.less.p
+    """Return whether the null is its own mirror image: the ties of one variable are."""
+    screened = story.analysis.results[name].screened
+    sizes = screened.x_ties.sizes, screened.y_ties.sizes
+    return any(groups == groups[::-1] for groups in sizes)

@@ -181,6 +181,17 @@ def look_ends(first: int, ceiling: int) -> tuple[int, ...]:
     return tuple(sorted({_floor_root(first ** (steps - look) * ceiling**look, steps) for look in range(MOST_LOOKS)}))
 
 
+def smallest_drawn_p(first: int, ceiling: int, question: LookQuestion) -> Fraction:
+    """Return the smallest p that draws can show: that of the look at which no hit at all leaves no level open."""
+    ends = look_ends(first, ceiling if question.levels else first)
+    level = _level_of_one_look(question.confidence_level, len(ends))
+    for end in ends:
+        look = _look(TailCounts("drawn permutations", 0, 0, 0, end), question.direction, level)
+        if not any(look.leaves_open(each) for each in question.levels):
+            break
+    return Fraction(1, end + 1)
+
+
 def drawn_orders(values: Codes, generator: np.random.Generator) -> Iterator[Keys]:
     """Yield without end blocks of ``values`` in random order, shape (rows, n), rows at least 1.
 

@@ -29,6 +29,16 @@ def merged(left: Packed, right: Packed, bits: int) -> Packed:
     return low_right, slots_right + (slots_left << (low_left - low_right) * bits)
 
 
+def summed(rows: list[Packed], bits: int) -> Packed:
+    """Return the sum of rows of counts: neighbours first, so that short rows are added to short ones."""
+    level = sorted(rows)
+    while len(level) > 1:
+        pairs = zip(level[::2], level[1::2], strict=False)
+        rest = level[-1:] if len(level) % 2 else []
+        level = [merged(left, right, bits) for left, right in pairs] + rest
+    return level[0] if level else (0, 0)
+
+
 def unpacked(row: Packed, bits: int) -> dict[int, int]:
     """Return score → count, counts above 0 only; ``bits`` is a multiple of 8."""
     low, slots = row

@@ -5,9 +5,11 @@ How the sum can go on depends only on how many members of each tie group have be
 agree in this are kept together, as counts per score.  Ties make it cheaper, not impossible.
 """
 
+from collections import Counter
+
 from rankdocket.stats.forecast import distinct_arrangements, slot_bits
 from rankdocket.stats.null import ExactNull, exact_null
-from rankdocket.stats.nulls.packed import Relay, unpacked
+from rankdocket.stats.nulls.packed import Packed, Relay, summed, unpacked
 from rankdocket.stats.nulls.tied_cost import cheaper_whole
 from rankdocket.stats.nulls.tied_integers import walk_packed
 from rankdocket.stats.nulls.tied_plan import NO_LIMIT, remainder
@@ -27,15 +29,18 @@ def rho_null(x: TieGroups, y: TieGroups) -> ExactNull:
     rest = remainder(plan, side, walk.layer)
     bits = max(walk.bits, slot_bits(distinct_arrangements(plan.dealt)))
     relay = Relay(walk.bits, bits, 1)
+    places: Counter[int] = Counter()
     # Rows whose slots fall between each other's are added up separately, without the empty slots between.
-    sums = [0] * rest.apart
+    long_rows: list[list[Packed]] = [[] for _ in range(rest.apart)]
     for row, slots, ways, start in zip(
         walk.rows, walk.layer.slots.tolist(), rest.ways, rest.starts.tolist(), strict=True
     ):
-        sums[start % rest.apart] += relay.laid(row, slots) * ways << start // rest.apart * bits
-    counts = {
-        rest.lowest + rest.step * (place * rest.apart + offset): count
-        for offset, slots in enumerate(sums)
-        for place, count in unpacked((0, slots), bits).items()
-    }
+        if slots == 1:
+            places[start] += row * ways
+        else:
+            long_rows[start % rest.apart].append((start // rest.apart, relay.laid(row, slots) * ways))
+    for offset, rows in enumerate(long_rows):
+        for place, count in unpacked(summed(rows, bits), bits).items():
+            places[place * rest.apart + offset] += count
+    counts = {rest.lowest + rest.step * place: count for place, count in places.items()}
     return exact_null(x.n, counts, x.has_ties or y.has_ties)

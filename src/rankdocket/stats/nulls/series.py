@@ -84,13 +84,14 @@ SADDLEPOINT_BOUNDS: Final = (
     ErrorBand(1e-20, 0.33),
     ErrorBand(0.0, 20.0),
 )
-"""Relative errors of the saddlepoint, found in the same way, for values that the series leaves to it; each value there was
-too small.  They fall with n in each band but the last: beside the series at 4.5 standard deviations the saddlepoint is low by
-1.3 in ten thousand at n = 400 and by 2.1 in a hundred thousand at n = 1,000.  In the last band the end of the null
-decides, where the approximation of the permanent fails.  Its bound was set above what the thirteen values nearest to
-perfect order show for n = 31 to 170 (their counts are polynomials in n that follow from the shipped ones), where the true
-tail is up to 3.3 times the computed one, or far below it when there are more rows than nodes.  Down there a value says that
-the tail is negligible, and little more."""
+"""Relative errors of the saddlepoint over the values that the series leaves to it, rounded up from the largest at n = 28, 29
+and 30, and at n = 26 and 27 for values below SWITCH (there LAST_TERM hands over some larger ones as well, up to 5e-5, whose
+errors are larger); each value was too small.  They fall with n in each band but the last: beside the series at 4.5 standard
+deviations the saddlepoint is low by 1.3 in ten thousand at n = 400 and by 2.1 in a hundred thousand at n = 1,000.  In the
+last band the end of the null decides, where the approximation of the permanent fails.  Its bound was set above what the
+thirteen values nearest to perfect order show for n = 31 to 170 (their counts are polynomials in n that follow from the
+shipped ones), where the true tail is up to 3.3 times the computed one, or far below it when there are more rows than nodes.
+Down there a value says that the tail is negligible, and little more."""
 
 SADDLEPOINT_ABSOLUTE: Final = 2.7e-7
 """Absolute error of the saddlepoint below SWITCH: what the first band makes of it.  From n = 28 on LAST_TERM hands over nothing
@@ -109,7 +110,7 @@ def series_tails(n: int, observed: int) -> TailShares:
     Parameters
     ----------
     n
-        At least FEWEST_ROWS.
+        At least FEWEST_ROWS; the stated errors are those of more rows than were counted, and too small for few rows.
     observed
         Numerator; between two attainable values each tail begins at the next one within it.
 

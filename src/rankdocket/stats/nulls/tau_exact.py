@@ -6,16 +6,36 @@ group at a time.
 """
 
 from collections import Counter
+from collections.abc import Mapping
 from math import comb, prod
+from types import MappingProxyType
 from typing import Final, TypeAlias
 
 import numpy as np
 import numpy.typing as npt
 
+from rankdocket.references import Description
 from rankdocket.stats.forecast import DIGIT_BITS, DIGIT_BYTES, Forecast, distinct_arrangements, slot_bits
-from rankdocket.stats.null import ExactNull, exact_null
+from rankdocket.stats.null import ExactNull, NullMethod, exact_null
 from rankdocket.stats.nulls.packed import Packed, merged, unpacked
 from rankdocket.stats.ranks import Codes, TieGroups
+
+TAU_NULL_DESCRIPTIONS: Final[Mapping[NullMethod, Description]] = MappingProxyType(
+    {
+        "exact, no ties": Description(
+            "For {associations} the p-value was exact: of all orders in which the values of one variable can stand beside "
+            "those of the other, as many were counted as have each number of discordant pairs.",
+            ("kendall1938",),
+        ),
+        "exact, conditional on the ties": Description(
+            "For {associations} the p-value was exact, given the ties as they were observed: of all orders in which the "
+            "values of one variable can stand beside those of the other, as many were counted as have each difference of "
+            "concordant and discordant pairs.",
+            ("kendall1938", "kendall1945"),
+        ),
+    }
+)
+"""How the counts for tau-b say what they did."""
 
 Integers: TypeAlias = npt.NDArray[np.object_]
 """Python integers, which no count can overflow."""

@@ -16,8 +16,8 @@ from rankdocket.stats.nulls.tied_deal import Deal, Members, deal
 from rankdocket.stats.nulls.tied_plan import NO_LIMIT, Side, scores_kept, sides
 from rankdocket.stats.ranks import SAFE_SUM, Codes, TieGroups, centred_ranks, exact_dot
 
-Scope: TypeAlias = Literal["tail", "whole null"]
-"""How much of a null is wanted: a tail of about five per cent, or everything."""
+Scope: TypeAlias = Literal["tail", "half", "whole null"]
+"""How much of a null is wanted: a tail of about five per cent, everything above 0, or everything."""
 
 PROFILES_KEPT: Final = 64
 """Profiles remembered: one association asks for the same ones several times."""
@@ -96,7 +96,7 @@ def profiles(rows: TieGroups, dealt: TieGroups, scope: Scope) -> tuple[Profile, 
     if plan.places[-1] >= SAFE_SUM:
         return None
     members = _sample(plan)
-    limit = usual_limit(plan) if scope == "tail" else NO_LIMIT
+    limit = {"tail": usual_limit(plan), "half": 0, "whole null": NO_LIMIT}[scope]
     low, high = sides(plan)
     return _profile(plan, low, members, limit=limit), _profile(plan, high, members, limit=limit)
 

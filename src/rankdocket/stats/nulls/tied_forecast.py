@@ -95,7 +95,9 @@ def forecast_shares(x: TieGroups, y: TieGroups) -> Forecast:
 
 
 def forecast_tails(x: TieGroups, y: TieGroups, numbers: Numbers) -> Forecast:
-    """Return what all tails would cost, at a one-sided p-value of about 0.05.
+    """Return what all tails would cost: time at a one-sided p-value of about 0.05, memory at the worst.
+
+    Near a p-value of one half the same tails take up to two and a half times as long.
 
     For ``"whole numbers"`` it is the cost of :func:`tied_integers.rho_tails_integers`, for ``"doubles"`` that of
     :func:`tied_doubles.rho_tails_doubles`.
@@ -106,19 +108,27 @@ def forecast_tails(x: TieGroups, y: TieGroups, numbers: Numbers) -> Forecast:
     if found is None:
         return _coarse(x, y, passes)
     meet = meeting_row(plan)
-    both = [_walk(plan, profile, upto, numbers) for profile, upto in zip(found, (meet, x.n - meet), strict=True)]
-    walks, last = [walk for walk, _ in both], [size for _, size in both]
+    walks = [_walk(plan, profile, upto, numbers)[0] for profile, upto in zip(found, (meet, x.n - meet), strict=True)]
     low, high = found
     states = max(low.states[meet], high.states[x.n - meet])
-    compared = min(low.slots[meet], SLOTS_AT_ONCE)
     slots = low.slots[meet] + high.slots[x.n - meet]
     rates = RATES[numbers]
     meeting = states * rates.meeting_state + slots * rates.meeting_slot
     return Forecast(
         passes * sum(walk.states for walk in walks),
         FIXED + passes * (meeting + sum(walk.nanoseconds for walk in walks)),
-        FIXED_BYTES + max(walks[0].bytes, last[0] + walks[1].bytes, sum(last) + compared * COMPARED_BYTES),
+        _bytes_of_tails(plan, meet, numbers),
     )
+
+
+def _bytes_of_tails(plan: Deal, meet: int, numbers: Numbers) -> int:
+    """Return the memory of two walks that meet, for the tail of half of everything: no observed value needs more."""
+    found = profiles(plan.rows, plan.dealt, "half")
+    assert found is not None
+    both = [_walk(plan, one, upto, numbers) for one, upto in zip(found, (meet, plan.rows.n - meet), strict=True)]
+    walks, last = [walk for walk, _ in both], [size for _, size in both]
+    compared = min(found[0].slots[meet], SLOTS_AT_ONCE)
+    return FIXED_BYTES + max(walks[0].bytes, last[0] + walks[1].bytes, sum(last) + compared * COMPARED_BYTES)
 
 
 def _forecast_whole(x: TieGroups, y: TieGroups, numbers: Numbers) -> Forecast:
@@ -133,13 +143,17 @@ def _forecast_whole(x: TieGroups, y: TieGroups, numbers: Numbers) -> Forecast:
     walk, _ = _walk(plan, profile, upto, numbers)
     rates = RATES[numbers]
     meeting = profile.states[upto] * rates.meeting_state + profile.slots[upto] * rates.meeting_slot
-    entries = entry_bytes = 0
+    entries = entry_bytes = merging = 0
     if numbers == "whole numbers":
-        entries = min(plan.span, profile.slots[upto])
-        entry_bytes = ENTRY_BYTES + slot_bits(distinct_arrangements(plan.dealt)) // 8
+        states, slots = profile.states[upto], profile.slots[upto]
+        count_bytes = slot_bits(distinct_arrangements(plan.dealt)) // 8
+        # Rows of one slot each are gathered one by one; longer ones are added over the whole span, level by level.
+        entries = min(plan.span, slots) if slots <= states else plan.span
+        merging = 0 if slots <= states else count_bytes * (2 * slots + plan.span * states.bit_length())
+        entry_bytes = ENTRY_BYTES + count_bytes
     return Forecast(
         walk.states,
-        FIXED + walk.nanoseconds + meeting + entries * ENTRY,
+        FIXED + walk.nanoseconds + meeting + entries * ENTRY + merging * rates.byte // 1_000,
         FIXED_BYTES + walk.bytes + plan.span * 8 + entries * entry_bytes,
     )
 

@@ -52,7 +52,7 @@ def untied_null(n: int) -> ExactNull:
     ComputeError
         If ``n`` is not between 1 and :func:`reach`.
     """
-    if not 1 <= n <= reach():
+    if n not in range(1, reach() + 1):
         raise ComputeError(f"The untied null is tabulated for 1 to {reach()} rows, not for {n}.")
     largest = (n**3 - n) // 3
     counts = counts_by_half_sum(n)

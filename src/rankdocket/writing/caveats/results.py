@@ -4,6 +4,7 @@ from fractions import Fraction
 from typing import Final
 
 from rankdocket.analysis.results import Estimate, NotEstimable, RankTest
+from rankdocket.document.model import Prose
 from rankdocket.document.prose import prose
 from rankdocket.stats.interval import Interval
 from rankdocket.writing.caveat import CaveatRule, FoundCaveat
@@ -116,23 +117,36 @@ def _disagree(story: Story) -> tuple[FoundCaveat, ...]:
 
 def _undecided(story: Story) -> tuple[FoundCaveat, ...]:
     return tuple(
-        FoundCaveat(
-            (name,),
-            prose(
-                "{name}: undecided {by}. With {p} at one end of its interval, {low} to {high}, the finding would be "
-                "another one. {remedy}",
-                name=pointer(name),
-                by="by these draws" if _is_drawn(story, name) else "by this series",
-                p=P,
-                low=story.numbers.attainable_p(address(name, "test", "p_low")),
-                high=story.numbers.attainable_p(address(name, "test", "p_high")),
-                remedy="The ceiling of draws that the plan sets was reached; a plan with more would settle the side."
-                if _is_drawn(story, name)
-                else "The word printed is that of the value itself; the stated error does not settle the side.",
-            ),
-        )
+        FoundCaveat((name,), _why_undecided(story, name))
         for name, finding in story.analysis.findings.items()
         if finding.undecided
+    )
+
+
+def _why_undecided(story: Story, name: str) -> Prose:
+    result = story.analysis.results[name]
+    if not isinstance(result.test, RankTest) or result.test.p_interval is None:
+        return prose(
+            "{name}: undecided by the draws of others in its family. Its own {p} was counted; with theirs at the other "
+            "ends of their intervals, the adjusted one would lie on the other side of alpha.",
+            name=pointer(name),
+            p=P,
+        )
+    by_draws = _is_drawn(story, name)
+    return prose(
+        "{name}: undecided {by}. With {p} at another place in its interval, {low} to {high}{family}, the finding would be "
+        "another one. {remedy}",
+        name=pointer(name),
+        by="by these draws" if by_draws else "by this series",
+        p=P,
+        low=story.numbers.attainable_p(address(name, "test", "p_low")),
+        high=story.numbers.attainable_p(address(name, "test", "p_high")),
+        family=", and others of the family in theirs"
+        if story.analysis.findings[name].basis == "family" and len(story.analysis.family) > 1
+        else "",
+        remedy="The ceiling of draws that the plan sets was reached; a plan with more may settle the side."
+        if by_draws
+        else "The word printed is that of the value itself; the stated error does not settle the side.",
     )
 
 

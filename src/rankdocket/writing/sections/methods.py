@@ -1,5 +1,6 @@
 """Section 4: what was done, gathered from the rules that ran, and deviations under their own heading."""
 
+from itertools import product
 from typing import Final
 
 from rankdocket.analysis.analyse import adjustment_of
@@ -12,6 +13,7 @@ from rankdocket.stats.critical import CRITICAL_VALUES
 from rankdocket.stats.interval import Interval
 from rankdocket.stats.intervals import INTERVAL_METHODS
 from rankdocket.stats.null import MONTE_CARLO_INTERVAL, MONTE_CARLO_LOOKS, NULL_DESCRIPTIONS, TWO_SIDED, NullMethod
+from rankdocket.stats.nulls.tau_exact import TAU_NULL_DESCRIPTIONS
 from rankdocket.stats.rho import RHO
 from rankdocket.stats.tau import TAU_B
 from rankdocket.vocabulary import COEFFICIENTS, CoefficientName
@@ -116,18 +118,25 @@ def _coefficients(story: Story) -> Prose:
 
 def _nulls(story: Story) -> Prose:
     parts = []
-    for method, description in NULL_DESCRIPTIONS.items():
+    for method, coefficient in product(NULL_DESCRIPTIONS, COEFFICIENTS):
         names = tuple(
             name
             for name, result in story.analysis.results.items()
-            if isinstance(result.test, RankTest) and result.test.tails.method == method
+            if isinstance(result.test, RankTest)
+            and (result.test.tails.method, result.screened.spec.coefficient) == (method, coefficient)
         )
         if not names:
             continue
+        description = NULL_DESCRIPTIONS[method]
+        if coefficient == "Kendall tau-b":
+            description = TAU_NULL_DESCRIPTIONS.get(method, description)
         parts.append(described(description, associations=pointers(names), **_null_slots(story, method, names[0])))
-        if method == "drawn permutations":
-            parts.append(_looks(story))
-    if parts:
+    if any(isinstance(result.test, RankTest) and result.test.stream for result in story.analysis.results.values()):
+        parts.append(_looks(story))
+    if any(
+        isinstance(result.test, RankTest) and result.test.null.critical is not None
+        for result in story.analysis.results.values()
+    ):
         parts.append(described(CRITICAL_VALUES))
     return joined(tuple(parts))
 
