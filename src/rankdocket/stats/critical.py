@@ -90,7 +90,8 @@ class LargeSample:
 
 CRITICAL_VALUES = Description(
     "A critical value is the attainable coefficient nearest to zero whose p-value is alpha or less with these rows and "
-    "ties; it was read from the null laid out whole and is not adjusted for several tests.",
+    "ties; it was read from the null laid out whole, is printed rounded and filed in full, and is not adjusted for several "
+    "tests.",
     (),
 )
 

@@ -1,14 +1,12 @@
 """The null in words: which one and why, the error of its p-value, the draws, critical values."""
 
 from collections.abc import Mapping
-from decimal import Decimal
 from types import MappingProxyType
 from typing import Final, TypeAlias
 
 from rankdocket.analysis.null_plain import UNKNOWN, UNPLACED, UNREACHED
 from rankdocket.analysis.results import RankTest
 from rankdocket.document.model import Number, Prose, Supplied
-from rankdocket.document.numbers import MINUS
 from rankdocket.document.prose import joined, only, prose
 from rankdocket.stats.choose_null import Route
 from rankdocket.stats.null import NullMethod
@@ -22,8 +20,7 @@ BOUNDED: Final[tuple[NullMethod, ...]] = ("Edgeworth series", "saddlepoint")
 """Methods whose p-value has a stated error that can be seen in print."""
 
 FEWEST_DECIMALS: Final = 3
-MOST_DECIMALS: Final = 6
-"""Decimals of a critical value at least and at most."""
+"""Decimals of a critical value at least."""
 
 _TOLD: Final[Mapping[Route, str]] = MappingProxyType(
     {"draws": "A complete count", "tails, doubles": "Whole numbers", "tails, whole numbers": "The whole null"}
@@ -110,13 +107,9 @@ def _rule_of_thumb(story: Story, name: str, rule: str) -> Prose:
 
 
 def critical_number(story: Story, name: str, direction: Direction) -> Number:
-    """Return a critical value with at least three decimals, and more until it is not printed as larger in size."""
-    at = address(name, "null", "critical", direction, "value")
-    fewest = max(FEWEST_DECIMALS, story.numbers.coefficient_decimals)
-    numbers = [story.numbers.coefficient(at, decimals) for decimals in range(fewest, MOST_DECIMALS + 1)]
-    sizes = [abs(Decimal(number.text.replace(MINUS, "-"))) for number in numbers]
-    exact = abs(Decimal(numbers[0].exact))
-    return next((number for number, size in zip(numbers, sizes, strict=True) if size <= exact), numbers[-1])
+    """Return a critical value, rounded to three decimals at least: neighbours on a fine lattice are told apart."""
+    decimals = max(FEWEST_DECIMALS, story.numbers.coefficient_decimals)
+    return story.numbers.coefficient(address(name, "null", "critical", direction, "value"), decimals)
 
 
 def _test(story: Story, name: str) -> RankTest:

@@ -5,8 +5,8 @@ anew and holds the worksheets against them; recomputes each coefficient in whole
 the rows where there are few enough; derives p, adjusted p and finding from the counts; holds results.csv against
 analysis.json; and looks up every printed number of document.json in analysis.json and in report.html.
 
-It does not read the spec and the data as received, does not recompute intervals and drawn permutations, and does
-not open the PDF.
+It does not read the spec and the data as received, does not recompute intervals, drawn permutations and the bars of a
+null, and does not open the PDF.
 """
 
 # ruff: noqa: T201 - it speaks to a person at a terminal
@@ -73,9 +73,7 @@ def main(folder: Path) -> int:
     else:
         print(f"Everything agrees ({numbers} numbers, {files} files).")
     if left:
-        print(
-            f"Not counted anew, because permutations were drawn or more than {MOST_ROWS_COUNTED} rows ranked: {', '.join(left)}."
-        )
+        print(f"Not counted anew (p is no count, or more than {MOST_ROWS_COUNTED} rows): {', '.join(left)}.")
     return 1 if problems else 0
 
 
@@ -117,20 +115,19 @@ def check_associations(folder: Path, analysis: Any, problems: list[str]) -> list
     problems.extend(
         f"rows.csv: there is no association {name}." for name in sorted(rows.keys() - analysis["associations"].keys())
     )
-    left = []
+    left, alpha = [], Fraction(analysis["inference"]["alpha"])
     for name, found in sorted(analysis["associations"].items()):
         its_rows = rows.get(name, [])
         if len(its_rows) != found["rows"]["complete"]:
-            problems.append(
-                f"{name}: rows.csv has {len(its_rows)} rows, analysis.json says {found['rows']['complete']}."
-            )
+            said = found["rows"]["complete"]
+            problems.append(f"{name}: rows.csv has {len(its_rows)} rows, analysis.json says {said}.")
             continue
         x = doubled_midranks([Fraction(row["x_value"]) for row in its_rows])
         y = doubled_midranks([Fraction(row["y_value"]) for row in its_rows])
         check_worksheet(folder, name, (its_rows, x, y), problems)
         if found["estimate"]["state"] == "estimated":
             check_estimate(name, found, (x, y), problems)
-        if found["test"]["state"] == "tested" and not check_test(name, found, (x, y), problems):
+        if found["test"]["state"] == "tested" and not check_test(name, found, (x, y), alpha, problems):
             left.append(name)
     return left
 
@@ -168,25 +165,62 @@ def check_estimate(name: str, found: Any, ranks: tuple[list[int], list[int]], pr
     hold(f"{name}: the coefficient", Decimal(found["estimate"]["value"]), coefficient(*sums), problems)
 
 
-def check_test(name: str, found: Any, ranks: tuple[list[int], list[int]], problems: list[str]) -> bool:
+def check_test(name: str, found: Any, ranks: tuple[list[int], list[int]], alpha: Fraction, problems: list[str]) -> bool:
     """Derive p from its count, and count all orderings where there are few enough; return whether it was done."""
     test = found["test"]
-    for key, count in (("p", "count"), ("p_greater", "count_greater"), ("p_less", "count_less")):
-        hold_p(f"{name}: {key}", test[key], p_of(test, int(test[count])), problems)
+    if test["count"] is None:
+        return False
+    for key, counted in (("p", "count"), ("p_greater", "count_greater"), ("p_less", "count_less")):
+        hold_p(f"{name}: {key}", test[key], p_of(test, int(test[counted])), problems)
+    if "draws" in test:
+        last = test["draws"]["looks"][-1]
+        hold(f"{name}: the last look", (last["draws"], last["count"]), (int(test["of"]), int(test["count"])), problems)
     if not test["method"].startswith("exact") or len(ranks[0]) > MOST_ROWS_COUNTED:
         return False
     tally = orderings(*ranks, found["coefficient"])
-    numerator = sums_of(found["coefficient"], *ranks)[0]
-    counts = {
-        "greater": sum(times for value, times in tally.items() if value >= numerator),
-        "less": sum(times for value, times in tally.items() if value <= numerator),
-        "two-sided": sum(times for value, times in tally.items() if abs(value) >= abs(numerator)),
-    }
-    hold(f"{name}: count", test["count"], str(counts[test["direction"]]), problems)
-    hold(f"{name}: count_greater", test["count_greater"], str(counts["greater"]), problems)
-    hold(f"{name}: count_less", test["count_less"], str(counts["less"]), problems)
-    hold(f"{name}: the number of orderings", test["of"], str(factorial(len(ranks[0]))), problems)
+    numerator, *squares = sums_of(found["coefficient"], *ranks)
+    for key, side in (("count", test["direction"]), ("count_greater", "greater"), ("count_less", "less")):
+        count = sum(times for size, times in sizes(tally, side) if size >= turned(numerator, side))
+        hold(f"{name}: {key}", test[key], str(count), problems)
+    of = factorial(len(ranks[0]))
+    hold(f"{name}: the number of orderings", test["of"], str(of), problems)
+    most_extreme = Fraction(sizes(tally, test["direction"])[0][1], of)
+    hold_p(f"{name}: the smallest attainable p", found["smallest_attainable_p"], most_extreme, problems)
+    for side, filed in found["null"]["critical"].items() if "method" in found["null"] else ():
+        end, count = critical(sizes(tally, side), alpha * of)
+        what = f"{name}: critical value, {side}"
+        hold(f"{what}: state", filed["state"], "given" if count else "none", problems)
+        if count and filed["state"] == "given":
+            hold(f"{what}: numerator", turned(int(filed["numerator"]), side), end, problems)
+            hold(what, turned(Decimal(filed["value"]), side), coefficient(end, *squares), problems)
+            if "count" in filed:
+                hold(f"{what}: count", (filed["count"], filed["of"]), (str(count), str(of)), problems)
+                hold_p(f"{what}: p", filed["p"], Fraction(count, of), problems)
     return True
+
+
+def turned(value: Any, side: str) -> Any:
+    """Return how far a value lies toward a side: the same, the opposite, or its size."""
+    return abs(value) if side == "two-sided" else -value if side == "less" else value
+
+
+def sizes(tally: dict[int, int], side: str) -> list[tuple[int, int]]:
+    """Return how many orderings lie how far toward a side, the farthest first."""
+    found: Counter[int] = Counter()
+    for value, times in tally.items():
+        found[turned(value, side)] += times
+    return sorted(found.items(), reverse=True)
+
+
+def critical(farthest_first: list[tuple[int, int]], most: Fraction) -> tuple[int, int]:
+    """Return the value nearest to 0 that at most so many orderings reach, and how many do; 0 of none."""
+    nearest, tail = (0, 0), 0
+    for size, times in farthest_first:
+        tail += times
+        if size <= 0 or tail > most:
+            break
+        nearest = size, tail
+    return nearest
 
 
 def p_of(test: Any, count: int) -> Fraction:
@@ -200,7 +234,7 @@ def check_findings(folder: Path, analysis: Any, problems: list[str]) -> None:
     plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))
     family, alpha = analysis["inference"]["family"], Fraction(plan["inference"]["alpha"])
     p_values = {
-        name: p_of(found["test"], int(found["test"]["count"]))
+        name: Fraction(test["p"]) if (test := found["test"])["count"] is None else p_of(test, int(test["count"]))
         for name, found in analysis["associations"].items()
         if found["test"]["state"] == "tested"
     }
@@ -245,9 +279,8 @@ def check_results(folder: Path, analysis: Any, problems: list[str]) -> None:
         for column, cell in row.items():
             filed = look_up(its_own, RESULT_ADDRESSES.get(column, column))
             if cell != ("" if filed is None else str(filed)):
-                problems.append(
-                    f"results.csv, line {line}: {column} is {cell or 'blank'}, analysis.json has {filed or 'nothing'}."
-                )
+                has = f"{column} is {cell or 'blank'}, analysis.json has {filed or 'nothing'}"
+                problems.append(f"results.csv, line {line}: {has}.")
 
 
 def doubled_midranks(values: list[Fraction]) -> list[int]:
@@ -362,14 +395,11 @@ def check_printed(folder: Path, analysis: Any, problems: list[str]) -> int:
         if str(look_up(analysis, key)) != exact:
             problems.append(f"document.json: {key} is {exact}, analysis.json has {look_up(analysis, key)}.")
     for key, text in sorted(told.keys() | shown.keys()):
-        if told[key, text] > shown[key, text]:
-            problems.append(
-                f"document.json prints {key} as {text}, {told[key, text]} times; report.html {shown[key, text]} times."
-            )
-        elif told[key, text] < shown[key, text]:
-            problems.append(
-                f"report.html prints {key} as {text}, {shown[key, text]} times; document.json {told[key, text]} times."
-            )
+        in_words, on_page = told[key, text], shown[key, text]
+        if in_words > on_page:
+            problems.append(f"document.json prints {key} as {text}, {in_words} times; report.html {on_page} times.")
+        elif in_words < on_page:
+            problems.append(f"report.html prints {key} as {text}, {on_page} times; document.json {in_words} times.")
     return len(numbers)
 
 
