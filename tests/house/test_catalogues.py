@@ -58,9 +58,9 @@ def test_folder_and_catalogue_agree(folder: str, kind: type[Any], catalogue: tup
     assert len(set(keys)) == len(keys)
 
 
-def test_the_vocabulary_of_adjustments_is_their_catalogue() -> None:
-    """The words that a spec may write for an adjustment are the keys of the rules, in the same order."""
-    assert tuple(rule.key for rule in ADJUSTMENTS) == ADJUSTMENT_WORDS
+def test_the_words_for_adjustments_have_their_rules() -> None:
+    """The words that a spec may write for an adjustment are keys of rules, in the same order; more rules may exist."""
+    assert tuple(rule.key for rule in ADJUSTMENTS if rule.key in ADJUSTMENT_WORDS) == ADJUSTMENT_WORDS
 
 
 def test_intervals_serve_known_coefficients() -> None:

@@ -8,9 +8,20 @@ import pytest
 
 from rankdocket.references import REFERENCES, Description
 from rankdocket.stats.adjustments import ADJUSTMENTS
+from rankdocket.stats.chatterjee import XI
+from rankdocket.stats.differences import TWO_GROUPS
+from rankdocket.stats.equivalence import EQUIVALENCE, MINIMUM_EFFECT, NULL_VALUE
 from rankdocket.stats.intervals import INTERVAL_METHODS
+from rankdocket.stats.isotonic import ISOTONIC
+from rankdocket.stats.leave_one_out import LEAVE_ONE_OUT
 from rankdocket.stats.null import MONTE_CARLO_INTERVAL, NULL_DESCRIPTIONS, TWO_SIDED
+from rankdocket.stats.partial import PARTIAL_RHO
+from rankdocket.stats.removals import REMOVALS
 from rankdocket.stats.rho import RHO
+from rankdocket.stats.same_row_differences import NONE_SHARED, ONE_SHARED
+from rankdocket.stats.sequence_tests import RUNS, SUCCESSIVE
+from rankdocket.stats.shapiro_wilk import SHAPIRO_WILK
+from rankdocket.stats.studentised import STUDENTISED
 from rankdocket.stats.tau import TAU_B
 
 DESCRIPTIONS = (
@@ -18,6 +29,21 @@ DESCRIPTIONS = (
     TAU_B,
     TWO_SIDED,
     MONTE_CARLO_INTERVAL,
+    PARTIAL_RHO,
+    TWO_GROUPS,
+    ONE_SHARED,
+    NONE_SHARED,
+    NULL_VALUE,
+    MINIMUM_EFFECT,
+    EQUIVALENCE,
+    XI,
+    ISOTONIC,
+    STUDENTISED,
+    RUNS,
+    SUCCESSIVE,
+    SHAPIRO_WILK,
+    LEAVE_ONE_OUT,
+    REMOVALS,
     *NULL_DESCRIPTIONS.values(),
     *(method.describe for method in INTERVAL_METHODS),
     *(rule.describe for rule in ADJUSTMENTS),

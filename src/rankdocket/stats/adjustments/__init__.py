@@ -1,20 +1,30 @@
-"""The catalogue of adjustments, in the order of the vocabulary."""
+"""The catalogue of adjustments: any false finding first, then shares of false findings, then none."""
 
 from collections.abc import Sequence
 from decimal import Decimal
 from fractions import Fraction
 from typing import Final
 
-from rankdocket.stats.adjustment import AdjustmentRule
+from rankdocket.stats.adjustment import AdjustmentName, AdjustmentRule
+from rankdocket.stats.adjustments.benjamini_hochberg import BENJAMINI_HOCHBERG
+from rankdocket.stats.adjustments.benjamini_yekutieli import BENJAMINI_YEKUTIELI
+from rankdocket.stats.adjustments.bonferroni import BONFERRONI
+from rankdocket.stats.adjustments.hochberg import HOCHBERG
 from rankdocket.stats.adjustments.holm import HOLM
 from rankdocket.stats.adjustments.none import NONE
-from rankdocket.vocabulary import Adjustment
 
-ADJUSTMENTS: Final[tuple[AdjustmentRule, ...]] = (HOLM, NONE)
-"""Every adjustment rule."""
+ADJUSTMENTS: Final[tuple[AdjustmentRule, ...]] = (
+    HOLM,
+    HOCHBERG,
+    BONFERRONI,
+    BENJAMINI_HOCHBERG,
+    BENJAMINI_YEKUTIELI,
+    NONE,
+)
+"""Every adjustment rule; the words that a spec may write stand in the same order among their keys."""
 
 
-def adjusted(p_values: Sequence[Fraction | Decimal | int | float], *, rule: Adjustment) -> tuple[Fraction, ...]:
+def adjusted(p_values: Sequence[Fraction | Decimal | int | float], *, rule: AdjustmentName) -> tuple[Fraction, ...]:
     """Return adjusted p-values, exactly, in the order given; a float is taken at its exact value.
 
     Raises

@@ -1,19 +1,59 @@
-"""The catalogue of interval rules, in the order in which they are preferred."""
+"""The catalogue of interval rules: for each coefficient those to rely on first, then those kept for comparison."""
 
+from types import MappingProxyType
 from typing import Final
 
 from rankdocket.stats.interval import Interval, IntervalMethod, IntervalQuestion, NoInterval
+from rankdocket.stats.intervals.bca_bootstrap import BCA_BOOTSTRAP
 from rankdocket.stats.intervals.bonett_wright import BONETT_WRIGHT
+from rankdocket.stats.intervals.fieller import FIELLER
+from rankdocket.stats.intervals.fisher import FISHER
+from rankdocket.stats.intervals.influence_values import INFLUENCE_VALUES
+from rankdocket.stats.intervals.jackknife import JACKKNIFE
+from rankdocket.stats.intervals.tau_jackknife import TAU_JACKKNIFE
+from rankdocket.vocabulary import CoefficientName
 
-INTERVAL_METHODS: Final[tuple[IntervalMethod, ...]] = (BONETT_WRIGHT,)
-"""Every interval rule; the first that serves a coefficient is used."""
+INTERVAL_METHODS: Final[tuple[IntervalMethod, ...]] = (
+    JACKKNIFE,
+    BONETT_WRIGHT,
+    INFLUENCE_VALUES,
+    BCA_BOOTSTRAP,
+    FIELLER,
+    FISHER,
+    TAU_JACKKNIFE,
+)
+"""Every interval rule."""
+
+USUAL_METHODS: Final = MappingProxyType[CoefficientName, IntervalMethod]({"Spearman rho": BONETT_WRIGHT})
+"""The rule of :func:`interval_of` by coefficient."""
 
 
 def interval_of(question: IntervalQuestion) -> Interval | NoInterval:
-    """Return the interval by the first rule that serves the coefficient, or why there is none."""
+    """Return the interval by the usual rule for the coefficient, or why there is none."""
     name = question.coefficient.name
-    for method in INTERVAL_METHODS:
-        if name in method.coefficients:
-            return method.function(question)
-    short = {"Spearman rho": "rho", "Kendall tau-b": "tau-b"}[name]
-    return NoInterval(f"no interval is offered for {short} yet")
+    method = USUAL_METHODS.get(name)
+    if method is None:
+        return NoInterval(f"no interval is offered for {_short(name)} yet")
+    return method.function(question)
+
+
+def interval_by(method_key: str, question: IntervalQuestion) -> Interval | NoInterval:
+    """Return the interval by the rule of that key, or why there is none.
+
+    Raises
+    ------
+    ValueError
+        If there is no such rule.
+    """
+    method = next((candidate for candidate in INTERVAL_METHODS if candidate.key == method_key), None)
+    if method is None:
+        keys = ", ".join(each.key for each in INTERVAL_METHODS)
+        raise ValueError(f"{method_key!r} is no interval rule; write one of: {keys}")
+    name = question.coefficient.name
+    if name not in method.coefficients:
+        return NoInterval(f"the rule {method.key} makes no interval for {_short(name)}")
+    return method.function(question)
+
+
+def _short(name: CoefficientName) -> str:
+    return {"Spearman rho": "rho", "Kendall tau-b": "tau-b"}[name]
