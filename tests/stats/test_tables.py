@@ -168,5 +168,7 @@ def test_a_side_that_is_none_and_half_a_row_are_refused() -> None:
     for function in (critical_value, critical_value_approximate, critical_value_large_sample):
         with pytest.raises(ComputeError, match="sidedness must be one of"):
             function(10, 0.05, sidedness="both")
+    with pytest.raises(ComputeError, match="sidedness must be one of"):
+        critical_value_approximate(31, 0.05, sidedness="both")
     with pytest.raises(ComputeError, match="not for 2"):
         null_counts(2.5)

@@ -3,7 +3,6 @@
 from collections.abc import Callable, Mapping
 from decimal import Decimal
 from fractions import Fraction
-from typing import Final
 
 import numpy as np
 
@@ -29,7 +28,7 @@ from rankdocket.analysis.screen import screen_association
 from rankdocket.errors import InputError
 from rankdocket.stats.adjustment import AdjustmentRule
 from rankdocket.stats.adjustments import ADJUSTMENTS
-from rankdocket.stats.coefficient import Coefficient
+from rankdocket.stats.coefficient import FEWEST_ROWS, Coefficient
 from rankdocket.stats.comparisons import pearson_r, t_value_p
 from rankdocket.stats.interval import Interval, IntervalQuestion, NoInterval
 from rankdocket.stats.intervals import interval_of
@@ -42,9 +41,6 @@ from rankdocket.study.messages import Message, fault
 from rankdocket.study.spec import StudySpec
 from rankdocket.study.table import StudyData
 from rankdocket.vocabulary import Direction
-
-FEWEST_ROWS: Final = 3
-"""With fewer rows every untied pairing agrees or disagrees perfectly: a coefficient says nothing."""
 
 
 def analyse(spec: StudySpec, data: StudyData, progress: Callable[[str], None] = lambda _: None) -> Analysis:

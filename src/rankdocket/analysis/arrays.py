@@ -12,7 +12,7 @@ import numpy as np
 
 from rankdocket.stats.attainable import tails_at_limit
 from rankdocket.stats.choose_null import NANOSECONDS, Budget, NullChoice, choose_null
-from rankdocket.stats.coefficient import Coefficient
+from rankdocket.stats.coefficient import FEWEST_ROWS, Coefficient
 from rankdocket.stats.comparisons import pearson_r, t_value_p
 from rankdocket.stats.draws import stream
 from rankdocket.stats.interval import Interval, IntervalQuestion, NoInterval
@@ -25,9 +25,6 @@ from rankdocket.stats.rho import rho, short_form, squared_differences
 from rankdocket.stats.tau import tau_b
 
 Exact: TypeAlias = int | Fraction | Decimal
-
-FEWEST_ROWS: Final = 3
-"""With two rows the coefficient could only be 1 or −1."""
 
 MOST_SECONDS: Final = Decimal(10**9)
 MOST_BYTES: Final = Decimal(2**60)

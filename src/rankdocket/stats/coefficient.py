@@ -8,6 +8,9 @@ from typing import Final
 from rankdocket.errors import ComputeError
 from rankdocket.vocabulary import CoefficientName
 
+FEWEST_ROWS: Final = 3
+"""With fewer rows every untied pairing agrees or disagrees perfectly: a coefficient says nothing."""
+
 FILED_DIGITS: Final = 12
 """Significant digits with which a coefficient is filed."""
 

@@ -19,7 +19,7 @@ from rankdocket.stats.nulls.tied_doubles import rho_shares, rho_tails_doubles
 from rankdocket.stats.nulls.tied_integers import rho_tails_integers
 from rankdocket.stats.outline import NullOutline, Picture, lattice_between, outline_of, picture_of
 from rankdocket.stats.ranks import Codes, TieGroups, tie_groups
-from rankdocket.stats.tables import CriticalValueFound, critical_value_approximate, critical_value_large_sample
+from rankdocket.stats.tables import CriticalValue, critical_value_approximate, critical_value_large_sample
 from rankdocket.vocabulary import Direction
 
 SMOOTH_CLASSES: Final = 5
@@ -201,7 +201,7 @@ def _from_series(question: NullQuestion) -> NullResult:
     )
 
 
-def _critical(found: CriticalValueFound, direction: Direction) -> Critical | None:
+def _critical(found: CriticalValue, direction: Direction) -> Critical | None:
     if found.numerator is None or found.attained_p is None:
         return None
     numerator = -found.numerator if direction == "less" else found.numerator

@@ -14,6 +14,8 @@ from rankdocket.stats.nulls.untied import reach, untied_null
 from rankdocket.stats.rho import short_form
 from rankdocket.vocabulary import SIDEDNESS, Direction, Sidedness
 
+EXACT: Final[NullMethod] = "exact, no ties"
+
 FEWEST_CRITICAL: Final = 3
 """With fewer rows no coefficient but 1 and −1 exists, and half of all orders give each."""
 
@@ -37,26 +39,6 @@ class NullCounts:
 
 @dataclass(frozen=True, slots=True)
 class CriticalValue:
-    """The smallest coefficient that is attainable and has a p-value of alpha or less.
-
-    Attributes
-    ----------
-    attainable
-        False when even perfect order has a larger p-value; the other attributes are then ``None``.
-    sum_d2
-        Its sum of squared rank differences.
-    attained_p
-        Its exact p-value.
-    """
-
-    attainable: bool
-    rho: Fraction | None
-    sum_d2: int | None
-    attained_p: Fraction | None
-
-
-@dataclass(frozen=True, slots=True)
-class CriticalValueFound:
     """A critical value by the counts where they reach, by a series above.
 
     Attributes
@@ -123,7 +105,7 @@ def critical_value(n: int, alpha: Decimal | Fraction | float, *, sidedness: Side
     limit = _as_written(alpha)
     table = null_counts(n)
     sides = 1 if _direction(sidedness) == "greater" else 2
-    found = CriticalValue(False, None, None, None)
+    found = CriticalValue(False, None, None, None, None, EXACT)
     at_most = 0
     for sum_d2, count in table.counts:
         at_most += count
@@ -131,13 +113,12 @@ def critical_value(n: int, alpha: Decimal | Fraction | float, *, sidedness: Side
         # From zero on, the two tails overlap and say nothing against independence.
         if p > limit or 6 * sum_d2 >= n**3 - n:
             break
-        found = CriticalValue(True, short_form(n, Fraction(sum_d2)), sum_d2, p)
+        numerator = (n**3 - n) // 3 - 2 * sum_d2
+        found = CriticalValue(True, short_form(n, Fraction(sum_d2)), numerator, sum_d2, p, EXACT)
     return found
 
 
-def critical_value_approximate(
-    n: int, alpha: Decimal | Fraction | float, *, sidedness: Sidedness
-) -> CriticalValueFound:
+def critical_value_approximate(n: int, alpha: Decimal | Fraction | float, *, sidedness: Sidedness) -> CriticalValue:
     """Return the critical value of rho without ties for any number of rows: exact as far as the counts reach.
 
     Above them the Edgeworth series stands in, and the saddlepoint for p-values below one in a hundred thousand.
@@ -157,19 +138,15 @@ def critical_value_approximate(
         If ``n`` is too small, or ``alpha`` or ``sidedness`` is none.
     """
     _at_least_three(n)
-    largest = (n**3 - n) // 3
+    direction, largest = _direction(sidedness), (n**3 - n) // 3
     if n <= reach():
-        exact = critical_value(n, alpha, sidedness=sidedness)
-        numerator = None if exact.sum_d2 is None else largest - 2 * exact.sum_d2
-        return CriticalValueFound(
-            exact.attainable, exact.rho, numerator, exact.sum_d2, exact.attained_p, "exact, no ties"
-        )
+        return critical_value(n, alpha, sidedness=sidedness)
     found = series_critical(n, _as_written(alpha), sidedness)
     if found is None:
-        return CriticalValueFound(False, None, None, None, None, series_tails(n, largest).method)
+        return CriticalValue(False, None, None, None, None, series_tails(n, largest).method)
     tails = series_tails(n, found)
-    share = tails.share(_direction(sidedness))
-    return CriticalValueFound(
+    share = tails.share(direction)
+    return CriticalValue(
         True, Fraction(found, largest), found, (largest - found) // 2, share.value, tails.method, share.error
     )
 
