@@ -24,7 +24,7 @@ EDGE_DIGITS: Final = 6
 
 UNREACHED: Final = "no coefficient of these rows and ties has a p-value of alpha or less"
 UNPLACED: Final = "these draws are too few to place it"
-UNKNOWN: Final = "the whole null, from which it is read, would have taken more than the budget"
+UNKNOWN: Final = "the whole null, from which they are read, would have taken more than the budget"
 """Why there is no critical value."""
 
 

@@ -206,7 +206,7 @@ class Numbers:
         exact = self._exact(key)
         seconds = Decimal(exact)
         if seconds < 1:
-            return Number(key, exact, f"{_first_digits(seconds, ROUND_HALF_EVEN):f} seconds")
+            return Number(key, exact, f"{_first_digits(seconds, ROUND_HALF_EVEN).normalize():f} seconds")
         for name, size, most in DURATIONS:
             amount = _rounded(seconds / size, 0)
             if amount < most:
@@ -215,13 +215,10 @@ class Numbers:
         return Number(key, exact, "more than a year")
 
     def error(self, key: str) -> Number:
-        """Return how wrong a p-value can be, with its first digits, rounded up; "< 0.000001" where it is smaller."""
+        """Return how wrong a p-value can be at most: its first digits, rounded up, and no more than nine decimals."""
         exact = self._exact(key)
-        value = Decimal(exact)
-        smallest = Decimal(1).scaleb(-MOST_ERROR_DECIMALS)
-        if value < smallest:
-            return Number(key, exact, f"<{NARROW_SPACE}{self._styled(smallest)}")
-        return Number(key, exact, self._styled(_first_digits(value, ROUND_UP)))
+        value = max(Decimal(exact), Decimal(1).scaleb(-MOST_ERROR_DECIMALS))
+        return Number(key, exact, self._styled(_first_digits(value, ROUND_UP).normalize()))
 
     def memory(self, key: str) -> Number:
         """Return a forecast of bytes in the unit that suits it: "1.2 GiB"."""

@@ -28,7 +28,7 @@ Floats = npt.NDArray[np.float64]
 STUDENTISED: Final = Description(
     "Whether rho is zero, the variables being free to depend on each other in other ways, was tested by permutations of "
     "rho on the inverse hyperbolic tangent scale over its standard error from influence values; {draws} permutations "
-    "were drawn from seed {seed}, the data themselves counted as one more. The test is exact when the rows are unrelated "
+    "were drawn from seed {seed}, the data themselves counted as one more. The test is exact under independence of the rows "
     "and holds approximately when only rho is zero.",
     ("diciccio2017", "yu2024", "croux2010", "phipson2010"),
 )

@@ -74,6 +74,8 @@ def error_rows(story: Story, name: str) -> tuple[Row, ...]:
 
 def critical_rows(story: Story, name: str) -> tuple[Row, ...]:
     """Return the critical values for two sides and for one, and what the large-sample rule is worth here."""
+    if _test(story, name).null.critical is None:
+        return (("Critical values", only(f"not worked out: {UNKNOWN}")),)
     rows = [("Critical value, two-sided", _critical(story, name, "two-sided"))]
     if _is_symmetric(story, name) and not _test(story, name).stream:
         rows.append(("Critical value, one-sided", _critical(story, name, "greater")))
@@ -152,11 +154,8 @@ def _draws(story: Story, name: str) -> Prose:
 
 def _critical(story: Story, name: str, direction: Direction) -> Prose:
     at = address(name, "null", "critical", direction)
-    null = _test(story, name).null
-    if null.critical is None:
-        return only(f"not worked out: {UNKNOWN}")
-    drawn = bool(_test(story, name).stream)
-    if null.critical.toward(direction) is None:
+    critical, drawn = _test(story, name).null.critical, bool(_test(story, name).stream)
+    if critical is None or critical.toward(direction) is None:
         return only(f"not placed: {UNPLACED}" if drawn else f"cannot be reached: {UNREACHED}")
     template = {
         "two-sided": "{by}{symbol} of {value} or more in size has {p}",
