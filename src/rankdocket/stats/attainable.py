@@ -3,7 +3,9 @@
 from collections import Counter
 from dataclasses import dataclass
 from fractions import Fraction
+from functools import lru_cache
 from math import factorial, prod
+from typing import Final
 
 from rankdocket.stats.coefficient import Coefficient
 from rankdocket.stats.forecast import ROWS_LIMIT, distinct_arrangements
@@ -12,6 +14,9 @@ from rankdocket.stats.ranks import Codes, TieGroups
 from rankdocket.stats.rho import rho
 from rankdocket.stats.tau import tau_b
 from rankdocket.vocabulary import CoefficientName, Direction
+
+ANSWERS_KEPT: Final = 64
+"""Answers remembered: check, screening and analysis of one association ask for the same one."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -28,6 +33,7 @@ def attainable_range(name: CoefficientName, x: TieGroups, y: TieGroups) -> Attai
     return AttainableRange(_coefficient(name, x_codes, y_codes[::-1]), _coefficient(name, x_codes, y_codes))
 
 
+@lru_cache(maxsize=ANSWERS_KEPT)
 def smallest_attainable_p(name: CoefficientName, x: TieGroups, y: TieGroups, direction: Direction) -> Fraction:
     """Return the smallest exact p-value that data with these tie groups can give, above 0 to 1.
 

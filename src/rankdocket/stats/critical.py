@@ -9,7 +9,7 @@ from scipy.special import ndtri
 
 from rankdocket.references import Description
 from rankdocket.stats.coefficient import Coefficient
-from rankdocket.stats.null import NullMethod
+from rankdocket.stats.null import NullMethod, toward
 from rankdocket.stats.outline import NullOutline, Weight
 from rankdocket.vocabulary import Direction
 
@@ -60,13 +60,7 @@ class CriticalValues:
 
     def toward(self, direction: Direction) -> Critical | None:
         """Return the critical value in ``direction``."""
-        match direction:
-            case "greater":
-                return self.greater
-            case "less":
-                return self.less
-            case "two-sided":
-                return self.two_sided
+        return toward(direction, greater=self.greater, less=self.less, two_sided=self.two_sided)
 
 
 @dataclass(frozen=True, slots=True)

@@ -4,11 +4,10 @@ from decimal import Decimal
 from math import atanh, cosh, log, sqrt
 from typing import Final
 
-from scipy.special import ndtri
-
 from rankdocket.references import Description
-from rankdocket.stats.intervals.bonett_wright import bonett_wright_limits
+from rankdocket.stats.intervals.bonett_wright import bonett_wright_factor, bonett_wright_limits
 from rankdocket.stats.sample_size import RowsNeeded
+from rankdocket.stats.z_interval import two_sided_quantile
 
 INTERVAL_WIDTH: Final = Description(
     "The number of rows was planned so that the interval of Bonett and Wright is no wider than wanted when the "
@@ -65,14 +64,11 @@ def rows_for_width(rho: float, width: float, *, level: Decimal | str | float) ->
     ValueError
         If an argument is out of its range.
     """
-    chosen_level = Decimal(str(level))
     if not -1 < rho < 1:
         raise ValueError(f"rho must lie between -1 and 1 and reach neither, not be {rho}")
     if not 0 < width < 2:
         raise ValueError(f"the width must lie between 0 and 2 and reach neither, not be {width}")
-    if not 0 < chosen_level < 1:
-        raise ValueError(f"level must lie between 0 and 1, not be {level}")
-    z = -float(ndtri(float((1 - chosen_level) / 2)))
+    z = two_sided_quantile(level)
     spread = width * cosh(2 * atanh(rho))
     half = log((spread + sqrt(spread * spread + 4 - width * width)) / (2 - width)) / 2
-    return RowsNeeded(3 + (z / half) ** 2 * (1 + rho * rho / 2))
+    return RowsNeeded(3 + (z / half) ** 2 * bonett_wright_factor(rho))

@@ -6,7 +6,7 @@ from decimal import Decimal
 from fractions import Fraction
 from math import factorial
 from types import MappingProxyType
-from typing import Final, Literal, TypeAlias
+from typing import Final, Literal, TypeAlias, TypeVar
 
 import numpy as np
 from scipy.special import betaincinv
@@ -91,6 +91,20 @@ MONTE_CARLO_LOOKS: Final = Description(
 )
 
 
+Answer = TypeVar("Answer")
+
+
+def toward(direction: Direction, *, greater: Answer, less: Answer, two_sided: Answer) -> Answer:
+    """Return what belongs to ``direction``."""
+    match direction:
+        case "greater":
+            return greater
+        case "less":
+            return less
+        case "two-sided":
+            return two_sided
+
+
 @dataclass(frozen=True, slots=True)
 class TailCounts:
     """How many permutations are at least as extreme as the data.
@@ -120,13 +134,7 @@ class TailCounts:
 
     def count(self, direction: Direction) -> int:
         """Return the permutations at least as extreme in ``direction``."""
-        match direction:
-            case "greater":
-                return self.greater
-            case "less":
-                return self.less
-            case "two-sided":
-                return self.two_sided
+        return toward(direction, greater=self.greater, less=self.less, two_sided=self.two_sided)
 
     def p(self, direction: Direction) -> Fraction:
         """Return the p-value, above 0 to 1: the exact share, or (b + 1)/(B + 1) when drawn (phipson2010)."""
@@ -192,13 +200,7 @@ class TailShares:
 
     def share(self, direction: Direction) -> Share:
         """Return the share of the permutations at least as extreme in ``direction``."""
-        match direction:
-            case "greater":
-                return self.greater
-            case "less":
-                return self.less
-            case "two-sided":
-                return self.two_sided
+        return toward(direction, greater=self.greater, less=self.less, two_sided=self.two_sided)
 
     def p(self, direction: Direction) -> Fraction:
         """Return the p-value, above 0 to 1."""

@@ -3,13 +3,11 @@
 from collections.abc import Callable
 from dataclasses import dataclass
 from fractions import Fraction
-from itertools import pairwise
-from math import gcd
 from typing import Final, TypeAlias
 
 from rankdocket.errors import ComputeError
 from rankdocket.stats.null import ExactNull, NullMethod
-from rankdocket.stats.ranks import Codes
+from rankdocket.stats.ranks import Codes, lattice_step
 
 MOST_BARS: Final = 60
 """Up to here every place of the lattice gets a bar of its own; above, neighbours share one."""
@@ -147,8 +145,7 @@ def picture_of(outline: NullOutline) -> Picture:
     statistics = outline.statistics.tolist()
     first = _first_seen(outline.weights.__getitem__, len(statistics), outline.of)
     last = len(statistics) - 1 - _first_seen(lambda place: outline.weights[-1 - place], len(statistics), outline.of)
-    step = gcd(*(high - low for low, high in pairwise(statistics))) or 1
-    lattice = lattice_between(statistics[first], statistics[last], step)
+    lattice = lattice_between(statistics[first], statistics[last], lattice_step(statistics))
     weights: list[Weight] = [0] * lattice.bars
     for place in range(first, last + 1):
         weights[lattice.bar_of(statistics[place])] += outline.weights[place]

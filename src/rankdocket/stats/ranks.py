@@ -8,6 +8,8 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from decimal import Decimal
 from fractions import Fraction
+from itertools import pairwise
+from math import gcd
 from typing import Final, TypeAlias
 
 import numpy as np
@@ -106,6 +108,11 @@ def doubled_midranks(codes: Codes) -> Codes:
 def centred_ranks(codes: Codes) -> Codes:
     """Return 2R − (n + 1) for each row: twice the midrank less its mean; they sum to 0."""
     return doubled_midranks(codes) - (len(codes) + 1)
+
+
+def lattice_step(values: Sequence[int]) -> int:
+    """Return the greatest common divisor of the gaps between increasing values; 1 for a single one."""
+    return gcd(*(high - low for low, high in pairwise(values))) or 1
 
 
 def exact_dot(left: Codes, right: Codes) -> int:

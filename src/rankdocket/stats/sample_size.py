@@ -17,6 +17,8 @@ from typing import Final
 from scipy.special import ndtr, ndtri
 
 from rankdocket.references import Description
+from rankdocket.stats.intervals.bonett_wright import bonett_wright_factor
+from rankdocket.stats.intervals.fieller import RHO_FACTOR
 from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.vocabulary import Sidedness
 
@@ -163,7 +165,7 @@ def sample_size(rho: float, power: float, planned: PlannedTest) -> SampleSize:
     """
     _check_rho(rho)
     _check_power(power)
-    z, z_power, variance = planned.z, float(ndtri(power)), _variance(rho)
+    z, z_power, variance = planned.z, float(ndtri(power)), bonett_wright_factor(rho)
 
     def needed(v0: float, v1: float) -> RowsNeeded:
         return RowsNeeded(3 + ((z * sqrt(v0) + z_power * sqrt(v1)) / atanh(rho)) ** 2)
@@ -171,7 +173,7 @@ def sample_size(rho: float, power: float, planned: PlannedTest) -> SampleSize:
     return SampleSize(
         two_variances=needed(1, variance),
         bonett_wright=needed(variance, variance),
-        fieller=needed(1.06, 1.06),
+        fieller=needed(RHO_FACTOR, RHO_FACTOR),
         fisher=needed(1, 1),
         fewest_attainable=planned.fewest_rows,
     )
@@ -201,7 +203,7 @@ def power_at(n: int, rho: float, planned: PlannedTest) -> float | NoAnswer:
     _check_rho(rho)
     if n < planned.fewest_rows:
         return NoAnswer(_UNATTAINABLE)
-    return float(ndtr((abs(atanh(rho)) * sqrt(n - 3) - planned.z) / sqrt(_variance(rho))))
+    return float(ndtr((abs(atanh(rho)) * sqrt(n - 3) - planned.z) / sqrt(bonett_wright_factor(rho))))
 
 
 def smallest_rho(n: int, power: float, planned: PlannedTest) -> float | NoAnswer:
@@ -229,12 +231,12 @@ def smallest_rho(n: int, power: float, planned: PlannedTest) -> float | NoAnswer
         return NoAnswer(_UNATTAINABLE)
     z, z_power, root = planned.z, float(ndtri(power)), sqrt(n - 3)
     # The variance lies between 1 and 1.5, and with it the solution.
-    low, high = (z + z_power) / root, (z + z_power * sqrt(_variance(1))) / root
+    low, high = (z + z_power) / root, (z + z_power * sqrt(bonett_wright_factor(1))) / root
     for _ in range(SURELY_ENOUGH_HALVINGS):
         middle = (low + high) / 2
         if middle in (low, high):
             break
-        if middle * root < z + z_power * sqrt(_variance(tanh(middle))):
+        if middle * root < z + z_power * sqrt(bonett_wright_factor(tanh(middle))):
             low = middle
         else:
             high = middle
@@ -242,11 +244,6 @@ def smallest_rho(n: int, power: float, planned: PlannedTest) -> float | NoAnswer
 
 
 _UNATTAINABLE: Final = "even perfect order could not reach the level with so few rows"
-
-
-def _variance(rho: float) -> float:
-    """Return n − 3 times the variance of atanh(r) at rho (bonett2000)."""
-    return 1 + rho * rho / 2
 
 
 def _check_rho(rho: float) -> None:

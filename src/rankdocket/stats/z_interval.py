@@ -89,12 +89,28 @@ def textbook_limits(r: float, variance: float, level: Decimal | str | float) -> 
     ValueError
         If ``level`` is out of its range.
     """
+    se = sqrt(variance)
+    half = two_sided_quantile(level) * se
+    return ZLimits(r, se, tanh(atanh(r) - half), tanh(atanh(r) + half))
+
+
+def two_sided_quantile(level: Decimal | str | float) -> float:
+    """Return the standard normal value that is exceeded in size with probability 1 − ``level``.
+
+    Parameters
+    ----------
+    level
+        Above 0, below 1; a float is read as the shortest decimal that means it.
+
+    Raises
+    ------
+    ValueError
+        If ``level`` is out of its range.
+    """
     chosen_level = Decimal(str(level))
     if not 0 < chosen_level < 1:
         raise ValueError(f"level must lie between 0 and 1, not be {level}")
-    se = sqrt(variance)
-    half = normal_quantile(float((1 - chosen_level) / 2)) * se
-    return ZLimits(r, se, tanh(atanh(r) - half), tanh(atanh(r) + half))
+    return normal_quantile(float((1 - chosen_level) / 2))
 
 
 def require_inside(r: float, n: int, fewest: int) -> None:
@@ -167,6 +183,23 @@ def back_from_z(question: IntervalQuestion, key: str, shape: ZShape) -> Interval
         key,
         tuple(restraint for restraint in RESTRAINTS if restraint in held),
     )
+
+
+def interval_of_variance(question: IntervalQuestion, key: str, *, cap: float, variance: float) -> Interval:
+    """Return the interval of a rule that states a variance on the z scale and uses the normal quantile.
+
+    Parameters
+    ----------
+    question
+        What is asked.
+    key
+        The rule.
+    cap
+        0 to below 1: a coefficient at or beyond it is replaced by it, and the limit beyond is ±1.
+    variance
+        Of the coefficient on the z scale, above 0.
+    """
+    return back_from_z(question, key, ZShape(cap, normal_quantile(tail_of(question)) * sqrt(variance)))
 
 
 def capped(r: float, cap: float) -> float:

@@ -8,6 +8,7 @@ from typing import Final, Literal, TypeAlias
 
 from scipy.special import ndtr
 
+from rankdocket.stats.intervals.bonett_wright import bonett_wright_factor
 from rankdocket.stats.intervals.fieller import RHO_FACTOR
 from rankdocket.vocabulary import Direction
 
@@ -76,11 +77,11 @@ def estimate_factor(variance: EstimateVariance, r: float) -> float:
         case "Fieller":
             return RHO_FACTOR
         case "Bonett-Wright at the estimate":
-            return 1 + r * r / 2
+            return bonett_wright_factor(r)
 
 
 def null_factor(variance: NullVariance, r: float, null: float) -> float:
     """Return k of the variance k/(n − 3) for a test of the value ``null``."""
     if variance == "Bonett-Wright at the null":
-        return 1 + null * null / 2
+        return bonett_wright_factor(null)
     return estimate_factor(variance, r)

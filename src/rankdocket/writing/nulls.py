@@ -10,6 +10,7 @@ from rankdocket.document.model import Number, Prose, Supplied
 from rankdocket.document.prose import joined, only, prose
 from rankdocket.stats.choose_null import Route
 from rankdocket.stats.null import NullMethod
+from rankdocket.stats.nulls.tied_meeting import is_symmetric
 from rankdocket.vocabulary import Direction
 from rankdocket.writing.phrases import address, coefficient_symbol, level, method_words, p_equals, sentences
 from rankdocket.writing.section import Story
@@ -174,5 +175,4 @@ def _critical(story: Story, name: str, direction: Direction) -> Prose:
 def _is_symmetric(story: Story, name: str) -> bool:
     """Return whether the null is its own mirror image: the ties of one variable are."""
     screened = story.analysis.results[name].screened
-    sizes = screened.x_ties.sizes, screened.y_ties.sizes
-    return any(groups == groups[::-1] for groups in sizes)
+    return is_symmetric(screened.x_ties, screened.y_ties)

@@ -1,19 +1,15 @@
 """The interval of Bonett and Wright on the z scale, with a cap that knows the ties."""
 
 from decimal import Decimal
-from math import sqrt
 from typing import Final
 
 from rankdocket.references import Description
 from rankdocket.stats.interval import Interval, IntervalMethod, IntervalQuestion, NoInterval
 from rankdocket.stats.z_interval import (
     ZLimits,
-    ZShape,
-    back_from_z,
     capped,
-    normal_quantile,
+    interval_of_variance,
     require_inside,
-    tail_of,
     textbook_limits,
     tie_cap,
     why_none,
@@ -47,7 +43,12 @@ def bonett_wright_limits(r: float, n: int, *, level: Decimal | str | float) -> Z
 
 def bonett_wright_variance(r: float, n: int) -> float:
     """Return the variance (1 + r²/2)/(n − 3) of atanh of Spearman rho; ``n`` at least 4 (bonett2000)."""
-    return (1 + r * r / 2) / (n - 3)
+    return bonett_wright_factor(r) / (n - 3)
+
+
+def bonett_wright_factor(r: float) -> float:
+    """Return n − 3 times the variance of atanh of Spearman rho: 1 + r²/2 (bonett2000)."""
+    return 1 + r * r / 2
 
 
 def bonett_wright(question: IntervalQuestion) -> Interval | NoInterval:
@@ -57,8 +58,7 @@ def bonett_wright(question: IntervalQuestion) -> Interval | NoInterval:
         return none
     cap = tie_cap(question.x_codes, question.y_codes)
     r = capped(question.coefficient.value, cap)
-    half = normal_quantile(tail_of(question)) * sqrt(bonett_wright_variance(r, question.coefficient.n))
-    return back_from_z(question, KEY, ZShape(cap, half))
+    return interval_of_variance(question, KEY, cap=cap, variance=bonett_wright_variance(r, question.coefficient.n))
 
 
 BONETT_WRIGHT: Final = IntervalMethod(

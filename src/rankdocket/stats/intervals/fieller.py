@@ -1,18 +1,14 @@
 """The interval of Fieller, Hartley and Pearson on the z scale, for rho and for tau-b, kept for comparison."""
 
 from decimal import Decimal
-from math import sqrt
 from typing import Final
 
 from rankdocket.references import Description
 from rankdocket.stats.interval import Interval, IntervalMethod, IntervalQuestion, NoInterval
 from rankdocket.stats.z_interval import (
     ZLimits,
-    ZShape,
-    back_from_z,
-    normal_quantile,
+    interval_of_variance,
     require_inside,
-    tail_of,
     tau_tie_cap,
     textbook_limits,
     tie_cap,
@@ -87,7 +83,7 @@ def fieller(question: IntervalQuestion) -> Interval | NoInterval:
     x, y = question.x_codes, question.y_codes
     variance = RHO_FACTOR / (coefficient.n - 3) if of_rho else fieller_tau_variance(coefficient.n)
     cap = tie_cap(x, y) if of_rho else tau_tie_cap(coefficient, x, y)
-    return back_from_z(question, KEY, ZShape(cap, normal_quantile(tail_of(question)) * sqrt(variance)))
+    return interval_of_variance(question, KEY, cap=cap, variance=variance)
 
 
 FIELLER: Final = IntervalMethod(

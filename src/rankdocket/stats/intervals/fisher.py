@@ -1,18 +1,14 @@
 """Fisher’s interval on the z scale: made for the product-moment correlation of normal values, kept for comparison."""
 
 from decimal import Decimal
-from math import sqrt
 from typing import Final
 
 from rankdocket.references import Description
 from rankdocket.stats.interval import Interval, IntervalMethod, IntervalQuestion, NoInterval
 from rankdocket.stats.z_interval import (
     ZLimits,
-    ZShape,
-    back_from_z,
-    normal_quantile,
+    interval_of_variance,
     require_inside,
-    tail_of,
     textbook_limits,
     tie_cap,
     why_none,
@@ -49,8 +45,8 @@ def fisher(question: IntervalQuestion) -> Interval | NoInterval:
     none = why_none(question.coefficient, FEWEST_ROWS)
     if none is not None:
         return none
-    half = normal_quantile(tail_of(question)) * sqrt(1 / (question.coefficient.n - 3))
-    return back_from_z(question, KEY, ZShape(tie_cap(question.x_codes, question.y_codes), half))
+    cap = tie_cap(question.x_codes, question.y_codes)
+    return interval_of_variance(question, KEY, cap=cap, variance=1 / (question.coefficient.n - 3))
 
 
 FISHER: Final = IntervalMethod(

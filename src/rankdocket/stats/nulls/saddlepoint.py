@@ -17,7 +17,7 @@ the scaled matrix is smooth between neighbouring nodes.
 
 from dataclasses import dataclass
 from functools import lru_cache
-from math import copysign, exp, frexp, gcd, ldexp, pi, sinh, sqrt, trunc
+from math import copysign, exp, frexp, ldexp, pi, sinh, sqrt, trunc
 from sys import float_info
 from typing import Final, TypeAlias
 
@@ -28,7 +28,7 @@ from scipy.linalg import cho_factor, cho_solve, eigh, eigh_tridiagonal
 from scipy.special import gammaln, ndtr
 
 from rankdocket.errors import ComputeError
-from rankdocket.stats.ranks import TieGroups, centred_ranks, exact_dot
+from rankdocket.stats.ranks import TieGroups, centred_ranks, exact_dot, lattice_step
 
 Reals: TypeAlias = npt.NDArray[np.float64]
 
@@ -110,7 +110,7 @@ def saddlepoint_tail(x: TieGroups, y: TieGroups, observed: int) -> float | None:
     x_ranks, y_ranks = centred_ranks(x.codes()), centred_ranks(y.codes())
     highest, lowest = exact_dot(x_ranks, y_ranks), exact_dot(x_ranks, y_ranks[::-1])
     # Any two orders differ by exchanges, and an exchange moves the sum by a product of two differences.
-    step = gcd(*np.diff(x_ranks).tolist()) * gcd(*np.diff(y_ranks).tolist())
+    step = lattice_step(x_ranks.tolist()) * lattice_step(y_ranks.tolist())
     attainable = observed + (highest - observed) % step
     if attainable <= lowest:
         return 1.0

@@ -1,15 +1,14 @@
 """Values of one variable that are to be dealt to the rows of another, as integers."""
 
 from dataclasses import dataclass
-from itertools import accumulate, pairwise
-from math import gcd
+from itertools import accumulate
 from typing import TypeAlias
 
 import numpy as np
 import numpy.typing as npt
 
 from rankdocket.errors import ComputeError
-from rankdocket.stats.ranks import SAFE_SUM, Codes, TieGroups, centred_ranks
+from rankdocket.stats.ranks import SAFE_SUM, Codes, TieGroups, centred_ranks, lattice_step
 
 Members: TypeAlias = npt.NDArray[np.int64]
 """Members dealt from each tie group, shape (states, tie groups)."""
@@ -95,7 +94,7 @@ def deal(rows: TieGroups, dealt: TieGroups) -> Deal:
     """
     row_ranks = centred_ranks(rows.codes())
     ranks, dealt_ranks = np.unique(row_ranks).tolist(), np.unique(centred_ranks(dealt.codes()))
-    unit = _step(dealt_ranks.tolist())
+    unit = lattice_step(dealt_ranks.tolist())
     places = tuple(accumulate(dealt.sizes, lambda place, size: place * (size + 1), initial=1))
     if 8 * rows.n**3 >= SAFE_SUM:
         raise ComputeError("There are too many rows for sums in exact integers.")
@@ -103,13 +102,9 @@ def deal(rows: TieGroups, dealt: TieGroups) -> Deal:
         rows=rows,
         dealt=dealt,
         ranks=tuple(ranks),
-        step=_step(ranks),
+        step=lattice_step(ranks),
         values=(dealt_ranks - dealt_ranks[0]) // unit,
         unit=unit,
         sums=np.concatenate(([0], np.cumsum(row_ranks))),
         places=places,
     )
-
-
-def _step(values: list[int]) -> int:
-    return gcd(*(high - low for low, high in pairwise(values))) or 1
