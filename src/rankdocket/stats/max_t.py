@@ -20,6 +20,7 @@ import numpy.typing as npt
 from rankdocket.errors import ComputeError
 from rankdocket.references import Description
 from rankdocket.stats.coefficient import Coefficient
+from rankdocket.stats.matrix_product import product
 from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.stats.nulls.monte_carlo import drawn_orders
 from rankdocket.stats.ranks import Codes, centred_ranks, doubled_midranks
@@ -279,7 +280,7 @@ def _counted(laid_out: _LaidOut, blocks: Iterable[Codes]) -> _Counts:
     family = len(laid_out.places)
     own, largest, of = [0] * family, [0] * family, 0
     for orders in blocks:
-        sums = (orders.astype(np.float64) @ laid_out.columns).astype(np.int64)
+        sums = product(orders.astype(np.float64), laid_out.columns).astype(np.int64)
         numerators = np.abs(sums) if laid_out.both_sides else sums
         reached = np.full(len(orders), family, dtype=np.int64)
         for place in range(family - 1, -1, -1):

@@ -13,6 +13,7 @@ import numpy.typing as npt
 from scipy.special import ndtri
 
 from rankdocket.references import Description
+from rankdocket.stats.matrix_product import product
 
 Shares: TypeAlias = Sequence[Fraction | Decimal | int | float]
 """How often each value is expected, in increasing order of value: shares or counts, only their ratios matter."""
@@ -107,4 +108,4 @@ def _covariance(x: _Scale, y: _Scale, correlation: float) -> float:
     h, k = x.places[None, :, None], y.places[None, None, :]
     density = np.exp(-(h * h + k * k - 2 * h * k * np.sin(angle)) / (2 * np.cos(angle) ** 2)) / (2 * pi)
     integrals = half * np.tensordot(weights, density, axes=1)
-    return float(x.heights @ integrals @ y.heights)
+    return float(product(product(x.heights, integrals), y.heights))

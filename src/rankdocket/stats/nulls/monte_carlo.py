@@ -15,6 +15,7 @@ import numpy as np
 import numpy.typing as npt
 
 from rankdocket.errors import ComputeError
+from rankdocket.stats.matrix_product import product
 from rankdocket.stats.null import TailCounts
 from rankdocket.stats.ranks import SAFE_SUM, Codes, centred_ranks, tie_groups
 from rankdocket.stats.tau import concordance_difference
@@ -273,7 +274,7 @@ def _sums_of_products(x_ranks: Codes, y_ranks: Codes, generator: np.random.Gener
     factors = x_steps.astype(kind)
     for rows in drawn_orders(y_steps, generator):
         signed = rows.view(np.int32 if rows.itemsize == 4 else np.int64)
-        yield (signed.astype(kind) @ factors).astype(np.int64) * (x_unit * y_unit)
+        yield product(signed.astype(kind), factors).astype(np.int64) * (x_unit * y_unit)
 
 
 def _next_draws(blocks: Iterator[Codes], rest: Codes, number: int) -> tuple[Codes, Codes]:

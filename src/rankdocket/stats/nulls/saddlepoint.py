@@ -28,6 +28,7 @@ from scipy.linalg import cho_factor, cho_solve, eigh, eigh_tridiagonal
 from scipy.special import gammaln, ndtr
 
 from rankdocket.errors import ComputeError
+from rankdocket.stats.matrix_product import product
 from rankdocket.stats.ranks import TieGroups, centred_ranks, exact_dot, lattice_step
 
 Reals: TypeAlias = npt.NDArray[np.float64]
@@ -171,11 +172,11 @@ def _recurrence(values: Reals, shares: Reals) -> tuple[Reals, Reals]:
     diagonal, beside = np.empty(GAUSS_NODES), np.empty(GAUSS_NODES)
     for k in range(GAUSS_NODES):
         longer = values * basis[k]
-        diagonal[k] = longer @ basis[k]
+        diagonal[k] = product(longer, basis[k])
         # Twice, since one pass leaves what rounding put back in.
         for _ in range(2):
-            longer -= basis[: k + 1].T @ (basis[: k + 1] @ longer)
-        beside[k] = np.sqrt(longer @ longer)
+            longer -= product(basis[: k + 1].T, product(basis[: k + 1], longer))
+        beside[k] = np.sqrt(product(longer, longer))
         if k + 1 < GAUSS_NODES:
             basis[k + 1] = longer / beside[k]
     return diagonal, beside[:-1]
@@ -204,7 +205,7 @@ class CumulantFunction:
         self._products = np.outer(x.nodes, y.nodes)
         self._found = _Found(0.0, np.zeros(len(y.nodes)), np.zeros(len(y.nodes)))
         n = x.n
-        variances = ((side.weights @ side.nodes**2) for side in (x, y))
+        variances = (product(side.weights, side.nodes**2) for side in (x, y))
         self.spread = sqrt(float(next(variances) * next(variances)) / (n - 1))
 
     def __call__(self, t: float) -> tuple[float, float]:
@@ -214,20 +215,20 @@ class CumulantFunction:
         scaling, logarithm, rows, inner = self._scaled(t)
         # What the determinant needs: I − MᵀM + J/n with equal columns taken together.
         m = np.sqrt(x.weights)[:, None] * rows / roots
-        latent, directions = eigh(np.eye(len(roots)) - m.T @ m + np.outer(roots, roots) / n)
+        latent, directions = eigh(np.eye(len(roots)) - product(m.T, m) + np.outer(roots, roots) / n)
         latent = np.maximum(latent, RIDGE)
         value = logarithm - float(np.log(latent).sum()) / 2
         # How rows move with t while every column keeps its sum.
         moved = x.weights[:, None] * rows
         means = (rows * self._products).sum(axis=1)
-        slope = float(x.weights @ means)
+        slope = float(product(x.weights, means))
         push = (moved * (self._products - means[:, None])).sum(axis=0)
         follows = -cho_solve(inner, push)
         self._found = _Found(t, scaling, follows)
         change = self._products + follows
         drift = rows * (change - (rows * change).sum(axis=1)[:, None])
         changed = np.sqrt(x.weights)[:, None] * drift / roots
-        return value, slope + float((((m @ directions) / latent) * (changed @ directions)).sum())
+        return value, slope + float((product(m, directions) / latent * product(changed, directions)).sum())
 
     def _scaled(self, t: float) -> tuple[Reals, float, Reals, tuple[Reals, bool]]:
         """Return the scaling, its part of K, each row's shares of the columns, and the last factored Hessian.
@@ -242,11 +243,11 @@ class CumulantFunction:
         scaling = self._found.scaling + (t - self._found.t) * self._found.slope
         height, rows = _height(tilted, shares, scaling, x, y)
         for _ in range(MOST_STEPS):
-            columns = x.weights @ rows
+            columns = product(x.weights, rows)
             residual = columns - y.weights
             hessian = (
                 np.diag(columns + RIDGE * y.weights)
-                - rows.T @ (x.weights[:, None] * rows)
+                - product(rows.T, x.weights[:, None] * rows)
                 + np.outer(y.weights, y.weights) / n
             )
             factor = cho_factor(hessian)
@@ -270,7 +271,7 @@ def _height(tilted: Reals, shares: Reals, scaling: Reals, x: Margin, y: Margin) 
     rows = np.exp(exponents - most[:, None])
     totals = rows.sum(axis=1)
     rows /= totals[:, None]
-    return float(x.weights @ (most + np.log(totals)) - y.weights @ scaling), rows
+    return float(product(x.weights, most + np.log(totals)) - product(y.weights, scaling)), rows
 
 
 @dataclass(frozen=True, slots=True)
