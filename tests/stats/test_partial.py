@@ -86,15 +86,15 @@ def test_a_control_is_found_out_however_close_it_comes() -> None:
     swapped[[np.argmin(control), np.argmax(-np.abs(control - 1))]] = (1, 0)
     assert isinstance(partial_rho(x, y, (control, swapped)), PartialRho)
     found = partial_rho(x, y, (control, 5 - 2 * control))
-    assert found == NoAnswer("the ranks of variable 2 held fixed follow from those of the variables before it")
+    assert found == NoAnswer("the ranks of a variable held fixed follow from those of the variables before it")
 
 
 @pytest.mark.parametrize(
     ("x", "y", "controls", "reason"),
     [
         ([1, 2, 3, 4], [1, 1, 1, 1], [[1, 2, 4, 3]], "a variable does not vary"),
-        ([1, 2, 3, 4, 5], [2, 1, 3, 5, 4], [[1, 3, 2, 4, 5], [7, 7, 7, 7, 7]], "variable 2 held fixed does not vary"),
-        ([1, 2, 3], [2, 1, 3], [[1, 3, 2]], "1 variables held fixed leave no degree of freedom in 3 complete rows"),
+        ([1, 2, 3, 4, 5], [2, 1, 3, 5, 4], [[1, 3, 2, 4, 5], [7, 7, 7, 7, 7]], "a variable held fixed does not vary"),
+        ([1, 2, 3], [2, 1, 3], [[1, 3, 2]], "the variables held fixed leave no degree of freedom in so few complete rows"),
         (
             [1, 2, 3, 4, 5],
             [2, 1, 3, 5, 4],

@@ -12,9 +12,9 @@ from rankdocket.stats.z_scale import EstimateVariance, ZTest, estimate_factor, o
 from rankdocket.vocabulary import Direction
 
 TWO_GROUPS: Final = Description(
-    "Coefficients of two groups of different rows were compared on the inverse hyperbolic tangent scale; the interval "
-    "for their difference was put together from the intervals of the two. Both are approximate and hold near "
-    "normal-type dependence.",
+    "Coefficients of two groups of different rows were compared on the inverse hyperbolic tangent scale, where the "
+    "variance of each was taken as {k} over its complete rows less three; the interval for their difference was put "
+    "together from the intervals of the two. Both are approximate and hold near normal-type dependence.",
     ("fieller1961", "zou2007"),
 )
 

@@ -18,8 +18,9 @@ from rankdocket.vocabulary import Direction
 
 PARTIAL_RHO: Final = Description(
     "The partial rank correlation was computed as the correlation of the parts of the midranks that were left after "
-    "linear regression on the midranks of the {controls} variables held fixed; its p-value is approximate, from "
-    "Student’s t with {df} degrees of freedom, and does not test conditional independence in general.",
+    "linear regression on the midranks of the variables held fixed, all ranked among the rows complete for all of "
+    "them; its p-value is approximate, from Student’s t with as many degrees of freedom as complete rows less two and "
+    "less the variables held fixed, and does not test conditional independence in general.",
     ("kendall1942", "korn1984"),
 )
 
@@ -114,11 +115,10 @@ def partial_rho(x_codes: Codes, y_codes: Codes, controls: tuple[Codes, ...]) -> 
     if not plain.is_defined:
         return NoAnswer("a variable does not vary")
     if n - 2 - len(controls) < 1:
-        return NoAnswer(f"{len(controls)} variables held fixed leave no degree of freedom in {n} complete rows")
+        return NoAnswer("the variables held fixed leave no degree of freedom in so few complete rows")
     columns = [centred_ranks(codes) for codes in (*controls, x_codes, y_codes)]
-    for place, column in enumerate(columns[: len(controls)], start=1):
-        if not column.any():
-            return NoAnswer(f"variable {place} held fixed does not vary")
+    if not all(column.any() for column in columns[: len(controls)]):
+        return NoAnswer("a variable held fixed does not vary")
     left = _eliminated([[exact_dot(one, other) for other in columns] for one in columns], len(controls))
     if isinstance(left, NoAnswer):
         return left
@@ -131,11 +131,11 @@ def partial_rho(x_codes: Codes, y_codes: Codes, controls: tuple[Codes, ...]) -> 
 def _eliminated(products: list[list[int]], steps: int) -> list[list[int]] | NoAnswer:
     """Return what the first ``steps`` columns leave of the rest of a matrix of sums of products, times one factor."""
     before = 1
-    for step in range(1, steps + 1):
+    for _ in range(steps):
         (pivot, *row), *rest = products
         # Sums of products are never negative on the diagonal; a pivot of 0 is a column that the former ones make up.
         if pivot == 0:
-            return NoAnswer(f"the ranks of variable {step} held fixed follow from those of the variables before it")
+            return NoAnswer("the ranks of a variable held fixed follow from those of the variables before it")
         products = [
             [(own * pivot - first * above) // before for own, above in zip(others, row, strict=True)]
             for first, *others in rest

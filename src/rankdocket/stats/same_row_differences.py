@@ -17,15 +17,18 @@ from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.stats.z_scale import EstimateVariance, ZTest, estimate_factor, obstacle, require_coefficients
 
 ONE_SHARED: Final = Description(
-    "Two coefficients of the same rows that had one variable in common were compared by tests made for product-moment "
-    "correlations, hence approximate for ranks; the interval for their difference was put together from the "
-    "intervals of the two and the correlation between them.",
-    ("williams1959", "steiger1980", "meng1992", "zou2007"),
+    "Two coefficients of the same rows that had one variable in common were compared by the z of Meng, Rosenthal and "
+    "Rubin, which was made for product-moment correlations and is approximate for ranks; the interval for their "
+    "difference was put together from the intervals of the two, with {k} over the complete rows less three as the "
+    "variance on the inverse hyperbolic tangent scale, and from the correlation between them.",
+    ("meng1992", "steiger1980", "zou2007"),
 )
 NONE_SHARED: Final = Description(
-    "Two coefficients of the same rows that had no variable in common were compared by tests made for product-moment "
-    "correlations, hence approximate for ranks; the interval for their difference was put together from the "
-    "intervals of the two and the correlation between them.",
+    "Two coefficients of the same rows that had no variable in common were compared by the z of Dunn and Clark with "
+    "the average of the two in its variance, as Steiger proposed, which was made for product-moment correlations and "
+    "is approximate for ranks; the interval for their difference was put together from the intervals of the two, with "
+    "{k} over the complete rows less three as the variance on the inverse hyperbolic tangent scale, and from the "
+    "correlation between them.",
     ("dunn1969", "steiger1980", "zou2007"),
 )
 

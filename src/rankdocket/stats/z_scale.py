@@ -21,7 +21,7 @@ NullVariance: TypeAlias = EstimateVariance | Literal["Bonett-Wright at the null"
 FEWEST_ROWS: Final = 4
 """The variance has n − 3 in its denominator."""
 
-PERFECT: Final = "the coefficient is 1 or −1, which has no place on the inverse hyperbolic tangent scale"
+PERFECT: Final = "the coefficient is one in size, which has no place on the inverse hyperbolic tangent scale"
 TOO_FEW: Final = "the variance on the inverse hyperbolic tangent scale needs four or more complete rows"
 
 

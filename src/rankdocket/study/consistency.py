@@ -7,7 +7,8 @@ from rankdocket.study.decision import decision_faults
 from rankdocket.study.form import AssociationForm, DataForm, VariableForm
 from rankdocket.study.labels import nearest_label
 from rankdocket.study.messages import Message, fault
-from rankdocket.study.parts import Parts
+from rankdocket.study.more_variables import more_variables_faults
+from rankdocket.study.parts import Parts, table_of
 from rankdocket.study.wording import composed, shown, suggestion
 from rankdocket.vocabulary import NOT_APPLICABLE
 
@@ -28,20 +29,13 @@ def consistency_faults(parts: Parts) -> list[Fault]:
     for name, association in parts.associations.items():
         if parts.sound(("associations", name), "between"):
             faults.extend(_between_faults(parts, name, association))
+            faults.extend(more_variables_faults(parts, name, association))
     faults.extend(_rows_faults(parts))
     faults.extend(decision_faults(parts))
     faults.extend(_twice(parts, ("report", "readers"), parts.report.readers))
     faults.extend(_twice(parts, ("report", "signatures"), parts.report.signatures))
     faults.extend(_twice(parts, ("report", "distribution"), parts.report.distribution))
     return faults
-
-
-def table_of(parts: Parts, variable: VariableForm) -> str | None:
-    """Return the table of a variable; ``None`` when it is not named and there are several."""
-    if variable.column.table is not None:
-        return variable.column.table
-    names = parts.names("data")
-    return names[0] if len(names) == 1 else None
 
 
 def _data_faults(parts: Parts, name: str, data: DataForm) -> Iterator[Fault]:

@@ -1,6 +1,5 @@
 """From the forms of a faultless spec to its frozen values."""
 
-from rankdocket.study.consistency import table_of
 from rankdocket.study.form import (
     MOST_PERMUTATIONS,
     AssociationForm,
@@ -12,11 +11,12 @@ from rankdocket.study.form import (
     StudyForm,
     VariableForm,
 )
-from rankdocket.study.parts import Parts
+from rankdocket.study.parts import Parts, table_of
 from rankdocket.study.spec import (
     AssociationSpec,
     BudgetSpec,
     DataSpec,
+    GroupsSpec,
     HypothesisSpec,
     InferenceSpec,
     LeaveOutSpec,
@@ -132,7 +132,16 @@ def _association(parts: Parts, name: str, form: AssociationForm) -> AssociationS
         hypothesis=HypothesisSpec(form.hypothesis.expected_sign, form.hypothesis.smallest_of_interest),
         coefficient=form.coefficient,
         place=parts.key_place("associations", name),
+        covariates=form.covariates,
+        compare_with=form.compare_with,
+        groups=_groups(parts, name, form),
     )
+
+
+def _groups(parts: Parts, name: str, form: AssociationForm) -> GroupsSpec | None:
+    if form.groups is None:
+        return None
+    return GroupsSpec(form.groups.column, form.groups.compared, parts.key_place("associations", name, "groups"))
 
 
 def _inference(parts: Parts, form: InferenceForm) -> InferenceSpec:

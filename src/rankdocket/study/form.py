@@ -194,6 +194,15 @@ class HypothesisForm(Form):
     )
 
 
+class GroupsForm(Form):
+    """Groups of rows by the text of a column."""
+
+    column: Prose = Field(description="Column of the same table; its text, as received, says to which group a row goes.")
+    compared: tuple[Prose, ...] = Field(
+        default=(), min_length=2, max_length=2, description="Two groups whose coefficients are compared."
+    )
+
+
 class AssociationForm(Form):
     """Two variables examined together."""
 
@@ -206,6 +215,13 @@ class AssociationForm(Form):
     coefficient: Annotated[CoefficientName, kinds.OneOf(COEFFICIENTS)] = Field(
         default="Spearman rho", description="The rank coefficient."
     )
+    covariates: tuple[Prose, ...] = Field(
+        default=(), min_length=1, description="Other variables that a partial rank correlation holds fixed."
+    )
+    compare_with: OptionalProse = Field(
+        default=None, description="Another association of the same table, whose rho is compared on the same rows."
+    )
+    groups: GroupsForm | None = Field(default=None, description="Groups of rows that are looked at one by one.")
 
 
 class SeveralTestsForm(Form):

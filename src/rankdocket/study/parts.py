@@ -72,3 +72,11 @@ class Parts:
 
     def _root(self) -> Node:
         return self.tree
+
+
+def table_of(parts: Parts, variable: VariableForm) -> str | None:
+    """Return the table of a variable; ``None`` when it is not named and there are several."""
+    if variable.column.table is not None:
+        return variable.column.table
+    names = parts.names("data")
+    return names[0] if len(names) == 1 else None

@@ -80,7 +80,19 @@ def _association(association: AssociationSpec) -> Plain:
             "smallest_of_interest": _shortest(association.hypothesis.smallest_of_interest),
         },
         "coefficient": association.coefficient,
+        **_more_variables(association),
     }
+
+
+def _more_variables(association: AssociationSpec) -> dict[str, Plain]:
+    """Return the keys about more than two variables that are used: plans without them keep the digest they had."""
+    groups = association.groups
+    found: dict[str, Plain] = {
+        "covariates": list(association.covariates),
+        "compare_with": association.compare_with,
+        "groups": None if groups is None else {"column": groups.column, "compared": list(groups.compared)},
+    }
+    return {key: value for key, value in found.items() if value}
 
 
 def _inference(inference: InferenceSpec) -> Plain:

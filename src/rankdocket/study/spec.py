@@ -157,8 +157,27 @@ class HypothesisSpec:
 
 
 @dataclass(frozen=True, slots=True)
+class GroupsSpec:
+    """Groups of rows by the text of ``column``; ``compared`` holds two of its texts or nothing."""
+
+    column: str
+    compared: tuple[str, ...]
+    place: Place
+
+
+@dataclass(frozen=True, slots=True)
 class AssociationSpec:
-    """One entry of ``associations``; the first variable of ``between`` is the horizontal axis."""
+    """One entry of ``associations``; the first variable of ``between`` is the horizontal axis.
+
+    Attributes
+    ----------
+    covariates
+        Variables of the same table that a partial rank correlation holds fixed; empty when none is asked for.
+    compare_with
+        Another association of the same table, whose coefficient is compared on the same rows.
+    groups
+        Groups of rows that are looked at one by one.
+    """
 
     name: str
     x: str
@@ -168,6 +187,9 @@ class AssociationSpec:
     hypothesis: HypothesisSpec
     coefficient: CoefficientName
     place: Place
+    covariates: tuple[str, ...] = ()
+    compare_with: str | None = None
+    groups: GroupsSpec | None = None
 
 
 @dataclass(frozen=True, slots=True)

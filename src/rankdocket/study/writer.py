@@ -133,7 +133,15 @@ def _association(association: AssociationSpec) -> _Value:
             "smallest_of_interest": association.hypothesis.smallest_of_interest,
         },
         "coefficient": association.coefficient,
+        "covariates": association.covariates or None,
+        "compare_with": association.compare_with,
+        "groups": _groups(association),
     }
+
+
+def _groups(association: AssociationSpec) -> _Value:
+    groups = association.groups
+    return None if groups is None else {"column": groups.column, "compared": groups.compared or None}
 
 
 def _inference(inference: InferenceSpec) -> _Value:
