@@ -12,6 +12,7 @@ from rankdocket.analysis.checks.independence import KEY as INDEPENDENCE
 from rankdocket.analysis.decide import decide
 from rankdocket.analysis.family import family_of
 from rankdocket.analysis.filing import filed
+from rankdocket.analysis.more_variables import examine_more_variables
 from rankdocket.analysis.nulls import budget_of, drawing_plan, levels_of, null_choice, smallest_possible_p
 from rankdocket.analysis.results import (
     Analysis,
@@ -67,7 +68,8 @@ def analyse(spec: StudySpec, data: StudyData, progress: Callable[[str], None] = 
         results[name] = analyse_association(rows, spec)
         progress(name)
     findings = decide(results, spec, adjustment_of(spec))
-    return Analysis(spec, data, results, findings, family_of(spec))
+    more = {name: examine_more_variables(name, results, spec, data) for name in results}
+    return Analysis(spec, data, results, findings, family_of(spec), more)
 
 
 def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnalysis:

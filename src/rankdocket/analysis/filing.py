@@ -38,6 +38,11 @@ def filed_beside(value: Fraction, level: Decimal) -> str:
     raise ValueError(f"{value} and {level} cannot be told apart in {MOST_DIGITS} digits")
 
 
+def filed_value(value: Decimal) -> str:
+    """Return an exact value in full, never in exponent form, as a stranger's program reads it."""
+    return f"{value:f}"
+
+
 def half(doubled: int) -> str:
     """Return half of a whole number as text: a midrank from its double."""
     whole, odd = divmod(abs(doubled), 2)

@@ -11,6 +11,7 @@ from fractions import Fraction
 from typing import Final
 
 from rankdocket.analysis.filing import exact_decimal, filed, filed_beside, half
+from rankdocket.analysis.more_variables_plain import more_variables_to_plain
 from rankdocket.analysis.null_plain import null_to_plain, rank_test_to_plain, series_to_plain
 from rankdocket.analysis.results import (
     Analysis,
@@ -46,7 +47,10 @@ def analysis_to_plain(analysis: Analysis) -> dict[str, Plain]:
             "family_size": len(analysis.family),
         },
         "associations": {
-            name: _association(result, analysis.findings[name], analysis.spec.inference.alpha)
+            name: {
+                **_association(result, analysis.findings[name], analysis.spec.inference.alpha),
+                **more_variables_to_plain(analysis.more[name]),
+            }
             for name, result in analysis.results.items()
         },
         **series_to_plain(tuple(analysis.results.values())),

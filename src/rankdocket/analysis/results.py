@@ -10,6 +10,7 @@ from decimal import Decimal
 from fractions import Fraction
 from typing import Literal, TypeAlias
 
+from rankdocket.analysis.more_results import MoreVariables
 from rankdocket.stats.choose_null import NullChoice
 from rankdocket.stats.coefficient import Coefficient
 from rankdocket.stats.interval import Interval, NoInterval
@@ -224,3 +225,5 @@ class Analysis:
     findings: Mapping[str, Finding]
     family: tuple[str, ...]
     """Names of the associations whose p-values are adjusted together, in plan order."""
+    more: Mapping[str, MoreVariables]
+    """What the plan asks about more than two variables, by association."""

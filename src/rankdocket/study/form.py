@@ -197,7 +197,9 @@ class HypothesisForm(Form):
 class GroupsForm(Form):
     """Groups of rows by the text of a column."""
 
-    column: Prose = Field(description="Column of the same table; its text, as received, says to which group a row goes.")
+    column: Prose = Field(
+        description="Column of the same table; its text, as received, says to which group a row goes."
+    )
     compared: tuple[Prose, ...] = Field(
         default=(), min_length=2, max_length=2, description="Two groups whose coefficients are compared."
     )

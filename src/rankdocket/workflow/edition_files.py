@@ -20,6 +20,7 @@ from rankdocket.study.plan import plan_of
 from rankdocket.study.writer import spec_as_used
 from rankdocket.vocabulary import Status
 from rankdocket.workflow.moment import Moment
+from rankdocket.workflow.more_rows import MORE_ROWS, asks_for_more_rows
 from rankdocket.workflow.received import received_name
 from rankdocket.workflow.record_tables import record_tables
 from rankdocket.workflow.study_folder import Study
@@ -185,6 +186,11 @@ def _versions(issue: Issue) -> bytes:
 def _readme(study: Study, issue: Issue) -> bytes:
     data = "\n".join(f"  {received_name(path)}" for path in study.received)
     ranks = "\n".join(f"  ranks-{name}.csv" for name in study.spec.associations)
+    more = (
+        f"  {MORE_ROWS}                  cells beyond x and y: covariates, other associations, groups\n"
+        if asks_for_more_rows(study.spec)
+        else ""
+    )
     text = f"""Record copy of {study.spec.study.number}, {issue.name}
 {study.spec.study.title}
 
@@ -197,7 +203,7 @@ The report
 The numbers
   analysis.json                  everything computed; every printed number points into it
   rows.csv                       the complete rows of each association, as received and as values
-{ranks}
+{more}{ranks}
                                  the same rows with midranks and rank differences
   results.csv                    one line an association
   tables/, figures/, extracts/   each table as CSV, each figure as SVG, summary and methods as text

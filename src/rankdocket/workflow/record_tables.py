@@ -3,15 +3,15 @@
 import csv
 import io
 from collections.abc import Iterable, Mapping
-from decimal import Decimal
 from typing import Final
 
-from rankdocket.analysis.filing import filed
+from rankdocket.analysis.filing import filed, filed_value
 from rankdocket.analysis.results import Analysis, AssociationAnalysis, Estimate, RankTest
 from rankdocket.canonical import Plain
 from rankdocket.document.numbers import look_up
 from rankdocket.render.text import defused
 from rankdocket.stats.interval import Interval
+from rankdocket.workflow.more_rows import MORE_ROWS, MORE_ROWS_HEAD, asks_for_more_rows, more_rows
 
 _ABSENT: Final = ""
 
@@ -21,6 +21,8 @@ def record_tables(analysis: Analysis, plain: Mapping[str, Plain]) -> dict[str, b
     tables = {"rows.csv": _rows(analysis), "results.csv": _results(analysis, plain)}
     for name, result in analysis.results.items():
         tables[f"ranks-{name}.csv"] = _ranks(name, result, plain)
+    if asks_for_more_rows(analysis.spec):
+        tables[MORE_ROWS] = _csv(MORE_ROWS_HEAD, more_rows(analysis))
     return tables
 
 
@@ -34,11 +36,6 @@ def _rows(analysis: Analysis) -> bytes:
             for row in result.screened.rows
         ),
     )
-
-
-def filed_value(value: Decimal) -> str:
-    """Return an exact value in full, never in exponent form, as a stranger's program reads it."""
-    return f"{value:f}"
 
 
 def _ranks(name: str, result: AssociationAnalysis, plain: Mapping[str, Plain]) -> bytes:

@@ -8,6 +8,7 @@ from rankdocket.document.prose import joined, only, prose
 from rankdocket.stats.interval import Interval
 from rankdocket.writing.figures import rank_plot, raw_plot
 from rankdocket.writing.findings import finding_sentence, finding_word, size_sentence
+from rankdocket.writing.more_variables import more_variables_tables
 from rankdocket.writing.null_picture import null_picture
 from rankdocket.writing.nulls import critical_rows, error_rows, null_sentence
 from rankdocket.writing.phrases import (
@@ -56,6 +57,7 @@ def spread(story: Story, name: str, position: int) -> Section:
     else:
         blocks.append(Paragraph(finding_sentence(story, name), "answer"))
     blocks.append(FieldList(_numbers(story, name), key=f"numbers-{name}"))
+    blocks += more_variables_tables(story, name, position)
     blocks.append(Paragraph(_caveats(story, name), "note"))
     # Only a spread with plots fills a page of its own.
     opens: Literal["page", "here"] = "page" if isinstance(result.estimate, Estimate) else "here"

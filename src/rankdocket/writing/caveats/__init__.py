@@ -4,7 +4,7 @@ from typing import Final
 
 from rankdocket.document.model import CaveatBlock
 from rankdocket.writing.caveat import CaveatRule
-from rankdocket.writing.caveats import requirements, results, study
+from rankdocket.writing.caveats import more_variables, requirements, results, study
 from rankdocket.writing.section import NumberedCaveat, Story
 
 CAVEATS: Final[tuple[CaveatRule, ...]] = (
@@ -19,6 +19,8 @@ CAVEATS: Final[tuple[CaveatRule, ...]] = (
     results.SMALL_SAMPLE,
     study.LEFT_OUT_ROWS,
     study.INCOMPLETE_ROWS,
+    more_variables.GROUPS,
+    more_variables.GIVEN_COVARIATES,
     study.NO_INTERVAL,
     study.INTERVAL_BASIS,
     study.ASSOCIATION_ONLY,

@@ -71,6 +71,11 @@ def _used_columns(story: Story, name: str) -> tuple[str, ...]:
     spec = story.analysis.spec
     used = {variable.column for variable in spec.variables.values() if variable.table == name}
     used |= {answer for answer in (spec.rows.repeated_within, spec.rows.time_order) if answer is not None}
+    used |= {
+        association.groups.column
+        for association in spec.associations.values()
+        if association.groups is not None and spec.variables[association.x].table == name
+    }
     used |= {column for left in spec.rows.leave_out for column in left.where}
     written = {composed(column) for column in used}
     return tuple(column for column in story.analysis.data.tables[name].columns if column in written)

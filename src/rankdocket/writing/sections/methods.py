@@ -18,6 +18,7 @@ from rankdocket.stats.rho import RHO
 from rankdocket.stats.tau import TAU_B
 from rankdocket.vocabulary import COEFFICIENTS, CoefficientName
 from rankdocket.writing.citations import cite
+from rankdocket.writing.more_variables_methods import more_variables_descriptions
 from rankdocket.writing.phrases import address, full_stop, pointers
 from rankdocket.writing.section import SectionRule, Story
 
@@ -61,6 +62,7 @@ def method_paragraphs(story: Story) -> tuple[Prose, ...]:
             _family(story),
             _intervals(story),
             _comparisons(story),
+            _more_variables(story),
         )
         if text_of(part)
     )
@@ -253,6 +255,13 @@ def _comparisons(story: Story) -> Prose:
         "For comparison only, {table} gives what other habits would have said; no finding rests on it.",
         table=Link("comparisons", "Table 6"),
     )
+
+
+def _more_variables(story: Story) -> Prose:
+    parts = [described(description, **slots) for description, slots in more_variables_descriptions(story)]
+    if parts:
+        parts.append(only("These are supplementary: no finding rests on them."))
+    return joined(tuple(parts))
 
 
 _COEFFICIENTS: Final[dict[CoefficientName, Description]] = {"Spearman rho": RHO, "Kendall tau-b": TAU_B}

@@ -1,0 +1,49 @@
+"""Caveats about more than two variables: what a partial coefficient does not test, what groups do not show."""
+
+from rankdocket.analysis.more_results import Absent
+from rankdocket.document.model import Link
+from rankdocket.document.prose import prose
+from rankdocket.stats.coefficient import Coefficient
+from rankdocket.writing.caveat import CaveatRule, FoundCaveat
+from rankdocket.writing.citations import cite
+from rankdocket.writing.phrases import pointer
+from rankdocket.writing.section import Story
+
+
+def _given(story: Story) -> tuple[FoundCaveat, ...]:
+    return tuple(
+        FoundCaveat(
+            (name,),
+            prose(
+                "{name}: the partial rank correlation takes a straight line in the ranks of its covariates away and nothing "
+                "else {cite}. It may stay away from zero although nothing is left once they are fully taken into account, "
+                "and may be near zero although something is; what was not measured is not held fixed.",
+                name=pointer(name),
+                cite=cite("korn1984"),
+            ),
+        )
+        for name, more in story.analysis.more.items()
+        if more.partial is not None and not isinstance(more.partial.answer, Absent)
+    )
+
+
+def _groups(story: Story) -> tuple[FoundCaveat, ...]:
+    return tuple(
+        FoundCaveat(
+            (name,),
+            prose(
+                "{name}: its groups ({table}) hold fewer rows each than the association and were not planned as questions of "
+                "their own. “Shown here, not shown there” is no difference between groups, and the more groups are looked "
+                "at, the more one of them stands out by chance.",
+                name=pointer(name),
+                table=Link(f"groups-{name}", "their table"),
+            ),
+        )
+        for name, more in story.analysis.more.items()
+        if more.subgroups is not None
+        and any(isinstance(group.coefficient, Coefficient) for group in more.subgroups.groups)
+    )
+
+
+GIVEN_COVARIATES = CaveatRule("given_covariates", 33, _given)
+GROUPS = CaveatRule("groups", 34, _groups)
