@@ -94,7 +94,12 @@ def test_a_control_is_found_out_however_close_it_comes() -> None:
     [
         ([1, 2, 3, 4], [1, 1, 1, 1], [[1, 2, 4, 3]], "a variable does not vary"),
         ([1, 2, 3, 4, 5], [2, 1, 3, 5, 4], [[1, 3, 2, 4, 5], [7, 7, 7, 7, 7]], "a variable held fixed does not vary"),
-        ([1, 2, 3], [2, 1, 3], [[1, 3, 2]], "the variables held fixed leave no degree of freedom in so few complete rows"),
+        (
+            [1, 2, 3],
+            [2, 1, 3],
+            [[1, 3, 2]],
+            "the variables held fixed leave no degree of freedom in so few complete rows",
+        ),
         (
             [1, 2, 3, 4, 5],
             [2, 1, 3, 5, 4],

@@ -10,7 +10,7 @@ from rankdocket.document.model import CaveatBlock, Link, Paragraph
 from rankdocket.document.prose import lint, text_of
 from rankdocket.writing import caveats
 from rankdocket.writing.caveat import CaveatRule
-from rankdocket.writing.caveats import CAVEATS, requirements, results, study
+from rankdocket.writing.caveats import CAVEATS, more_variables, requirements, results, study
 from writing.reports import (
     EVERY_FINDING,
     Occasion,
@@ -50,6 +50,15 @@ SPEAKS: dict[str, Invented] = {
     "small_sample": replace(QUIET, columns=SMALL_ORDERED),
     "left_out_rows": replace(QUIET, rows=LEFT_OUT),
     "incomplete_rows": replace(QUIET, columns={"u": RISING, "v": "1 3 2 5 4 7 - 9 8 10"}),
+    "groups": replace(
+        QUIET,
+        columns={**QUIET.columns, "site": "a b " * 5},
+        variables={"site": "label: site, scale: ordered, lowest_to_highest: [a, b]"},
+        associations={"A1": association(more="groups: {column: site}")},
+    ),
+    "given_covariates": replace(
+        QUIET, columns={**QUIET.columns, "w": MIXED}, associations={"A1": association(more="covariates: [w]")}
+    ),
     "no_interval": replace(QUIET, associations=TAU),
     "interval_basis": QUIET,
     "association_only": QUIET,
@@ -110,7 +119,7 @@ def test_the_catalogue_holds_every_rule_once_with_a_weight_of_its_own() -> None:
     """A rule that is written and not listed would never speak."""
     written = [
         rule
-        for module in (requirements, results, study)
+        for module in (more_variables, requirements, results, study)
         for _, rule in inspect.getmembers(module, lambda value: isinstance(value, CaveatRule))
     ]
     assert {rule.key for rule in written} == {rule.key for rule in CAVEATS}

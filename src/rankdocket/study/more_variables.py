@@ -62,7 +62,13 @@ def _comparison_faults(parts: Parts, name: str, association: AssociationForm, ot
         return
     if other not in names:
         what = f"{shown(other)} is not an entry of associations."
-        yield fault(place, field, Message.NAME_UNKNOWN, what, suggestion(other, names, "Associations"))
+        yield fault(
+            place,
+            field,
+            Message.NAME_UNKNOWN,
+            what,
+            suggestion(other, [one for one in names if one != name], "Associations"),
+        )
         return
     for compared, form in ((name, association), (other, parts.associations.get(other))):
         sound = form is not None and parts.sound(("associations", compared), "coefficient")

@@ -32,9 +32,9 @@ def _groups(story: Story) -> tuple[FoundCaveat, ...]:
         FoundCaveat(
             (name,),
             prose(
-                "{name}: its groups ({table}) hold fewer rows each than the association and were not planned as questions of "
-                "their own. “Shown here, not shown there” is no difference between groups, and the more groups are looked "
-                "at, the more one of them stands out by chance.",
+                "{name}: its groups ({table}) hold fewer rows each than the association, and no finding is stated for one of "
+                "them. “Shown here, not shown there” is no difference between groups, and the more groups are looked at, "
+                "the more easily one of them stands out by chance.",
                 name=pointer(name),
                 table=Link(f"groups-{name}", "their table"),
             ),
