@@ -12,6 +12,7 @@ from scipy.stats import norm, rankdata, spearmanr, t
 from analysis.invented import INDEPENDENT, MISSING, Invented, association
 from analysis.open_data import DAYS, irises, new_york_air
 from rankdocket.analysis.plain import analysis_to_plain
+from rankdocket.analysis.screening import screen_study
 from rankdocket.document.numbers import look_up
 
 Z95 = float(norm.ppf(0.975))
@@ -241,6 +242,15 @@ def test_a_covariate_without_variation_gives_a_reason_in_words() -> None:
     })  # fmt: skip
     partial = filed(study, "A1/partial")
     assert (partial["state"], partial["reason"]) == ("not estimable", "a variable held fixed does not vary")
+
+
+def test_a_screening_shows_nothing_of_it() -> None:
+    """Blind, neither a partial coefficient nor a comparison nor a group is looked at, not even its rows counted."""
+    plain = screen_study(*SMALL.read()).plain
+    for name in ("A1", "A2"):
+        shown = look_up(plain, f"associations/{name}")
+        assert isinstance(shown, dict)
+        assert not {"partial", "comparison", "subgroups"} & set(shown)
 
 
 def test_findings_and_family_do_not_know_of_it() -> None:

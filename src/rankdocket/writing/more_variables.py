@@ -56,8 +56,10 @@ def _given_covariates(story: Story, name: str, partial: GivenCovariates, positio
             complete=numbers.whole(address(name, "rows", "complete")),
         )
     ]
-    if isinstance(partial.p, Absent):
-        notes.append(_why(partial.answer if isinstance(partial.answer, Absent) else partial.p, given=given))
+    if isinstance(partial.answer, Absent):
+        notes.append(_why(partial.answer, given=False))
+    elif isinstance(partial.p, Absent):
+        notes.append(prose("The p-value is withheld: {reason}.", reason=partial.p.reason))
     if tested:
         notes.append(
             prose(
@@ -243,7 +245,14 @@ def _group_notes(story: Story, at: str, subgroups: Subgroups) -> list[Prose]:
     notes += [prose("Intervals are not given: {reason}.", reason=reason) for reason in sorted(withheld)]
     comparison = subgroups.comparison
     if comparison is not None and isinstance(comparison.difference, Absent):
-        notes.append(_why(comparison.difference, given=not isinstance(comparison.value, Absent)))
+        given = not isinstance(comparison.value, Absent)
+        difference = (
+            "Neither {p} nor an interval is given for the difference: {reason}."
+            if given
+            else "The difference of the two groups is not given: {reason}."
+        )
+        slots = {"p": P} if given else {}
+        notes.append(prose(difference, reason=comparison.difference.reason, **slots))
     elif comparison is not None:
         notes.append(
             only(
