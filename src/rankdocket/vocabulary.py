@@ -11,7 +11,9 @@ Role: TypeAlias = Literal["primary", "secondary", "exploratory"]
 ExpectedSign: TypeAlias = Literal["positive", "negative", "either"]
 CoefficientName: TypeAlias = Literal["Spearman rho", "Kendall tau-b"]
 Sidedness: TypeAlias = Literal["two-sided", "one-sided"]
-Adjustment: TypeAlias = Literal["Holm", "none"]
+Adjustment: TypeAlias = Literal[
+    "Holm", "Hochberg", "Bonferroni", "Benjamini-Hochberg", "Benjamini-Yekutieli", "step-down maxT", "none"
+]
 Family: TypeAlias = Literal["primary", "primary and secondary", "all", "none"]
 PBy: TypeAlias = Literal["exact when possible", "permutation"]
 IfNotMet: TypeAlias = Literal["estimate without test", "withhold all", "test with caveat"]

@@ -10,7 +10,8 @@ from rankdocket.analysis.check import direction_of
 from rankdocket.analysis.checks import CHECKS
 from rankdocket.analysis.checks.independence import KEY as INDEPENDENCE
 from rankdocket.analysis.decide import decide
-from rankdocket.analysis.family import family_of
+from rankdocket.analysis.family import adjustment_of, family_of
+from rankdocket.analysis.family_max_t import draws_together, family_max_t, require_like_rows
 from rankdocket.analysis.filing import filed
 from rankdocket.analysis.more_variables import examine_more_variables
 from rankdocket.analysis.nulls import budget_of, drawing_plan, levels_of, null_choice, smallest_possible_p
@@ -27,8 +28,6 @@ from rankdocket.analysis.results import (
 )
 from rankdocket.analysis.screen import screen_association
 from rankdocket.errors import InputError
-from rankdocket.stats.adjustment import AdjustmentRule
-from rankdocket.stats.adjustments import ADJUSTMENTS
 from rankdocket.stats.coefficient import FEWEST_ROWS, Coefficient
 from rankdocket.stats.comparisons import pearson_r, t_value_p
 from rankdocket.stats.interval import Interval, IntervalQuestion, NoInterval
@@ -59,17 +58,20 @@ def analyse(spec: StudySpec, data: StudyData, progress: Callable[[str], None] = 
     Raises
     ------
     InputError
-        If permutations must be drawn and the plan states no seed; nothing joint has been computed then.
+        If permutations must be drawn and the plan states no seed, or a family that is adjusted together has unlike rows;
+        nothing joint has been computed then.
     """
     screened = {name: screen_association(association, spec, data) for name, association in spec.associations.items()}
+    require_like_rows(spec, screened)
     require_seed(spec, screened)
     results = {}
     for name, rows in screened.items():
         results[name] = analyse_association(rows, spec)
         progress(name)
-    findings = decide(results, spec, adjustment_of(spec))
+    together = family_max_t(results, spec)
+    findings = decide(results, spec, adjustment_of(spec) if together is None else together)
     more = {name: examine_more_variables(name, results, spec, data) for name in results}
-    return Analysis(spec, data, results, findings, family_of(spec), more)
+    return Analysis(spec, data, results, findings, family_of(spec), more, together)
 
 
 def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnalysis:
@@ -101,17 +103,14 @@ def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnaly
     return AssociationAnalysis(screened, checks, estimate, test, interval, comparisons, smallest)
 
 
-def adjustment_of(spec: StudySpec) -> AdjustmentRule:
-    """Return the adjustment that the plan names."""
-    return next(rule for rule in ADJUSTMENTS if rule.key == spec.inference.several_tests.adjust)
-
-
 def without_seed(spec: StudySpec, screened: Mapping[str, Screened]) -> tuple[str, ...]:
     """Return the associations whose test needs draws although the plan states no seed."""
     if spec.inference.p_value.seed is not None:
         return ()
     return tuple(
-        name for name, rows in screened.items() if _will_be_tested(rows, spec) and null_choice(rows, spec).needs_draws
+        name
+        for name, rows in screened.items()
+        if _will_be_tested(rows, spec) and (null_choice(rows, spec).needs_draws or draws_together(rows, spec))
     )
 
 

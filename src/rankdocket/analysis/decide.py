@@ -1,54 +1,84 @@
 """Hypotheses, p-values, alpha and the adjustment make findings: one word from a fixed list, decided on fractions."""
 
 from collections.abc import Mapping
-from dataclasses import replace
+from dataclasses import dataclass, replace
 from fractions import Fraction
 from typing import Literal
 
 from rankdocket.analysis.family import basis_of, family_of
+from rankdocket.analysis.max_t_result import FamilyMaxT
 from rankdocket.analysis.results import AssociationAnalysis, Estimate, Finding, NotEstimable, RankTest
 from rankdocket.stats.adjustment import AdjustmentRule
 from rankdocket.study.spec import StudySpec
 from rankdocket.vocabulary import FindingWord
 
 
+@dataclass(frozen=True, slots=True)
+class _Adjusted:
+    """An adjusted p-value, and how small and how large it can be by the errors of the whole family."""
+
+    p: Fraction
+    low: Fraction
+    high: Fraction
+
+
 def decide(
-    results: Mapping[str, AssociationAnalysis], spec: StudySpec, adjustment: AdjustmentRule
+    results: Mapping[str, AssociationAnalysis], spec: StudySpec, adjustment: AdjustmentRule | FamilyMaxT
 ) -> Mapping[str, Finding]:
     """Return the finding of every association.
 
     A family member without a p enters the adjustment as p = 1: it never lowers another’s adjusted p.
     """
-    family = family_of(spec)
-    adjusted, lowest, highest = (
-        _adjusted({name: _p_at(results[name], end) for name in family}, adjustment) for end in (None, 0, 1)
+    by_max_t = adjustment.members if isinstance(adjustment, FamilyMaxT) else {}
+    adjusted = (
+        {name: _by_max_t(results[name], adjustment) for name in by_max_t}
+        if isinstance(adjustment, FamilyMaxT)
+        else _by_rule({name: results[name] for name in family_of(spec)}, adjustment)
     )
     return {
         name: replace(
-            _finding(result, spec, adjusted.get(name)),
-            undecided=_is_undecided(result, spec, (lowest.get(name), highest.get(name))),
+            _finding(result, spec, adjusted[name].p if name in adjusted else None),
+            undecided=_is_undecided(result, spec, adjusted.get(name)),
+            max_t=by_max_t.get(name),
         )
         for name, result in results.items()
     }
 
 
-def _adjusted(raw: Mapping[str, Fraction], adjustment: AdjustmentRule) -> dict[str, Fraction]:
-    return dict(zip(raw, adjustment.function(tuple(raw.values())), strict=True))
+def _by_rule(members: Mapping[str, AssociationAnalysis], adjustment: AdjustmentRule) -> dict[str, _Adjusted]:
+    """Adjust all p-values, all lower ends, all upper ends.
 
-
-def _is_undecided(
-    result: AssociationAnalysis, spec: StudySpec, adjusted_ends: tuple[Fraction | None, Fraction | None]
-) -> bool:
-    """Return whether the errors of p-values reach over alpha, for an association that the plan decides.
-
-    An adjusted p rises with every p of the family: with all of them at their lower ends, and at their upper ends, it
-    is as small and as large as these errors allow, whoever among the family has them.
+    By every rule an adjusted p never falls when a p of the family rises: with all of them at their lower ends, and at
+    their upper ends, it is as small and as large as these errors allow, whoever among the family has them.
     """
+    p, low, high = (
+        adjustment.function(tuple(_p_at(member, end) for member in members.values())) for end in (None, 0, 1)
+    )
+    return {name: _Adjusted(*values) for name, *values in zip(members, p, low, high, strict=True)}
+
+
+def _by_max_t(result: AssociationAnalysis, family: FamilyMaxT) -> _Adjusted:
+    """Return an adjusted p from the permutations of the family, never below the association’s own.
+
+    Among all permutations it is not; drawn ones can put it there by their error alone.
+    """
+    member = family.members[result.screened.spec.name]
+    low, high = member.ends
+    return _Adjusted(max(member.share, _p_at(result, None)), max(low, _p_at(result, 0)), max(high, _p_at(result, 1)))
+
+
+def _is_undecided(result: AssociationAnalysis, spec: StudySpec, adjusted: _Adjusted | None) -> bool:
+    """Return whether the errors of p-values reach over alpha, for an association that the plan decides."""
     basis = basis_of(result.screened.spec, spec)
     if basis == "outside the family" or not isinstance(result.test, RankTest):
         return False
-    low, high = adjusted_ends if basis == "family" else (_p_at(result, 0), _p_at(result, 1))
-    return low is not None and high is not None and low <= Fraction(spec.inference.alpha) < high
+    if basis != "family":
+        low, high = _p_at(result, 0), _p_at(result, 1)
+    elif adjusted is not None:
+        low, high = adjusted.low, adjusted.high
+    else:
+        return False
+    return low <= Fraction(spec.inference.alpha) < high
 
 
 def _p_at(result: AssociationAnalysis, end: Literal[0, 1] | None) -> Fraction:

@@ -3,7 +3,7 @@
 from fractions import Fraction
 
 from rankdocket.analysis.check import direction_of
-from rankdocket.analysis.family import family_size
+from rankdocket.analysis.family import factors_of
 from rankdocket.analysis.results import Screened
 from rankdocket.stats.attainable import smallest_attainable_p
 from rankdocket.stats.choose_null import NANOSECONDS, Budget, NullChoice, choose_null
@@ -34,8 +34,12 @@ def drawing_plan(spec: StudySpec, address: tuple[str, ...]) -> DrawingPlan | Non
 
 
 def levels_of(association: AssociationSpec, spec: StudySpec) -> tuple[Fraction, ...]:
-    """Return the levels that a p-value may come to be held against: for Holm alpha over one, two, … of the family."""
-    return tuple(Fraction(spec.inference.alpha) / members for members in range(1, family_size(association, spec) + 1))
+    """Return the levels that a p-value may come to be held against, decreasing: alpha over each factor of the rule.
+
+    Step-down maxT compares no p-value of one association with anything but alpha.
+    """
+    alpha = Fraction(spec.inference.alpha)
+    return tuple(sorted({alpha / factor for factor in factors_of(association, spec)}, reverse=True))
 
 
 def smallest_of_rows(screened: Screened, spec: StudySpec) -> Fraction:

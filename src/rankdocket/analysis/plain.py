@@ -10,6 +10,7 @@ from decimal import Decimal
 from fractions import Fraction
 from typing import Final
 
+from rankdocket.analysis.adjustment_plain import adjustment_to_plain, member_to_plain
 from rankdocket.analysis.filing import exact_decimal, filed, filed_beside, half
 from rankdocket.analysis.more_variables_plain import more_variables_to_plain
 from rankdocket.analysis.null_plain import null_to_plain, rank_test_to_plain, series_to_plain
@@ -45,6 +46,7 @@ def analysis_to_plain(analysis: Analysis) -> dict[str, Plain]:
             **_inference(analysis.spec),
             "family": list(analysis.family),
             "family_size": len(analysis.family),
+            **adjustment_to_plain(analysis),
         },
         "associations": {
             name: {
@@ -265,7 +267,7 @@ def _finding(finding: Finding, alpha: Decimal) -> dict[str, Plain]:
     plain: dict[str, Plain] = {"word": finding.word or "no finding", "basis": finding.basis}
     if finding.p_adjusted is not None:
         plain["p_adjusted"] = filed_beside(finding.p_adjusted, alpha)
-    return plain
+    return plain | member_to_plain(finding.max_t, finding.p_adjusted)
 
 
 def _worksheet(screened: Screened) -> dict[str, Plain]:

@@ -10,6 +10,7 @@ from decimal import Decimal
 from fractions import Fraction
 from typing import Literal, TypeAlias
 
+from rankdocket.analysis.max_t_result import FamilyMaxT, MemberMaxT
 from rankdocket.analysis.more_results import MoreVariables
 from rankdocket.stats.choose_null import NullChoice
 from rankdocket.stats.coefficient import Coefficient
@@ -207,12 +208,15 @@ class Finding:
     undecided
         True when p has an error, by draws or by its method, and the ends of its interval lie on different sides of
         alpha, adjusted with the others fixed.
+    max_t
+        The permutations from which the adjusted p comes, where the coefficients of the family were adjusted together.
     """
 
     word: FindingWord | None
     basis: FindingBasis
     p_adjusted: Fraction | None
     undecided: bool = False
+    max_t: MemberMaxT | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -227,3 +231,5 @@ class Analysis:
     """Names of the associations whose p-values are adjusted together, in plan order."""
     more: Mapping[str, MoreVariables]
     """What the plan asks about more than two variables, by association."""
+    max_t: FamilyMaxT | None = None
+    """Their coefficients adjusted together, where the plan asks for that and any of them has a test."""

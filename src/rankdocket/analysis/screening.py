@@ -7,6 +7,7 @@ from typing import Final
 from rankdocket.analysis.analyse import without_seed
 from rankdocket.analysis.check import Check
 from rankdocket.analysis.checks import CHECKS
+from rankdocket.analysis.family_max_t import unlike_rows
 from rankdocket.analysis.nulls import null_choice
 from rankdocket.analysis.plain import data_to_plain, screened_to_plain
 from rankdocket.analysis.results import CheckOutcome, Screened
@@ -31,6 +32,8 @@ class Screening:
         Association → outcomes of the checks that show nothing joint.
     seedless
         Associations whose test needs drawn permutations although the plan states no seed: issuing would be refused.
+    unlike
+        Members of a family to be adjusted together whose complete rows are not those of the first: it would be too.
     plain
         The same as plain data, with each variable alone.
     """
@@ -40,12 +43,13 @@ class Screening:
     screened: Mapping[str, Screened]
     outcomes: Mapping[str, tuple[CheckOutcome, ...]]
     seedless: tuple[str, ...]
+    unlike: tuple[str, ...]
     plain: Mapping[str, Plain]
 
     @property
     def all_met(self) -> bool:
         """True when no requirement is not met and the plan could be run."""
-        return not self.seedless and all(
+        return not (self.seedless or self.unlike) and all(
             outcome.state != "not met" for outcomes in self.outcomes.values() for outcome in outcomes
         )
 
@@ -57,10 +61,11 @@ def screen_study(spec: StudySpec, data: StudyData) -> Screening:
     plain: dict[str, Plain] = {
         "schema": SCHEMA,
         "without_seed": list(without_seed(spec, screened)),
+        "unlike_rows": list(unlike_rows(spec, screened)),
         **data_to_plain(spec, data),
         "associations": {name: _association(rows, outcomes[name], spec) for name, rows in screened.items()},
     }
-    return Screening(spec, data, screened, outcomes, without_seed(spec, screened), plain)
+    return Screening(spec, data, screened, outcomes, without_seed(spec, screened), unlike_rows(spec, screened), plain)
 
 
 def _association(rows: Screened, outcomes: tuple[CheckOutcome, ...], spec: StudySpec) -> dict[str, Plain]:

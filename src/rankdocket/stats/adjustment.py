@@ -10,17 +10,26 @@ from rankdocket.references import Description
 AdjustmentName: TypeAlias = Literal[
     "Holm", "Hochberg", "Bonferroni", "Benjamini-Hochberg", "Benjamini-Yekutieli", "none"
 ]
-"""Every rule there is; the words that a spec may write are among them."""
+"""Every rule that needs nothing but the p-values of a family."""
+
+ErrorRate: TypeAlias = Literal["any false finding", "share of false findings", "each test alone"]
+"""What alpha bounds: the chance of any false finding, the expected share of false ones, or each test’s own error."""
 
 
 @dataclass(frozen=True, slots=True)
 class AdjustmentRule:
     """A rule: p-values of the whole family in, adjusted p-values in the same order out.
 
-    An association without a p-value stays in the family and enters as 1.
+    An association without a p-value stays in the family and enters as 1.  An adjusted p-value never falls when any
+    p-value of the family rises, so that bounds of p-values adjusted together bound the adjusted ones.
 
     Attributes
     ----------
+    factors
+        Size of the family, 1 or more → by how much the smallest, second smallest, … p-value is multiplied; never rising.
+        The largest one is what p meets beside tests that all fail; an adjusted p is never below the smallest times p.
+    error_rate
+        What the rule keeps at or below alpha.
     describe
         What was done, which error it keeps at or below alpha, and under which dependence of the p-values.
     """
@@ -28,7 +37,14 @@ class AdjustmentRule:
     key: AdjustmentName
     label: str
     function: Callable[[tuple[Fraction, ...]], tuple[Fraction, ...]]
+    factors: Callable[[int], tuple[Fraction, ...]]
+    error_rate: ErrorRate
     describe: Description
+
+
+def down_to_one(family: int) -> tuple[Fraction, ...]:
+    """Return the number of hypotheses not yet decided: the family’s size first, 1 last."""
+    return tuple(Fraction(family - smaller) for smaller in range(family))
 
 
 def step_up(p_values: tuple[Fraction, ...], factors: tuple[Fraction, ...]) -> tuple[Fraction, ...]:

@@ -73,6 +73,9 @@ class MaxTQuestion:
         One or more arrays of shape (n,), in the order of the answer.
     direction
         Which coefficients are extreme; the same for the whole family.
+    held_back
+        Places of others whose own answer is not given: they stand last and in every maximum, so that they never lower
+        the adjusted p-value of another.
 
     Raises
     ------
@@ -83,6 +86,7 @@ class MaxTQuestion:
     x_codes: Codes
     other_codes: tuple[Codes, ...]
     direction: Direction
+    held_back: frozenset[int] = frozenset()
 
     def __post_init__(self) -> None:
         if not self.other_codes:
@@ -101,7 +105,7 @@ class MaxT:
         Spearman rho with each of the others.
     own_hits
         Permutations in which the pair’s own coefficient was at least as extreme as observed; ``None`` where it is
-        undefined because that variable does not vary.
+        undefined because that variable does not vary, or held back.
     hits
         Permutations in which the largest among the pair and all less extreme ones was, made monotone by stepping down
         from the most extreme pair; ``None`` as above.
@@ -231,7 +235,14 @@ def _laid_out(question: MaxTQuestion) -> _LaidOut | NoAnswer:
         return NoAnswer("nothing can be adjusted because none of the other variables varies")
     sign = -1 if question.direction == "less" else 1
     both_sides = question.direction == "two-sided"
-    numerators = [abs(each.numerator) if both_sides else sign * each.numerator for each in coefficients]
+    numerators = [
+        _least(each, both_sides=both_sides)
+        if place in question.held_back
+        else abs(each.numerator)
+        if both_sides
+        else sign * each.numerator
+        for place, each in enumerate(coefficients)
+    ]
     places = sorted(
         defined,
         key=lambda place: Fraction(numerators[place] * abs(numerators[place]), coefficients[place].y_square),
@@ -253,6 +264,11 @@ def _laid_out(question: MaxTQuestion) -> _LaidOut | NoAnswer:
         for rank, place in enumerate(places)
     )
     return _LaidOut(tuple(places), coefficients, x_steps, columns.astype(np.float64), thresholds, both_sides)
+
+
+def _least(coefficient: Coefficient, *, both_sides: bool) -> int:
+    """Return a numerator that every permutation reaches."""
+    return 0 if both_sides else -isqrt(coefficient.x_square * coefficient.y_square)
 
 
 def _threshold(numerator: int, its_square: int, square: int) -> int:
@@ -297,7 +313,7 @@ def _answer(method: MaxTMethod, question: MaxTQuestion, laid_out: _LaidOut, coun
         raise ComputeError("The permutations gone through are not all there are.")
     own = dict(zip(laid_out.places, counts.own, strict=True))
     stepped = dict(zip(laid_out.places, accumulate(counts.largest, max), strict=True))
-    members = range(len(laid_out.coefficients))
+    members = [-1 if place in question.held_back else place for place in range(len(laid_out.coefficients))]
     return MaxT(
         method,
         question.direction,

@@ -6,6 +6,7 @@ from typing import Final
 from rankdocket.errors import Fault
 from rankdocket.study.form import InferenceForm, PValueForm
 from rankdocket.study.messages import Message, fault
+from rankdocket.study.one_variable import max_t_faults
 from rankdocket.study.parts import Parts
 from rankdocket.vocabulary import ROLES, Family
 
@@ -26,6 +27,7 @@ def decision_faults(parts: Parts) -> Iterator[Fault]:
     if parts.sound(("inference",), "several_tests"):
         yield from _family_faults(parts, parts.inference)
         yield from _reason_faults(parts, parts.inference)
+        yield from max_t_faults(parts, _FAMILY_ROLES.get(parts.inference.several_tests.among, ()))
     if parts.sound(("inference",), "p_value"):
         yield from _draw_faults(parts, parts.inference.p_value)
 

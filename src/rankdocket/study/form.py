@@ -229,7 +229,11 @@ class AssociationForm(Form):
 class SeveralTestsForm(Form):
     """How p is adjusted for several tests."""
 
-    adjust: Annotated[Adjustment, kinds.OneOf(ADJUSTMENTS)] = Field(default="Holm", description="The adjustment.")
+    adjust: Annotated[Adjustment, kinds.OneOf(ADJUSTMENTS)] = Field(
+        default="Holm",
+        description="The adjustment. Holm, Hochberg, Bonferroni and step-down maxT bound the chance of any false finding, "
+        "Benjamini-Hochberg and Benjamini-Yekutieli the expected share of false ones among the findings.",
+    )
     among: Annotated[Family, kinds.OneOf(FAMILIES)] = Field(
         default="primary", description="Which associations are the family."
     )

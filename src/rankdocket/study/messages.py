@@ -73,6 +73,7 @@ class Message(IntEnum):
     NAMES_COMMENTED = 58
     OTHER_SEPARATOR = 59
     NO_DATA = 60
+    FAMILY_ROWS_DIFFER = 61
 
 
 MEANINGS: Final = {
@@ -136,6 +137,7 @@ MEANINGS: Final = {
     Message.NAMES_COMMENTED: "the row of the column names is marked as a comment",
     Message.OTHER_SEPARATOR: "the fields of a data file are separated by another mark than the declared one",
     Message.NO_DATA: "a data file holds no data",
+    Message.FAMILY_ROWS_DIFFER: "the associations of a family do not have the same complete rows",
 }
 """Message → what it means, in short."""
 

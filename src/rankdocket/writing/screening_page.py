@@ -79,6 +79,13 @@ def _questions(screening: Screening) -> Iterator[str]:
             f"{', '.join(screening.seedless)}: permutations must be drawn and the plan states no seed. Write one, as "
             "p_value: {by: exact when possible, seed: 417} with a number of your own."
         )
+    if screening.unlike:
+        asked = True
+        yield (
+            f"{', '.join(screening.unlike)}: the complete rows are not those of the family’s first association, and "
+            "step-down maxT needs the same ones. Leave out the rows that lack a value in any of them, by leave_out and "
+            "with a reason, or write adjust: Holm."
+        )
     if not asked:
         yield "None: every requirement that can be looked at now is met."
 

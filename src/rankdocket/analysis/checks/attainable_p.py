@@ -4,17 +4,24 @@ from fractions import Fraction
 from typing import Final
 
 from rankdocket.analysis.check import Check, level_measure, p_measure
-from rankdocket.analysis.family import family_size
+from rankdocket.analysis.family import adjusts_together, factors_of, family_of
+from rankdocket.analysis.family_max_t import smallest_max_t_p
 from rankdocket.analysis.nulls import smallest_of_rows, smallest_possible_p
 from rankdocket.analysis.results import CheckOutcome, Screened
 from rankdocket.references import Description
 from rankdocket.study.spec import StudySpec
+from rankdocket.vocabulary import CheckState
 
 KEY: Final = "attainable_p"
 
 
 def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
-    """Hold the smallest attainable p against alpha, and against alpha shared among the family."""
+    """Hold the smallest attainable p against alpha, and against alpha as the adjustment may share it.
+
+    A rule whose smallest factor is above 1 multiplies every p, whatever becomes of the other tests; its largest factor
+    meets an association beside others that all fail.  By step-down maxT an adjusted p is at least p, and at most p
+    times the size of the family: between the two it is open.
+    """
     alpha = Fraction(spec.inference.alpha)
     limit = level_measure(spec.inference.alpha)
     if min(screened.x_ties.distinct, screened.y_ties.distinct) < 2:
@@ -28,15 +35,28 @@ def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
         return CheckOutcome(
             KEY, "not met", limit, found, "the draws that the plan allows are too few for a p of alpha or less"
         )
-    if smallest * family_size(screened.spec, spec) > alpha:
-        return CheckOutcome(
-            KEY,
-            "doubtful",
-            limit,
-            found,
-            "alpha could be reached, but not if every other test of the family failed",
+    state, reason = _beside_others(screened, spec, smallest)
+    return CheckOutcome(KEY, state, limit, found, reason)
+
+
+def _beside_others(screened: Screened, spec: StudySpec, smallest: Fraction) -> tuple[CheckState, str]:
+    """Return what the adjustment leaves of a smallest p that is not above alpha."""
+    alpha, family = Fraction(spec.inference.alpha), family_of(spec)
+    factors = factors_of(screened.spec, spec)
+    if smallest_of_rows(screened, spec) * min(factors) > alpha:
+        return (
+            "not met",
+            "no result of this plan with these rows could reach alpha once adjusted for the number of tests",
         )
-    return CheckOutcome(KEY, "met", limit, found, "alpha could be reached")
+    together = adjusts_together(spec) and screened.spec.name in family
+    drawn = smallest_max_t_p(len(screened.rows), spec.inference.p_value.permutations) if together else Fraction(0)
+    if max(smallest * min(factors), drawn) > alpha:
+        return "not met", "the draws that the plan allows are too few for an adjusted p of alpha or less"
+    if together and smallest * len(family) > alpha:
+        return "doubtful", "alpha could be reached alone; whether beside the others of the family is open"
+    if smallest * max(factors) > alpha:
+        return "doubtful", "alpha could be reached, but not if every other test of the family failed"
+    return "met", "alpha could be reached"
 
 
 CHECK = Check(

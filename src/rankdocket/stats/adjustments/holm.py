@@ -4,7 +4,7 @@ from fractions import Fraction
 from typing import Final
 
 from rankdocket.references import Description
-from rankdocket.stats.adjustment import AdjustmentRule
+from rankdocket.stats.adjustment import AdjustmentRule, down_to_one
 
 
 def holm(p_values: tuple[Fraction, ...]) -> tuple[Fraction, ...]:
@@ -13,8 +13,8 @@ def holm(p_values: tuple[Fraction, ...]) -> tuple[Fraction, ...]:
     order = sorted(range(family), key=lambda place: p_values[place])
     adjusted = [Fraction(1)] * family
     largest = Fraction(0)
-    for smaller, place in enumerate(order):
-        largest = max(largest, min(Fraction(1), (family - smaller) * p_values[place]))
+    for factor, place in zip(down_to_one(family), order, strict=True):
+        largest = max(largest, min(Fraction(1), factor * p_values[place]))
         adjusted[place] = largest
     return tuple(adjusted)
 
@@ -23,6 +23,8 @@ HOLM: Final = AdjustmentRule(
     "Holm",
     "Holm",
     holm,
+    down_to_one,
+    "any false finding",
     Description(
         "The p-values of the {family} associations of the family were adjusted by Holm’s step-down rule, which keeps "
         "the chance of any false finding in the family at or below alpha.",

@@ -12,6 +12,16 @@ def unadjusted(p_values: tuple[Fraction, ...]) -> tuple[Fraction, ...]:
     return p_values
 
 
+def no_factors(family: int) -> tuple[Fraction, ...]:
+    """Return 1 for every member."""
+    return (Fraction(1),) * family
+
+
 NONE: Final = AdjustmentRule(
-    "none", "none", unadjusted, Description("The p-values were not adjusted for the number of associations.")
+    "none",
+    "none",
+    unadjusted,
+    no_factors,
+    "each test alone",
+    Description("The p-values were not adjusted for the number of associations."),
 )

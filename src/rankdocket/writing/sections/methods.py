@@ -3,8 +3,8 @@
 from itertools import product
 from typing import Final
 
-from rankdocket.analysis.analyse import adjustment_of
 from rankdocket.analysis.checks import CHECKS
+from rankdocket.analysis.family import adjustment_of
 from rankdocket.analysis.results import Estimate, RankTest
 from rankdocket.document.model import Block, Emphasis, Link, Number, Paragraph, Prose, Section, Supplied
 from rankdocket.document.prose import joined, only, prose, text_of
