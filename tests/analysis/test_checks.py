@@ -55,6 +55,9 @@ DECLARED = "the plan declares the rows independent"
 NO_ROW = "no complete row was left to look at"
 REACHED = "alpha could be reached"
 SHARED = "alpha could be reached, but not if every other test of the family failed"
+ADJUSTED_UNREACHED = "no result of this plan with these rows could reach alpha once adjusted for the number of tests"
+OPEN_TOGETHER = "alpha could be reached alone; whether beside the others of the family is open"
+TOO_FEW_ADJUSTED = "the draws that the plan allows are too few for an adjusted p of alpha or less"
 TOO_FEW_DRAWS = "the draws that the plan allows are too few for a p of alpha or less"
 UNREACHED = "no result of this plan with these rows could reach alpha"
 TOO_FEW = "too few rows for a look at two halves"
@@ -86,6 +89,12 @@ def in_lab(rows: str) -> Invented:
     """Return the base study with one more column that a question about the rows can name."""
     keys = "label: laboratory, scale: ordered, lowest_to_highest: [P, Q]"
     return replace(BASE, columns={**BASE.columns, "lab": "P Q " * 5}, variables={"lab": keys}, rows=rows)
+
+
+def of_five(tests: int, adjust: str) -> Invented:
+    """Return a family of as many associations, all of the same five rows."""
+    plan = {f"A{place}": association() for place in range(1, tests + 1)}
+    return replace(FIVE, associations=plan, inference=f"alpha: 0.05, several_tests: {{adjust: {adjust}}}")
 
 
 CASES = (
@@ -205,6 +214,33 @@ CASES = (
         "met",
         REACHED,
         ("0.05", "0.0166666666667"),
+    ),
+    # The smallest p of five rows is 1/60; with four tests 4/60 is above 0.05, with three 3/60 is 0.05.
+    *(
+        Case("attainable_p", of_five(tests, rule), state, reason, ("0.05", "0.0166666666667"))
+        for tests, rule, state, reason in (
+            (4, "Bonferroni", "not met", ADJUSTED_UNREACHED),
+            (3, "Bonferroni", "met", REACHED),
+            # By 1 + 1/2 + 1/3 + 1/4 = 25/12 at best, times 4 at worst; 125/3600 is below 0.05.
+            (4, "Benjamini-Yekutieli", "doubtful", SHARED),
+            (12, "Benjamini-Yekutieli", "not met", ADJUSTED_UNREACHED),
+            (4, "Benjamini-Hochberg", "doubtful", SHARED),
+            (4, "Hochberg", "doubtful", SHARED),
+            (4, "step-down maxT", "doubtful", OPEN_TOGETHER),
+            (3, "step-down maxT", "met", REACHED),
+        )
+    ),
+    # No adjusted p from 999 permutations lies below 1/1000.
+    Case(
+        "attainable_p",
+        replace(
+            BASE,
+            associations={"A1": association(), "A2": association()},
+            inference="alpha: 0.0009, several_tests: {adjust: step-down maxT}, p_value: {permutations: 999, seed: 1}",
+        ),
+        "not met",
+        TOO_FEW_ADJUSTED,
+        ("0.0009", "0.00000055114638448"),
     ),
     Case(
         "attainable_p",

@@ -10,9 +10,9 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from analysis.invented import FALLING, MIXED, RISING, Invented, association
-from rankdocket.analysis.analyse import adjustment_of, analyse
+from rankdocket.analysis.analyse import analyse
 from rankdocket.analysis.decide import decide
-from rankdocket.analysis.family import family_of, family_size
+from rankdocket.analysis.family import adjustment_of, factors_of, family_of
 from rankdocket.analysis.results import Analysis, AssociationAnalysis, Finding, RankTest, Withheld
 from rankdocket.errors import InputError
 from rankdocket.stats.null import TailCounts
@@ -109,12 +109,12 @@ def test_the_family_is_what_the_plan_names(among: str, members: tuple[str, ...])
     for name, finding in analysis.findings.items():
         if name in members:
             assert finding == Finding("shown", "family", len(members) * own)
-            assert family_size(analysis.spec.associations[name], analysis.spec) == len(members)
+            assert max(factors_of(analysis.spec.associations[name], analysis.spec)) == len(members)
         elif among == "none" and name != "A3":
             assert finding == Finding("shown", "own p-value", None)
         else:
             assert finding == Finding(None, "outside the family", None)
-            assert family_size(analysis.spec.associations[name], analysis.spec) == 1
+            assert factors_of(analysis.spec.associations[name], analysis.spec) == (1,)
 
 
 def test_without_adjustment_a_family_member_keeps_its_p() -> None:
@@ -122,7 +122,7 @@ def test_without_adjustment_a_family_member_keeps_its_p() -> None:
     inference = "alpha: 0.05, several_tests: {adjust: none, among: all, reason: four questions}"
     analysis = replace(Invented(), associations=FAMILY, inference=inference).analysed()
     assert {finding.p_adjusted for finding in analysis.findings.values()} == {Fraction(2, 3628800)}
-    assert {family_size(each, analysis.spec) for each in analysis.spec.associations.values()} == {1}
+    assert {max(factors_of(each, analysis.spec)) for each in analysis.spec.associations.values()} == {1}
 
 
 def with_p(*values: str, alpha: str = "0.05") -> Analysis:

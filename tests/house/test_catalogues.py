@@ -59,8 +59,10 @@ def test_folder_and_catalogue_agree(folder: str, kind: type[Any], catalogue: tup
 
 
 def test_the_words_for_adjustments_have_their_rules() -> None:
-    """The words that a spec may write for an adjustment are keys of rules, in the same order; more rules may exist."""
-    assert tuple(rule.key for rule in ADJUSTMENTS if rule.key in ADJUSTMENT_WORDS) == ADJUSTMENT_WORDS
+    """The words that a spec may write are the keys of the rules, in the same order, and the one that needs the rows."""
+    assert tuple(word for word in ADJUSTMENT_WORDS if word != "step-down maxT") == tuple(
+        rule.key for rule in ADJUSTMENTS
+    )
 
 
 def test_intervals_serve_known_coefficients() -> None:

@@ -11,7 +11,7 @@ from scipy.stats import false_discovery_control
 
 from rankdocket import adjusted
 from rankdocket.document.prose import lint
-from rankdocket.stats.adjustment import AdjustmentName
+from rankdocket.stats.adjustment import AdjustmentName, AdjustmentRule
 from rankdocket.stats.adjustments import ADJUSTMENTS
 from rankdocket.stats.comparisons import pearson_r, t_value_p
 from rankdocket.stats.rho import rho
@@ -123,8 +123,31 @@ def test_every_rule_says_which_error_it_keeps() -> None:
 
 
 def test_the_catalogue_has_a_rule_for_every_word() -> None:
-    """Each adjustment that a spec may name has one rule, in the same order."""
-    assert tuple(rule.key for rule in ADJUSTMENTS if rule.key in WORDS) == WORDS
+    """Each adjustment of p-values that a spec may name has one rule, in the same order."""
+    assert tuple(word for word in WORDS if word != "step-down maxT") == tuple(rule.key for rule in ADJUSTMENTS)
+
+
+@pytest.mark.parametrize("rule", ADJUSTMENTS, ids=[rule.key for rule in ADJUSTMENTS])
+@given(st.lists(st.fractions(0, 1, max_denominator=720), min_size=2, max_size=7), st.data())
+def test_an_adjusted_p_never_falls_when_any_p_rises(
+    rule: AdjustmentRule, family: list[Fraction], data: st.DataObject
+) -> None:
+    """So that all p-values at an end of their intervals give that end of every adjusted one."""
+    risen = [data.draw(st.sampled_from([p, (p + 1) / 2, Fraction(1)])) for p in family]
+    pairs = zip(adjusted(family, rule=rule.key), adjusted(risen, rule=rule.key), strict=True)
+    assert all(before <= after for before, after in pairs)
+
+
+@pytest.mark.parametrize("rule", ADJUSTMENTS, ids=[rule.key for rule in ADJUSTMENTS])
+@given(st.lists(st.fractions(0, Fraction(1, 1000), max_denominator=10**6), min_size=1, max_size=7))
+def test_factors_bound_what_a_rule_makes_of_a_p(rule: AdjustmentRule, family: list[Fraction]) -> None:
+    """They never rise; beside p-values of 1 the largest one is met, and never less than the smallest times p is given."""
+    factors = rule.factors(len(family))
+    assert len(factors) == len(family)
+    assert list(factors) == sorted(factors, reverse=True)
+    alone = adjusted([family[0], *[1] * (len(family) - 1)], rule=rule.key)
+    assert alone[0] == factors[0] * family[0]
+    assert all(new >= factors[-1] * raw for raw, new in zip(family, adjusted(family, rule=rule.key), strict=True))
 
 
 def test_no_p_values_are_adjusted_to_none() -> None:

@@ -1,5 +1,6 @@
 """One variable against many: permutations of one variable, the largest coefficient of each, stepping down."""
 
+from dataclasses import replace
 from fractions import Fraction
 from itertools import permutations
 from math import sqrt
@@ -224,6 +225,30 @@ def test_nothing_to_adjust_is_said(x: list[int], others: list[list[int]], why: s
     ):
         assert isinstance(found, NoAnswer)
         assert why in found.reason
+
+
+@pytest.mark.parametrize("direction", DIRECTIONS)
+def test_who_is_held_back_stands_in_every_maximum(direction: Direction) -> None:
+    """Whatever its own coefficient: every permutation is gone through, and it is not answered itself."""
+    x, far, near, tied = [0, 1, 2, 3, 4, 5], [0, 1, 2, 3, 5, 4], [1, 0, 3, 2, 5, 4], [0, 0, 1, 1, 0, 1]
+    question = replace(_question(x, [far, near, tied], direction), held_back=frozenset({0}))
+    others = [surpluses(codes) for codes in (far, near, tied)]
+    observed = [_signed_square(surpluses(x), other, direction) for other in others]
+    steps = sorted((1, 2), key=lambda place: -observed[place])
+    hits = {
+        place: sum(
+            any(
+                _signed_square(list(order), others[other], direction) >= observed[place] for other in (*steps[rank:], 0)
+            )
+            for order in permutations(surpluses(x))
+        )
+        for rank, place in enumerate(steps)
+    }
+    found = _counted(question)
+    stepped = {steps[0]: hits[steps[0]], steps[1]: max(hits.values())}
+    assert found.hits == (None, stepped[1], stepped[2])
+    assert found.own_hits[0] is None
+    assert found.own_hits[1:] == _counted(_question(x, [far, near, tied], direction)).own_hits[1:]
 
 
 def test_misuse_is_refused() -> None:

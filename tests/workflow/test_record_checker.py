@@ -15,6 +15,8 @@ from pathlib import Path
 import pytest
 
 import rankdocket.workflow.record_checker as checker
+from rankdocket.stats.adjustment import AdjustmentRule
+from rankdocket.stats.adjustments import ADJUSTMENTS, adjusted
 from rankdocket.stats.nulls.tied_forecast import forecast_rho, forecast_tails
 from rankdocket.stats.ranks import TieGroups
 from rankdocket.workflow.study_folder import open_study
@@ -276,6 +278,63 @@ def test_its_count_is_that_of_all_orderings(name: str, x: list[int], y: list[int
     sums = checker.rho_sums if name == "Spearman rho" else checker.tau_sums
     listed = Counter(sums(ranks_x, list(order))[0] for order in itertools.permutations(ranks_y))
     assert checker.orderings(ranks_x, ranks_y, name) == listed
+
+
+@pytest.mark.parametrize("rule", ADJUSTMENTS, ids=[rule.key for rule in ADJUSTMENTS])
+@pytest.mark.parametrize(
+    "hundredths", [(1, 2, 3, 4, 5), (40, 1, 1, 30, 100), (100, 100), (7,), (2, 90, 2, 2, 3, 4, 5, 60)]
+)
+def test_it_adjusts_by_every_rule_as_the_program_does(rule: AdjustmentRule, hundredths: tuple[int, ...]) -> None:
+    """Its own lines give the same fractions, with ties and with p-values of 1."""
+    p_values = {f"A{place}": Fraction(value, 100) for place, value in enumerate(hundredths)}
+    anew = checker.adjust(rule.key, p_values)
+    assert tuple(anew[name] for name in p_values) == adjusted(tuple(p_values.values()), rule=rule.key)
+    assert checker.error_rate(rule.key, list(p_values)) == rule.error_rate
+
+
+def _family(folder: Path, adjust: str) -> Path:
+    """Issue a study of two associations of one variable, adjusted by a rule; return its folder."""
+    study = copy_study("first-look", folder / "first-look")
+    spec = (study / SPEC).read_text("utf-8")
+    decided = f"alpha: 0.05\n  several_tests: {{adjust: {adjust}}}\n  p_value: {{permutations: 999, seed: 4}}\n"
+    spec = replaced_once("alpha: 0.05\n", decided)(spec)
+    head, _, rest = spec.partition("associations:\n")
+    entries, _, rest = rest.partition("\ninference:")
+    both = entries + "\n" + entries.replace("A1:", "A2:", 1)
+    (study / SPEC).write_text(f"{head}associations:\n{both}\ninference:{rest}", "utf-8")
+    assert run("issue", ".", "--reason", "first issue", cwd=study).status == 0
+    return study
+
+
+def test_a_family_adjusted_together_is_said_not_to_be_made_anew(tmp_path: Path) -> None:
+    """Its counts are held against its p-values and findings; a forged adjusted p is named."""
+    study = _family(tmp_path, "step-down maxT")
+    edition = study / "editions" / "1"
+    ran = _check(edition)
+    assert ran.status == 0
+    assert ran.out.startswith("Everything agrees (")
+    assert "Not made anew by step-down maxT, only held against its own count: the adjusted p of A1, A2.\n" in ran.out
+
+    def forgery(text: str) -> str:
+        analysis = json.loads(text)
+        analysis["associations"]["A1"]["finding"]["p_adjusted"] = "0.5"
+        return json.dumps(analysis)
+
+    forge(study, "1", "analysis.json", forgery)
+    assert "A1: p_adjusted is 0.5, made anew " in _check(edition).out
+
+
+def test_another_rule_in_the_record_is_named(tmp_path: Path) -> None:
+    """The adjusted p by another rule than the plan's, and the words for what alpha bounds, do not agree."""
+    study = _family(tmp_path, "Benjamini-Yekutieli")
+    edition = study / "editions" / "1"
+    assert _check(edition).out.startswith("Everything agrees (")
+    forge(study, "1", "analysis.json", replaced_once('"adjust": "Benjamini-Yekutieli"', '"adjust": "Hochberg"'))
+    assert "inference: adjust is Hochberg, made anew Benjamini-Yekutieli." in _check(edition).out
+    forge(study, "1", "plan.json", lambda text: text.replace("Benjamini-Yekutieli", "Hochberg"))
+    told = _check(edition).out
+    assert "inference: error_rate is share of false findings, made anew any false finding." in told
+    assert "A1: p_adjusted is " in told
 
 
 def test_no_demonstration_needs_more_than_it_says() -> None:

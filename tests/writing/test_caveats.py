@@ -10,7 +10,7 @@ from rankdocket.document.model import CaveatBlock, Link, Paragraph
 from rankdocket.document.prose import lint, text_of
 from rankdocket.writing import caveats
 from rankdocket.writing.caveat import CaveatRule
-from rankdocket.writing.caveats import CAVEATS, more_variables, requirements, results, study
+from rankdocket.writing.caveats import CAVEATS, adjustment, more_variables, requirements, results, study
 from writing.reports import (
     EVERY_FINDING,
     Occasion,
@@ -27,6 +27,7 @@ NEAR = "2 1 8 5 4 3 7 6 9 10"
 """Ten values that rise with RISING: two-sided p 0.017."""
 
 TAU = {"A1": association(more="coefficient: Kendall tau-b")}
+TWO = {"A1": association(), "A2": association()}
 LEFT_OUT = INDEPENDENT + ', leave_out: [{where: {v: "10"}, reason: the rig was broken}]'
 SMALL_ORDERED = {"u": "1 2 3 4 5", "v": "1 3 2 5 4"}
 LOPSIDED = {"u": "1 1 1 2", "v": "1 1 1 2"}
@@ -60,6 +61,9 @@ SPEAKS: dict[str, Invented] = {
         QUIET, columns={**QUIET.columns, "w": MIXED}, associations={"A1": association(more="covariates: [w]")}
     ),
     "no_interval": replace(QUIET, associations=TAU),
+    "condition_of_adjustment": replace(
+        QUIET, associations=TWO, inference="alpha: 0.05, several_tests: {adjust: Hochberg}"
+    ),
     "interval_basis": QUIET,
     "association_only": QUIET,
     "independence_null": QUIET,
@@ -72,6 +76,7 @@ IS_SILENT: dict[str, Invented] = {
     "undecided": replace(QUIET, columns=TWELVE, inference=DRAWN.format(alpha="0.05")),
     "two_sided_rule": replace(QUIET, columns=LOPSIDED, inference="alpha: 0.2"),
     "no_interval": QUIET,
+    "condition_of_adjustment": replace(QUIET, associations=TWO),
     "interval_basis": replace(QUIET, associations=TAU),
     "independence_null": replace(QUIET, rows="leave_out: []"),
 }
@@ -119,7 +124,7 @@ def test_the_catalogue_holds_every_rule_once_with_a_weight_of_its_own() -> None:
     """A rule that is written and not listed would never speak."""
     written = [
         rule
-        for module in (more_variables, requirements, results, study)
+        for module in (adjustment, more_variables, requirements, results, study)
         for _, rule in inspect.getmembers(module, lambda value: isinstance(value, CaveatRule))
     ]
     assert {rule.key for rule in written} == {rule.key for rule in CAVEATS}

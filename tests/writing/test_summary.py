@@ -60,7 +60,8 @@ def test_the_tally_names_every_finding_that_occurs() -> None:
     """In the order of the fixed list (golden)."""
     assert paragraphs(study_of_every_finding().document)[1] == (
         "The plan names 6 associations. Findings by its rule: shown: 1; shown, opposite sign: 1; not shown: 1; "
-        "withheld: 1; not estimable: 1; no finding stated: 1."
+        "withheld: 1; not estimable: 1; no finding stated: 1. By the adjustment of the family (Holm) alpha bounds the "
+        "chance of any false finding in the family."
     )
     assert paragraphs(demonstration_report("gasket-creep").document)[1] == "The plan names 1 association."
 

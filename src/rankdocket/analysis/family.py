@@ -43,7 +43,8 @@ def error_rate_of(spec: StudySpec) -> ErrorRate:
     """Return what alpha bounds in this plan."""
     if not family_of(spec):
         return "each test alone"
-    return "any false finding" if adjusts_together(spec) else adjustment_of(spec).error_rate
+    by_max_t = spec.inference.several_tests.adjust == "step-down maxT"
+    return "any false finding" if by_max_t else adjustment_of(spec).error_rate
 
 
 def factors_of(association: AssociationSpec, spec: StudySpec) -> tuple[Fraction, ...]:

@@ -23,6 +23,9 @@ MOST_DECIMALS: Final = 15
 COUNTED: Final = ("exact, no ties", "exact, conditional on the ties")
 """Methods of a test, as analysis.json files them, whose p-values were counted over all orderings in whole numbers."""
 
+COUNTED_TOGETHER: Final = "all permutations"
+"""How analysis.json says that a family was adjusted together over all permutations, none of them drawn."""
+
 DURATIONS: Final = (("second", 1, 100), ("minute", 60, 100), ("hour", 3_600, 48), ("day", 86_400, 365))
 """Units of a duration: name, seconds, and how many of it give way to the next unit."""
 
@@ -231,7 +234,9 @@ class Numbers:
 
     def _is_counted(self, key: str) -> bool:
         """Return whether the p-value at ``key`` belongs to an association that has no test whose p was not counted."""
-        method = f"{'/'.join(key.split('/')[:2])}/test/method"
+        method, together = f"{'/'.join(key.split('/')[:2])}/test/method", "inference/max_t/method"
+        if key.endswith("/finding/p_adjusted") and self.has(together):
+            return look_up(self.plain, together) == COUNTED_TOGETHER
         return not self.has(method) or look_up(self.plain, method) in COUNTED
 
     def _misleads(self, printed: Decimal, value: Decimal) -> bool:

@@ -5,8 +5,8 @@ anew and holds the worksheets against them; recomputes each coefficient in whole
 the rows where there are few enough; derives p, adjusted p and finding from the counts; holds results.csv against
 analysis.json; and looks up every printed number of document.json in analysis.json and in report.html.
 
-It does not read the spec and the data as received, does not recompute intervals, drawn permutations and the bars of a
-null, and does not open the PDF.
+It does not read the spec and the data as received, does not recompute intervals, drawn permutations, the permutations of
+a family by step-down maxT and the bars of a null, and does not open the PDF.
 """
 
 # ruff: noqa: T201 - it speaks to a person at a terminal
@@ -36,6 +36,7 @@ DIGITS = 12
 """Significant digits of every filed value that is not whole."""
 
 RHO = "Spearman rho"
+MAX_T = "step-down maxT"
 RESULT_ADDRESSES = {
     "n": "rows/complete",
     "value": "estimate/value",
@@ -56,11 +57,11 @@ def main(folder: Path) -> int:
     """Check the record copy in ``folder``; return the exit status."""
     problems: list[str] = []
     files = check_digests(folder, problems)
-    numbers, left = 0, []
+    numbers, left, together = 0, [], []
     try:
         analysis = json.loads((folder / "analysis.json").read_text(encoding="utf-8"))
         left = check_associations(folder, analysis, problems)
-        check_findings(folder, analysis, problems)
+        together = check_findings(folder, analysis, problems)
         check_results(folder, analysis, problems)
         numbers = check_printed(folder, analysis, problems)
     except (OSError, ValueError, KeyError, TypeError, ArithmeticError) as error:
@@ -74,6 +75,8 @@ def main(folder: Path) -> int:
         print(f"Everything agrees ({numbers} numbers, {files} files).")
     if left:
         print(f"Not counted anew (p is no count, or more than {MOST_ROWS_COUNTED} rows): {', '.join(left)}.")
+    if together:
+        print(f"Not made anew by {MAX_T}, only held against its own count: the adjusted p of {', '.join(together)}.")
     return 1 if problems else 0
 
 
@@ -229,8 +232,8 @@ def p_of(test: Any, count: int) -> Fraction:
     return Fraction(count + drawn, int(test["of"]) + drawn)
 
 
-def check_findings(folder: Path, analysis: Any, problems: list[str]) -> None:
-    """Adjust every p again and decide again by the plan."""
+def check_findings(folder: Path, analysis: Any, problems: list[str]) -> list[str]:
+    """Adjust every p again and decide again by the plan; return whose adjusted p rests on filed counts."""
     plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))
     family, alpha = analysis["inference"]["family"], Fraction(plan["inference"]["alpha"])
     p_values = {
@@ -239,7 +242,13 @@ def check_findings(folder: Path, analysis: Any, problems: list[str]) -> None:
         if found["test"]["state"] == "tested"
     }
     everybody = {name: p_values.get(name, Fraction(1)) for name in family}
-    adjusted = holm(everybody) if plan["inference"]["several_tests"]["adjust"] == "Holm" else everybody
+    rule = plan["inference"]["several_tests"]["adjust"]
+    hold("inference: adjust", analysis["inference"]["adjust"], rule, problems)
+    hold("inference: error_rate", analysis["inference"]["error_rate"], error_rate(rule, family), problems)
+    together = sorted(p_values.keys() & set(family)) if rule == MAX_T and len(family) > 1 else []
+    adjusted = everybody if rule == MAX_T else adjust(rule, everybody)
+    for name in together:
+        adjusted[name] = p_together(name, analysis, p_values[name], problems)
     for name, found in sorted(analysis["associations"].items()):
         finding = found["finding"]
         if "p_adjusted" in finding:
@@ -252,15 +261,63 @@ def check_findings(folder: Path, analysis: Any, problems: list[str]) -> None:
             expected = plan["associations"][name]["hypothesis"]["expected_sign"]
             word = "shown" if expected in ("either", sign) else "shown, opposite sign"
         hold(f"{name}: the finding", finding["word"], word, problems)
+    return together
 
 
-def holm(p_values: dict[str, Fraction]) -> dict[str, Fraction]:
-    """Adjust by Holm's step-down rule."""
-    adjusted, largest = {}, Fraction(0)
-    for smaller, name in enumerate(sorted(p_values, key=lambda name: p_values[name])):
-        largest = max(largest, min(Fraction(1), (len(p_values) - smaller) * p_values[name]))
-        adjusted[name] = largest
+def error_rate(rule: str, family: list[str]) -> str:
+    """Return what alpha bounds."""
+    if not family or rule == "none":
+        return "each test alone"
+    return "share of false findings" if rule.startswith("Benjamini") else "any false finding"
+
+
+def adjust(rule: str, p_values: dict[str, Fraction]) -> dict[str, Fraction]:
+    """Adjust by the rule of the plan.
+
+    Each rule multiplies the smallest, second smallest, ... p by a factor of its own.  Stepping down, an adjusted p is
+    the largest product so far; stepping up, the smallest from there on; never more than 1.
+    """
+    names = sorted(p_values, key=lambda name: p_values[name])
+    products = [factor * p_values[name] for factor, name in zip(factors(rule, len(names)), names)]  # noqa: B905
+    one = Fraction(1)
+    adjusted = {}
+    for place, name in enumerate(names):
+        so_far, from_here = products[: place + 1], products[place:]
+        if rule in ("Hochberg", "Benjamini-Hochberg", "Benjamini-Yekutieli"):
+            adjusted[name] = min(one, *from_here)
+        elif rule == "Holm":
+            adjusted[name] = min(one, max(so_far))
+        else:
+            adjusted[name] = min(one, products[place])
     return adjusted
+
+
+def factors(rule: str, size: int) -> list[Fraction]:
+    """Return the factors of a rule, that of the smallest p first."""
+    places = range(1, size + 1)
+    harmonic = sum((Fraction(1, place) for place in places), Fraction(0))
+    return {
+        "Holm": [Fraction(size - place + 1) for place in places],
+        "Hochberg": [Fraction(size - place + 1) for place in places],
+        "Bonferroni": [Fraction(size)] * size,
+        "Benjamini-Hochberg": [Fraction(size, place) for place in places],
+        "Benjamini-Yekutieli": [harmonic * Fraction(size, place) for place in places],
+        "none": [Fraction(1)] * size,
+    }[rule]
+
+
+def p_together(name: str, analysis: Any, own: Fraction, problems: list[str]) -> Fraction:
+    """Return the adjusted p of a family's permutations from its filed count, never below the association's own p."""
+    filed, family = analysis["associations"][name]["finding"]["max_t"], analysis["inference"]["max_t"]
+    hold(f"{name}: permutations of the family", filed["of"], family["of"], problems)
+    hits, own_hits, of = int(filed["count"]), int(filed["own_count"]), int(filed["of"])
+    if not own_hits <= hits <= of:
+        problems.append(f"{name}: the counts {own_hits}, {hits} and {of} of the family do not rise.")
+    drawn = 0 if family["method"] == "all permutations" else 1
+    share = Fraction(hits + drawn, of + drawn)
+    hold_p(f"{name}: share of the family", filed["share"], share, problems)
+    hold(f"{name}: below its own p", filed["below_own_p"], share < own, problems)
+    return max(share, own)
 
 
 def check_results(folder: Path, analysis: Any, problems: list[str]) -> None:

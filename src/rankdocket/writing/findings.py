@@ -6,6 +6,7 @@ from rankdocket.document.model import Number, Prose
 from rankdocket.document.prose import only, prose
 from rankdocket.stats.interval import Interval
 from rankdocket.vocabulary import ExpectedSign
+from rankdocket.writing.adjustment import bounded
 from rankdocket.writing.phrases import address, coefficient_symbol, interval_values, p_equals
 from rankdocket.writing.section import Story
 
@@ -30,11 +31,7 @@ def finding_sentence(story: Story, name: str) -> Prose:
         return only("The plan states no finding for an exploratory association.")
     expected = result.screened.spec.hypothesis.expected_sign
     deciding = deciding_p(story, name)
-    rule = (
-        "the adjusted {p} lay {side} alpha, {alpha}"
-        if finding.basis == "family" and _is_adjusted(story)
-        else "{p} lay {side} alpha, {alpha}"
-    )
+    rule = _rule(story, finding)
     alpha = story.numbers.level("inference/alpha")
     if finding.word == "not shown":
         return prose(
@@ -104,8 +101,12 @@ def _what(expected: ExpectedSign) -> str:
             return "an association"
 
 
-def _is_adjusted(story: Story) -> bool:
-    return story.analysis.spec.inference.several_tests.adjust != "none"
+def _rule(story: Story, finding: Finding) -> str:
+    """Return which p lay on which side of alpha, and what alpha bounds where it bounds more than one test."""
+    if finding.basis != "family" or story.analysis.spec.inference.several_tests.adjust == "none":
+        return "{p} lay {side} alpha, {alpha}"
+    what = bounded(story)
+    return "the adjusted {p} lay {side} alpha, {alpha}" + ("" if what is None else f", which bounds {what}")
 
 
 def _still_open(story: Story, name: str) -> Prose:

@@ -6,6 +6,7 @@ from rankdocket.analysis.results import Estimate, RankTest
 from rankdocket.document.model import Block, FieldList, Link, Paragraph, Prose, Section, Supplied
 from rankdocket.document.prose import joined, only, prose
 from rankdocket.stats.interval import Interval
+from rankdocket.writing.adjustment import adjusted_rows
 from rankdocket.writing.figures import rank_plot, raw_plot
 from rankdocket.writing.findings import finding_sentence, finding_word, size_sentence
 from rankdocket.writing.more_variables import more_variables_tables
@@ -116,8 +117,7 @@ def _numbers(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
         rows.append(("Test", prose("withheld: {reason}", reason=result.test.reason)))
     if result.smallest_attainable_p is not None:
         rows.append(("Smallest attainable p", only(numbers.attainable_p(address(name, "smallest_attainable_p")))))
-    if story.analysis.findings[name].p_adjusted is not None:
-        rows.append(("p, adjusted", only(numbers.p_value(address(name, "finding", "p_adjusted")))))
+    rows += adjusted_rows(story, name)
     rows.append(("Finding", only(finding_word(story.analysis.findings[name]))))
     return tuple(rows)
 

@@ -10,7 +10,6 @@ from rankdocket.analysis.nulls import smallest_of_rows, smallest_possible_p
 from rankdocket.analysis.results import CheckOutcome, Screened
 from rankdocket.references import Description
 from rankdocket.study.spec import StudySpec
-from rankdocket.vocabulary import CheckState
 
 KEY: Final = "attainable_p"
 
@@ -35,28 +34,49 @@ def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
         return CheckOutcome(
             KEY, "not met", limit, found, "the draws that the plan allows are too few for a p of alpha or less"
         )
-    state, reason = _beside_others(screened, spec, smallest)
-    return CheckOutcome(KEY, state, limit, found, reason)
+    return _beside_others(screened, spec, smallest)
 
 
-def _beside_others(screened: Screened, spec: StudySpec, smallest: Fraction) -> tuple[CheckState, str]:
+def _beside_others(screened: Screened, spec: StudySpec, smallest: Fraction) -> CheckOutcome:
     """Return what the adjustment leaves of a smallest p that is not above alpha."""
     alpha, family = Fraction(spec.inference.alpha), family_of(spec)
+    limit, found = level_measure(spec.inference.alpha), p_measure(smallest, spec.inference.alpha)
     factors = factors_of(screened.spec, spec)
-    if smallest_of_rows(screened, spec) * min(factors) > alpha:
-        return (
-            "not met",
-            "no result of this plan with these rows could reach alpha once adjusted for the number of tests",
-        )
     together = adjusts_together(spec) and screened.spec.name in family
     drawn = smallest_max_t_p(len(screened.rows), spec.inference.p_value.permutations) if together else Fraction(0)
+    if smallest_of_rows(screened, spec) * min(factors) > alpha:
+        return CheckOutcome(
+            KEY,
+            "not met",
+            limit,
+            found,
+            "no result of this plan with these rows could reach alpha once adjusted for the number of tests",
+        )
     if max(smallest * min(factors), drawn) > alpha:
-        return "not met", "the draws that the plan allows are too few for an adjusted p of alpha or less"
+        return CheckOutcome(
+            KEY,
+            "not met",
+            limit,
+            found,
+            "the draws that the plan allows are too few for an adjusted p of alpha or less",
+        )
     if together and smallest * len(family) > alpha:
-        return "doubtful", "alpha could be reached alone; whether beside the others of the family is open"
+        return CheckOutcome(
+            KEY,
+            "doubtful",
+            limit,
+            found,
+            "alpha could be reached alone; whether beside the others of the family is open",
+        )
     if smallest * max(factors) > alpha:
-        return "doubtful", "alpha could be reached, but not if every other test of the family failed"
-    return "met", "alpha could be reached"
+        return CheckOutcome(
+            KEY,
+            "doubtful",
+            limit,
+            found,
+            "alpha could be reached, but not if every other test of the family failed",
+        )
+    return CheckOutcome(KEY, "met", limit, found, "alpha could be reached")
 
 
 CHECK = Check(

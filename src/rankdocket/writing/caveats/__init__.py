@@ -4,7 +4,7 @@ from typing import Final
 
 from rankdocket.document.model import CaveatBlock
 from rankdocket.writing.caveat import CaveatRule
-from rankdocket.writing.caveats import more_variables, requirements, results, study
+from rankdocket.writing.caveats import adjustment, more_variables, requirements, results, study
 from rankdocket.writing.section import NumberedCaveat, Story
 
 CAVEATS: Final[tuple[CaveatRule, ...]] = (
@@ -22,6 +22,7 @@ CAVEATS: Final[tuple[CaveatRule, ...]] = (
     more_variables.GROUPS,
     more_variables.GIVEN_COVARIATES,
     study.NO_INTERVAL,
+    adjustment.CONDITION_OF_ADJUSTMENT,
     study.INTERVAL_BASIS,
     study.ASSOCIATION_ONLY,
     study.INDEPENDENCE_NULL,

@@ -124,7 +124,17 @@ def _undecided(story: Story) -> tuple[FoundCaveat, ...]:
 
 
 def _why_undecided(story: Story, name: str) -> Prose:
-    result = story.analysis.results[name]
+    result, member = story.analysis.results[name], story.analysis.findings[name].max_t
+    if member is not None and member.ends[0] <= Fraction(story.analysis.spec.inference.alpha) < member.ends[1]:
+        at = address(name, "finding", "max_t")
+        return prose(
+            "{name}: undecided by the draws of the family. With the adjusted {p} at another place in its interval, {low} to "
+            "{high}, the finding would be another one. A plan with more permutations may settle the side.",
+            name=pointer(name),
+            p=P,
+            low=story.numbers.attainable_p(f"{at}/p_low"),
+            high=story.numbers.attainable_p(f"{at}/p_high"),
+        )
     if not isinstance(result.test, RankTest) or result.test.p_interval is None:
         return prose(
             "{name}: undecided by the draws of others in its family. Its own {p} was counted; with theirs at the other "

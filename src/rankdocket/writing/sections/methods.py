@@ -4,9 +4,8 @@ from itertools import product
 from typing import Final
 
 from rankdocket.analysis.checks import CHECKS
-from rankdocket.analysis.family import adjustment_of
 from rankdocket.analysis.results import Estimate, RankTest
-from rankdocket.document.model import Block, Emphasis, Link, Number, Paragraph, Prose, Section, Supplied
+from rankdocket.document.model import Block, Link, Number, Paragraph, Prose, Section
 from rankdocket.document.prose import joined, only, prose, text_of
 from rankdocket.references import Description
 from rankdocket.stats.critical import CRITICAL_VALUES
@@ -17,7 +16,8 @@ from rankdocket.stats.nulls.tau_exact import TAU_NULL_DESCRIPTIONS
 from rankdocket.stats.rho import RHO
 from rankdocket.stats.tau import TAU_B
 from rankdocket.vocabulary import COEFFICIENTS, CoefficientName
-from rankdocket.writing.citations import cite
+from rankdocket.writing.adjustment import adjustment_text
+from rankdocket.writing.described import described
 from rankdocket.writing.more_variables_methods import more_variables_descriptions
 from rankdocket.writing.phrases import address, full_stop, pointers
 from rankdocket.writing.section import SectionRule, Story
@@ -66,17 +66,6 @@ def method_paragraphs(story: Story) -> tuple[Prose, ...]:
         )
         if text_of(part)
     )
-
-
-def described(description: Description, **slots: Number | Prose | Emphasis | Supplied | str) -> Prose:
-    """Return what a rule says of itself, its works in brackets."""
-    sentence = prose(description.sentence, **slots)
-    if not description.cites:
-        return sentence
-    body, last = sentence.pieces[:-1], sentence.pieces[-1]
-    if not isinstance(last, str) or not last.endswith("."):
-        return joined((sentence, cite(*description.cites)))
-    return joined((Prose((*body, last[:-1])), joined((cite(*description.cites), only(".")), "")))
 
 
 def _ranking(story: Story) -> Prose:
@@ -211,7 +200,6 @@ def _any_test(story: Story) -> bool:
 
 def _family(story: Story) -> Prose:
     several = story.analysis.spec.inference.several_tests
-    rule = adjustment_of(story.analysis.spec)
     parts: list[Prose] = []
     if story.analysis.family:
         parts.append(
@@ -230,11 +218,7 @@ def _family(story: Story) -> Prose:
         parts.append(prose("Reason given: {reason}", reason=full_stop(several.reason)))
     if not _any_test(story) or not story.analysis.family:
         return joined(tuple(parts))
-    if rule.key == "none":
-        parts.append(described(rule.describe))
-    elif len(story.analysis.family) > 1:
-        parts.append(described(rule.describe, family=story.numbers.whole("inference/family_size")))
-    return joined(tuple(parts))
+    return joined((*parts, adjustment_text(story)))
 
 
 def _intervals(story: Story) -> Prose:

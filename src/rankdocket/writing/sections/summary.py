@@ -6,6 +6,7 @@ from rankdocket.analysis.results import Estimate
 from rankdocket.document.model import Block, FieldList, Items, Link, Paragraph, Prose, Section, Supplied
 from rankdocket.document.prose import joined, listed, only, prose
 from rankdocket.vocabulary import FINDINGS
+from rankdocket.writing.adjustment import bound_sentence
 from rankdocket.writing.findings import finding_sentence, finding_word
 from rankdocket.writing.phrases import (
     N,
@@ -15,6 +16,7 @@ from rankdocket.writing.phrases import (
     estimate_with_interval,
     full_stop,
     pointer,
+    sentences,
     state_word,
 )
 from rankdocket.writing.section import NumberedCaveat, Story
@@ -96,8 +98,13 @@ def _tally(story: Story) -> Prose:
     )
     if None in findings:
         counts += (prose("no finding stated: {count}", count=story.numbers.whole("tally/findings/no finding")),)
-    return prose(
-        "The plan names {total} associations. Findings by its rule: {counts}.", total=total, counts=joined(counts, "; ")
+    return sentences(
+        prose(
+            "The plan names {total} associations. Findings by its rule: {counts}.",
+            total=total,
+            counts=joined(counts, "; "),
+        ),
+        bound_sentence(story),
     )
 
 
