@@ -122,7 +122,7 @@ SENTENCES = {
         of_three(),
         (
             "By the rule of the plan the expected positive association was not shown: the adjusted p = 0.052 lay above "
-            "alpha, 0.05, which bounds the chance of any false finding in the family. The interval of this association alone holds values of rho from 0.12 to 0.95; it is not adjusted "
+            "alpha, 0.05, which bounds the chance of any false finding. The interval of this association alone holds values of rho from 0.12 to 0.95; it is not adjusted "
             "for the number of tests, and the test decides."
         ),
     ),
@@ -244,7 +244,7 @@ def test_the_answer_of_a_spread_is_one_run_of_sentences() -> None:
     assert plainly(spread(study_of_every_finding(), "A3")[1]) == (
         "In these rows the ranks of value of u and value of mixed leaned the same way: rho 0.51 (95% interval −0.13 to "
         "0.85). By the rule of the plan an association was not shown: the adjusted p = 0.281 lay above alpha, 0.05, which "
-        "bounds the chance of any false finding in the family. That does not show that there is none: the interval still holds values of rho from −0.13 to 0.85. The interval holds "
+        "bounds the chance of any false finding. That does not show that there is none: the interval still holds values of rho from −0.13 to 0.85. The interval holds "
         "values of rho both smaller and larger in size than the smallest size of interest, 0.30."
     )
 

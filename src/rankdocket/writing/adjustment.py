@@ -15,28 +15,44 @@ from rankdocket.writing.described import described
 from rankdocket.writing.phrases import address, label, level, pointers
 from rankdocket.writing.section import Story
 
-_BOUNDS: Final[Mapping[ErrorRate, str | None]] = MappingProxyType(
+_IN_FULL: Final[Mapping[ErrorRate, str]] = MappingProxyType(
     {
         "any false finding": "the chance of any false finding in the family",
-        "share of false findings": "the expected share of false ones among the findings of the family (the false "
-        "discovery rate)",
-        "each test alone": None,
+        "share of false findings": "the false discovery rate, the expected share of false ones among the findings of the "
+        "family",
     }
+)
+_IN_SHORT: Final[Mapping[ErrorRate, str]] = MappingProxyType(
+    {"any false finding": "the chance of any false finding", "share of false findings": "the false discovery rate"}
 )
 
 
 def bounded(story: Story) -> str | None:
     """Return what alpha bounds in a family of several, as a sentence part; ``None`` where each test stands alone."""
-    return _BOUNDS[error_rate_of(story.analysis.spec)] if len(story.analysis.family) > 1 else None
+    return _IN_SHORT.get(error_rate_of(story.analysis.spec)) if len(story.analysis.family) > 1 else None
 
 
 def bound_sentence(story: Story) -> Prose:
     """Return what alpha bounds, and by which rule; empty where each test stands alone."""
-    what = bounded(story)
-    if what is None:
+    if bounded(story) is None:
         return only("")
-    rule = story.analysis.spec.inference.several_tests.adjust
-    return prose("By the adjustment of the family ({rule}) alpha bounds {what}.", rule=rule, what=what)
+    return prose(
+        "By the adjustment of the family ({rule}) alpha bounds {what}.",
+        rule=story.analysis.spec.inference.several_tests.adjust,
+        what=_IN_FULL[error_rate_of(story.analysis.spec)],
+    )
+
+
+def bound_note(story: Story) -> Prose:
+    """Return the same for the foot of a table, where step-down maxT names its condition at once."""
+    family = story.analysis.max_t
+    if family is None:
+        return bound_sentence(story)
+    return prose(
+        "By the adjustment of the family (step-down maxT) alpha bounds the chance of any false finding in it, if "
+        "{variable} is independent of all the variables of true nulls taken together.",
+        variable=label(story.analysis.spec.variables[family.variable]),
+    )
 
 
 def adjustment_text(story: Story) -> Prose:
@@ -93,11 +109,11 @@ def adjusted_rows(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
     if member is None:
         return (("p, adjusted", only(p)),)
     at = address(name, "finding", "max_t")
-    template = "{p}: in {count} of {of} permutations of the family the largest coefficient was as extreme"
+    template = "{p}: in {count} of {of} permutations of the family the largest coefficient was at least as extreme"
     if member.share < finding.p_adjusted:
         template = (
             "{p}, its own, as the permutations of the family gave less by their error: in {count} of {of} the largest "
-            "coefficient was as extreme"
+            "coefficient was at least as extreme"
         )
     adjusted = prose(template, p=p, count=numbers.whole(f"{at}/count"), of=numbers.whole(f"{at}/of"))
     if not numbers.has(f"{at}/p_low"):

@@ -84,7 +84,8 @@ CHECK = Check(
     label="Smallest attainable p",
     demand=Description(
         "The smallest p that the complete rows and their ties allow was computed from the two most extreme pairings, "
-        "and, where permutations are drawn, raised to the smallest that the draws can show; it was held against alpha.",
+        "and, where permutations are drawn, raised to the smallest that the draws can show; it was held against alpha, and against what "
+        "the adjustment may leave of alpha.",
         ("kendall1939",),
     ),
     joint=False,

@@ -66,4 +66,4 @@ def _condition(story: Story) -> tuple[FoundCaveat, ...]:
     return (FoundCaveat(story.analysis.family, prose(template, cite=cite(*works))),)
 
 
-CONDITION_OF_ADJUSTMENT = CaveatRule("condition_of_adjustment", 33, _condition)
+CONDITION_OF_ADJUSTMENT = CaveatRule("condition_of_adjustment", 38, _condition)

@@ -4,7 +4,7 @@ from rankdocket.analysis.results import AssociationAnalysis, Estimate, RankTest
 from rankdocket.document.model import Block, Column, FieldList, Link, Prose, Section, TableBlock
 from rankdocket.document.prose import joined, only, prose
 from rankdocket.stats.interval import Interval
-from rankdocket.writing.adjustment import bound_sentence, bounded
+from rankdocket.writing.adjustment import bound_note, bounded
 from rankdocket.writing.figures import interval_strip
 from rankdocket.writing.findings import finding_word, smallest_of_interest
 from rankdocket.writing.phrases import (
@@ -118,7 +118,7 @@ def _master_notes(story: Story) -> tuple[Prose, ...]:
         )
     ]
     if bounded(story) is not None:
-        notes.append(bound_sentence(story))
+        notes.append(bound_note(story))
     if any(finding.word is None for finding in story.analysis.findings.values()):
         notes.append(
             only("No finding is stated for an association outside the family; its p-value is not adjusted.")
