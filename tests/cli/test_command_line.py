@@ -104,7 +104,7 @@ def test_the_program_alone_shows_its_commands_in_office_order(here: Callable[...
     bare, help_page = here(cwd=tmp_path), here("--help", cwd=tmp_path)
     assert bare == help_page
     listed = re.findall(r"^  ([a-z]+) ", bare.out.split("Commands")[1], re.MULTILINE)
-    assert listed == [each.name for each in COMMANDS] == ["screen", "issue", "verify", "schema"]
+    assert listed == [each.name for each in COMMANDS] == ["size", "screen", "issue", "verify", "schema"]
 
 
 def test_every_option_and_example_of_help_works(here: Callable[..., Ran], tmp_path: Path) -> None:

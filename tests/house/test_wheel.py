@@ -34,7 +34,12 @@ def test_the_wheel_holds_program_looks_and_cases(wheel: Path) -> None:
         for path in TEMPLATES.rglob("*")
         if path.is_file()
     }
-    data = {"workflow/self_test.json", "stats/nulls/spearman_counts.npz", "stats/nulls/cumulant_polys.json"}
+    data = {
+        "workflow/self_test.json",
+        "stats/nulls/spearman_counts.npz",
+        "stats/nulls/cumulant_polys.json",
+        "stats/guarded_widths.csv",
+    }
     assert modules | looks | {"rankdocket/py.typed"} | {f"rankdocket/{name}" for name in data} <= names
     tops = {name.split("/")[0] for name in names}
     assert {top for top in tops if not top.endswith(".dist-info")} == {"rankdocket"}

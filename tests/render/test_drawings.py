@@ -46,7 +46,7 @@ def plot_of(kind: str, points: list[dict[str, object]], **more: object) -> Figur
 
 def test_the_catalogue_has_each_kind_once() -> None:
     kinds = [drawing.kind for drawing in DRAWINGS]
-    assert kinds == ["raw-plot", "rank-plot", "interval-strip", "null-picture"]
+    assert kinds == ["raw-plot", "rank-plot", "interval-strip", "null-picture", "rows-curve"]
 
 
 @pytest.mark.parametrize("figure", SAMPLES, ids=lambda figure: figure.key)

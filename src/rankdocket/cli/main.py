@@ -12,12 +12,19 @@ from rankdocket.cli.issue import issue_command
 from rankdocket.cli.output import EXIT_USAGE, close_quietly, fail_interrupted, fail_usage
 from rankdocket.cli.schema import schema_command
 from rankdocket.cli.screen import screen_command
+from rankdocket.cli.size import size_command
 from rankdocket.cli.verify import verify_command
 
 EXIT_INTERRUPTED: Final = 130
 """Also when the system asks the program to end: either way nothing was sealed, and README knows one status for it."""
 
-COMMANDS: Final[tuple[OfficeCommand, ...]] = (screen_command, issue_command, verify_command, schema_command)
+COMMANDS: Final[tuple[OfficeCommand, ...]] = (
+    size_command,
+    screen_command,
+    issue_command,
+    verify_command,
+    schema_command,
+)
 
 
 @click.group(

@@ -2,6 +2,7 @@
 
 from rankdocket.errors import InputError, Place
 from rankdocket.study.messages import Message, fault
+from rankdocket.study.wording import shown
 from rankdocket.workflow.moment import now
 
 
@@ -36,3 +37,25 @@ def require_usable_time() -> None:
         If SOURCE_DATE_EPOCH is set and is not a whole number of seconds.
     """
     now()
+
+
+def require_page_name(name: str | None) -> None:
+    """Refuse a name for a page that says neither HTML nor PDF.
+
+    Raises
+    ------
+    InputError
+        If the name ends otherwise.
+    """
+    if name is not None and not name.endswith((".html", ".pdf")):
+        raise InputError(
+            (
+                fault(
+                    Place("--page"),
+                    "",
+                    Message.NAME,
+                    f"{shown(name)} ends neither in .html nor in .pdf, so that it is not clear what to write.",
+                    "Write: --page rows-needed.pdf.",
+                ),
+            )
+        )

@@ -279,3 +279,27 @@ class Document:
     end_mark: str
     references: Mapping[str, str] = field(default_factory=dict)
     """Key → full text of every work cited."""
+
+
+@dataclass(frozen=True, slots=True)
+class Leaf:
+    """One page that stands alone: it belongs to no edition and names no date and nobody.
+
+    Attributes
+    ----------
+    title
+        The heading of the page.
+    foot
+        What stands at its foot.
+    """
+
+    language: str
+    title: str
+    foot: str
+    sections: tuple[Section, ...]
+    references: Mapping[str, str] = field(default_factory=dict)
+    """Key → full text of every work cited."""
+
+
+Paper: TypeAlias = Document | Leaf
+"""Whatever is set as a page."""

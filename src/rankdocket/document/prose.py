@@ -20,6 +20,7 @@ from rankdocket.document.model import (
     FigureBlock,
     Items,
     Number,
+    Paper,
     Paragraph,
     Piece,
     Prose,
@@ -149,20 +150,22 @@ def generated_text(content: Prose) -> str:
     )
 
 
-def lint_document(document: Document) -> tuple[Hit, ...]:
+def lint_document(document: Paper) -> tuple[Hit, ...]:
     """Return the forbidden phrases in the program’s own sentences; a report with any must not be issued."""
     return tuple(hit for content in all_prose(document) for hit in lint(generated_text(content)))
 
 
-def all_prose(document: Document) -> Iterator[Prose]:
+def all_prose(document: Paper) -> Iterator[Prose]:
     """Yield every run of text of the document in print order."""
-    for block in document.control:
-        yield from _block_prose(block)
-    for section in (document.summary, *document.sections):
+    if isinstance(document, Document):
+        for block in document.control:
+            yield from _block_prose(block)
+        yield from _section_prose(document.summary)
+    for section in document.sections:
         yield from _section_prose(section)
 
 
-def numbers_of(document: Document) -> Iterator[Number]:
+def numbers_of(document: Paper) -> Iterator[Number]:
     """Yield every printed number of the document in print order, repeated ones as often as they stand."""
     for content in all_prose(document):
         for piece in content.pieces:

@@ -12,6 +12,7 @@ from rankdocket.document.model import (
     Document,
     FieldList,
     FigureBlock,
+    Paper,
     Section,
     TableBlock,
 )
@@ -70,7 +71,7 @@ def identifier(kind: str, key: str) -> str:
     return f"{kind}-{_NOT_IN_ID.sub('_', key)}"
 
 
-def find_anchors(document: Document) -> Anchors:
+def find_anchors(document: Paper) -> Anchors:
     """Return the ids of a document's parts.
 
     Raises
@@ -93,16 +94,18 @@ def find_anchors(document: Document) -> Anchors:
     return Anchors(MappingProxyType(targets), frozenset(document.references))
 
 
-def all_sections(document: Document) -> Iterator[Section]:
+def all_sections(document: Paper) -> Iterator[Section]:
     """Yield the summary and every section, each before its sub-sections."""
-    yield from _below(document.summary)
+    if isinstance(document, Document):
+        yield from _below(document.summary)
     for section in document.sections:
         yield from _below(section)
 
 
-def all_blocks(document: Document) -> Iterator[Block]:
+def all_blocks(document: Paper) -> Iterator[Block]:
     """Yield every block in print order."""
-    yield from document.control
+    if isinstance(document, Document):
+        yield from document.control
     for section in all_sections(document):
         yield from section.blocks
 
@@ -113,7 +116,7 @@ def _below(section: Section) -> Iterator[Section]:
         yield from _below(part)
 
 
-def _parts(document: Document) -> Iterator[tuple[str, str, int | None]]:
+def _parts(document: Paper) -> Iterator[tuple[str, str, int | None]]:
     for section in all_sections(document):
         yield "section", section.key, None
     for block in all_blocks(document):

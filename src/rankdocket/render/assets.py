@@ -8,6 +8,7 @@ from rankdocket.errors import RenderError
 
 TEMPLATES_NAME: Final = "report_templates"
 FRAME_NAME: Final = "report.html.j2"
+LEAF_NAME: Final = "leaf.html.j2"
 
 
 def templates_folder() -> Path:

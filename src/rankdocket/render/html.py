@@ -6,11 +6,11 @@ from typing import Final, Literal, TypeAlias
 from jinja2 import Environment, FileSystemLoader, StrictUndefined
 from markupsafe import Markup
 
-from rankdocket.document.model import Document, Prose, Section
+from rankdocket.document.model import Document, Leaf, Paper, Prose, Section
 from rankdocket.errors import RenderError
 from rankdocket.render import words
 from rankdocket.render.anchors import REFERENCES_KEY, find_anchors, identifier
-from rankdocket.render.assets import FRAME_NAME, templates_folder
+from rankdocket.render.assets import FRAME_NAME, LEAF_NAME, templates_folder
 from rankdocket.render.blocks import Setter
 from rankdocket.render.fonts import FACES
 from rankdocket.render.markup import trusted
@@ -51,7 +51,7 @@ def page(document: Document, figures: Mapping[str, str], target: Target) -> str:
         language=document.language,
         furniture=furniture,
         title=_file_title(document),
-        css=_css(document, target, templates),
+        css=_css(target, templates, words.running_head(furniture), words.running_foot(furniture)),
         mark=words.status_mark(furniture),
         control=setter.blocks(document.control),
         summary=_section(document.summary, _FIRST_LEVEL, setter, document, opens="summary"),
@@ -63,6 +63,26 @@ def page(document: Document, figures: Mapping[str, str], target: Target) -> str:
         contents_word=words.CONTENTS,
         foot=words.running_foot(furniture),
         end_mark=document.end_mark,
+    )
+
+
+def leaf_page(leaf: Leaf, figures: Mapping[str, str], target: Target) -> str:
+    """Return a page that stands alone as one self-contained HTML page; arguments as of :func:`page`.
+
+    Raises
+    ------
+    RenderError
+        As :func:`page` does.
+    """
+    templates = environment()
+    setter = Setter(templates, figures, find_anchors(leaf))
+    return templates.get_template(LEAF_NAME).render(
+        language=leaf.language,
+        title=leaf.title,
+        css=_css(target, templates, "", leaf.foot),
+        target=target,
+        foot=leaf.foot,
+        sections=[_section(section, _FIRST_LEVEL, setter, leaf) for section in leaf.sections],
     )
 
 
@@ -91,12 +111,11 @@ def css_string(text: str) -> Markup:
     return trusted("".join(safe))
 
 
-def _css(document: Document, target: Target, templates: Environment) -> Markup:
-    furniture = document.furniture
+def _css(target: Target, templates: Environment, head: str, foot: str) -> Markup:
     rendered = templates.get_template(f"css/{target}.css.j2").render(
         faces=FACES,
-        head=words.running_head(furniture),
-        foot=words.running_foot(furniture),
+        head=head,
+        foot=foot,
         page_word=words.PAGE,
         of_word=words.PAGE_OF,
         pages_word=words.PAGES,
@@ -117,7 +136,7 @@ def _with_references(document: Document) -> tuple[Section, ...]:
     return (*document.sections, works)
 
 
-def _section(section: Section, level: int, setter: Setter, document: Document, *, opens: str | None = None) -> Markup:
+def _section(section: Section, level: int, setter: Setter, document: Paper, *, opens: str | None = None) -> Markup:
     if level > _DEEPEST_LEVEL:
         raise RenderError(f"The section {section.key!r} lies deeper than headings go.")
     return setter.section(

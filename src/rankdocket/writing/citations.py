@@ -2,7 +2,7 @@
 
 from collections.abc import Mapping
 
-from rankdocket.document.model import Citation, Document, Prose
+from rankdocket.document.model import Citation, Paper, Prose
 from rankdocket.document.prose import all_prose, joined, only
 from rankdocket.references import REFERENCES
 
@@ -19,7 +19,7 @@ def cite(*keys: str) -> Prose:
     return joined((only("("), joined(works, "; "), only(")")), "")
 
 
-def cited_works(document: Document) -> Mapping[str, str]:
+def cited_works(document: Paper) -> Mapping[str, str]:
     """Return key → full text of every work that stands in the document, in alphabetical order of the list."""
     keys = {piece.key for content in all_prose(document) for piece in content.pieces if isinstance(piece, Citation)}
     return {key: REFERENCES[key].full for key in sorted(keys, key=lambda key: REFERENCES[key].full)}
