@@ -138,8 +138,10 @@ def test_what_was_not_simulated_has_a_reason() -> None:
     near = _shown(replace(SHOW, rho=Decimal("0.97")))
     assert isinstance(near.width, NoAnswer)
     assert size_to_plain(near, "0")["interval_width"] == {"reason": near.width.reason}
-    last = _measured(replace(MEASURE, rho=Decimal("0.90"))).lines[-1]
-    assert [isinstance(each, NoAnswer) for each in last.needed] == [False] * 5 or last.rho <= Decimal("0.95")
+    *_, within, beyond = _measured(replace(MEASURE, rho=Decimal("0.86"))).lines
+    assert (str(within.rho), str(beyond.rho)) == ("0.86", "0.96")
+    assert all(isinstance(each, int) for each in within.needed)
+    assert all(isinstance(each, NoAnswer) for each in beyond.needed)
     assert isinstance(size(replace(MEASURE, rho=Decimal("0.97"))), NoAnswer)
 
 
@@ -161,3 +163,21 @@ def test_an_answer_is_filed_in_the_house_manner(question: ShowQuestion | Measure
     again = size(question)
     assert not isinstance(again, NoAnswer)
     assert canonical_bytes(plain) == canonical_bytes(size_to_plain(again, "1.2.3"))
+
+
+def test_no_plan_has_fewer_rows_than_an_interval_needs() -> None:
+    """At an alpha of one half two rows could be in perfect order; four are planned, and their power is told."""
+    found = _shown(
+        replace(SHOW, rho=Decimal("0.99"), alpha=Decimal("0.50"), sidedness="one-sided", power=Decimal("0.50"))
+    )
+    assert found.needed.fewest_attainable == 2
+    assert found.rows == 4 == found.lines[-1].needed[0]
+    assert isinstance(found.power, float)
+    assert [rows for rows, _ in found.curves[0].points][:2] == [4, 5]
+
+
+def test_neighbours_of_the_smallest_target_have_their_rows() -> None:
+    """Below 0.001 nothing can be asked for; its neighbours in the table are planned all the same."""
+    lines = _shown(replace(SHOW, rho=Decimal("0.001"))).lines
+    assert [str(line.rho) for line in lines] == ["0.0008", "0.0009", "0.0010", "0.0011", "0.0012"]
+    assert all(isinstance(each, int) for line in lines for each in line.needed)

@@ -1,13 +1,14 @@
 """``rankdocket size``: its answer, its refusals, and the page it writes."""
 
 import json
+import shlex
 from collections.abc import Callable
 from pathlib import Path
 
 import pytest
 from pypdf import PdfReader
 
-from workflow.office import Ran
+from workflow.office import ROOT, Ran
 
 Here = Callable[..., Ran]
 
@@ -149,3 +150,11 @@ def test_a_folder_that_is_not_there_is_told(here: Here, tmp_path: Path) -> None:
     ran = here(*SHOW, "--page", "nowhere/rows.html", cwd=tmp_path)
     assert (ran.status, ran.out) == (4, "")
     assert ran.err.startswith("The system refused nowhere/rows.html: No such file or directory.")
+
+
+def test_readme_shows_what_the_program_prints(here: Here, tmp_path: Path) -> None:
+    """The command in README and its output are the real ones."""
+    readme = (ROOT / "README.md").read_text(encoding="utf-8")
+    line, _, printed = readme.partition("\n$ rankdocket size ")[2].partition("\n```\n")[0].partition("\n")
+    assert line
+    assert here("size", *shlex.split(line), cwd=tmp_path).out == printed + "\n"

@@ -1,5 +1,6 @@
 """The rows curve: one heavy line in the ink, others in black, the plan's mark and its guides."""
 
+import re
 from typing import Any
 from xml.etree import ElementTree as ET
 
@@ -84,3 +85,30 @@ def test_data_it_does_not_understand_are_refused(wrong: dict[str, Plain]) -> Non
     """No curve, a curve of one point, a mark that is none and a limit that is no number draw nothing."""
     with pytest.raises(RenderError):
         _tree(_data(**wrong))
+
+
+def test_labels_of_crowded_curves_do_not_touch() -> None:
+    """Three curves close together: the steepest bears its label on the left, the others one above another."""
+    close = [
+        {"label": label, "stroke": "full", "points": _points(*((x, str(min(1, x * slope))) for x in range(0, 101, 5)))}
+        for label, slope in (("0.0010", 0.0080), ("0.0009", 0.0078), ("0.0011", 0.0082))
+    ]
+    texts = {element.text: element for element in _tree(_data(lines=close)).iter(f"{SVG}text")}
+    own, below, above = (
+        tuple(map(float, re.findall(r"-?[\d.]+", texts[label].attrib["transform"])[-2:]))
+        if "transform" in texts[label].attrib
+        else (float(texts[label].attrib["x"]), float(texts[label].attrib["y"]))
+        for label in ("0.0010", "0.0009", "0.0011")
+    )
+    assert texts["0.0011"].attrib["text-anchor"] == "end"
+    assert above[0] < own[0]
+    assert abs(own[1] - below[1]) > 7
+
+
+def test_few_rows_are_marked_by_whole_numbers() -> None:
+    """An axis from five to nine rows has no mark between two numbers of rows."""
+    line = {"label": "", "stroke": "full", "points": _points((5, "0.8"), (9, "1"))}
+    texts = {
+        element.text for element in _tree(_data(lines=[line], mark={"x": "6", "y": "0.9", "label": "6 rows"})).iter()
+    }
+    assert {"5", "6", "7", "8", "9"} <= texts

@@ -21,8 +21,8 @@ from rankdocket.stats.sample_size import (
 from rankdocket.stats.tied_target import rho_under_ties
 from rankdocket.vocabulary import Sidedness
 
-LEAST_PLANNED: Final = 0.001
-"""A rho smaller than this in size would need millions of rows; no plan is made for it."""
+LEAST_PLANNED: Final = 0.0001
+"""A rho smaller than this in size would need a thousand million rows; no plan is made for it."""
 
 POWERS: Final = (Decimal("0.80"), Decimal("0.90"), Decimal("0.95"))
 """Powers that the table shows beside the one asked for."""
@@ -151,7 +151,7 @@ class ShowAnswer:
     @property
     def rows(self) -> int:
         """Complete rows to plan for."""
-        return self.needed.rows
+        return _planned_rows(self.needed)
 
 
 @dataclass(frozen=True, slots=True)
@@ -218,7 +218,8 @@ def _show(question: ShowQuestion, left: float) -> ShowAnswer:
     for rho in targets:
         here = rows_of.left_of(rho)
         lines.append(Line(rho, here, tuple(_rows_to_show(here, power, planned) for power in powers)))
-    last = max(sample_size(left, NEARLY_ALL, planned).rows, needed.rows + 1)
+    rows = _planned_rows(needed)
+    last = max(sample_size(left, NEARLY_ALL, planned).rows, rows + 1)
     first = max(FEWEST_ROWS, planned.fewest_rows)
     beside = targets.index(question.rho)
     shown = (question.rho, *targets[max(0, beside - 1) : beside], *targets[beside + 1 : beside + 2])
@@ -226,9 +227,9 @@ def _show(question: ShowQuestion, left: float) -> ShowAnswer:
         question,
         left,
         needed,
-        power_at(needed.rows, left, planned),
-        smallest_rho(needed.rows, float(question.power), planned),
-        _width(needed.rows, left, rows_of.level),
+        power_at(rows, left, planned),
+        smallest_rho(rows, float(question.power), planned),
+        _width(rows, left, rows_of.level),
         powers,
         tuple(lines),
         tuple(_power_curve(rho, rows_of.left_of(rho), planned, _places(first, last)) for rho in shown),
@@ -263,7 +264,12 @@ def _measure(question: MeasureQuestion, left: float) -> MeasureAnswer:
 def _rows_to_show(left: float, power: Decimal, planned: PlannedTest) -> int | NoAnswer:
     if abs(left) < LEAST_PLANNED:
         return NoAnswer("the expected ties leave next to nothing of this rho")
-    return sample_size(left, float(power), planned).rows
+    return _planned_rows(sample_size(left, float(power), planned))
+
+
+def _planned_rows(needed: SampleSize) -> int:
+    """Return the rows of the formula, but no fewer than have an interval."""
+    return max(needed.rows, FEWEST_ROWS)
 
 
 def _rows_to_measure(left: float, width: Decimal, level: Decimal) -> int | NoAnswer:

@@ -34,8 +34,8 @@ _MARK_RADIUS: Final = 3.3
 _MARK_WEIGHT: Final = 1.0
 _GAP: Final = 5.0
 _AIR: Final = Decimal("1.04")
-_LABEL_HEIGHT: Final = Decimal("0.4")
-"""Share of the upright scale at which a curve bears its label."""
+_LABEL_HEIGHTS: Final = (Decimal("0.4"), Decimal("0.25"))
+"""Shares of the upright scale at which curves bear their labels, the own one and the first beside it: so none touch."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -88,25 +88,29 @@ def _write_mark(sheet: Sheet, panel: Panel, at: Point, label: str) -> None:
 
 
 def _write_labels(sheet: Sheet, panel: Panel, lines: Sequence[_Line]) -> None:
-    """Write rising curves' labels where each crosses one height: the first to cross bears it on its left."""
-    height = panel.y.low + (panel.y.high - panel.y.low) * _LABEL_HEIGHT
-    crossings = sorted(
-        (panel.at(*next((point for point in line.points if point[1] >= height), line.points[-1])), line.label)
-        for line in lines
-        if line.label
-    )
-    for i, ((x, y), label) in enumerate(crossings):
-        room = widest([label], SMALL_SIZE)
-        if i == 0 and x - _GAP - room > panel.left:
-            sheet.text((x - _GAP, y), label, Lettering("right", size=SMALL_SIZE))
-        else:
-            sheet.text((min(x + _GAP, panel.right - room), y - SMALL_SIZE), label, Lettering(size=SMALL_SIZE))
+    """Write the labels of rising curves right of where each crosses its height; the steepest has room on its left."""
+    crossings = [_crossing(line, panel, _LABEL_HEIGHTS[0]) for line in lines]
+    steepest = lines[min(range(len(lines)), key=lambda i: (crossings[i][0], -crossings[i][1]))]
+    for i, line in enumerate(lines):
+        x, y = _crossing(line, panel, _LABEL_HEIGHTS[i % len(_LABEL_HEIGHTS)])
+        room = widest([line.label], SMALL_SIZE)
+        if line.label and line is steepest and x - _GAP - room > panel.left:
+            sheet.text((x - _GAP, y), line.label, Lettering("right", size=SMALL_SIZE))
+        elif line.label:
+            sheet.text((min(x + _GAP, panel.right - room), y - SMALL_SIZE), line.label, Lettering(size=SMALL_SIZE))
+
+
+def _crossing(line: _Line, panel: Panel, share: Decimal) -> Point:
+    """Return the first point of a curve at a share of the upright scale or above, its last where none is."""
+    height = panel.y.low + (panel.y.high - panel.y.low) * share
+    return panel.at(*next((point for point in line.points if point[1] >= height), line.points[-1]))
 
 
 def _scales(lines: list[_Line], most: Decimal) -> tuple[Scale, Scale]:
     xs = [x for line in lines for x, _ in line.points]
     top = max(min(most, _AIR * max(y for line in lines for _, y in line.points)), Decimal(0))
-    return even_scale(min(xs), max(xs), _X_TICKS), even_scale(Decimal(0), top, _Y_TICKS)
+    wanted = min(_X_TICKS, max(1, int(max(xs) - min(xs))))
+    return even_scale(min(xs), max(xs), wanted), even_scale(Decimal(0), top, _Y_TICKS)
 
 
 def _line(part: Mapping[str, Plain]) -> _Line:
