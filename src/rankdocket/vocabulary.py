@@ -9,6 +9,7 @@ from typing import Final, Literal, TypeAlias, get_args
 Scale: TypeAlias = Literal["measured", "count", "ordered", "already ranked", "two-valued"]
 Role: TypeAlias = Literal["primary", "secondary", "exploratory"]
 ExpectedSign: TypeAlias = Literal["positive", "negative", "either"]
+Claim: TypeAlias = Literal["any", "above", "within"]
 CoefficientName: TypeAlias = Literal["Spearman rho", "Kendall tau-b"]
 Sidedness: TypeAlias = Literal["two-sided", "one-sided"]
 Adjustment: TypeAlias = Literal[
@@ -24,11 +25,14 @@ NumberStyle: TypeAlias = Literal["leading zero", "no leading zero"]
 CheckState: TypeAlias = Literal["met", "doubtful", "not met", "not examined"]
 FindingWord: TypeAlias = Literal["shown", "shown, opposite sign", "not shown", "withheld", "not estimable"]
 Status: TypeAlias = Literal["draft", "for review", "issued", "superseded", "withdrawn"]
+DecidingTest: TypeAlias = Literal["rank test", "null value", "above", "within"]
+"""Whose p decides a finding: the test of independence, or the approximate test of a claim of the plan."""
 Direction: TypeAlias = Literal["greater", "less", "two-sided"]
 
 SCALES: Final = get_args(Scale)
 ROLES: Final = get_args(Role)
 EXPECTED_SIGNS: Final = get_args(ExpectedSign)
+CLAIMS: Final = get_args(Claim)
 COEFFICIENTS: Final = get_args(CoefficientName)
 SIDEDNESS: Final = get_args(Sidedness)
 ADJUSTMENTS: Final = get_args(Adjustment)

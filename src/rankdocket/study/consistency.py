@@ -3,6 +3,7 @@
 from collections.abc import Iterator, Sequence
 
 from rankdocket.errors import Fault
+from rankdocket.study.claims import claim_faults
 from rankdocket.study.decision import decision_faults
 from rankdocket.study.form import AssociationForm, DataForm, VariableForm
 from rankdocket.study.labels import nearest_label
@@ -32,6 +33,7 @@ def consistency_faults(parts: Parts) -> list[Fault]:
             faults.extend(more_variables_faults(parts, name, association))
     faults.extend(_rows_faults(parts))
     faults.extend(decision_faults(parts))
+    faults.extend(claim_faults(parts))
     faults.extend(_twice(parts, ("report", "readers"), parts.report.readers))
     faults.extend(_twice(parts, ("report", "signatures"), parts.report.signatures))
     faults.extend(_twice(parts, ("report", "distribution"), parts.report.distribution))

@@ -4,6 +4,7 @@ from rankdocket.study.form import (
     MOST_PERMUTATIONS,
     AssociationForm,
     DataForm,
+    HypothesisForm,
     InferenceForm,
     PersonForm,
     PValueForm,
@@ -129,7 +130,7 @@ def _association(parts: Parts, name: str, form: AssociationForm) -> AssociationS
         y=y,
         question=form.question,
         role=form.role,
-        hypothesis=HypothesisSpec(form.hypothesis.expected_sign, form.hypothesis.smallest_of_interest),
+        hypothesis=_hypothesis(form.hypothesis),
         coefficient=form.coefficient,
         place=parts.key_place("associations", name),
         covariates=form.covariates,
@@ -144,12 +145,17 @@ def _groups(parts: Parts, name: str, form: AssociationForm) -> GroupsSpec | None
     return GroupsSpec(form.groups.column, form.groups.compared, parts.key_place("associations", name, "groups"))
 
 
+def _hypothesis(form: HypothesisForm) -> HypothesisSpec:
+    return HypothesisSpec(form.expected_sign, form.smallest_of_interest, form.claim, form.null_value)
+
+
 def _inference(parts: Parts, form: InferenceForm) -> InferenceSpec:
     several, p_value = form.several_tests, form.p_value
     return InferenceSpec(
         alpha=form.alpha,
         sidedness=form.sidedness,
         confidence_level=form.confidence_level,
+        planned_power=form.planned_power,
         several_tests=SeveralTestsSpec(several.adjust, several.among, several.reason),
         p_value=PValueSpec(
             p_value.by,

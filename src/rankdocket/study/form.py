@@ -11,8 +11,10 @@ from pydantic import BaseModel, ConfigDict, Field
 from pydantic.config import JsonDict
 
 from rankdocket.study import kinds
+from rankdocket.study.signed_number import SignedNumber
 from rankdocket.vocabulary import (
     ADJUSTMENTS,
+    CLAIMS,
     COEFFICIENTS,
     EXPECTED_SIGNS,
     FAMILIES,
@@ -25,6 +27,7 @@ from rankdocket.vocabulary import (
     SIDEDNESS,
     SIGNATURES,
     Adjustment,
+    Claim,
     CoefficientName,
     ExpectedSign,
     Family,
@@ -192,6 +195,15 @@ class HypothesisForm(Form):
     smallest_of_interest: Annotated[Decimal | None, kinds.Size(_ZERO, _ONE, (_ZERO, _ONE))] = Field(
         default=None, description="Smallest size of the coefficient that matters, without sign."
     )
+    claim: Annotated[Claim, kinds.OneOf(CLAIMS)] = Field(
+        default="any",
+        description="What the finding is about: any association; a coefficient above, or within plus or minus, "
+        "smallest_of_interest.",
+    )
+    null_value: Annotated[Decimal | None, SignedNumber(-_ONE, _ONE, (-_ONE, _ONE))] = Field(
+        default=None,
+        description="Value of rho to be tested; the finding is then about it, and expected_sign names the side of it.",
+    )
 
 
 class GroupsForm(Form):
@@ -280,6 +292,10 @@ class InferenceForm(Form):
     )
     confidence_level: Annotated[Decimal, kinds.DecimalNumber(_HALF, _ONE, (_ONE,))] = Field(
         default=Decimal("0.95"), description="Level of the intervals."
+    )
+    planned_power: Annotated[Decimal, kinds.DecimalNumber(_HALF, _ONE, (_HALF, _ONE))] = Field(
+        default=Decimal("0.80"),
+        description="Probability with which the smallest detectable coefficient is to be found.",
     )
     several_tests: SeveralTestsForm = Field(
         default_factory=SeveralTestsForm, description="Adjustment for several tests."

@@ -78,6 +78,8 @@ def _association(association: AssociationSpec) -> Plain:
         "hypothesis": {
             "expected_sign": association.hypothesis.expected_sign,
             "smallest_of_interest": _shortest(association.hypothesis.smallest_of_interest),
+            "claim": association.hypothesis.claim,
+            "null_value": _shortest(association.hypothesis.null_value),
         },
         "coefficient": association.coefficient,
         **_more_variables(association),
@@ -101,6 +103,7 @@ def _inference(inference: InferenceSpec) -> Plain:
         "alpha": _shortest(inference.alpha),
         "sidedness": inference.sidedness,
         "confidence_level": _shortest(inference.confidence_level),
+        "planned_power": _shortest(inference.planned_power),
         "several_tests": {
             "adjust": inference.several_tests.adjust,
             "among": inference.several_tests.among,

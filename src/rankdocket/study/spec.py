@@ -11,6 +11,7 @@ from decimal import Decimal
 from rankdocket.errors import Place
 from rankdocket.vocabulary import (
     Adjustment,
+    Claim,
     CoefficientName,
     ExpectedSign,
     Family,
@@ -150,10 +151,24 @@ class VariableSpec:
 
 @dataclass(frozen=True, slots=True)
 class HypothesisSpec:
-    """What was expected in advance.  ``smallest_of_interest`` is absolute, 0 to 1."""
+    """What was expected in advance.
+
+    Attributes
+    ----------
+    expected_sign
+        With a null value, the side of it on which the coefficient is expected.
+    smallest_of_interest
+        Absolute, above 0, below 1.
+    claim
+        What the finding is about: any association; a size above ``smallest_of_interest``, or within it.
+    null_value
+        The value that the finding is about, above −1, below 1; with the claim "any" only.
+    """
 
     expected_sign: ExpectedSign
     smallest_of_interest: Decimal | None
+    claim: Claim
+    null_value: Decimal | None
 
 
 @dataclass(frozen=True, slots=True)
@@ -230,6 +245,7 @@ class InferenceSpec:
     alpha: Decimal
     sidedness: Sidedness
     confidence_level: Decimal
+    planned_power: Decimal
     several_tests: SeveralTestsSpec
     p_value: PValueSpec
     place: Place

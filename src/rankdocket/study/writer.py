@@ -28,6 +28,7 @@ _PLAIN_WORDS: Final = frozenset(
         *vocabulary.SCALES,
         *vocabulary.ROLES,
         *vocabulary.EXPECTED_SIGNS,
+        *vocabulary.CLAIMS,
         *vocabulary.COEFFICIENTS,
         *vocabulary.SIDEDNESS,
         *vocabulary.ADJUSTMENTS,
@@ -131,6 +132,8 @@ def _association(association: AssociationSpec) -> _Value:
         "hypothesis": {
             "expected_sign": association.hypothesis.expected_sign,
             "smallest_of_interest": association.hypothesis.smallest_of_interest,
+            "claim": association.hypothesis.claim,
+            "null_value": association.hypothesis.null_value,
         },
         "coefficient": association.coefficient,
         "covariates": association.covariates or None,
@@ -150,6 +153,7 @@ def _inference(inference: InferenceSpec) -> _Value:
         "alpha": inference.alpha,
         "sidedness": inference.sidedness,
         "confidence_level": inference.confidence_level,
+        "planned_power": inference.planned_power,
         "several_tests": {"adjust": several.adjust, "among": several.among, "reason": several.reason},
         "p_value": {
             "by": p_value.by,
