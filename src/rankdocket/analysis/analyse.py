@@ -27,6 +27,7 @@ from rankdocket.analysis.results import (
     Withheld,
 )
 from rankdocket.analysis.screen import screen_association
+from rankdocket.analysis.size import size_analysis
 from rankdocket.errors import InputError
 from rankdocket.stats.coefficient import FEWEST_ROWS, Coefficient
 from rankdocket.stats.comparisons import pearson_r, t_value_p
@@ -90,9 +91,8 @@ def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnaly
             screened, checks, estimate, estimate, NoInterval(estimate.reason), Comparisons(None, None, None), smallest
         )
     test = _test(screened, spec, checks, estimate.coefficient)
-    interval = _interval(
-        checks, IntervalQuestion(estimate.coefficient, x, y, spec.inference.confidence_level, direction)
-    )
+    question = IntervalQuestion(estimate.coefficient, x, y, spec.inference.confidence_level, direction)
+    interval = _interval(checks, question)
     comparisons = Comparisons(
         t_value_p=t_value_p(estimate.coefficient, direction)
         if screened.spec.coefficient == "Spearman rho" and isinstance(test, RankTest)
@@ -100,7 +100,8 @@ def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnaly
         pearson=_pearson(screened, spec),
         doubled_p=test.tails.doubled if isinstance(test, RankTest) and direction == "two-sided" else None,
     )
-    return AssociationAnalysis(screened, checks, estimate, test, interval, comparisons, smallest)
+    size = size_analysis(screened, spec, test, question, interval) if isinstance(test, RankTest) else None
+    return AssociationAnalysis(screened, checks, estimate, test, interval, comparisons, smallest, size)
 
 
 def without_seed(spec: StudySpec, screened: Mapping[str, Screened]) -> tuple[str, ...]:

@@ -5,6 +5,7 @@ from dataclasses import dataclass, replace
 from fractions import Fraction
 from typing import Literal
 
+from rankdocket.analysis.deciding import deciding_p, deciding_p_interval, deciding_test, is_positive
 from rankdocket.analysis.family import basis_of, family_of
 from rankdocket.analysis.max_t_result import FamilyMaxT
 from rankdocket.analysis.results import AssociationAnalysis, Estimate, Finding, NotEstimable, RankTest
@@ -82,12 +83,11 @@ def _is_undecided(result: AssociationAnalysis, spec: StudySpec, adjusted: _Adjus
 
 
 def _p_at(result: AssociationAnalysis, end: Literal[0, 1] | None) -> Fraction:
-    """Return the p-value, or the lower or upper end of where its error lets it lie; 1 without a test."""
-    if not isinstance(result.test, RankTest):
+    """Return the p-value that decides, or the lower or upper end of where its error lets it lie; 1 without one."""
+    p, p_interval = deciding_p(result), deciding_p_interval(result)
+    if p is None:
         return Fraction(1)
-    if end is None or result.test.p_interval is None:
-        return result.test.p
-    return Fraction(result.test.p_interval[end])
+    return p if end is None or p_interval is None else Fraction(p_interval[end])
 
 
 def _finding(result: AssociationAnalysis, spec: StudySpec, adjusted: Fraction | None) -> Finding:
@@ -98,13 +98,17 @@ def _finding(result: AssociationAnalysis, spec: StudySpec, adjusted: Fraction | 
         return Finding("withheld", basis, None)
     if basis == "outside the family":
         return Finding(None, basis, None)
-    deciding = result.test.p if adjusted is None else adjusted
-    return Finding(_word(result, result.estimate, spec, deciding), basis, adjusted)
+    p = deciding_p(result)
+    if p is None:
+        return Finding("not shown", basis, None)  # a claim that these rows cannot be asked about
+    return Finding(_word(result, result.estimate, spec, p if adjusted is None else adjusted), basis, adjusted)
 
 
 def _word(result: AssociationAnalysis, estimate: Estimate, spec: StudySpec, p: Fraction) -> FindingWord:
     if p > Fraction(spec.inference.alpha):
         return "not shown"
+    if deciding_test(result.screened.spec) == "within":
+        return "shown"
     expected = result.screened.spec.hypothesis.expected_sign
-    found = "positive" if estimate.coefficient.numerator > 0 else "negative"
+    found = "positive" if is_positive(result, estimate.coefficient.numerator) else "negative"
     return "shown" if expected in ("either", found) else "shown, opposite sign"

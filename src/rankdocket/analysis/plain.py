@@ -25,6 +25,7 @@ from rankdocket.analysis.results import (
     Screened,
     Withheld,
 )
+from rankdocket.analysis.size_plain import could_show_to_plain, deciding_to_plain, size_to_plain
 from rankdocket.analysis.variables import VariableSummary, summarise
 from rankdocket.canonical import Plain
 from rankdocket.stats.interval import Interval
@@ -56,6 +57,11 @@ def analysis_to_plain(analysis: Analysis) -> dict[str, Plain]:
             for name, result in analysis.results.items()
         },
         **series_to_plain(tuple(analysis.results.values())),
+        **could_show_to_plain(
+            {name: result.screened for name, result in analysis.results.items()},
+            {name: result.checks for name, result in analysis.results.items()},
+            analysis.spec,
+        ),
         "tally": {
             "associations": len(analysis.results),
             "findings": dict(words),
@@ -113,6 +119,7 @@ def _inference(spec: StudySpec) -> dict[str, Plain]:
         "alpha": str(inference.alpha),
         "sidedness": inference.sidedness,
         "confidence_level": str(inference.confidence_level),
+        "planned_power": str(inference.planned_power),
         "adjust": inference.several_tests.adjust,
         "among": inference.several_tests.among,
         "p_by": inference.p_value.by,
@@ -187,7 +194,8 @@ def _association(result: AssociationAnalysis, finding: Finding, alpha: Decimal) 
         **_null(result, alpha),
         "interval": _interval(result),
         "comparisons": _comparisons(result, alpha),
-        "finding": _finding(finding, alpha),
+        **size_to_plain(result, alpha),
+        "finding": {**_finding(finding, alpha), **deciding_to_plain(result, alpha)},
         "worksheet": _worksheet(result.screened),
         **smallest,
     }

@@ -12,9 +12,11 @@ from typing import Literal, TypeAlias
 
 from rankdocket.analysis.max_t_result import FamilyMaxT, MemberMaxT
 from rankdocket.analysis.more_results import MoreVariables
+from rankdocket.analysis.size_results import SizeAnalysis
 from rankdocket.stats.choose_null import NullChoice
 from rankdocket.stats.coefficient import Coefficient
 from rankdocket.stats.interval import Interval, NoInterval
+from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.stats.null import Tails
 from rankdocket.stats.null_result import NullResult
 from rankdocket.stats.ranks import TieGroups
@@ -179,7 +181,10 @@ class Comparisons:
 
 @dataclass(frozen=True, slots=True)
 class AssociationAnalysis:
-    """Everything found for one association."""
+    """Everything found for one association.
+
+    ``size`` is ``None`` where the plan names neither a null value nor a smallest size of interest, and without a test.
+    """
 
     screened: Screened
     checks: tuple[CheckOutcome, ...]
@@ -188,6 +193,7 @@ class AssociationAnalysis:
     interval: Interval | NoInterval
     comparisons: Comparisons
     smallest_attainable_p: Fraction | None
+    size: SizeAnalysis | NoAnswer | None = None
 
 
 FindingBasis: TypeAlias = Literal["family", "own p-value", "outside the family"]

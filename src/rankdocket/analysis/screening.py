@@ -12,6 +12,7 @@ from rankdocket.analysis.nulls import null_choice
 from rankdocket.analysis.plain import data_to_plain, screened_to_plain
 from rankdocket.analysis.results import CheckOutcome, Screened
 from rankdocket.analysis.screen import screen_all
+from rankdocket.analysis.size_plain import could_show_to_plain
 from rankdocket.canonical import Plain
 from rankdocket.study.spec import StudySpec
 from rankdocket.study.table import StudyData
@@ -64,6 +65,7 @@ def screen_study(spec: StudySpec, data: StudyData) -> Screening:
         "unlike_rows": list(unlike_rows(spec, screened)),
         **data_to_plain(spec, data),
         "associations": {name: _association(rows, outcomes[name], spec) for name, rows in screened.items()},
+        **could_show_to_plain(screened, outcomes, spec),
     }
     return Screening(spec, data, screened, outcomes, without_seed(spec, screened), unlike_rows(spec, screened), plain)
 

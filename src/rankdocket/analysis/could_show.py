@@ -1,0 +1,115 @@
+"""What rows could show: from their number, their ties and the plan alone, never from a coefficient found in them."""
+
+from dataclasses import dataclass
+from decimal import Decimal
+from fractions import Fraction
+from typing import Final
+
+from rankdocket.analysis.checks.independence import KEY as INDEPENDENCE
+from rankdocket.analysis.family import family_size
+from rankdocket.analysis.nulls import smallest_possible_p
+from rankdocket.analysis.results import CheckOutcome, Screened
+from rankdocket.analysis.size import share_of_alpha
+from rankdocket.references import Description
+from rankdocket.stats.coefficient import FEWEST_ROWS as FEWEST_OF_A_COEFFICIENT
+from rankdocket.stats.interval_width import width_at
+from rankdocket.stats.no_answer import NoAnswer
+from rankdocket.stats.sample_size import FEWEST_ROWS, PlannedTest, smallest_rho
+from rankdocket.study.spec import StudySpec
+
+COULD_SHOW: Final = Description(
+    "What the rows could show was worked out from their number, their ties and the plan alone: the smallest p that they "
+    "allow; the smallest size of rho that the test of independence finds with the planned power, {power}, by the normal "
+    "approximation with one variance without association and that of Bonett and Wright with it; and the width of the "
+    "textbook interval at two sizes of rho. The coefficient found in these rows enters none of them.",
+    ("bonett2000",),
+)
+
+
+@dataclass(frozen=True, slots=True)
+class CouldShow:
+    """What the rows of one association could show.
+
+    Attributes
+    ----------
+    rows
+        Complete rows.
+    level
+        The strictest level at which the p-value may have to lie: alpha over the members of an adjusted family.
+    attainable_p
+        The smallest p that rows, ties and null allow.
+    smallest_rho
+        The smallest size of rho that the test of independence finds with the planned power at ``level``.
+    width_at_zero, width_at_interest
+        Width of the textbook interval when rho comes out at 0, at the smallest size of interest; the latter is
+        ``None`` where the plan names no such size.
+    """
+
+    rows: int
+    level: Fraction
+    attainable_p: Fraction | NoAnswer
+    smallest_rho: float | NoAnswer
+    width_at_zero: float | NoAnswer
+    width_at_interest: float | NoAnswer | None
+
+
+def could_show(screened: Screened, spec: StudySpec, outcomes: tuple[CheckOutcome, ...]) -> CouldShow:
+    """Return what the rows of an association could show, or why there is no answer.
+
+    Parameters
+    ----------
+    outcomes
+        Of the checks that show nothing joint; others do no harm.
+    """
+    rows, level = len(screened.rows), share_of_alpha(screened.spec, spec)
+    if rows < FEWEST_OF_A_COEFFICIENT or min(screened.x_ties.distinct, screened.y_ties.distinct) < 2:
+        nothing = NoAnswer("no rank correlation exists for these rows")
+        interest = None if screened.spec.hypothesis.smallest_of_interest is None else nothing
+        return CouldShow(rows, level, nothing, nothing, nothing, interest)
+    attainable = smallest_possible_p(screened, spec)
+    return CouldShow(
+        rows,
+        level,
+        attainable,
+        _smallest_rho(screened, spec, outcomes, attainable),
+        _width(screened, spec, outcomes, Decimal(0)),
+        None
+        if screened.spec.hypothesis.smallest_of_interest is None
+        else _width(screened, spec, outcomes, screened.spec.hypothesis.smallest_of_interest),
+    )
+
+
+def _smallest_rho(
+    screened: Screened, spec: StudySpec, outcomes: tuple[CheckOutcome, ...], attainable: Fraction
+) -> float | NoAnswer:
+    withheld = next((outcome for outcome in outcomes if outcome.withholds != "nothing"), None)
+    if withheld is not None:
+        return NoAnswer(f"the test is withheld: {withheld.reason}")
+    if screened.spec.coefficient != "Spearman rho":
+        return _FOR_RHO
+    if len(screened.rows) < FEWEST_ROWS:
+        return _TOO_FEW
+    if attainable > share_of_alpha(screened.spec, spec):
+        return NoAnswer("even perfect order could not reach the strictest level")
+    inference = spec.inference
+    planned = PlannedTest(inference.alpha, inference.sidedness, family_size(screened.spec, spec))
+    return smallest_rho(len(screened.rows), float(inference.planned_power), planned)
+
+
+def _width(
+    screened: Screened, spec: StudySpec, outcomes: tuple[CheckOutcome, ...], rho: Decimal
+) -> float | NoAnswer:
+    for outcome in outcomes:
+        if outcome.withholds == "all" or (outcome.key == INDEPENDENCE and outcome.withholds != "nothing"):
+            return NoAnswer(f"the interval is withheld: {outcome.reason}")
+    if screened.spec.coefficient != "Spearman rho":
+        return _FOR_RHO
+    if spec.inference.sidedness == "one-sided":
+        return NoAnswer("a one-sided bound has no width")
+    if len(screened.rows) < FEWEST_ROWS:
+        return _TOO_FEW
+    return width_at(len(screened.rows), float(rho), level=spec.inference.confidence_level)
+
+
+_FOR_RHO: Final = NoAnswer("the formula is for rho")
+_TOO_FEW: Final = NoAnswer("the formula needs more than three complete rows")
