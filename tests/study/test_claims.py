@@ -86,7 +86,7 @@ def test_an_association_makes_one_claim() -> None:
 @pytest.mark.parametrize(("key", "place"), [("claim: above", 78), ("claim: within", 78), ("null_value: 0.1", 83)])
 def test_claims_are_for_rho(key: str, place: int) -> None:
     """The tests of size rest on a variance of rho; tau-b has none here."""
-    name = key.split(":")[0]
+    name = key.split(":", maxsplit=1)[0]
     assert spec_messages(with_keys(PANEL, key)) == [
         (
             f"s.yaml:66:{place}: associations.A1.hypothesis.{name}: {name} is tested for Spearman rho alone; this association "

@@ -96,9 +96,7 @@ def _smallest_rho(
     return smallest_rho(len(screened.rows), float(inference.planned_power), planned)
 
 
-def _width(
-    screened: Screened, spec: StudySpec, outcomes: tuple[CheckOutcome, ...], rho: Decimal
-) -> float | NoAnswer:
+def _width(screened: Screened, spec: StudySpec, outcomes: tuple[CheckOutcome, ...], rho: Decimal) -> float | NoAnswer:
     for outcome in outcomes:
         if outcome.withholds == "all" or (outcome.key == INDEPENDENCE and outcome.withholds != "nothing"):
             return NoAnswer(f"the interval is withheld: {outcome.reason}")

@@ -8,6 +8,7 @@ from fractions import Fraction
 
 from rankdocket.analysis.results import AssociationAnalysis, RankTest
 from rankdocket.analysis.size_results import SizeAnalysis
+from rankdocket.stats.interval import Interval
 from rankdocket.study.spec import AssociationSpec
 from rankdocket.vocabulary import DecidingTest
 
@@ -43,6 +44,32 @@ def deciding_p_interval(result: AssociationAnalysis) -> tuple[float, float] | No
     if deciding_test(result.screened.spec) != "rank test" or not isinstance(result.test, RankTest):
         return None
     return result.test.p_interval
+
+
+def shows_direction(result: AssociationAnalysis) -> bool:
+    """Return whether a finding that is shown says that the variables move together: not that rho is small or no value."""
+    return deciding_test(result.screened.spec) in ("rank test", "above")
+
+
+def interval_shows(result: AssociationAnalysis) -> bool | None:
+    """Return whether the association’s interval leaves out what its finding is to rule out.
+
+    ``None`` without an interval, and for a claim of a small size, to which an interval of another level belongs.
+    """
+    interval, hypothesis = result.interval, result.screened.spec.hypothesis
+    if not isinstance(interval, Interval):
+        return None
+    match deciding_test(result.screened.spec):
+        case "within":
+            return None
+        case "above":
+            size = float(hypothesis.smallest_of_interest or 0)
+            return interval.low > size or interval.high < -size
+        case "null value":
+            value = float(hypothesis.null_value or 0)
+            return interval.low > value or interval.high < value
+        case "rank test":
+            return interval.low > 0 or interval.high < 0
 
 
 def is_positive(result: AssociationAnalysis, numerator: int) -> bool:

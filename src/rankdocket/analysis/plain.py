@@ -25,7 +25,12 @@ from rankdocket.analysis.results import (
     Screened,
     Withheld,
 )
-from rankdocket.analysis.size_plain import could_show_to_plain, deciding_to_plain, size_to_plain
+from rankdocket.analysis.size_plain import (
+    could_show_to_plain,
+    deciding_to_plain,
+    null_values_to_plain,
+    size_to_plain,
+)
 from rankdocket.analysis.variables import VariableSummary, summarise
 from rankdocket.canonical import Plain
 from rankdocket.stats.interval import Interval
@@ -116,6 +121,7 @@ def _inference(spec: StudySpec) -> dict[str, Plain]:
     }
     seed: dict[str, Plain] = {} if inference.p_value.seed is None else {"seed": str(inference.p_value.seed)}
     return {
+        **null_values_to_plain(spec),
         "alpha": str(inference.alpha),
         "sidedness": inference.sidedness,
         "confidence_level": str(inference.confidence_level),

@@ -42,6 +42,16 @@ def deciding_to_plain(result: AssociationAnalysis, alpha: Decimal) -> dict[str, 
     return {"by": deciding_test(result.screened.spec), **filed_p}
 
 
+def null_values_to_plain(spec: StudySpec) -> dict[str, Plain]:
+    """Return the key ``null_value``: the null values of the plan by association; nothing where it names none."""
+    values: dict[str, Plain] = {
+        name: str(association.hypothesis.null_value)
+        for name, association in spec.associations.items()
+        if association.hypothesis.null_value is not None
+    }
+    return {"null_value": values} if values else {}
+
+
 def could_show_to_plain(
     screened: Mapping[str, Screened], outcomes: Mapping[str, tuple[CheckOutcome, ...]], spec: StudySpec
 ) -> dict[str, Plain]:

@@ -234,10 +234,17 @@ class Numbers:
 
     def _is_counted(self, key: str) -> bool:
         """Return whether the p-value at ``key`` belongs to an association that has no test whose p was not counted."""
+        if self._is_of_a_claim(key):
+            return False
         method, together = f"{'/'.join(key.split('/')[:2])}/test/method", "inference/max_t/method"
         if key.endswith("/finding/p_adjusted") and self.has(together):
             return look_up(self.plain, together) == COUNTED_TOGETHER
         return not self.has(method) or look_up(self.plain, method) in COUNTED
+
+    def _is_of_a_claim(self, key: str) -> bool:
+        """Return whether the p-value at ``key`` comes from an approximate test of a value or of a size."""
+        by = f"{'/'.join(key.split('/')[:2])}/finding/by"
+        return "/size/" in key or ("/finding/" in key and self.has(by) and look_up(self.plain, by) != "rank test")
 
     def _misleads(self, printed: Decimal, value: Decimal) -> bool:
         crossed = (printed <= self.alpha) != (value <= self.alpha) or printed == self.alpha

@@ -5,8 +5,10 @@ import io
 from collections.abc import Iterable, Mapping
 from typing import Final
 
+from rankdocket.analysis.deciding import deciding_p, deciding_test
 from rankdocket.analysis.filing import filed, filed_value
 from rankdocket.analysis.results import Analysis, AssociationAnalysis, Estimate, RankTest
+from rankdocket.analysis.size_results import SizeAnalysis
 from rankdocket.canonical import Plain
 from rankdocket.document.numbers import look_up
 from rankdocket.render.text import defused
@@ -58,7 +60,7 @@ def _ranks(name: str, result: AssociationAnalysis, plain: Mapping[str, Plain]) -
 def _results(analysis: Analysis, plain: Mapping[str, Plain]) -> bytes:
     head = (
         "association", "x", "y", "n", "coefficient", "value", "interval_low", "interval_high", "interval_by",
-        "p", "sidedness", "p_by", "p_adjusted", "finding",
+        "p", "sidedness", "p_by", "finding_by", "p_of_finding", "p_adjusted", "finding", "size_verdict",
     )  # fmt: skip
     return _csv(head, (_result(name, result, analysis, plain) for name, result in analysis.results.items()))
 
@@ -81,8 +83,11 @@ def _result(name: str, result: AssociationAnalysis, analysis: Analysis, plain: M
         str(look_up(plain, f"{at}/test/p")) if tested else _ABSENT,
         analysis.spec.inference.sidedness,
         str(look_up(plain, f"{at}/test/method")) if tested else _ABSENT,
+        deciding_test(spec),
+        str(look_up(plain, f"{at}/finding/p")) if deciding_p(result) is not None else _ABSENT,
         str(look_up(plain, f"{at}/finding/p_adjusted")) if finding.p_adjusted is not None else _ABSENT,
         finding.word or "no finding",
+        result.size.size.verdict if isinstance(result.size, SizeAnalysis) and result.size.size else _ABSENT,
     )
 
 

@@ -1,14 +1,17 @@
 """Findings in words: what the plan’s rule made of an association, claiming no more than the evidence."""
 
 from rankdocket.analysis.checks.attainable_p import KEY as ATTAINABLE
+from rankdocket.analysis.deciding import deciding_p as raw_deciding_p
 from rankdocket.analysis.results import Estimate, Finding, NotEstimable, RankTest, Withheld
 from rankdocket.document.model import Number, Prose
 from rankdocket.document.prose import only, prose
 from rankdocket.stats.interval import Interval
+from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.vocabulary import ExpectedSign
 from rankdocket.writing.adjustment import bounded
 from rankdocket.writing.phrases import address, coefficient_symbol, interval_values, p_equals
 from rankdocket.writing.section import Story
+from rankdocket.writing.size import OPEN, by_of, claimed, claimed_opposite
 
 
 def finding_word(finding: Finding) -> str:
@@ -30,28 +33,37 @@ def finding_sentence(story: Story, name: str) -> Prose:
             return only("The plan places this association outside the family, so that no finding is stated for it.")
         return only("The plan states no finding for an exploratory association.")
     expected = result.screened.spec.hypothesis.expected_sign
+    if raw_deciding_p(result) is None and isinstance(result.size, NoAnswer):
+        return prose(
+            "By the rule of the plan {what} was not shown: it could not be tested, because {reason}.",
+            what=_what(story, name, expected),
+            reason=result.size.reason,
+        )
     deciding = deciding_p(story, name)
     rule = _rule(story, finding)
+    if by_of(story, name) != "rank test":
+        rule += "; the test is approximate"
     alpha = story.numbers.level("inference/alpha")
     if finding.word == "not shown":
         return prose(
             "By the rule of the plan {what} was not shown: " + rule.replace("{side}", "above") + ".{open}",
-            what=_what(expected),
+            what=_what(story, name, expected),
             p=deciding,
             alpha=alpha,
             open=_still_open(story, name),
         )
     if finding.word == "shown, opposite sign":
         return prose(
-            "By the rule of the plan an association was shown, with the sign opposite to the one expected: "
-            + rule.replace("{side}", "at or below")
-            + ".",
+            "By the rule of the plan {what}: " + rule.replace("{side}", "at or below") + ".",
+            what=only("an association was shown, with the sign opposite to the one expected")
+            if by_of(story, name) == "rank test"
+            else claimed_opposite(story, name),
             p=deciding,
             alpha=alpha,
         )
     return prose(
         "By the rule of the plan {what} was shown: " + rule.replace("{side}", "at or below") + ".",
-        what=_what(expected),
+        what=_what(story, name, expected),
         p=deciding,
         alpha=alpha,
     )
@@ -61,7 +73,7 @@ def deciding_p(story: Story, name: str) -> Prose:
     """Return the p-value that decided: the adjusted one of a family member, else the association’s own."""
     key = address(name, "finding", "p_adjusted")
     if story.analysis.findings[name].p_adjusted is None:
-        key = address(name, "test", "p")
+        key = address(name, "finding", "p")
     return p_equals(story, key)
 
 
@@ -91,14 +103,16 @@ def size_sentence(story: Story, name: str) -> Prose:
     return prose(template, size=size)
 
 
-def _what(expected: ExpectedSign) -> str:
+def _what(story: Story, name: str, expected: ExpectedSign) -> Prose:
+    if by_of(story, name) != "rank test":
+        return claimed(story, name)
     match expected:
         case "positive":
-            return "the expected positive association"
+            return only("the expected positive association")
         case "negative":
-            return "the expected negative association"
+            return only("the expected negative association")
         case "either":
-            return "an association"
+            return only("an association")
 
 
 def _rule(story: Story, finding: Finding) -> str:
@@ -110,7 +124,9 @@ def _rule(story: Story, finding: Finding) -> str:
 
 
 def _still_open(story: Story, name: str) -> Prose:
-    result = story.analysis.results[name]
+    result, by = story.analysis.results[name], by_of(story, name)
+    if by != "rank test":
+        return only(OPEN[by])
     if any(outcome.key == ATTAINABLE and outcome.state == "not met" for outcome in result.checks):
         return only(" No result of this plan with these rows could have been shown.")
     if not isinstance(result.interval, Interval) or not isinstance(result.test, RankTest):

@@ -2,6 +2,7 @@
 
 from typing import Final
 
+from rankdocket.analysis.deciding import shows_direction
 from rankdocket.analysis.results import AssociationAnalysis, Estimate, RankTest, Withheld
 from rankdocket.document.model import Emphasis, Link, Prose, Supplied
 from rankdocket.document.prose import joined, listed, only, prose, text_of
@@ -180,7 +181,7 @@ def direction_sentence(story: Story, name: str) -> Prose:
     numerator = result.estimate.coefficient.numerator
     if numerator == 0:
         template = "In these rows the ranks of {x} and {y} leaned neither the same way nor opposite ways"
-    elif story.analysis.findings[name].word in ("shown", "shown, opposite sign"):
+    elif story.analysis.findings[name].word in ("shown", "shown, opposite sign") and shows_direction(result):
         template = (
             "Rows ranked higher on {x} tended to be ranked higher on {y}"
             if numerator > 0

@@ -3,10 +3,12 @@
 from collections.abc import Iterator
 
 from rankdocket.analysis.checks import CHECKS
+from rankdocket.analysis.family import family_size
 from rankdocket.analysis.results import CheckOutcome, Measure
 from rankdocket.analysis.screening import Screening
 from rankdocket.analysis.variables import VariableSummary, summarise
 from rankdocket.document.numbers import Numbers
+from rankdocket.writing.could_show import could_show_words
 
 _LABELS = {check.key: check.label for check in CHECKS}
 
@@ -97,10 +99,12 @@ def _could_show(screening: Screening) -> Iterator[str]:
         if attainable is None:
             yield f"{name}: {rows} complete rows; no rank correlation exists for them."
         else:
+            is_shared = family_size(screening.spec.associations[name], screening.spec) > 1
             yield (
                 f"{name}: {rows} complete rows; the smallest possible p is "
                 f"{_printed(screening, name, attainable, attainable.found)}."
             )
+            yield f"{name}: {could_show_words(_numbers(screening), name, is_shared=is_shared)}."
 
 
 def _figures(screening: Screening, name: str, outcome: CheckOutcome) -> str:
@@ -112,17 +116,21 @@ def _figures(screening: Screening, name: str, outcome: CheckOutcome) -> str:
     )
 
 
-def _printed(screening: Screening, name: str, outcome: CheckOutcome, measure: Measure | None) -> str:
-    if measure is None:
-        return ""
+def _numbers(screening: Screening) -> Numbers:
     spec = screening.spec
-    numbers = Numbers(
+    return Numbers(
         screening.plain,
         spec.report.coefficient_decimals,
         spec.report.p_value_decimals,
         spec.report.number_style,
         spec.inference.alpha,
     )
+
+
+def _printed(screening: Screening, name: str, outcome: CheckOutcome, measure: Measure | None) -> str:
+    if measure is None:
+        return ""
+    numbers = _numbers(screening)
     side = "found" if measure is outcome.found else "limit"
     key = f"associations/{name}/checks/{outcome.key}/{side}"
     match measure.kind:

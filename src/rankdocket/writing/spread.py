@@ -26,6 +26,7 @@ from rankdocket.writing.phrases import (
     variables_of,
 )
 from rankdocket.writing.section import Story
+from rankdocket.writing.size import size_rows, verdict_sentence
 
 
 def spread(story: Story, name: str, position: int) -> Section:
@@ -48,6 +49,7 @@ def spread(story: Story, name: str, position: int) -> Section:
                     ),
                     finding_sentence(story, name),
                     size_sentence(story, name),
+                    verdict_sentence(story, name),
                 ),
                 "answer",
             ),
@@ -117,6 +119,7 @@ def _numbers(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
         rows.append(("Test", prose("withheld: {reason}", reason=result.test.reason)))
     if result.smallest_attainable_p is not None:
         rows.append(("Smallest attainable p", only(numbers.attainable_p(address(name, "smallest_attainable_p")))))
+    rows += size_rows(story, name)
     rows += adjusted_rows(story, name)
     rows.append(("Finding", only(finding_word(story.analysis.findings[name]))))
     return tuple(rows)

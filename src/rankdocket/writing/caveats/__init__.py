@@ -4,7 +4,7 @@ from typing import Final
 
 from rankdocket.document.model import CaveatBlock
 from rankdocket.writing.caveat import CaveatRule
-from rankdocket.writing.caveats import adjustment, more_variables, requirements, results, study
+from rankdocket.writing.caveats import adjustment, more_variables, requirements, results, size, study
 from rankdocket.writing.section import NumberedCaveat, Story
 
 CAVEATS: Final[tuple[CaveatRule, ...]] = (
@@ -15,6 +15,7 @@ CAVEATS: Final[tuple[CaveatRule, ...]] = (
     results.UNDECIDED,
     results.TWO_SIDED_RULE,
     results.TEST_AND_INTERVAL,
+    size.EQUIVALENCE_AND_INTERVAL,
     results.PERFECT,
     results.SMALL_SAMPLE,
     study.LEFT_OUT_ROWS,
@@ -24,6 +25,7 @@ CAVEATS: Final[tuple[CaveatRule, ...]] = (
     study.NO_INTERVAL,
     adjustment.CONDITION_OF_ADJUSTMENT,
     study.INTERVAL_BASIS,
+    size.SIZE_BASIS,
     study.ASSOCIATION_ONLY,
     study.INDEPENDENCE_NULL,
     study.DECISION,

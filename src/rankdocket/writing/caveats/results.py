@@ -3,12 +3,13 @@
 from fractions import Fraction
 from typing import Final
 
+from rankdocket.analysis.deciding import deciding_p, interval_shows
 from rankdocket.analysis.results import Estimate, NotEstimable, RankTest
 from rankdocket.document.model import Prose
 from rankdocket.document.prose import prose
 from rankdocket.stats.interval import Interval
 from rankdocket.writing.caveat import CaveatRule, FoundCaveat
-from rankdocket.writing.findings import deciding_p
+from rankdocket.writing.findings import deciding_p as deciding_p_words
 from rankdocket.writing.phrases import P, address, interval_range, p_equals, pointer, pointers
 from rankdocket.writing.section import Story
 
@@ -91,11 +92,13 @@ def _disagree(story: Story) -> tuple[FoundCaveat, ...]:
         finding = story.analysis.findings[name]
         if not isinstance(result.test, RankTest) or not isinstance(result.interval, Interval):
             continue
-        deciding = result.test.p if finding.p_adjusted is None else finding.p_adjusted
-        excludes_zero = result.interval.low > 0 or result.interval.high < 0
-        if excludes_zero == (deciding <= Fraction(inference.alpha)):
+        raw, agrees = deciding_p(result), interval_shows(result)
+        if raw is None or agrees is None:
             continue
-        adjusted = finding.p_adjusted is not None and finding.p_adjusted != result.test.p
+        deciding = raw if finding.p_adjusted is None else finding.p_adjusted
+        if agrees == (deciding <= Fraction(inference.alpha)):
+            continue
+        adjusted = finding.p_adjusted is not None and finding.p_adjusted != raw
         found.append(
             FoundCaveat(
                 (name,),
@@ -104,7 +107,7 @@ def _disagree(story: Story) -> tuple[FoundCaveat, ...]:
                     "about the association, the interval describes its size.",
                     name=pointer(name),
                     kind="adjusted " if adjusted else "",
-                    p=deciding_p(story, name),
+                    p=deciding_p_words(story, name),
                     range=interval_range(story, name),
                     why="The interval is not adjusted for the number of tests"
                     if adjusted

@@ -21,6 +21,7 @@ from rankdocket.writing.described import described
 from rankdocket.writing.more_variables_methods import more_variables_descriptions
 from rankdocket.writing.phrases import address, full_stop, pointers
 from rankdocket.writing.section import SectionRule, Story
+from rankdocket.writing.size_methods import could_show_methods, size_methods
 
 
 def write(story: Story) -> Section:
@@ -60,7 +61,9 @@ def method_paragraphs(story: Story) -> tuple[Prose, ...]:
             _nulls(story),
             _sides(story),
             _family(story),
+            size_methods(story),
             _intervals(story),
+            could_show_methods(story),
             _comparisons(story),
             _more_variables(story),
         )

@@ -1,10 +1,12 @@
 """Section 6: one master table, planned against found, then one spread an association."""
 
+from rankdocket.analysis.deciding import deciding_p
 from rankdocket.analysis.results import AssociationAnalysis, Estimate, RankTest
 from rankdocket.document.model import Block, Column, FieldList, Link, Prose, Section, TableBlock
 from rankdocket.document.prose import joined, only, prose
 from rankdocket.stats.interval import Interval
 from rankdocket.writing.adjustment import bound_note, bounded
+from rankdocket.writing.could_show import could_show_table
 from rankdocket.writing.figures import interval_strip
 from rankdocket.writing.findings import finding_word, smallest_of_interest
 from rankdocket.writing.phrases import (
@@ -16,10 +18,12 @@ from rankdocket.writing.phrases import (
     interval_range,
     label_head,
     level,
+    p_equals,
     pointer,
     variables_of,
 )
 from rankdocket.writing.section import SectionRule, Story
+from rankdocket.writing.size import by_of, claim_in_table, claim_named, verdict_words
 from rankdocket.writing.spread import spread
 
 
@@ -29,6 +33,7 @@ def write(story: Story) -> Section:
     comparisons = _comparisons(story)
     if comparisons is not None:
         blocks.append(comparisons)
+    blocks.append(could_show_table(story))
     spreads = tuple(spread(story, name, position) for position, name in enumerate(story.analysis.results, start=1))
     return Section("results-section", "6", only("Results"), tuple(blocks), spreads, opens="page")
 
@@ -125,7 +130,23 @@ def _master_notes(story: Story) -> tuple[Prose, ...]:
             if story.analysis.family
             else only("No finding is stated for an exploratory association.")
         )
+    notes += _claim_notes(story)
     return tuple(notes)
+
+
+def _claim_notes(story: Story) -> list[Prose]:
+    """Return which adjusted p and finding are about a claim of size or a null value, and the p that was adjusted."""
+    return [
+        prose(
+            "{name}: finding and adjusted {p} are about {claim}; its own approximate {own}.",
+            name=pointer(name),
+            p=P,
+            claim=claim_named(story, name),
+            own=p_equals(story, address(name, "finding", "p")),
+        )
+        for name, result in story.analysis.results.items()
+        if by_of(story, name) != "rank test" and deciding_p(result) is not None
+    ]
 
 
 def _planned_and_found(story: Story) -> FieldList:
@@ -134,22 +155,33 @@ def _planned_and_found(story: Story) -> FieldList:
         hypothesis = result.screened.spec.hypothesis
         size = smallest_of_interest(story, name)
         planned = (
-            prose("expected {sign}, size of interest {size}", sign=hypothesis.expected_sign, size=size)
+            prose(
+                "expected {sign}, size of interest {size}{claim}",
+                sign=hypothesis.expected_sign,
+                size=size,
+                claim=claim_in_table(story, name),
+            )
             if size is not None
-            else prose("expected {sign}", sign=hypothesis.expected_sign)
+            else prose("expected {sign}{claim}", sign=hypothesis.expected_sign, claim=claim_in_table(story, name))
         )
         rows.append(
             (
                 name,
                 prose(
-                    "{planned}; found {estimate}; finding: {word}",
+                    "{planned}; found {estimate}; finding: {word}{verdict}",
                     planned=planned,
                     estimate=estimate_with_interval(story, name),
                     word=finding_word(story.analysis.findings[name]),
+                    verdict=_verdict(story, name),
                 ),
             )
         )
     return FieldList(tuple(rows), key="planned-and-found", caption=only("Planned against found"))
+
+
+def _verdict(story: Story, name: str) -> Prose:
+    words = verdict_words(story, name)
+    return prose("; size: {verdict}", verdict=words) if words.pieces != ("",) else words
 
 
 def _comparisons(story: Story) -> TableBlock | None:

@@ -21,6 +21,7 @@ from rankdocket.writing.phrases import (
 )
 from rankdocket.writing.section import NumberedCaveat, Story
 from rankdocket.writing.sections.changes import moved_findings
+from rankdocket.writing.size import tests_of, verdict_sentence
 
 MOST_ASSOCIATIONS: Final = 3
 """So many associations fit on one page; the rest is pointed to."""
@@ -135,6 +136,8 @@ def _answer(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
                 ),
             )
         )
+        if tests_of(story, name) is not None:
+            rows.append(("Size", verdict_sentence(story, name)))
     else:
         rows.append(("Answer", prose("{state}.", state=state_word(result).capitalize())))
         rows.append(("Finding", only(finding_word(story.analysis.findings[name]))))

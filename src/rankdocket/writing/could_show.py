@@ -1,0 +1,123 @@
+"""What the rows could show, as a table: from their number, their ties and the plan alone."""
+
+from typing import Final
+
+from rankdocket.document.model import Column, Number, Prose, TableBlock
+from rankdocket.document.numbers import Numbers, look_up
+from rankdocket.document.prose import joined, only, prose
+from rankdocket.writing.phrases import EN_DASH_CELL, N, P, pointer
+from rankdocket.writing.section import Story
+
+TABLE: Final = "Table 9"
+_AT: Final = "could_show/rows_of"
+
+
+def could_show_table(story: Story) -> TableBlock:
+    """Return one row an association."""
+    return TableBlock(
+        key="could-show",
+        number="9",
+        caption=only("What these rows could show, whatever was found in them"),
+        columns=(
+            Column(only("Association"), "association", share=2),
+            Column(only(N), "n", "right", share=2),
+            Column(prose("Smallest attainable {p}", p=P), "attainable_p", share=3),
+            Column(
+                prose(
+                    "Smallest size of rho found with power {power}",
+                    power=story.numbers.level("could_show/planned_power"),
+                ),
+                "smallest_rho",
+                share=4,
+            ),
+            Column(
+                prose("Width of a {level} interval at rho\u00a0=\u00a0zero", level=_level(story)),
+                "width_at_zero",
+                share=4,
+            ),
+            Column(only("Width at the smallest size of interest"), "width_at_interest", share=4),
+        ),
+        rows=tuple(_row(story, name) for name in story.analysis.results),
+        notes=(
+            prose(
+                "Worked out from the number of rows, their ties and the plan alone. The size of rho is that which the test "
+                "of independence finds with that power at alpha shared among all members of an adjusted family, the "
+                "strictest level that can apply; it is approximate and does not allow for ties. The widths are those of "
+                "the textbook interval of Bonett and Wright; the interval of this report can be wider.",
+            ),
+            *_reasons(story),
+        ),
+    )
+
+
+def could_show_words(numbers: Numbers, name: str, *, is_shared: bool) -> str:
+    """Return the same of one association as the end of a line on a terminal, from " The planned power" on."""
+    at = f"{_AT}/{name}"
+    power = numbers.level("could_show/planned_power").text
+    level = numbers.percent("could_show/interval_level").text
+    strictest = ", alpha shared among the family," if is_shared else ""
+    found = numbers.has(f"{at}/smallest_rho/value")
+    parts = [
+        f"with power {power}{strictest} a rho of {numbers.coefficient(f'{at}/smallest_rho/value').text} in size would be found"
+        if found
+        else f"no smallest detectable rho: {_reason(numbers, f'{at}/smallest_rho')}"
+    ]
+    if not numbers.has(f"{at}/width_at_zero/value"):
+        return "; ".join([*parts, f"no width of an interval: {_reason(numbers, f'{at}/width_at_zero')}"])
+    widths = [f"{numbers.coefficient(f'{at}/width_at_zero/value').text} wide at zero"]
+    if numbers.has(f"{at}/width_at_interest/value"):
+        widths.append(f"{numbers.coefficient(f'{at}/width_at_interest/value').text} at the smallest size of interest")
+    return "; ".join([*parts, f"a {level} interval would be about {' and '.join(widths)}"])
+
+
+def _level(story: Story) -> Number:
+    return story.numbers.percent("could_show/interval_level")
+
+
+def _row(story: Story, name: str) -> tuple[Prose, ...]:
+    at, numbers = f"{_AT}/{name}", story.numbers
+
+    def size(key: str) -> Prose:
+        return only(numbers.coefficient(f"{at}/{key}/value")) if numbers.has(f"{at}/{key}/value") else EN_DASH_CELL
+
+    attainable = f"{at}/attainable_p/value"
+    return (
+        only(pointer(name)),
+        only(numbers.whole(f"{at}/rows")),
+        only(numbers.attainable_p(attainable)) if numbers.has(attainable) else EN_DASH_CELL,
+        size("smallest_rho"),
+        size("width_at_zero"),
+        size("width_at_interest"),
+    )
+
+
+_COLUMNS: Final = (
+    ("attainable_p", "smallest attainable p"),
+    ("smallest_rho", "smallest size of rho"),
+    ("width_at_zero", "widths"),
+)
+
+
+def _reasons(story: Story) -> tuple[Prose, ...]:
+    """Return why a cell has no number, one sentence a column and reason."""
+    found: dict[tuple[str, str], list[str]] = {}
+    for name in story.analysis.results:
+        told: set[str] = set()
+        for key, words in _COLUMNS:
+            at = f"{_AT}/{name}/{key}"
+            if story.numbers.has(f"{at}/reason") and (reason := _reason(story.numbers, at)) not in told:
+                told.add(reason)
+                found.setdefault((words, reason), []).append(name)
+    return tuple(
+        prose(
+            "No {words} for {names}: {reason}.",
+            words=words,
+            names=joined(tuple(only(pointer(name)) for name in names), ", "),
+            reason=reason,
+        )
+        for (words, reason), names in found.items()
+    )
+
+
+def _reason(numbers: Numbers, at: str) -> str:
+    return str(look_up(numbers.plain, f"{at}/reason"))
