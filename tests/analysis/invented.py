@@ -31,7 +31,7 @@ def association(
     first: str = "u", second: str = "v", *, role: str = "primary", sign: str = "positive", more: str = ""
 ) -> str:
     """Return one entry of associations."""
-    size = f", {more}" if more.startswith("smallest_of_interest") else ""
+    size = f", {more}" if more.startswith(("smallest_of_interest", "null_value")) else ""
     rest = f", {more}" if more and not size else ""
     return (
         f"{{between: [{first}, {second}], question: Do {first} and {second} rise together?, role: {role}, "

@@ -10,7 +10,7 @@ from rankdocket.document.model import CaveatBlock, Link, Paragraph
 from rankdocket.document.prose import lint, text_of
 from rankdocket.writing import caveats
 from rankdocket.writing.caveat import CaveatRule
-from rankdocket.writing.caveats import CAVEATS, adjustment, more_variables, requirements, results, study
+from rankdocket.writing.caveats import CAVEATS, adjustment, more_variables, requirements, results, size, study
 from writing.reports import (
     EVERY_FINDING,
     Occasion,
@@ -47,6 +47,13 @@ SPEAKS: dict[str, Invented] = {
     "two_sided_rule": replace(QUIET, columns=LOPSIDED, inference="alpha: 0.3"),
     # n=10, sum of squared differences 58: exact p 0.049, while the interval of Bonett & Wright 2000 holds 0.
     "test_and_interval": replace(QUIET, columns={"u": RISING, "v": "3 4 1 9 2 5 6 8 10 7"}),
+    # The same rows: rho 0.648 within 0.9 has z = 1.565 with k = 1.405, short of 1.645; k = 1.210 of the interval is less.
+    "equivalence_and_interval": replace(
+        QUIET,
+        columns={"u": RISING, "v": "3 4 1 9 2 5 6 8 10 7"},
+        associations={"A1": association(more="smallest_of_interest: 0.9")},
+    ),
+    "size_basis": replace(QUIET, associations={"A1": association(more="null_value: 0.2")}),
     "perfect_agreement": replace(QUIET, columns={"u": RISING, "v": FALLING}),
     "small_sample": replace(QUIET, columns=SMALL_ORDERED),
     "left_out_rows": replace(QUIET, rows=LEFT_OUT),
@@ -77,6 +84,7 @@ IS_SILENT: dict[str, Invented] = {
     "two_sided_rule": replace(QUIET, columns=LOPSIDED, inference="alpha: 0.2"),
     "no_interval": QUIET,
     "condition_of_adjustment": replace(QUIET, associations=TWO),
+    "equivalence_and_interval": replace(QUIET, associations={"A1": association(more="smallest_of_interest: 0.9")}),
     "interval_basis": replace(QUIET, associations=TAU),
     "independence_null": replace(QUIET, rows="leave_out: []"),
 }
@@ -124,7 +132,7 @@ def test_the_catalogue_holds_every_rule_once_with_a_weight_of_its_own() -> None:
     """A rule that is written and not listed would never speak."""
     written = [
         rule
-        for module in (adjustment, more_variables, requirements, results, study)
+        for module in (adjustment, more_variables, requirements, results, size, study)
         for _, rule in inspect.getmembers(module, lambda value: isinstance(value, CaveatRule))
     ]
     assert {rule.key for rule in written} == {rule.key for rule in CAVEATS}

@@ -245,7 +245,8 @@ def test_the_answer_of_a_spread_is_one_run_of_sentences() -> None:
         "In these rows the ranks of value of u and value of mixed leaned the same way: rho 0.51 (95% interval −0.13 to "
         "0.85). By the rule of the plan an association was not shown: the adjusted p = 0.281 lay above alpha, 0.05, which "
         "bounds the chance of any false finding. That does not show that there is none: the interval still holds values of rho from −0.13 to 0.85. The interval holds "
-        "values of rho both smaller and larger in size than the smallest size of interest, 0.30."
+        "values of rho both smaller and larger in size than the smallest size of interest, 0.30. Verdict about size, by "
+        "approximate tests at level 0.05 over 5 members of the family: undecided."
     )
 
 

@@ -58,6 +58,8 @@ def could_show(screened: Screened, spec: StudySpec, outcomes: tuple[CheckOutcome
 
     Parameters
     ----------
+    screened, spec
+        The rows and the plan.
     outcomes
         Of the checks that show nothing joint; others do no harm.
     """

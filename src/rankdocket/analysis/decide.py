@@ -101,14 +101,14 @@ def _finding(result: AssociationAnalysis, spec: StudySpec, adjusted: Fraction | 
     p = deciding_p(result)
     if p is None:
         return Finding("not shown", basis, None)  # a claim that these rows cannot be asked about
-    return Finding(_word(result, result.estimate, spec, p if adjusted is None else adjusted), basis, adjusted)
+    return Finding(_word(result, spec, p if adjusted is None else adjusted), basis, adjusted)
 
 
-def _word(result: AssociationAnalysis, estimate: Estimate, spec: StudySpec, p: Fraction) -> FindingWord:
+def _word(result: AssociationAnalysis, spec: StudySpec, p: Fraction) -> FindingWord:
     if p > Fraction(spec.inference.alpha):
         return "not shown"
     if deciding_test(result.screened.spec) == "within":
         return "shown"
     expected = result.screened.spec.hypothesis.expected_sign
-    found = "positive" if is_positive(result, estimate.coefficient.numerator) else "negative"
+    found = "positive" if is_positive(result) else "negative"
     return "shown" if expected in ("either", found) else "shown, opposite sign"

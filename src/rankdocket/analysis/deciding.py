@@ -6,7 +6,7 @@ approximate test, whose p-value enters the family instead; the p-value of indepe
 
 from fractions import Fraction
 
-from rankdocket.analysis.results import AssociationAnalysis, RankTest
+from rankdocket.analysis.results import AssociationAnalysis, Estimate, RankTest
 from rankdocket.analysis.size_results import SizeAnalysis
 from rankdocket.stats.interval import Interval
 from rankdocket.study.spec import AssociationSpec
@@ -72,14 +72,8 @@ def interval_shows(result: AssociationAnalysis) -> bool | None:
             return interval.low > 0 or interval.high < 0
 
 
-def is_positive(result: AssociationAnalysis, numerator: int) -> bool:
-    """Return on which side the rows lie: of the null value where the plan names one, else of 0.
-
-    Parameters
-    ----------
-    numerator
-        Of the coefficient; it has its sign.
-    """
+def is_positive(result: AssociationAnalysis) -> bool:
+    """Return whether the rows lie above the null value that the plan names, or above 0 where it names none."""
     if isinstance(result.size, SizeAnalysis) and result.size.value is not None:
         return result.size.value.z > 0
-    return numerator > 0
+    return isinstance(result.estimate, Estimate) and result.estimate.coefficient.numerator > 0

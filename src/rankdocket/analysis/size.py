@@ -44,6 +44,8 @@ def size_analysis(
 
     Parameters
     ----------
+    screened, spec
+        The rows and the plan.
     test
         Of independence; the verdict takes its p-value.
     question, interval
@@ -65,9 +67,11 @@ def size_analysis(
     if hypothesis.smallest_of_interest is None:
         return found
     delta = float(hypothesis.smallest_of_interest)
-    above, within = (rule(r, n, delta, variance=VARIANCE) for rule in (minimum_effect, tost_z))
-    if isinstance(above, NoAnswer) or isinstance(within, NoAnswer):
-        return above if isinstance(above, NoAnswer) else NoAnswer(within.reason)  # both have the same obstacle
+    above, within = minimum_effect(r, n, delta, variance=VARIANCE), tost_z(r, n, delta, variance=VARIANCE)
+    if isinstance(above, NoAnswer):
+        return above
+    if isinstance(within, NoAnswer):
+        return within
     p_above, p_within = twelve_digits(above.p(direction_of(screened, spec))), twelve_digits(within.p)
     level = share_of_alpha(screened.spec, spec)
     return replace(

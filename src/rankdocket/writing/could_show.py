@@ -2,6 +2,7 @@
 
 from typing import Final
 
+from rankdocket.analysis.results import Estimate
 from rankdocket.document.model import Column, Number, Prose, TableBlock
 from rankdocket.document.numbers import Numbers, look_up
 from rankdocket.document.prose import joined, only, prose
@@ -12,8 +13,10 @@ TABLE: Final = "Table 9"
 _AT: Final = "could_show/rows_of"
 
 
-def could_show_table(story: Story) -> TableBlock:
-    """Return one row an association."""
+def could_show_table(story: Story) -> TableBlock | None:
+    """Return one row an association; no table where the plan withholds every estimate or none exists."""
+    if not any(isinstance(result.estimate, Estimate) for result in story.analysis.results.values()):
+        return None
     return TableBlock(
         key="could-show",
         number="9",
@@ -47,6 +50,15 @@ def could_show_table(story: Story) -> TableBlock:
             ),
             *_reasons(story),
         ),
+    )
+
+
+def has_answers(story: Story) -> bool:
+    """Return whether any association has a smallest size of rho or the width of an interval."""
+    return any(
+        story.numbers.has(f"{_AT}/{name}/{key}/value")
+        for name in story.analysis.results
+        for key in ("smallest_rho", "width_at_zero")
     )
 
 

@@ -2,11 +2,11 @@
 
 from rankdocket.analysis.could_show import COULD_SHOW
 from rankdocket.analysis.size_results import SizeAnalysis
-from rankdocket.document.model import Emphasis, Number, Prose, Supplied
+from rankdocket.document.model import Prose
 from rankdocket.document.prose import joined, listed, only, prose
-from rankdocket.references import Description
 from rankdocket.stats.equivalence import EQUIVALENCE, MINIMUM_EFFECT, NULL_VALUE
-from rankdocket.writing.citations import cite
+from rankdocket.writing.could_show import has_answers
+from rankdocket.writing.described import described
 from rankdocket.writing.phrases import address, pointer, pointers
 from rankdocket.writing.section import Story
 from rankdocket.writing.size import by_of, tests_of
@@ -21,10 +21,10 @@ def size_methods(story: Story) -> Prose:
     sized = tuple(name for name in found if tests_of(story, name) is not None)
     parts: list[Prose] = []
     if valued:
-        parts.append(_described(NULL_VALUE, factor=_factors(story, valued, "value/factor")))
+        parts.append(described(NULL_VALUE, factor=_factors(story, valued, "value/factor")))
     if sized:
         factors = _factors(story, sized, "factor")
-        parts += [_described(MINIMUM_EFFECT, factor=factors), _described(EQUIVALENCE, factor=factors)]
+        parts += [described(MINIMUM_EFFECT, factor=factors), described(EQUIVALENCE, factor=factors)]
         parts.append(
             only(
                 "The verdict about size is the first that applies of: above the size, within it, different from zero but "
@@ -46,8 +46,10 @@ def size_methods(story: Story) -> Prose:
 
 
 def could_show_methods(story: Story) -> Prose:
-    """Return how the table of what the rows could show was made."""
-    return _described(COULD_SHOW, power=story.numbers.level("could_show/planned_power"))
+    """Return how the table of what the rows could show was made; empty where it holds no answer."""
+    if not has_answers(story):
+        return only("")
+    return described(COULD_SHOW, power=story.numbers.level("could_show/planned_power"))
 
 
 def _factors(story: Story, names: tuple[str, ...], key: str) -> Prose:
@@ -68,11 +70,3 @@ def _factors(story: Story, names: tuple[str, ...], key: str) -> Prose:
             for number, own in zip(numbers, owners.values(), strict=True)
         )
     )
-
-
-def _described(description: Description, **slots: Number | Prose | Emphasis | Supplied | str) -> Prose:
-    """Return what a rule says of itself, its works in brackets before the full stop."""
-    sentence = prose(description.sentence, **slots)
-    *body, last = sentence.pieces
-    assert isinstance(last, str)
-    return joined((Prose((*body, last.removesuffix("."))), joined((cite(*description.cites), only(".")), "")))

@@ -23,7 +23,7 @@ def _rests_on(story: Story) -> tuple[FoundCaveat, ...]:
     )
     return (
         FoundCaveat(
-            (),
+            decided,
             prose(
                 "Tests of a null value and of size are approximate: they take a variance that holds near normal-type "
                 "dependence {cite} and count no orderings.{finding} A verdict about size is taken at alpha shared equally "

@@ -33,7 +33,9 @@ def write(story: Story) -> Section:
     comparisons = _comparisons(story)
     if comparisons is not None:
         blocks.append(comparisons)
-    blocks.append(could_show_table(story))
+    could_show = could_show_table(story)
+    if could_show is not None:
+        blocks.append(could_show)
     spreads = tuple(spread(story, name, position) for position, name in enumerate(story.analysis.results, start=1))
     return Section("results-section", "6", only("Results"), tuple(blocks), spreads, opens="page")
 
