@@ -3,10 +3,11 @@
 Needs Python 3.9 or later and nothing else.  It holds every file against SHA256SUMS; ranks the values of rows.csv
 anew and holds the worksheets against them; recomputes each coefficient in whole numbers; counts all orderings of
 the rows where there are few enough; derives p, adjusted p and finding from the counts; holds results.csv against
-analysis.json; and looks up every printed number of document.json in analysis.json and in report.html.
+analysis.json; computes the approximate tests of size and of null values again; and looks up every printed number of
+document.json in analysis.json and in report.html.
 
 It does not read the spec and the data as received, does not recompute intervals, drawn permutations, the permutations of
-a family by step-down maxT and the bars of a null, and does not open the PDF.
+a family by step-down maxT, the bars of a null and what the rows could have shown, and does not open the PDF.
 """
 
 # ruff: noqa: T201 - it speaks to a person at a terminal
@@ -24,7 +25,7 @@ from collections.abc import Iterator
 from decimal import ROUND_HALF_EVEN, Context, Decimal
 from fractions import Fraction
 from functools import reduce
-from math import comb, factorial, gcd, prod
+from math import atanh, comb, erfc, factorial, gcd, isclose, prod, sqrt
 from operator import add, mul, sub
 from pathlib import Path
 from typing import Any
@@ -34,6 +35,12 @@ MOST_ROWS_COUNTED = 14
 
 DIGITS = 12
 """Significant digits of every filed value that is not whole."""
+
+FLOAT_DIGITS = 40
+"""Significant digits of a coefficient before it is taken as a double for the tests of size."""
+
+LEAST_P = 1e-300
+"""A p of the normal law that is smaller is filed as this."""
 
 RHO = "Spearman rho"
 MAX_T = "step-down maxT"
@@ -45,8 +52,11 @@ RESULT_ADDRESSES = {
     "interval_by": "interval/by",
     "p": "test/p",
     "p_by": "test/method",
+    "finding_by": "finding/by",
+    "p_of_finding": "finding/p",
     "p_adjusted": "finding/p_adjusted",
     "finding": "finding/word",
+    "size_verdict": "size/verdict",
 }
 """Column of results.csv → where its value stands below an association of analysis.json, if not under its own name."""
 
@@ -61,6 +71,7 @@ def main(folder: Path) -> int:
     try:
         analysis = json.loads((folder / "analysis.json").read_text(encoding="utf-8"))
         left = check_associations(folder, analysis, problems)
+        check_sizes(folder, analysis, problems)
         together = check_findings(folder, analysis, problems)
         check_results(folder, analysis, problems)
         numbers = check_printed(folder, analysis, problems)
@@ -232,6 +243,94 @@ def p_of(test: Any, count: int) -> Fraction:
     return Fraction(count + drawn, int(test["of"]) + drawn)
 
 
+def check_sizes(folder: Path, analysis: Any, problems: list[str]) -> None:
+    """Compute the tests of size and of null values again, and take the verdicts again."""
+    plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))
+    rows = read_csv(folder / "rows.csv")
+    for name, found in sorted(analysis["associations"].items()):
+        hypothesis, size = plan["associations"][name]["hypothesis"], found.get("size", {"state": "none"})
+        asked = hypothesis.get("null_value") is not None or hypothesis["smallest_of_interest"] is not None
+        hold(f"{name}: size", "size" in found, asked and found["test"]["state"] == "tested", problems)
+        if size["state"] != "tested":
+            continue
+        its_rows = [row for row in rows if row["association"] == name]
+        x, y = (doubled_midranks([Fraction(row[key]) for row in its_rows]) for key in ("x_value", "y_value"))
+        r = capped_rho(x, y)
+        hold_near(f"{name}: the coefficient of its tests of size", size["coefficient"], r, problems)
+        what, direction = f"{name}: size", found["test"]["direction"]
+        if hypothesis.get("null_value") is not None:
+            z = z_against(r, len(x), hypothesis["null_value"])
+            hold(f"{what}: null value", Fraction(size["value"]["null"]), Fraction(hypothesis["null_value"]), problems)
+            hold_near(f"{what}: z of the null value", size["value"]["z"], z, problems)
+            hold_near(f"{what}: p of the null value", size["value"]["p"], value_p(z, direction), problems, z * z)
+        if hypothesis["smallest_of_interest"] is not None:
+            check_verdict(what, found, (r, len(x), hypothesis["smallest_of_interest"]), problems)
+            family = analysis["inference"]["family"]
+            shared = name in family and plan["inference"]["several_tests"]["adjust"] != "none"
+            level = Fraction(plan["inference"]["alpha"]) / (len(family) if shared else 1)
+            hold(f"{what}: verdict", size["verdict"], verdict(found, level), problems)
+
+
+def check_verdict(what: str, found: Any, tested: tuple[float, int, str], problems: list[str]) -> None:
+    """Compute both tests of a smallest size of interest again."""
+    size, (r, n, delta) = found["size"], tested
+    hold(f"{what}: delta", Fraction(size["delta"]), Fraction(delta), problems)
+    upper, lower = z_against(r, n, delta), z_against(r, n, f"-{delta}")
+    above = above_p(upper, lower, found["test"]["direction"])
+    anew = {"z_upper": upper, "z_lower": lower, "p_above": above, "p_within": max(tail(lower), tail(-upper))}
+    for key, value in anew.items():
+        hold_near(f"{what}: {key}", size[key], value, problems, max(upper * upper, lower * lower))
+
+
+def verdict(found: Any, level: Fraction) -> str:
+    """Return the first of the four verdicts about size that applies."""
+    size, test = found["size"], found["test"]
+    independence = Fraction(test["p"]) if test["count"] is None else p_of(test, int(test["count"]))
+    if Fraction(size["p_above"]) <= level:
+        return "size above delta shown"
+    if Fraction(size["p_within"]) <= level:
+        return "size below delta shown"
+    return "independence rejected, size above delta not shown" if independence <= level else "undecided"
+
+
+def capped_rho(x: list[int], y: list[int]) -> float:
+    """Return rho, or the cap that the widest tie steps set where it lies beyond."""
+    numerator, x_square, y_square = rho_sums(x, y)
+    steps = [max(high - low for low, high in zip(places, places[1:])) for places in (sorted({*x}), sorted({*y}))]  # noqa: B905, RUF007 - Python 3.9
+    cap = 1 - steps[0] * steps[1] / (2 * sqrt(x_square) * sqrt(y_square))
+    return min(max(float(coefficient(numerator, x_square, y_square, FLOAT_DIGITS)), -cap), cap)
+
+
+def z_against(r: float, n: int, null: str) -> float:
+    """Return z of a coefficient against a null value, with the variance (1 + null²/2)/(n − 3) of atanh r."""
+    value = float(null)
+    return (atanh(r) - atanh(value)) * sqrt((n - 3) / (1 + value * value / 2))
+
+
+def value_p(z: float, side: str) -> float:
+    """Return p of the z of a null value."""
+    return min(1.0, 2 * tail(abs(z))) if side == "two-sided" else tail(z if side == "greater" else -z)
+
+
+def above_p(upper: float, lower: float, side: str) -> float:
+    """Return p of a size no larger than the one of interest from z against it and against its negative."""
+    if side == "two-sided":
+        return tail(max(upper, -lower)) + tail(max(-upper, lower))
+    return tail(upper) if side == "greater" else tail(-lower)
+
+
+def tail(z: float) -> float:
+    """Return the probability that a standard normal value is z or more."""
+    return erfc(z / sqrt(2)) / 2
+
+
+def hold_near(what: str, filed: str, anew: float, problems: list[str], z_square: float = 0.0) -> None:
+    """Note a double that is not the filed one to its digits; a p is as many times less sharp as its z is large."""
+    anew = max(anew, LEAST_P) if ": p" in what else anew
+    if not isclose(float(filed), anew, rel_tol=1e-11 * (1 + z_square), abs_tol=0 if ": p" in what else 1e-11):
+        problems.append(f"{what} is {filed}, made anew {anew:.12g}.")
+
+
 def check_findings(folder: Path, analysis: Any, problems: list[str]) -> list[str]:
     """Adjust every p again and decide again by the plan; return whose adjusted p rests on filed counts."""
     plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))
@@ -241,6 +340,8 @@ def check_findings(folder: Path, analysis: Any, problems: list[str]) -> list[str
         for name, found in analysis["associations"].items()
         if found["test"]["state"] == "tested"
     }
+    for name, found in sorted(analysis["associations"].items()):
+        check_deciding(name, found, plan["associations"][name]["hypothesis"], p_values, problems)
     everybody = {name: p_values.get(name, Fraction(1)) for name in family}
     rule = plan["inference"]["several_tests"]["adjust"]
     hold("inference: adjust", analysis["inference"]["adjust"], rule, problems)
@@ -253,15 +354,32 @@ def check_findings(folder: Path, analysis: Any, problems: list[str]) -> list[str
         finding = found["finding"]
         if "p_adjusted" in finding:
             hold_p(f"{name}: p_adjusted", finding["p_adjusted"], adjusted[name], problems)
-        if name not in p_values or finding["basis"] == "outside the family":
+        if found["test"]["state"] != "tested" or finding["basis"] == "outside the family":
             continue
         word = "not shown"
-        if (adjusted[name] if finding["basis"] == "family" else p_values[name]) <= alpha:
-            sign = "positive" if int(found["estimate"]["numerator"]) > 0 else "negative"
+        if (adjusted[name] if finding["basis"] == "family" else p_values.get(name, Fraction(1))) <= alpha:
+            by = finding["by"]
+            above = float(found["size"]["value"]["z"]) if by == "null value" else int(found["estimate"]["numerator"])
+            sign = "positive" if above > 0 else "negative"
             expected = plan["associations"][name]["hypothesis"]["expected_sign"]
-            word = "shown" if expected in ("either", sign) else "shown, opposite sign"
+            word = "shown" if by == "within" or expected in ("either", sign) else "shown, opposite sign"
         hold(f"{name}: the finding", finding["word"], word, problems)
     return together
+
+
+def check_deciding(name: str, found: Any, hypothesis: Any, p_values: dict[str, Fraction], problems: list[str]) -> None:
+    """Put the p that decides a claim in the place of that of independence, and hold the filed one against it."""
+    claim = "null value" if hypothesis.get("null_value") is not None else hypothesis.get("claim", "any")
+    hold(f"{name}: what decided", found["finding"]["by"], "rank test" if claim == "any" else claim, problems)
+    if claim != "any" and name in p_values:
+        size = found["size"]
+        if size["state"] == "tested":
+            filed = size["value"]["p"] if claim == "null value" else size[f"p_{claim}"]
+            p_values[name] = Fraction(filed)
+        else:
+            del p_values[name]
+    if name in p_values:
+        hold_p(f"{name}: p of the finding", found["finding"]["p"], p_values[name], problems)
 
 
 def error_rate(rule: str, family: list[str]) -> str:
@@ -373,11 +491,11 @@ def tau_sums(x: list[int], y: list[int]) -> tuple[int, int, int]:
     return numerator, in_x, in_y
 
 
-def coefficient(numerator: int, x_square: int, y_square: int) -> Decimal:
-    """Return the first over the root of the product of the others, 12 significant digits, half to even."""
+def coefficient(numerator: int, x_square: int, y_square: int, digits: int = DIGITS) -> Decimal:
+    """Return the first over the root of the product of the others, to so many significant digits, half to even."""
     wide = Context(prec=80)
     exact = wide.divide(Decimal(numerator), wide.sqrt(Decimal(x_square * y_square)))
-    return Context(prec=DIGITS, rounding=ROUND_HALF_EVEN).plus(exact)
+    return Context(prec=digits, rounding=ROUND_HALF_EVEN).plus(exact)
 
 
 def decimal_text(value: Fraction) -> str:

@@ -5,8 +5,8 @@ from typing import Final
 from rankdocket.analysis.results import Estimate
 from rankdocket.document.model import Column, Number, Prose, TableBlock
 from rankdocket.document.numbers import Numbers, look_up
-from rankdocket.document.prose import joined, only, prose
-from rankdocket.writing.phrases import EN_DASH_CELL, N, P, pointer
+from rankdocket.document.prose import only, prose
+from rankdocket.writing.phrases import EN_DASH_CELL, N, P, pointer, pointers
 from rankdocket.writing.section import Story
 
 TABLE: Final = "Table 9"
@@ -104,29 +104,25 @@ def _row(story: Story, name: str) -> tuple[Prose, ...]:
 
 
 _COLUMNS: Final = (
-    ("attainable_p", "smallest attainable p"),
+    ("attainable_p", "attainable p"),
     ("smallest_rho", "smallest size of rho"),
-    ("width_at_zero", "widths"),
+    ("width_at_zero", "width"),
 )
 
 
 def _reasons(story: Story) -> tuple[Prose, ...]:
-    """Return why a cell has no number, one sentence a column and reason."""
+    """Return why cells have no number, one sentence for the same cells and reason."""
     found: dict[tuple[str, str], list[str]] = {}
     for name in story.analysis.results:
-        told: set[str] = set()
+        lacking: dict[str, list[str]] = {}
         for key, words in _COLUMNS:
             at = f"{_AT}/{name}/{key}"
-            if story.numbers.has(f"{at}/reason") and (reason := _reason(story.numbers, at)) not in told:
-                told.add(reason)
-                found.setdefault((words, reason), []).append(name)
+            if story.numbers.has(f"{at}/reason"):
+                lacking.setdefault(_reason(story.numbers, at), []).append(words)
+        for reason, columns in lacking.items():
+            found.setdefault((" and no ".join(columns), reason), []).append(name)
     return tuple(
-        prose(
-            "No {words} for {names}: {reason}.",
-            words=words,
-            names=joined(tuple(only(pointer(name)) for name in names), ", "),
-            reason=reason,
-        )
+        prose("{names}: no {words}: {reason}.", names=pointers(tuple(names)), words=words, reason=reason)
         for (words, reason), names in found.items()
     )
 
