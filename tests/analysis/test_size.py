@@ -29,7 +29,7 @@ UPPER = NormalDist()
 ONE_SIDED = "alpha: 0.05, sidedness: one-sided"
 LONG = " ".join(str(place) for place in range(1, 61))
 SHUFFLED = " ".join(str((place * 37) % 61) for place in range(1, 61))
-"""Sixty values that stand with LONG in a rho of 0.0086."""
+"""Sixty values that stand with LONG in a rho of 0.05."""
 
 
 def analysed(v: str, more: str, *, sign: str = "positive", inference: str = "alpha: 0.05", **parts: Any) -> Analysis:

@@ -76,10 +76,15 @@ def could_show_words(numbers: Numbers, name: str, *, is_shared: bool) -> str:
     ]
     if not numbers.has(f"{at}/width_at_zero/value"):
         return "; ".join([*parts, f"no width of an interval: {_reason(numbers, f'{at}/width_at_zero')}"])
-    widths = [f"{numbers.coefficient(f'{at}/width_at_zero/value').text} wide at zero"]
+    widths = [f"{_width(numbers, f'{at}/width_at_zero').text} wide at zero"]
     if numbers.has(f"{at}/width_at_interest/value"):
-        widths.append(f"{numbers.coefficient(f'{at}/width_at_interest/value').text} at the smallest size of interest")
+        widths.append(f"{_width(numbers, f'{at}/width_at_interest').text} at the smallest size of interest")
     return "; ".join([*parts, f"a {level} interval would be about {' and '.join(widths)}"])
+
+
+def _width(numbers: Numbers, at: str) -> Number:
+    """Return a width; unlike a coefficient it has nothing to fear near 1."""
+    return numbers.coefficient(f"{at}/value", numbers.coefficient_decimals)
 
 
 def _level(story: Story) -> Number:
@@ -89,17 +94,17 @@ def _level(story: Story) -> Number:
 def _row(story: Story, name: str) -> tuple[Prose, ...]:
     at, numbers = f"{_AT}/{name}", story.numbers
 
-    def size(key: str) -> Prose:
-        return only(numbers.coefficient(f"{at}/{key}/value")) if numbers.has(f"{at}/{key}/value") else EN_DASH_CELL
+    def width(key: str) -> Prose:
+        return only(_width(numbers, f"{at}/{key}")) if numbers.has(f"{at}/{key}/value") else EN_DASH_CELL
 
-    attainable = f"{at}/attainable_p/value"
+    attainable, smallest = f"{at}/attainable_p/value", f"{at}/smallest_rho/value"
     return (
         only(pointer(name)),
         only(numbers.whole(f"{at}/rows")),
         only(numbers.attainable_p(attainable)) if numbers.has(attainable) else EN_DASH_CELL,
-        size("smallest_rho"),
-        size("width_at_zero"),
-        size("width_at_interest"),
+        only(numbers.coefficient(smallest)) if numbers.has(smallest) else EN_DASH_CELL,
+        width("width_at_zero"),
+        width("width_at_interest"),
     )
 
 
