@@ -60,7 +60,7 @@ def _ranks(name: str, result: AssociationAnalysis, plain: Mapping[str, Plain]) -
 def _results(analysis: Analysis, plain: Mapping[str, Plain]) -> bytes:
     head = (
         "association", "x", "y", "n", "coefficient", "value", "interval_low", "interval_high", "interval_by",
-        "p", "sidedness", "p_by", "finding_by", "p_of_finding", "p_adjusted", "finding", "size_verdict",
+        "p", "sidedness", "p_by", "finding_by", "p_of_finding", "p_adjusted", "size_verdict", "finding",
     )  # fmt: skip
     return _csv(head, (_result(name, result, analysis, plain) for name, result in analysis.results.items()))
 
@@ -86,8 +86,8 @@ def _result(name: str, result: AssociationAnalysis, analysis: Analysis, plain: M
         deciding_test(spec),
         str(look_up(plain, f"{at}/finding/p")) if deciding_p(result) is not None else _ABSENT,
         str(look_up(plain, f"{at}/finding/p_adjusted")) if finding.p_adjusted is not None else _ABSENT,
-        finding.word or "no finding",
         result.size.size.verdict if isinstance(result.size, SizeAnalysis) and result.size.size else _ABSENT,
+        finding.word or "no finding",
     )
 
 
