@@ -286,3 +286,14 @@ def test_claims_never_wait_for_draws() -> None:
     findings = [analyse(*replace(invented, inference=text).read()).findings["A1"] for text in ("alpha: 0.05", drawn)]
     assert findings[0] == findings[1]
     assert not findings[1].undecided
+
+
+def test_the_smallest_attainable_p_is_told_as_that_of_independence_where_a_claim_decides() -> None:
+    """Four rows reach no two-sided p of 0.05; a claim does not ask for it."""
+    reasons = {}
+    for more in ("smallest_of_interest: 0.3", "smallest_of_interest: 0.3, claim: above"):
+        plan = {"A1": association(more=more)}
+        analysis = replace(Invented(), columns={"u": "1 2 3 4", "v": "1 2 3 4"}, associations=plan).analysed()
+        reasons[more] = next(check.reason for check in analysis.results["A1"].checks if check.key == "attainable_p")
+    plain, claimed = reasons.values()
+    assert claimed == f"concerning independence, on which the finding does not rest: {plain}"

@@ -121,3 +121,17 @@ def test_a_claim_is_part_of_the_plan_and_comes_back(text: str) -> None:
     )
     assert digest_of(plan_of(again)) == digest_of(plan_of(spec)) != digest_of(plan_of(read_spec(RHO, "s.yaml")))
     assert jsonschema.Draft202012Validator(json_schema()).is_valid(yaml.safe_load(spec_as_used(spec)))
+
+
+@pytest.mark.parametrize(("key", "place"), [("claim: above", 78), ("null_value: 0.1", 83)])
+def test_a_family_by_step_down_max_t_makes_no_claims(key: str, place: int) -> None:
+    """Its permutations are those of independence; a claim has a test of its own."""
+    adjusted = changed(with_keys(RHO, key), ("adjust: none, among: all", "adjust: step-down maxT, among: all"))
+    told = [message for message in spec_messages(adjusted) if "permutes under independence" in message]
+    name = key.split(":", maxsplit=1)[0]
+    assert told == [
+        (
+            f"s.yaml:66:{place}: associations.A1.hypothesis.{name}: step-down maxT permutes under independence, and {name} of A1 "
+            f"is decided by a test of its own. Leave {name} out, or write another adjust, such as Holm. (message 40)"
+        )
+    ]

@@ -6,16 +6,15 @@ from fractions import Fraction
 from typing import Final
 
 from rankdocket.analysis.checks.independence import KEY as INDEPENDENCE
-from rankdocket.analysis.family import family_size
-from rankdocket.analysis.nulls import smallest_possible_p
+from rankdocket.analysis.family import adjusts_together, sharers_of
+from rankdocket.analysis.nulls import levels_of, smallest_possible_p
 from rankdocket.analysis.results import CheckOutcome, Screened
-from rankdocket.analysis.size import share_of_alpha
 from rankdocket.references import Description
 from rankdocket.stats.coefficient import FEWEST_ROWS as FEWEST_OF_A_COEFFICIENT
 from rankdocket.stats.interval_width import width_at
 from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.stats.sample_size import FEWEST_ROWS, PlannedTest, smallest_rho
-from rankdocket.study.spec import StudySpec
+from rankdocket.study.spec import AssociationSpec, StudySpec
 
 COULD_SHOW: Final = Description(
     "What the rows could show was worked out from their number, their ties and the plan alone: the smallest p that they "
@@ -35,7 +34,7 @@ class CouldShow:
     rows
         Complete rows.
     level
-        The strictest level at which the p-value may have to lie: alpha over the members of an adjusted family.
+        The strictest level at which the p-value may have to lie by the adjustment of its family; alpha outside one.
     attainable_p
         The smallest p that rows, ties and null allow.
     smallest_rho
@@ -63,7 +62,7 @@ def could_show(screened: Screened, spec: StudySpec, outcomes: tuple[CheckOutcome
     outcomes
         Of the checks that show nothing joint; others do no harm.
     """
-    rows, level = len(screened.rows), share_of_alpha(screened.spec, spec)
+    rows, level = len(screened.rows), strictest_level(screened.spec, spec)
     if rows < FEWEST_OF_A_COEFFICIENT or min(screened.x_ties.distinct, screened.y_ties.distinct) < 2:
         nothing = NoAnswer("no rank correlation exists for these rows")
         interest = None if screened.spec.hypothesis.smallest_of_interest is None else nothing
@@ -81,6 +80,16 @@ def could_show(screened: Screened, spec: StudySpec, outcomes: tuple[CheckOutcome
     )
 
 
+def strictest_level(association: AssociationSpec, spec: StudySpec) -> Fraction:
+    """Return alpha over the largest factor of the adjustment.
+
+    Step-down maxT has no factors; beside tests that all fail it asks for no stricter level than alpha shared equally.
+    """
+    if adjusts_together(spec):
+        return Fraction(spec.inference.alpha) / sharers_of(association, spec)
+    return min(levels_of(association, spec))
+
+
 def _smallest_rho(
     screened: Screened, spec: StudySpec, outcomes: tuple[CheckOutcome, ...], attainable: Fraction
 ) -> float | NoAnswer:
@@ -91,10 +100,10 @@ def _smallest_rho(
         return _FOR_RHO
     if len(screened.rows) < FEWEST_ROWS:
         return _TOO_FEW
-    if attainable > share_of_alpha(screened.spec, spec):
+    if attainable > strictest_level(screened.spec, spec):
         return NoAnswer("even perfect order could not reach the strictest level")
     inference = spec.inference
-    planned = PlannedTest(inference.alpha, inference.sidedness, family_size(screened.spec, spec))
+    planned = PlannedTest(strictest_level(screened.spec, spec), inference.sidedness)
     return smallest_rho(len(screened.rows), float(inference.planned_power), planned)
 
 

@@ -56,6 +56,12 @@ def factors_of(association: AssociationSpec, spec: StudySpec) -> tuple[Fraction,
     return adjustment_of(spec).factors(len(family)) if association.name in family else (Fraction(1),)
 
 
+def sharers_of(association: AssociationSpec, spec: StudySpec) -> int:
+    """Return among how many alpha is shared equally for what no adjustment covers: 1 outside an adjusted family."""
+    family = family_of(spec)
+    return len(family) if association.name in family and spec.inference.several_tests.adjust != "none" else 1
+
+
 def basis_of(association: AssociationSpec, spec: StudySpec) -> FindingBasis:
     """Return what decides an association.
 

@@ -1,6 +1,6 @@
 """How values are filed: integers and fractions as they are, everything else as 12 significant digits of text."""
 
-from decimal import ROUND_HALF_EVEN, Context, Decimal
+from decimal import ROUND_FLOOR, ROUND_HALF_EVEN, Context, Decimal
 from fractions import Fraction
 from typing import Final
 
@@ -41,6 +41,11 @@ def filed_beside(value: Fraction, level: Decimal) -> str:
 def filed_value(value: Decimal) -> str:
     """Return an exact value in full, never in exponent form, as a stranger's program reads it."""
     return f"{value:f}"
+
+
+def rounded_down(value: Fraction, digits: int) -> Decimal:
+    """Return a number of 0 or more with at most so many significant digits, never above ``value``."""
+    return Context(prec=digits, rounding=ROUND_FLOOR).divide(Decimal(value.numerator), Decimal(value.denominator))
 
 
 def half(doubled: int) -> str:

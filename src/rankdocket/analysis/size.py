@@ -1,13 +1,13 @@
 """Tests of a value other than nought and of size: for one association, what the plan asks of them."""
 
 from dataclasses import replace
-from decimal import ROUND_FLOOR, Context, Decimal, Inexact
+from decimal import Decimal
 from fractions import Fraction
 from typing import Final
 
 from rankdocket.analysis.check import direction_of
-from rankdocket.analysis.family import family_size
-from rankdocket.analysis.filing import DIGITS, filed
+from rankdocket.analysis.family import sharers_of
+from rankdocket.analysis.filing import DIGITS, filed, rounded_down
 from rankdocket.analysis.results import RankTest, Screened
 from rankdocket.analysis.size_results import SizeAnalysis, SizeTests, ValueTest
 from rankdocket.stats.equivalence import minimum_effect, size_verdict, tost_z, value_test
@@ -34,7 +34,7 @@ def asks_about_size(hypothesis: HypothesisSpec) -> bool:
 
 def share_of_alpha(association: AssociationSpec, spec: StudySpec) -> Fraction:
     """Return the level of a verdict about size: alpha over the members of an adjusted family, else alpha."""
-    return Fraction(spec.inference.alpha) / family_size(association, spec)
+    return Fraction(spec.inference.alpha) / sharers_of(association, spec)
 
 
 def size_analysis(
@@ -97,11 +97,9 @@ def twelve_digits(p: float) -> Fraction:
 
 def equivalence_level(alpha: Decimal, members: int) -> Decimal:
     """Return 1 − 2·alpha/``members``; rounded up where the quotient has no end, so that the interval is the wider one."""
-    whole = Context(prec=DIGITS, rounding=ROUND_FLOOR, traps=[])
-    beyond = whole.divide(2 * alpha, Decimal(members))
-    if whole.flags[Inexact]:
-        beyond = Context(prec=LEVEL_DIGITS, rounding=ROUND_FLOOR).plus(beyond)
-    return 1 - beyond
+    share = 2 * Fraction(alpha) / members
+    beyond = rounded_down(share, DIGITS)
+    return 1 - (beyond if beyond == share else rounded_down(share, LEVEL_DIGITS))
 
 
 def _value_test(screened: Screened, spec: StudySpec, r: float, null: Decimal) -> ValueTest | NoAnswer:
@@ -118,7 +116,7 @@ def _interval_of_equivalence(
     """Return the interval that belongs to two one-sided tests at the level of the verdict."""
     if isinstance(interval, NoInterval):
         return interval
-    level = equivalence_level(spec.inference.alpha, family_size(screened.spec, spec))
+    level = equivalence_level(spec.inference.alpha, sharers_of(screened.spec, spec))
     if level <= 0:
         return NoInterval("alpha leaves no level for it")
     return interval_by(interval.method, replace(question, level=level, direction="two-sided"))

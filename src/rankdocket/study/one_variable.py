@@ -23,6 +23,7 @@ def max_t_faults(parts: Parts, roles: tuple[str, ...]) -> Iterator[Fault]:
         return
     yield from _variable_faults(parts, family)
     yield from _coefficient_faults(parts, family)
+    yield from _claim_faults(parts, family)
     if parts.inference.sidedness == "one-sided":
         yield from _direction_faults(parts, family)
 
@@ -41,6 +42,17 @@ def _coefficient_faults(parts: Parts, family: dict[str, AssociationForm]) -> Ite
             what = f"step-down maxT compares Spearman rho only, and {name} asks for {association.coefficient}."
             remedy = f"Write coefficient: Spearman rho, {_ELSE}"
             yield fault(place, f"associations.{name}.coefficient", Message.CONTRADICTION, what, remedy)
+
+
+def _claim_faults(parts: Parts, family: dict[str, AssociationForm]) -> Iterator[Fault]:
+    for name, association in family.items():
+        key = "null_value" if association.hypothesis.null_value is not None else "claim"
+        if key == "claim" and association.hypothesis.claim == "any":
+            continue
+        place = parts.value_place("associations", name, "hypothesis", key)
+        what = f"step-down maxT permutes under independence, and {key} of {name} is decided by a test of its own."
+        remedy = f"Leave {key} out, {_ELSE}"
+        yield fault(place, f"associations.{name}.hypothesis.{key}", Message.CONTRADICTION, what, remedy)
 
 
 def _direction_faults(parts: Parts, family: dict[str, AssociationForm]) -> Iterator[Fault]:

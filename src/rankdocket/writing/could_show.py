@@ -44,8 +44,8 @@ def could_show_table(story: Story) -> TableBlock | None:
         notes=(
             prose(
                 "Worked out from the number of rows, their ties and the plan alone. The size of rho is that which the test "
-                "of independence finds with that power at alpha shared among all members of an adjusted family, the "
-                "strictest level that can apply; it is approximate and does not allow for ties. The widths are those of "
+                "of independence finds with that power at the strictest level that the adjustment of the family can put "
+                "to it; it is approximate and does not allow for ties. The widths are those of "
                 "the textbook interval of Bonett and Wright; the interval of this report can be wider.",
             ),
             *_reasons(story),
@@ -62,12 +62,12 @@ def has_answers(story: Story) -> bool:
     )
 
 
-def could_show_words(numbers: Numbers, name: str, *, is_shared: bool) -> str:
+def could_show_words(numbers: Numbers, name: str, *, is_strict: bool) -> str:
     """Return the same of one association as the end of a line on a terminal, from " The planned power" on."""
     at = f"{_AT}/{name}"
     power = numbers.level("could_show/planned_power").text
     level = numbers.percent("could_show/interval_level").text
-    strictest = ", alpha shared among the family," if is_shared else ""
+    strictest = " at the strictest level of the family" if is_strict else ""
     found = numbers.has(f"{at}/smallest_rho/value")
     parts = [
         f"with power {power}{strictest} a rho of {numbers.coefficient(f'{at}/smallest_rho/value').text} in size would be found"

@@ -1,9 +1,10 @@
 """A screening as numbered sentences for a terminal, in our own order."""
 
 from collections.abc import Iterator
+from fractions import Fraction
 
 from rankdocket.analysis.checks import CHECKS
-from rankdocket.analysis.family import family_size
+from rankdocket.analysis.could_show import strictest_level
 from rankdocket.analysis.results import CheckOutcome, Measure
 from rankdocket.analysis.screening import Screening
 from rankdocket.analysis.variables import VariableSummary, summarise
@@ -99,12 +100,14 @@ def _could_show(screening: Screening) -> Iterator[str]:
         if attainable is None:
             yield f"{name}: {rows} complete rows; no rank correlation exists for them."
         else:
-            is_shared = family_size(screening.spec.associations[name], screening.spec) > 1
+            is_strict = strictest_level(screening.spec.associations[name], screening.spec) < Fraction(
+                screening.spec.inference.alpha
+            )
             yield (
                 f"{name}: {rows} complete rows; the smallest possible p is "
                 f"{_printed(screening, name, attainable, attainable.found)}."
             )
-            yield f"{name}: {could_show_words(_numbers(screening), name, is_shared=is_shared)}."
+            yield f"{name}: {could_show_words(_numbers(screening), name, is_strict=is_strict)}."
 
 
 def _figures(screening: Screening, name: str, outcome: CheckOutcome) -> str:

@@ -3,7 +3,7 @@
 from typing import Final
 
 from rankdocket.analysis.deciding import deciding_test
-from rankdocket.analysis.family import family_size
+from rankdocket.analysis.family import sharers_of
 from rankdocket.analysis.results import RankTest
 from rankdocket.analysis.size_results import SizeAnalysis, SizeTests
 from rankdocket.document.model import Number, Prose
@@ -204,7 +204,7 @@ def _level(story: Story, name: str) -> Prose:
     """Return the level of the verdict: alpha, or alpha over the members of the family, which errs on the safe side."""
     numbers = story.numbers
     alpha = numbers.level("inference/alpha")
-    if family_size(story.analysis.spec.associations[name], story.analysis.spec) == 1:
+    if sharers_of(story.analysis.spec.associations[name], story.analysis.spec) == 1:
         return prose("level {alpha}", alpha=alpha)
     return prose(
         "level {alpha} over {members} members of the family",

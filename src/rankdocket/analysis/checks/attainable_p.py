@@ -1,9 +1,11 @@
 """Whether any result could be shown at all: the smallest p that these ties and this number of rows allow."""
 
+from dataclasses import replace
 from fractions import Fraction
 from typing import Final
 
 from rankdocket.analysis.check import Check, level_measure, p_measure
+from rankdocket.analysis.deciding import deciding_test
 from rankdocket.analysis.family import adjusts_together, factors_of, family_of
 from rankdocket.analysis.family_max_t import smallest_max_t_p
 from rankdocket.analysis.nulls import smallest_of_rows, smallest_possible_p
@@ -15,6 +17,14 @@ KEY: Final = "attainable_p"
 
 
 def examine(screened: Screened, spec: StudySpec) -> CheckOutcome:
+    """Hold the smallest attainable p of the rank test against alpha, and say where no finding rests on that test."""
+    outcome = _of_the_rank_test(screened, spec)
+    if outcome.state not in ("doubtful", "not met") or deciding_test(screened.spec) == "rank test":
+        return outcome
+    return replace(outcome, reason=f"concerning independence, on which the finding does not rest: {outcome.reason}")
+
+
+def _of_the_rank_test(screened: Screened, spec: StudySpec) -> CheckOutcome:
     """Hold the smallest attainable p against alpha, and against alpha as the adjustment may share it.
 
     A rule whose smallest factor is above 1 multiplies every p, whatever becomes of the other tests; its largest factor
