@@ -179,7 +179,17 @@ class Comparisons:
 
 @dataclass(frozen=True, slots=True)
 class AssociationAnalysis:
-    """Everything found for one association."""
+    """Everything found for one association.
+
+    Attributes
+    ----------
+    interval
+        The one that is printed: adjusted for the family where the plan says so and the association is concerned.
+    interval_alone
+        The interval at the plan’s own level where ``interval`` is an adjusted one, else ``None``.
+    interval_stream
+        The address of the random stream of its resamples; empty without them.
+    """
 
     screened: Screened
     checks: tuple[CheckOutcome, ...]
@@ -188,6 +198,8 @@ class AssociationAnalysis:
     interval: Interval | NoInterval
     comparisons: Comparisons
     smallest_attainable_p: Fraction | None
+    interval_alone: Interval | NoInterval | None = None
+    interval_stream: tuple[str, ...] = ()
 
 
 FindingBasis: TypeAlias = Literal["family", "own p-value", "outside the family"]

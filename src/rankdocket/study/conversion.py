@@ -19,6 +19,7 @@ from rankdocket.study.spec import (
     GroupsSpec,
     HypothesisSpec,
     InferenceSpec,
+    IntervalSpec,
     LeaveOutSpec,
     Person,
     PValueSpec,
@@ -150,6 +151,7 @@ def _inference(parts: Parts, form: InferenceForm) -> InferenceSpec:
         alpha=form.alpha,
         sidedness=form.sidedness,
         confidence_level=form.confidence_level,
+        interval=IntervalSpec(form.interval.by, form.interval.adjusted, form.interval.resamples),
         several_tests=SeveralTestsSpec(several.adjust, several.among, several.reason),
         p_value=PValueSpec(
             p_value.by,

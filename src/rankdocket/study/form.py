@@ -17,6 +17,8 @@ from rankdocket.vocabulary import (
     EXPECTED_SIGNS,
     FAMILIES,
     IF_NOT_MET,
+    INTERVAL_ADJUSTMENTS,
+    INTERVAL_BY,
     NUMBER_STYLES,
     P_BY,
     READERS,
@@ -29,6 +31,8 @@ from rankdocket.vocabulary import (
     ExpectedSign,
     Family,
     IfNotMet,
+    IntervalAdjustment,
+    IntervalBy,
     NumberStyle,
     PBy,
     Reader,
@@ -54,6 +58,8 @@ THOUSANDS_MARKS: Final = (",", ".", " ", "'", "\u2019", "\u00a0", "\u202f")
 LAST_ROW: Final = 100_000_000
 MOST_PERMUTATIONS: Final = 10_000_000
 FEWEST_PERMUTATIONS: Final = 999
+FEWEST_RESAMPLES: Final = 999
+MOST_RESAMPLES: Final = 1_000_000
 MOST_SECONDS: Final = Decimal(86_400)
 MOST_MEMORY: Final = 64 * 2**30
 LARGEST_SEED: Final = 2**63 - 1
@@ -269,6 +275,20 @@ class PValueForm(Form):
     )
 
 
+class IntervalForm(Form):
+    """How intervals are computed."""
+
+    by: Annotated[IntervalBy, kinds.OneOf(INTERVAL_BY)] = Field(
+        default="guarded jackknife", description="The interval rule."
+    )
+    adjusted: Annotated[IntervalAdjustment, kinds.OneOf(INTERVAL_ADJUSTMENTS)] = Field(
+        default="none", description="What the intervals of the family are adjusted for."
+    )
+    resamples: Annotated[int, kinds.WholeNumber(FEWEST_RESAMPLES, MOST_RESAMPLES)] = Field(
+        default=9_999, description="Resamples of the rows drawn for the BCa bootstrap."
+    )
+
+
 class InferenceForm(Form):
     """The decision rule of the study."""
 
@@ -281,6 +301,7 @@ class InferenceForm(Form):
     confidence_level: Annotated[Decimal, kinds.DecimalNumber(_HALF, _ONE, (_ONE,))] = Field(
         default=Decimal("0.95"), description="Level of the intervals."
     )
+    interval: IntervalForm = Field(default_factory=IntervalForm, description="How intervals are computed.")
     several_tests: SeveralTestsForm = Field(
         default_factory=SeveralTestsForm, description="Adjustment for several tests."
     )

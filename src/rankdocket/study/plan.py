@@ -101,6 +101,11 @@ def _inference(inference: InferenceSpec) -> Plain:
         "alpha": _shortest(inference.alpha),
         "sidedness": inference.sidedness,
         "confidence_level": _shortest(inference.confidence_level),
+        "interval": {
+            "by": inference.interval.by,
+            "adjusted": inference.interval.adjusted,
+            "resamples": inference.interval.resamples,
+        },
         "several_tests": {
             "adjust": inference.several_tests.adjust,
             "among": inference.several_tests.among,

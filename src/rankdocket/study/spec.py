@@ -15,6 +15,8 @@ from rankdocket.vocabulary import (
     ExpectedSign,
     Family,
     IfNotMet,
+    IntervalAdjustment,
+    IntervalBy,
     NumberStyle,
     PBy,
     Reader,
@@ -224,12 +226,22 @@ class PValueSpec:
 
 
 @dataclass(frozen=True, slots=True)
+class IntervalSpec:
+    """How intervals are computed, what those of the family are adjusted for, and resamples where a rule draws."""
+
+    by: IntervalBy
+    adjusted: IntervalAdjustment
+    resamples: int
+
+
+@dataclass(frozen=True, slots=True)
 class InferenceSpec:
     """``inference``: the decision rule of the study."""
 
     alpha: Decimal
     sidedness: Sidedness
     confidence_level: Decimal
+    interval: IntervalSpec
     several_tests: SeveralTestsSpec
     p_value: PValueSpec
     place: Place

@@ -32,6 +32,8 @@ _PLAIN_WORDS: Final = frozenset(
         *vocabulary.SIDEDNESS,
         *vocabulary.ADJUSTMENTS,
         *vocabulary.FAMILIES,
+        *vocabulary.INTERVAL_BY,
+        *vocabulary.INTERVAL_ADJUSTMENTS,
         *vocabulary.P_BY,
         *vocabulary.IF_NOT_MET,
         *vocabulary.READERS,
@@ -150,6 +152,11 @@ def _inference(inference: InferenceSpec) -> _Value:
         "alpha": inference.alpha,
         "sidedness": inference.sidedness,
         "confidence_level": inference.confidence_level,
+        "interval": {
+            "by": inference.interval.by,
+            "adjusted": inference.interval.adjusted,
+            "resamples": inference.interval.resamples,
+        },
         "several_tests": {"adjust": several.adjust, "among": several.among, "reason": several.reason},
         "p_value": {
             "by": p_value.by,
