@@ -11,6 +11,7 @@ from rankdocket.analysis.family import family_of
 from rankdocket.analysis.filing import DIGITS
 from rankdocket.analysis.rank_codes import rank_codes
 from rankdocket.analysis.results import AssociationAnalysis, CheckOutcome, Estimate, Finding, Screened
+from rankdocket.references import Description
 from rankdocket.stats.draws import stream
 from rankdocket.stats.interval import Interval, IntervalQuestion, NoInterval, Resampling
 from rankdocket.stats.intervals import planned_interval
@@ -18,6 +19,20 @@ from rankdocket.study.spec import StudySpec
 
 SHOWN: Final = ("shown", "shown, opposite sign")
 """Findings that select an association: its adjusted p lay at or below alpha."""
+
+SIMULTANEOUS: Final = Description(
+    "The intervals of the {family} members of the family were computed at {each} each, the error of {level} divided evenly "
+    "among the members, estimable or not: as far as each holds its own level, all of them hold together at {level}, "
+    "whatever the dependence between them.",
+    ("dunn1961",),
+)
+AFTER_SELECTION: Final = Description(
+    "The intervals of the {selected} members shown, of {family} in the family, were computed at {each} each, the error of "
+    "{level} times members shown over members: as far as each holds its own level, and estimates are independent or "
+    "depend on one another positively, the expected share of intervals so selected that miss is the error of {level} at "
+    "most; under other dependence it can be larger.",
+    ("benjamini2005",),
+)
 
 _DOWN: Final = Context(prec=DIGITS, rounding=ROUND_FLOOR)
 _WIDE: Final = Context(prec=100)

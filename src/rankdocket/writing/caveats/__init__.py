@@ -4,7 +4,7 @@ from typing import Final
 
 from rankdocket.document.model import CaveatBlock
 from rankdocket.writing.caveat import CaveatRule
-from rankdocket.writing.caveats import adjustment, more_variables, requirements, results, study
+from rankdocket.writing.caveats import adjustment, intervals, more_variables, requirements, results, study
 from rankdocket.writing.section import NumberedCaveat, Story
 
 CAVEATS: Final[tuple[CaveatRule, ...]] = (
@@ -15,15 +15,20 @@ CAVEATS: Final[tuple[CaveatRule, ...]] = (
     results.UNDECIDED,
     results.TWO_SIDED_RULE,
     results.TEST_AND_INTERVAL,
-    results.PERFECT,
+    intervals.PERFECT,
+    intervals.GUARD,
+    intervals.CAP,
+    intervals.FALLBACK,
     results.SMALL_SAMPLE,
     study.LEFT_OUT_ROWS,
     study.INCOMPLETE_ROWS,
     more_variables.GROUPS,
     more_variables.GIVEN_COVARIATES,
-    study.NO_INTERVAL,
+    intervals.BEYOND,
+    intervals.RESAMPLES,
+    intervals.NO_INTERVAL,
     adjustment.CONDITION_OF_ADJUSTMENT,
-    study.INTERVAL_BASIS,
+    intervals.INTERVAL_BASIS,
     study.ASSOCIATION_ONLY,
     study.INDEPENDENCE_NULL,
     study.DECISION,

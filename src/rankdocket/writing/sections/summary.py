@@ -8,6 +8,7 @@ from rankdocket.document.prose import joined, listed, only, prose
 from rankdocket.vocabulary import FINDINGS
 from rankdocket.writing.adjustment import bound_sentence
 from rankdocket.writing.findings import finding_sentence, finding_word
+from rankdocket.writing.intervals import given, intervals_hold
 from rankdocket.writing.phrases import (
     N,
     address,
@@ -57,6 +58,8 @@ def summary(story: Story) -> Section:
                 "note",
             )
         )
+    if len(given(story)) > 1:
+        blocks.append(Paragraph(intervals_hold(story), "note"))
     heaviest = _heaviest(story, shown)
     blocks.append(
         Paragraph(
