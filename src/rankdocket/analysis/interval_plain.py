@@ -28,9 +28,9 @@ def interval_plan_to_plain(analysis: Analysis) -> dict[str, Plain]:
 def intervals_to_plain(result: AssociationAnalysis, adjusted: str) -> dict[str, Plain]:
     """Return the interval as printed, the one at the plan’s level where that is another, and the attainable range."""
     holds = "alone" if result.interval_alone is None else adjusted
-    plain: dict[str, Plain] = {"interval": {**_interval(result, result.interval), "holds": holds}}
+    plain: dict[str, Plain] = {"interval": _interval(result, result.interval, holds)}
     if result.interval_alone is not None:
-        plain["interval_alone"] = _interval(result, result.interval_alone)
+        plain["interval_alone"] = _interval(result, result.interval_alone, "alone")
     if isinstance(result.estimate, Estimate):
         screened = result.screened
         limits = attainable_range(screened.spec.coefficient, screened.x_ties, screened.y_ties)
@@ -38,7 +38,7 @@ def intervals_to_plain(result: AssociationAnalysis, adjusted: str) -> dict[str, 
     return plain
 
 
-def _interval(result: AssociationAnalysis, interval: Interval | NoInterval) -> dict[str, Plain]:
+def _interval(result: AssociationAnalysis, interval: Interval | NoInterval, holds: str) -> dict[str, Plain]:
     if not isinstance(interval, Interval):
         return {"state": "none", "reason": interval.reason}
     plain: dict[str, Plain] = {
@@ -47,6 +47,7 @@ def _interval(result: AssociationAnalysis, interval: Interval | NoInterval) -> d
         "high": filed(interval.high),
         "level": str(interval.level),
         "by": interval.method,
+        "holds": holds,
         "cap_binds": interval.cap_binds,
         "restraints": list(interval.restraints),
     }

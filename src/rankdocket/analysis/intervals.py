@@ -21,16 +21,16 @@ SHOWN: Final = ("shown", "shown, opposite sign")
 """Findings that select an association: its adjusted p lay at or below alpha."""
 
 SIMULTANEOUS: Final = Description(
-    "The intervals of the {family} members of the family were computed at {each} each, the error of {level} divided evenly "
-    "among the members, estimable or not: as far as each holds its own level, all of them hold together at {level}, "
-    "whatever the dependence between them.",
+    "The intervals of the {family} members of the family were computed at {each} each, the error that {level} leaves "
+    "divided evenly among the members, estimable or not: as far as each holds its own level, all of them hold together at "
+    "{level}, whatever the dependence between them.",
     ("dunn1961",),
 )
 AFTER_SELECTION: Final = Description(
-    "The intervals of the {selected} members shown, of {family} in the family, were computed at {each} each, the error of "
-    "{level} times members shown over members: as far as each holds its own level, and estimates are independent or "
-    "depend on one another positively, the expected share of intervals so selected that miss is the error of {level} at "
-    "most; under other dependence it can be larger.",
+    "The intervals of the {selected} members shown, of {family} in the family, were computed at {each} each, the error that "
+    "{level} leaves times members shown over members: as far as each holds its own level, and estimates are independent or "
+    "depend on one another positively, the expected share of intervals so selected that miss is no more than that error; "
+    "under other dependence it can be larger.",
     ("benjamini2005",),
 )
 

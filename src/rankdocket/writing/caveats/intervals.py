@@ -90,9 +90,7 @@ def _perfect(story: Story) -> tuple[FoundCaveat, ...]:
                 "{name}: all rows follow one order, so that the sample holds no disagreement from which an error could be "
                 "estimated.{interval}",
                 name=pointer(name),
-                interval=_limit_at_perfect_order(story, name, result.interval)
-                if isinstance(result.interval, Interval)
-                else "",
+                interval=_limit_at_perfect_order(story, name),
             ),
         )
         for name, result in story.analysis.results.items()
@@ -100,11 +98,15 @@ def _perfect(story: Story) -> tuple[FoundCaveat, ...]:
     )
 
 
-def _limit_at_perfect_order(story: Story, name: str, interval: Interval) -> Prose | str:
-    """Return on what the limit away from the perfect end rests; nothing where the bound asked for is that end."""
-    inner = "low" if interval.high == 1 else "high"
-    if (interval.direction, inner) in (("greater", "high"), ("less", "low")):
-        return " The bound asked for is that order itself."
+def _limit_at_perfect_order(story: Story, name: str) -> Prose | str:
+    """Return on what the limit away from the perfect end rests; a bound at that end itself excludes nothing."""
+    result = story.analysis.results[name]
+    interval = result.interval
+    if not isinstance(interval, Interval) or not isinstance(result.estimate, Estimate):
+        return ""
+    inner = "low" if result.estimate.coefficient.numerator > 0 else "high"
+    if interval.direction != "two-sided" and inner != {"greater": "low", "less": "high"}[interval.direction]:
+        return " The bound on the side that the plan expects excludes no value."
     limit = _limit(story, name, inner)
     if "guard" in interval.restraints:
         return prose(" {unseen}; hence the limit {limit}.", unseen=_unseen(story, name), limit=limit)
@@ -116,8 +118,8 @@ def _guard(story: Story) -> tuple[FoundCaveat, ...]:
         FoundCaveat(
             (name,),
             prose(
-                "{name}: the order is nearly perfect. {unseen}; a limit was drawn back to what is left of the coefficient "
-                "then, {limit}.",
+                "{name}: the rows stand nearly in one order. {unseen}; a limit was drawn back to what is left of the "
+                "coefficient then, {limit}.",
                 name=pointer(name),
                 unseen=_unseen(story, name),
                 limit=_limit(story, name, "low" if interval.low > 0 else "high"),
