@@ -37,7 +37,7 @@ def interval_cell(story: Story, name: str) -> Prose:
 def intervals_hold(story: Story) -> Prose:
     """Return for what the intervals of the study hold, as one or two sentences."""
     holds = {interval_holds(story, name) for name in given(story)}
-    alone = only("An interval marked “alone” holds for its association alone.")
+    alone = only("One marked “alone” holds for its association alone.")
     if "simultaneous" in holds:
         together = prose("The intervals of the family hold together at {level}.", level=level(story))
         return joined((together, alone)) if "alone" in holds else together
