@@ -214,3 +214,13 @@ def test_the_share_that_could_go_unseen_is_filed_with_its_probability() -> None:
     plain = analysis_to_plain(Invented().analysed())
     unseen = look_up(plain, "associations/A1/interval/unseen")
     assert unseen == {"share": "0.308497107819", "probability": "0.025"}
+
+
+@pytest.mark.parametrize("word", INTERVAL_BY)
+def test_no_digit_of_an_interval_depends_on_the_order_of_the_rows(word: str) -> None:
+    """Resamples included: rows are put in order before any is drawn."""
+    inference = f"alpha: 0.05, p_value: {{seed: 3}}, interval: {{by: {word}, resamples: 999}}"
+    columns = {"u": "1 1 2 3 4 5 5 6 7 8", "v": "2 1 1 4 3 6 8 5 7 8"}
+    turned = {name: " ".join(reversed(cells.split())) for name, cells in columns.items()}
+    one, other = (Invented(columns=each, inference=inference).analysed() for each in (columns, turned))
+    assert given(one, "A1") == given(other, "A1")

@@ -138,7 +138,8 @@ SENTENCES = {
         of_three(inference=SIMULTANEOUS),
         (
             "By the rule of the plan the expected positive association was not shown: the adjusted p = 0.052 lay above "
-            "alpha, 0.05. That does not show that there is none: the interval still holds values of rho from −0.06 to 0.96."
+            "alpha, 0.05, which bounds the chance of any false finding. That does not show that there is none: the interval "
+            "still holds values of rho from −0.06 to 0.96."
         ),
     ),
     "not shown at another level than the interval's": (

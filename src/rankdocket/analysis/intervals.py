@@ -27,7 +27,7 @@ SIMULTANEOUS: Final = Description(
     ("dunn1961",),
 )
 AFTER_SELECTION: Final = Description(
-    "The intervals of the {selected} members shown, of {family} in the family, were computed at {each} each, the error that "
+    "The intervals of the members shown, {selected} of {family} in the family, were computed at {each} each, the error that "
     "{level} leaves times members shown over members: as far as each holds its own level, and estimates are independent or "
     "depend on one another positively, the expected share of intervals so selected that miss is no more than that error; "
     "under other dependence it can be larger.",

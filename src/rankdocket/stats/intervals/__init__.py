@@ -1,7 +1,10 @@
 """The catalogue of interval rules: for each coefficient those to rely on first, then those kept for comparison."""
 
+from dataclasses import replace
 from types import MappingProxyType
 from typing import Final
+
+import numpy as np
 
 from rankdocket.stats.interval import Interval, IntervalMethod, IntervalQuestion, NoInterval
 from rankdocket.stats.intervals.bca_bootstrap import BCA_BOOTSTRAP
@@ -46,12 +49,16 @@ def interval_of(question: IntervalQuestion) -> Interval | NoInterval:
 
 
 def planned_interval(by: IntervalBy, question: IntervalQuestion) -> Interval | NoInterval:
-    """Return the interval by the rule that a plan names, or why there is none; no other rule stands in for it."""
+    """Return the interval by the rule that a plan names, or why there is none; no other rule stands in for it.
+
+    Rows are put in order first: no digit, and no resample, depends on the order in which they came.
+    """
     name = question.coefficient.name
     method = planned_method(by, name)
     if method is None:
         return NoInterval(f"the plan asks for {by}, which makes no interval for {_short(name)}")
-    return method.function(question)
+    order = np.lexsort((question.y_codes, question.x_codes))
+    return method.function(replace(question, x_codes=question.x_codes[order], y_codes=question.y_codes[order]))
 
 
 def planned_method(by: IntervalBy, name: CoefficientName) -> IntervalMethod | None:
