@@ -224,3 +224,20 @@ def test_no_digit_of_an_interval_depends_on_the_order_of_the_rows(word: str) -> 
     turned = {name: " ".join(reversed(cells.split())) for name, cells in columns.items()}
     one, other = (Invented(columns=each, inference=inference).analysed() for each in (columns, turned))
     assert given(one, "A1") == given(other, "A1")
+
+
+@pytest.mark.parametrize(
+    ("word", "key"), [("guarded jackknife", "jackknife on z, guarded"), ("BCa bootstrap", "BCa bootstrap")]
+)
+def test_groups_have_the_interval_of_the_plan(word: str, key: str) -> None:
+    """And, where it draws, a stream for each group."""
+    study = Invented(
+        columns={"u": RISING, "v": CLOSE, "site": "a b " * 5},
+        variables={"site": "label: site, scale: ordered, lowest_to_highest: [a, b]"},
+        associations={"A1": association(more="groups: {column: site}")},
+        inference=f"alpha: 0.05, p_value: {{seed: 3}}, interval: {{by: {word}, resamples: 999}}",
+    )
+    plain = analysis_to_plain(study.analysed())
+    groups = look_up(plain, "associations/A1/subgroups/groups")
+    assert isinstance(groups, list)
+    assert [look_up(group, "interval/by") for group in groups] == [key, key]

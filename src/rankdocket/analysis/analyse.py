@@ -100,7 +100,7 @@ def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnaly
         pearson=_pearson(screened, spec),
         doubled_p=test.tails.doubled if isinstance(test, RankTest) and direction == "two-sided" else None,
     )
-    stream = resample_address(screened, spec)
+    stream = resample_address(screened.spec.name, spec)
     return AssociationAnalysis(
         screened, checks, estimate, test, interval, comparisons, smallest, interval_stream=stream
     )

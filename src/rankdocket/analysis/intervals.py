@@ -61,14 +61,23 @@ def interval_alone(
     for outcome in checks:
         if outcome.key == INDEPENDENCE and outcome.withholds != "nothing":
             return NoInterval(outcome.reason)
-    return _planned(screened, spec, question)
+    return interval_as_planned(spec, question, resample_address(screened.spec.name, spec))
 
 
-def resample_address(screened: Screened, spec: StudySpec) -> tuple[str, ...]:
+def resample_address(association: str, spec: StudySpec) -> tuple[str, ...]:
     """Return the address of the stream of an association’s resamples; empty where the plan’s rule draws none."""
     if spec.inference.interval.by != "BCa bootstrap":
         return ()
-    return (spec.study.number, screened.spec.name, "interval", "resamples")
+    return (spec.study.number, association, "interval", "resamples")
+
+
+def interval_as_planned(spec: StudySpec, question: IntervalQuestion, address: tuple[str, ...]) -> Interval | NoInterval:
+    """Return the interval by the plan’s rule, its resamples, if it draws any, from the stream at ``address``."""
+    seed = spec.inference.p_value.seed
+    if address and seed is not None:
+        resampling = Resampling(spec.inference.interval.resamples, stream(seed, *address))
+        question = replace(question, resampling=resampling)
+    return planned_interval(spec.inference.interval.by, question)
 
 
 def adjusted_level(findings: Mapping[str, Finding], spec: StudySpec) -> AdjustedLevel | None:
@@ -110,12 +119,5 @@ def _adjusted(result: AssociationAnalysis, spec: StudySpec, level: Decimal) -> A
         return result
     screened = result.screened
     question = IntervalQuestion(result.estimate.coefficient, *rank_codes(screened), level, direction_of(screened, spec))
-    return replace(result, interval=_planned(screened, spec, question), interval_alone=result.interval)
-
-
-def _planned(screened: Screened, spec: StudySpec, question: IntervalQuestion) -> Interval | NoInterval:
-    address, seed = resample_address(screened, spec), spec.inference.p_value.seed
-    if address and seed is not None:
-        resampling = Resampling(spec.inference.interval.resamples, stream(seed, *address))
-        question = replace(question, resampling=resampling)
-    return planned_interval(spec.inference.interval.by, question)
+    adjusted = interval_as_planned(spec, question, result.interval_stream)
+    return replace(result, interval=adjusted, interval_alone=result.interval)
