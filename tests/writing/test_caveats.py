@@ -10,7 +10,16 @@ from rankdocket.document.model import CaveatBlock, Link, Paragraph
 from rankdocket.document.prose import lint, text_of
 from rankdocket.writing import caveats
 from rankdocket.writing.caveat import CaveatRule
-from rankdocket.writing.caveats import CAVEATS, adjustment, intervals, more_variables, requirements, results, study
+from rankdocket.writing.caveats import (
+    CAVEATS,
+    adjustment,
+    coverage,
+    intervals,
+    more_variables,
+    requirements,
+    results,
+    study,
+)
 from writing.reports import (
     EVERY_FINDING,
     Occasion,
@@ -42,6 +51,13 @@ DRAWN = "alpha: {alpha}, p_value: {{by: permutation, permutations: 999, most_dra
 TWELVE = {"u": RISING + " 11 12", "v": MIXED + " 12 11"}
 """Twelve rows whose p is 0.094 over all orderings."""
 
+THREE_LEVELS = {
+    "u": "1 " * 38 + "2 " * 22 + "3 " * 15,
+    "v": "1 " * 37 + "2 " * 23 + "3 " * 15,
+    "w": "1 " * 38 + "2 " * 21 + "3 " * 16,
+}
+"""Three levels nearly in order: intervals for rho by Bonett-Wright and for tau-b by the jackknife cover less there."""
+
 ALWAYS = {"association_only", "decision"}
 """Rules that hold for every report."""
 
@@ -55,6 +71,11 @@ SPEAKS: dict[str, Invented] = {
     # n=10, sum of squared differences 58: exact p 0.049, while the interval of Bonett & Wright 2000, which the usual one
     # is never narrower than, holds 0.
     "test_and_interval": replace(QUIET, columns={"u": RISING, "v": "3 4 1 9 2 5 6 8 10 7"}),
+    "low_coverage": replace(
+        QUIET,
+        columns=THREE_LEVELS,
+        associations={"A1": association(), "A2": association("u", "w", more="coefficient: Kendall tau-b")},
+    ),
     "perfect_agreement": replace(QUIET, columns={"u": RISING, "v": FALLING}),
     "small_sample": replace(QUIET, columns=SMALL_ORDERED),
     "left_out_rows": replace(QUIET, rows=LEFT_OUT),
@@ -138,7 +159,7 @@ def test_the_catalogue_holds_every_rule_once_with_a_weight_of_its_own() -> None:
     """A rule that is written and not listed would never speak."""
     written = [
         rule
-        for module in (adjustment, intervals, more_variables, requirements, results, study)
+        for module in (adjustment, coverage, intervals, more_variables, requirements, results, study)
         for _, rule in inspect.getmembers(module, lambda value: isinstance(value, CaveatRule))
     ]
     assert {rule.key for rule in written} == {rule.key for rule in CAVEATS}

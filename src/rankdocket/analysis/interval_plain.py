@@ -1,5 +1,6 @@
 """Intervals to plain data: limits, level, what the rule did to its own arithmetic, and what the ties allow."""
 
+from rankdocket.analysis.coverage_plain import coverage_to_plain
 from rankdocket.analysis.filing import filed
 from rankdocket.analysis.intervals import SHOWN, adjusted_level
 from rankdocket.analysis.results import Analysis, AssociationAnalysis, Estimate
@@ -28,7 +29,9 @@ def interval_plan_to_plain(analysis: Analysis) -> dict[str, Plain]:
 def intervals_to_plain(result: AssociationAnalysis, adjusted: str) -> dict[str, Plain]:
     """Return the interval as printed, the one at the plan’s level where that is another, and the attainable range."""
     holds = "alone" if result.interval_alone is None else adjusted
-    plain: dict[str, Plain] = {"interval": _interval(result, result.interval, holds)}
+    plain: dict[str, Plain] = {
+        "interval": {**_interval(result, result.interval, holds), **coverage_to_plain(result)},
+    }
     if result.interval_alone is not None:
         plain["interval_alone"] = _interval(result, result.interval_alone, "alone")
     if isinstance(result.estimate, Estimate):

@@ -6,6 +6,7 @@ from rankdocket.analysis.results import Estimate, RankTest
 from rankdocket.document.model import Block, FieldList, Link, Paragraph, Prose, Section, Supplied
 from rankdocket.document.prose import joined, only, prose
 from rankdocket.writing.adjustment import adjusted_rows
+from rankdocket.writing.coverage import coverage_rows
 from rankdocket.writing.figures import rank_plot, raw_plot
 from rankdocket.writing.findings import finding_sentence, finding_word, size_sentence
 from rankdocket.writing.intervals import interval_rows
@@ -87,6 +88,7 @@ def _numbers(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
         return tuple(rows)
     rows.append((result.screened.spec.coefficient, estimate_with_interval(story, name)))
     rows += interval_rows(story, name)
+    rows += coverage_rows(story, name)
     if isinstance(result.test, RankTest):
         rows += [
             ("Null", null_sentence(story, name)),

@@ -4,11 +4,13 @@ from itertools import product
 from typing import Final
 
 from rankdocket.analysis.checks import CHECKS
+from rankdocket.analysis.coverage import coverage_of
 from rankdocket.analysis.intervals import AFTER_SELECTION, SIMULTANEOUS
 from rankdocket.analysis.results import Estimate, RankTest
 from rankdocket.document.model import Block, Link, Number, Paragraph, Prose, Section
 from rankdocket.document.prose import joined, only, prose, text_of
 from rankdocket.references import Description
+from rankdocket.stats.coverage.lookup import SimulatedCoverage
 from rankdocket.stats.critical import CRITICAL_VALUES
 from rankdocket.stats.interval import Interval
 from rankdocket.stats.intervals import INTERVAL_METHODS
@@ -19,6 +21,7 @@ from rankdocket.stats.rho import RHO
 from rankdocket.stats.tau import TAU_B
 from rankdocket.vocabulary import COEFFICIENTS, CoefficientName
 from rankdocket.writing.adjustment import adjustment_text
+from rankdocket.writing.coverage import COVERAGE_SENTENCE
 from rankdocket.writing.described import described
 from rankdocket.writing.intervals import given
 from rankdocket.writing.more_variables_methods import more_variables_descriptions
@@ -238,6 +241,8 @@ def _intervals(story: Story) -> Prose:
     ]
     if any(interval.direction != "two-sided" for interval in given):
         parts.append(only("For a one-sided test it is the bound on the side that the plan expects, at the same level."))
+    if any(isinstance(coverage_of(result), SimulatedCoverage) for result in story.analysis.results.values()):
+        parts.append(only(COVERAGE_SENTENCE))
     if parts:
         parts.append(_adjusted_intervals(story))
     return joined(tuple(parts))
