@@ -12,8 +12,9 @@ from rankdocket.writing.section import Story
 UNTIED: Final = "none or few ties"
 
 COVERAGE_SENTENCE: Final = (
-    "Beside an interval stands its simulated coverage: the share of simulated samples, mostly some thousand, from a population "
-    "whose coefficient is known, in which an interval by the same rule and at the same level held that coefficient. It is "
+    "Beside an interval stands its simulated coverage: the share of simulated samples, from a population whose coefficient "
+    "is known, in which an interval by the same rule and at the same level held that coefficient; with six thousand samples "
+    "its standard error near ninety-five percent is three tenths of a percentage point. It is "
     "taken from a table that comes with the program and can be made again, at the simulated number of rows nearest to that "
     "of the study, the nearest pattern of ties and the nearest size of the coefficient; the lowest coverage of all "
     "populations simulated at that number of rows stands beside it. The population of the study may be like none of them."
