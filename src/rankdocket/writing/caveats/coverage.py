@@ -27,4 +27,4 @@ def _low(story: Story) -> tuple[FoundCaveat, ...]:
     )
 
 
-LOW_COVERAGE: Final = CaveatRule("low_coverage", 52, _low)
+LOW_COVERAGE: Final = CaveatRule("low_coverage", 56, _low)
