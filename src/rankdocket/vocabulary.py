@@ -16,6 +16,15 @@ Adjustment: TypeAlias = Literal[
     "Holm", "Hochberg", "Bonferroni", "Benjamini-Hochberg", "Benjamini-Yekutieli", "step-down maxT", "none"
 ]
 Family: TypeAlias = Literal["primary", "primary and secondary", "all", "none"]
+IntervalBy: TypeAlias = Literal[
+    "guarded jackknife",
+    "Bonett-Wright",
+    "influence values",
+    "BCa bootstrap",
+    "Fieller-Hartley-Pearson",
+    "Fisher z",
+]
+IntervalAdjustment: TypeAlias = Literal["none", "simultaneous", "after selection"]
 PBy: TypeAlias = Literal["exact when possible", "permutation"]
 IfNotMet: TypeAlias = Literal["estimate without test", "withhold all", "test with caveat"]
 Reader: TypeAlias = Literal["client", "reviewer", "regulator", "court"]
@@ -37,6 +46,8 @@ COEFFICIENTS: Final = get_args(CoefficientName)
 SIDEDNESS: Final = get_args(Sidedness)
 ADJUSTMENTS: Final = get_args(Adjustment)
 FAMILIES: Final = get_args(Family)
+INTERVAL_BY: Final = get_args(IntervalBy)
+INTERVAL_ADJUSTMENTS: Final = get_args(IntervalAdjustment)
 P_BY: Final = get_args(PBy)
 IF_NOT_MET: Final = get_args(IfNotMet)
 READERS: Final = get_args(Reader)
@@ -44,6 +55,12 @@ SIGNATURES: Final = get_args(Signature)
 NUMBER_STYLES: Final = get_args(NumberStyle)
 CHECK_STATES: Final = get_args(CheckState)
 FINDINGS: Final = get_args(FindingWord)
+
+FOR_BOTH: Final[tuple[IntervalBy, ...]] = ("guarded jackknife", "Fieller-Hartley-Pearson")
+"""Words of the intervals that exist for either coefficient; the others are made for Spearman rho alone."""
+
+SELECTING: Final = ("Benjamini-Hochberg", "Benjamini-Yekutieli")
+"""Adjustments that keep a share of false findings, so that intervals can be adjusted for the selection they make."""
 
 NOT_APPLICABLE: Final = "not applicable"
 """What a spec writes where a question about the rows does not arise; it is an answer, silence is not."""

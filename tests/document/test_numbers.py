@@ -391,3 +391,24 @@ def test_the_display_of_a_small_p_never_changes_its_side_of_alpha(value: str, mi
     printed = as_number(text.removesuffix(" (exactly)"))
     assert printed > 0
     assert (printed <= alpha) == (exact <= alpha)
+
+
+@pytest.mark.parametrize(
+    ("value", "down", "short"),
+    [
+        # 1 less 0.025 to the power 1/n for ten, twenty, a hundred and a hundred thousand rows.
+        ("0.308497107819", "30.8%", "30.8%"),
+        ("0.168428097300", "16.8%", "16.8%"),
+        ("0.0362166967", "3.62%", "3.62%"),
+        ("0.0000368881", "0.00368%", "0.00369%"),
+        ("0.9833333333334", "98.33%", "98.33%"),
+        ("0.998996", "99.899%", "99.9%"),
+        ("0.975", "97.5%", "97.5%"),
+        ("0.0083333333333", "0.833%", "0.833%"),
+        ("0.264846939700", "26.4%", "26.5%"),
+    ],
+)
+def test_a_bound_in_percent_is_not_told_as_more_than_it_is(value: str, down: str, short: str) -> None:
+    """A share that could go unseen and a level are rounded down, a probability to the nearest; neither ends at 0 or 100%."""
+    found = numbers(value)
+    assert (found.percent_down("v").text, found.percent_short("v").text) == (down, short)

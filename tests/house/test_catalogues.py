@@ -15,9 +15,9 @@ from rankdocket.render.drawings import DRAWINGS
 from rankdocket.stats.adjustment import AdjustmentRule
 from rankdocket.stats.adjustments import ADJUSTMENTS
 from rankdocket.stats.interval import IntervalMethod
-from rankdocket.stats.intervals import INTERVAL_METHODS
+from rankdocket.stats.intervals import INTERVAL_METHODS, planned_method
 from rankdocket.vocabulary import ADJUSTMENTS as ADJUSTMENT_WORDS
-from rankdocket.vocabulary import COEFFICIENTS
+from rankdocket.vocabulary import COEFFICIENTS, FOR_BOTH, INTERVAL_BY
 from rankdocket.writing.caveat import CaveatRule
 from rankdocket.writing.caveats import CAVEATS
 from rankdocket.writing.section import SectionRule
@@ -68,6 +68,19 @@ def test_the_words_for_adjustments_have_their_rules() -> None:
 def test_intervals_serve_known_coefficients() -> None:
     """An interval rule names coefficients of the vocabulary only."""
     assert {name for method in INTERVAL_METHODS for name in method.coefficients} <= set(COEFFICIENTS)
+
+
+def test_every_interval_rule_has_one_word_of_a_plan() -> None:
+    """Each word means one rule for rho; for tau-b only the words that the vocabulary says; no rule is out of reach."""
+    reached = {
+        (word, name): method.key
+        for word in INTERVAL_BY
+        for name in COEFFICIENTS
+        if (method := planned_method(word, name)) is not None
+    }
+    assert {word for word, name in reached if name == "Spearman rho"} == set(INTERVAL_BY)
+    assert {word for word, name in reached if name == "Kendall tau-b"} == set(FOR_BOTH)
+    assert set(reached.values()) == {method.key for method in INTERVAL_METHODS}
 
 
 def test_the_bibliography_knows_its_keys() -> None:

@@ -39,6 +39,8 @@ def test_the_wheel_holds_program_looks_and_cases(wheel: Path) -> None:
         "stats/nulls/spearman_counts.npz",
         "stats/nulls/cumulant_polys.json",
         "stats/guarded_widths.csv",
+        "stats/coverage/two_sided.csv",
+        "stats/coverage/populations.csv",
     }
     assert modules | looks | {"rankdocket/py.typed"} | {f"rankdocket/{name}" for name in data} <= names
     tops = {name.split("/")[0] for name in names}

@@ -10,7 +10,7 @@ import pytest
 from rankdocket.stats.coefficient import Coefficient
 from rankdocket.stats.influence import freedom_of, rho_influence, rho_without_each, z_jackknife_variance
 from rankdocket.stats.interval import Interval, IntervalQuestion, NoInterval, Restraint
-from rankdocket.stats.intervals import INTERVAL_METHODS, interval_by, interval_of
+from rankdocket.stats.intervals import INTERVAL_METHODS, interval_by, interval_of, planned_interval
 from rankdocket.stats.intervals.bonett_wright import bonett_wright_limits
 from rankdocket.stats.intervals.fieller import fieller_limits, fieller_tau_limits
 from rankdocket.stats.intervals.fisher import fisher_limits
@@ -19,7 +19,7 @@ from rankdocket.stats.intervals.tau_jackknife import tau_guard_of
 from rankdocket.stats.rho import rho
 from rankdocket.stats.tau import tau_b
 from rankdocket.stats.z_interval import t_quantile, tau_tie_cap, tie_cap, untied_cap, untied_tau_cap
-from rankdocket.vocabulary import Direction
+from rankdocket.vocabulary import FOR_BOTH, INTERVAL_BY, Direction
 from stats.interval_questions import BONETT, JACKKNIFE, TAU_JACKKNIFE, Y12, Asked, by, given
 
 BONETT_X = np.array([67, 28, 30, 28, 52, 40, 25, 37, 44, 10, 14, 20, 28, 40, 51])
@@ -28,7 +28,7 @@ BONETT_Y = np.array([21, 4, 9, 12, 35, 18, 10, 22, 24, 1, 6, 8, 13, 16, 19])
 
 def _interval(x: list[int], y: list[int], direction: Direction = "two-sided") -> Interval | NoInterval:
     x_codes, y_codes = np.array(x), np.array(y)
-    return interval_of(IntervalQuestion(rho(x_codes, y_codes), x_codes, y_codes, Decimal("0.95"), direction))
+    return interval_by(BONETT, IntervalQuestion(rho(x_codes, y_codes), x_codes, y_codes, Decimal("0.95"), direction))
 
 
 def test_the_house_form_is_the_textbook_form_away_from_one() -> None:
@@ -109,11 +109,26 @@ def test_there_is_not_always_an_interval(x: list[int], y: list[int], reason: str
     assert reason in found.reason
 
 
-def test_tau_b_has_no_interval_yet() -> None:
-    """For tau-b the absence of a rule is said."""
-    x = np.arange(6)
-    question = IntervalQuestion(tau_b(x, x), x, x, Decimal("0.95"), "two-sided")
-    assert interval_of(question) == NoInterval("no interval is offered for tau-b yet")
+def test_the_usual_interval_is_the_guarded_jackknife_of_either_coefficient() -> None:
+    """Rho and tau-b each have their own rule behind one word."""
+    x, y = np.arange(12), np.array(Y12)
+    for coefficient, key in ((rho(x, y), JACKKNIFE), (tau_b(x, y), TAU_JACKKNIFE)):
+        question = IntervalQuestion(coefficient, x, y, Decimal("0.95"), "two-sided")
+        found = interval_of(question)
+        assert isinstance(found, Interval)
+        assert (found, found.method) == (interval_by(key, question), key)
+
+
+def test_no_other_rule_stands_in_for_a_planned_one() -> None:
+    """A word that has no rule for tau-b gives its reason; Fieller, Hartley and Pearson made one for either."""
+    x, y = np.arange(12), np.array(Y12)
+    question = IntervalQuestion(tau_b(x, y), x, y, Decimal("0.95"), "two-sided")
+    for word in INTERVAL_BY:
+        found = planned_interval(word, question)
+        if word in FOR_BOTH:
+            assert isinstance(found, Interval)
+        else:
+            assert found == NoInterval(f"the plan asks for {word}, which makes no interval for tau-b")
 
 
 @pytest.mark.parametrize("limits", [bonett_wright_limits, fisher_limits, fieller_limits, fieller_tau_limits])

@@ -137,3 +137,65 @@ def test_a_negative_number_is_out_of_range() -> None:
             "(message 31)"
         )
     ]
+
+
+TAU = ("hypothesis: {expected_sign: negative}", "hypothesis: {expected_sign: negative}\n    coefficient: Kendall tau-b")
+ASKED = (
+    (
+        "interval: {by: BCa bootstrap}",
+        (),
+        (
+            "33:18: inference.interval.by: by: BCa bootstrap draws at random, and inference.p_value states no seed. Add a "
+            "number of your own, as in p_value: {seed: 417}. (message 41)"
+        ),
+    ),
+    (
+        "interval: {by: Fisher z}",
+        (TAU,),
+        (
+            "34:18: inference.interval.by: Fisher z makes no interval for Kendall tau-b, and no association has another "
+            "coefficient. Write guarded jackknife or Fieller-Hartley-Pearson. (message 42)"
+        ),
+    ),
+    (
+        "interval: {adjusted: after selection}",
+        (),
+        (
+            "33:24: inference.interval.adjusted: after selection needs an adjustment that selects by a share of false "
+            "findings; adjust is Holm. Write adjust: Benjamini-Hochberg or Benjamini-Yekutieli, or adjusted: simultaneous. "
+            "(message 40)"
+        ),
+    ),
+    (
+        "several_tests: {among: none, reason: as agreed}\n  interval: {adjusted: simultaneous}",
+        (),
+        (
+            "34:24: inference.interval.adjusted: simultaneous adjusts the intervals of a family, and several_tests has "
+            "among: none. Name a family, or write adjusted: none. (message 40)"
+        ),
+    ),
+    (
+        "interval: {by: bootstrap}",
+        (),
+        (
+            '33:18: inference.interval.by: "bootstrap" is not in the list. Write one of: guarded jackknife, Bonett-Wright, '
+            "influence values, BCa bootstrap, Fieller-Hartley-Pearson, Fisher z. (message 29)"
+        ),
+    ),
+)
+
+
+@pytest.mark.parametrize(("written", "changes", "expected"), ASKED)
+def test_an_interval_that_the_plan_cannot_have_is_refused(
+    written: str, changes: tuple[tuple[str, str], ...], expected: str
+) -> None:
+    """A seed, a family, a selection or a coefficient that the interval needs is asked for by name."""
+    text = changed(PLANKTON, ("alpha: 0.05", f"alpha: 0.05\n  {written}"), *changes)
+    assert spec_messages(text) == [f"s.yaml:{expected}"]
+
+
+def test_an_interval_that_one_association_can_have_is_sound() -> None:
+    """Where others are without, the report says so; the plan stands."""
+    text = changed(PANEL, ("alpha: 0.050", "alpha: 0.050\n  interval: {by: BCa bootstrap, resamples: 4999}"))
+    rule = read_spec(text, "s.yaml").inference.interval
+    assert (rule.by, rule.adjusted, rule.resamples) == ("BCa bootstrap", "none", 4_999)

@@ -10,7 +10,17 @@ from rankdocket.document.model import CaveatBlock, Link, Paragraph
 from rankdocket.document.prose import lint, text_of
 from rankdocket.writing import caveats
 from rankdocket.writing.caveat import CaveatRule
-from rankdocket.writing.caveats import CAVEATS, adjustment, more_variables, requirements, results, size, study
+from rankdocket.writing.caveats import (
+    CAVEATS,
+    adjustment,
+    coverage,
+    intervals,
+    more_variables,
+    requirements,
+    results,
+    size,
+    study,
+)
 from writing.reports import (
     EVERY_FINDING,
     Occasion,
@@ -20,20 +30,34 @@ from writing.reports import (
     told,
 )
 
-QUIET = Invented(columns={"u": RISING, "v": "1 3 2 5 4 7 6 9 8 10"})
+QUIET = Invented(columns={"u": RISING, "v": "3 1 2 4 6 5 9 7 10 8"})
 """Ten rows nearly in order: nothing to say but what is said of every report."""
 
-NEAR = "2 1 8 5 4 3 7 6 9 10"
+NEAR = "5 1 2 4 6 3 8 10 9 7"
 """Ten values that rise with RISING: two-sided p 0.017."""
 
 TAU = {"A1": association(more="coefficient: Kendall tau-b")}
 TWO = {"A1": association(), "A2": association()}
 LEFT_OUT = INDEPENDENT + ', leave_out: [{where: {v: "10"}, reason: the rig was broken}]'
 SMALL_ORDERED = {"u": "1 2 3 4 5", "v": "1 3 2 5 4"}
+ONE_STEP_SHORT = {"u": "1 1 1 2 3 3 4 4 4 4", "v": "1 1 2 2 2 3 4 4 4 4"}
+"""Rho 0.953 beside a cap of 0.95: the widest step between midranks is 3 in both, their squares sum to 75 and 75."""
+LONE = {"u": "1 1 1 1 1 1 1 1 1 2", "v": RISING}
+"""Without its last row u does not vary."""
+HALVES = {"u": RISING, "v": "1 1 1 1 1 2 2 2 2 2"}
+BY_BONETT_WRIGHT = "interval: {by: Bonett-Wright}"
+RESAMPLED = "alpha: 0.05, p_value: {seed: 3}, interval: {by: BCa bootstrap}"
 LOPSIDED = {"u": "1 1 1 2", "v": "1 1 1 2"}
 DRAWN = "alpha: {alpha}, p_value: {{by: permutation, permutations: 999, most_draws: 999, seed: 5}}"
 TWELVE = {"u": RISING + " 11 12", "v": MIXED + " 12 11"}
 """Twelve rows whose p is 0.094 over all orderings."""
+
+THREE_LEVELS = {
+    "u": "1 " * 38 + "2 " * 22 + "3 " * 15,
+    "v": "1 " * 37 + "2 " * 23 + "3 " * 15,
+    "w": "1 " * 38 + "2 " * 21 + "3 " * 16,
+}
+"""Three levels nearly in order: intervals for rho by Bonett-Wright and for tau-b by the jackknife cover less there."""
 
 ALWAYS = {"association_only", "decision"}
 """Rules that hold for every report."""
@@ -45,15 +69,22 @@ SPEAKS: dict[str, Invented] = {
     "requirements": replace(QUIET, requirements="fewest_complete_rows: 11"),
     "undecided": replace(QUIET, columns=TWELVE, inference=DRAWN.format(alpha="0.1")),
     "two_sided_rule": replace(QUIET, columns=LOPSIDED, inference="alpha: 0.3"),
-    # n=10, sum of squared differences 58: exact p 0.049, while the interval of Bonett & Wright 2000 holds 0.
+    # n=10, sum of squared differences 58: exact p 0.049, while the interval of Bonett & Wright 2000, which the usual one
+    # is never narrower than, holds 0.
     "test_and_interval": replace(QUIET, columns={"u": RISING, "v": "3 4 1 9 2 5 6 8 10 7"}),
     # The same rows: rho 0.648 within 0.9 has z = 1.565 with k = 1.405, short of 1.645; k = 1.210 of the interval is less.
     "equivalence_and_interval": replace(
         QUIET,
         columns={"u": RISING, "v": "3 4 1 9 2 5 6 8 10 7"},
         associations={"A1": association(more="smallest_of_interest: 0.9")},
+        inference="alpha: 0.05, interval: {by: Bonett-Wright}",
     ),
     "size_basis": replace(QUIET, associations={"A1": association(more="null_value: 0.2")}),
+    "low_coverage": replace(
+        QUIET,
+        columns=THREE_LEVELS,
+        associations={"A1": association(), "A2": association("u", "w", more="coefficient: Kendall tau-b")},
+    ),
     "perfect_agreement": replace(QUIET, columns={"u": RISING, "v": FALLING}),
     "small_sample": replace(QUIET, columns=SMALL_ORDERED),
     "left_out_rows": replace(QUIET, rows=LEFT_OUT),
@@ -67,10 +98,15 @@ SPEAKS: dict[str, Invented] = {
     "given_covariates": replace(
         QUIET, columns={**QUIET.columns, "w": MIXED}, associations={"A1": association(more="covariates: [w]")}
     ),
-    "no_interval": replace(QUIET, associations=TAU),
     "condition_of_adjustment": replace(
         QUIET, associations=TWO, inference="alpha: 0.05, several_tests: {adjust: Hochberg}"
     ),
+    "no_interval": replace(QUIET, columns={"u": "1 2 3", "v": "1 3 2"}),
+    "interval_guard": replace(QUIET, columns={"u": RISING, "v": "1 3 2 5 4 7 6 9 8 10"}),
+    "interval_cap": replace(QUIET, columns=ONE_STEP_SHORT, inference=f"alpha: 0.05, {BY_BONETT_WRIGHT}"),
+    "interval_fallback": replace(QUIET, columns=LONE),
+    "interval_beyond_ties": replace(QUIET, columns=HALVES),
+    "undefined_resamples": replace(QUIET, columns=HALVES, inference=RESAMPLED),
     "interval_basis": QUIET,
     "association_only": QUIET,
     "independence_null": QUIET,
@@ -85,7 +121,8 @@ IS_SILENT: dict[str, Invented] = {
     "no_interval": QUIET,
     "condition_of_adjustment": replace(QUIET, associations=TWO),
     "equivalence_and_interval": replace(QUIET, associations={"A1": association(more="smallest_of_interest: 0.9")}),
-    "interval_basis": replace(QUIET, associations=TAU),
+    "interval_basis": replace(QUIET, columns={"u": "1 2 3", "v": "1 3 2"}),
+    "undefined_resamples": replace(QUIET, inference=RESAMPLED),
     "independence_null": replace(QUIET, rows="leave_out: []"),
 }
 
@@ -132,7 +169,7 @@ def test_the_catalogue_holds_every_rule_once_with_a_weight_of_its_own() -> None:
     """A rule that is written and not listed would never speak."""
     written = [
         rule
-        for module in (adjustment, more_variables, requirements, results, size, study)
+        for module in (adjustment, coverage, intervals, more_variables, requirements, results, size, study)
         for _, rule in inspect.getmembers(module, lambda value: isinstance(value, CaveatRule))
     ]
     assert {rule.key for rule in written} == {rule.key for rule in CAVEATS}
@@ -168,16 +205,38 @@ WORDS = {
         "the smaller tail would give 0.500. The plan’s rule is the first."
     ),
     "test_and_interval": (
-        "A1: test and interval point different ways (p = 0.049; interval −0.04 to 0.92). They are built differently; "
+        "A1: test and interval point different ways (p = 0.049; interval −0.24 to 0.95). They are built differently; "
         "the test decides about the association, the interval describes its size."
     ),
     "perfect_agreement": (
         "A1: all rows follow one order, so that the sample holds no disagreement from which an error could be "
-        "estimated; for the interval half of the disagreement of one row moved across the widest tie steps was assumed."
+        "estimated. If up to 30.8% of such rows followed no relation at all, a sample of n = 10 would contain none of them "
+        "with probability 2.5%; hence the limit −0.692."
+    ),
+    "interval_guard": (
+        "A1: the rows stand nearly in one order. If up to 30.8% of such rows followed no relation at all, a sample of n = "
+        "10 would contain none of them with probability 2.5%; a limit was drawn back to what is left of the coefficient "
+        "then, 0.692."
+    ),
+    "interval_cap": (
+        "A1: the estimate is nearer to perfect order than half of the smallest discordance that the ties could show. The "
+        "interval is that of an estimate so far away, and its outer limit is one in size."
+    ),
+    "interval_fallback": (
+        "A1: without one of the rows a variable does not vary, so that there is no jackknife. The variance of Bonett and "
+        "Wright, which holds for normal-type dependence, stands in for it."
+    ),
+    "interval_beyond_ties": (
+        "A1: the interval, 0.43 to 0.98, reaches beyond the coefficients that rows with these ties can give, −0.87 to 0.87. "
+        "What lies beyond concerns a population with other ties."
+    ),
+    "undefined_resamples": (
+        "A1: in 19 of 9,999 resamples a variable did not vary; they were left out, and the interval speaks of samples in "
+        "which both vary."
     ),
     "small_sample": (
-        "A1: with so few rows the data exclude little. The interval is indicative; the p-value, counted over all "
-        "orderings of the rows, is exact."
+        "A1: with so few rows the data exclude little. Read the interval as indicative; the p-value, counted over all "
+        "orderings of the rows, is exact and the primary result."
     ),
     "left_out_rows": "The plan leaves out 1 of 10 rows of table trials; each is listed with its reason in section 2.",
     "incomplete_rows": (
@@ -185,7 +244,7 @@ WORDS = {
         "leave out). That is harmless only if values are missing for reasons that have nothing to do with what would "
         "have been observed."
     ),
-    "no_interval": "A1: no interval is offered for tau-b yet.",
+    "no_interval": "A1: no interval exists for fewer than four complete rows.",
 }
 
 
@@ -264,7 +323,7 @@ def test_a_small_sample_without_a_counted_test_promises_none() -> None:
         replace(small, inference=DRAWN.format(alpha="0.05")),
     ):
         assert caveats_of(invented)["small_sample"] == [
-            "A1: with so few rows the data exclude little. The interval is indicative."
+            "A1: with so few rows the data exclude little. Read the interval as indicative."
         ]
     assert caveats_of(replace(small, rows="leave_out: []"))["small_sample"] == []
 
@@ -294,14 +353,56 @@ def test_associations_of_one_kind_share_a_caveat_about_small_samples() -> None:
 
 
 def test_perfect_order_without_an_interval_assumes_nothing_for_it() -> None:
-    """Dependent rows, three rows, and tau-b, have no interval."""
+    """Dependent rows, three rows, and resamples that are all alike, give no interval."""
     for invented in (
         replace(QUIET, columns={"u": RISING, "v": RISING}, rows="leave_out: []"),
         replace(QUIET, columns={"u": "1 2 3", "v": "1 2 3"}),
-        replace(QUIET, columns={"u": RISING, "v": RISING}, associations=TAU),
+        replace(QUIET, columns={"u": RISING, "v": RISING}, inference=RESAMPLED),
     ):
         (sentence,) = caveats_of(invented)["perfect_agreement"]
         assert sentence.endswith("from which an error could be estimated.")
+
+
+def test_the_limit_at_perfect_order_says_on_what_it_rests() -> None:
+    """The share of rows that could have gone unseen only where it sets the limit; else the discordance assumed.
+
+    Five rows: the guard 0.025 to the power 1/5 is 0.478, and the cap’s own limit lies below it (by hand: atanh 0.95 =
+    1.8318 less 1.96 times the root of 1.4513 over 2 is 0.1622, whose tanh is 0.161).
+    """
+    five = replace(QUIET, columns={"u": "1 2 3 4 5", "v": "1 2 3 4 5"})
+    for invented, limit in (
+        (five, "0.161"),
+        (replace(QUIET, columns={"u": RISING, "v": RISING}, inference=f"alpha: 0.05, {BY_BONETT_WRIGHT}"), "0.963"),
+    ):
+        (sentence,) = caveats_of(invented)["perfect_agreement"]
+        assert sentence.endswith(f"Hence the limit {limit}: half of the smallest visible discordance was assumed.")
+    opposite = replace(QUIET, columns={"u": RISING, "v": FALLING}, inference="alpha: 0.05, sidedness: one-sided")
+    (sentence,) = caveats_of(opposite)["perfect_agreement"]
+    assert sentence.endswith("estimated. The bound on the side that the plan expects excludes no value.")
+    tau = replace(QUIET, columns={"u": RISING, "v": RISING}, associations=TAU)
+    assert caveats_of(tau)["perfect_agreement"][0].endswith("with probability 2.5%; hence the limit 0.620.")
+
+
+def test_the_open_end_of_a_bound_is_no_limit_beyond_the_ties() -> None:
+    """A lower bound of 0.52 ends at 1 whatever the ties allow."""
+    bound = replace(QUIET, columns=HALVES, inference="alpha: 0.05, sidedness: one-sided")
+    assert caveats_of(bound)["interval_beyond_ties"] == []
+
+
+def test_what_intervals_rest_on_depends_on_their_rule() -> None:
+    """Each rule cites its own work (golden)."""
+    works = {
+        "guarded jackknife": "Tukey 1958",
+        "Bonett-Wright": "Bonett & Wright 2000",
+        "influence values": "Croux & Dehon 2010",
+        "BCa bootstrap": "Efron 1987",
+        "Fieller-Hartley-Pearson": "Fieller et al. 1957",
+        "Fisher z": "Fisher 1921",
+    }
+    for word, work in works.items():
+        inference = f"alpha: 0.05, p_value: {{seed: 3}}, interval: {{by: {word}, resamples: 999}}"
+        (sentence,) = caveats_of(replace(QUIET, inference=inference))["interval_basis"]
+        assert f"({work})" in sentence
 
 
 def test_a_report_points_from_an_association_to_its_caveats() -> None:

@@ -82,7 +82,10 @@ def test_the_strip_has_a_line_for_every_association() -> None:
     }
     assert found["A5"]["estimate"] is None
     assert found["A5"]["reason"] == "not estimable: the second variable has one value in all complete rows"
-    assert (found["A6"]["estimate"], found["A6"]["low"], found["A6"]["text"]) == ("-0.363636363636", None, "−0.36")
+    assert (found["A6"]["estimate"], found["A6"]["text"]) == ("-0.363636363636", "−0.36 (−0.69 to 0.08)")
+    few = told(Invented(columns={"u": "1 2 3", "v": "1 3 2"}).analysed())
+    (line,) = interval_strip(few.story).data["lines"]  # type: ignore[misc, union-attr]
+    assert (line["estimate"], line["low"], line["text"]) == ("0.500000000000", None, "0.50")
     for line in lines:
         if line["low"] is not None:
             assert Decimal(line["low"]) <= Decimal(line["estimate"]) <= Decimal(line["high"])

@@ -13,6 +13,7 @@ from rankdocket.writing.phrases import direction_sentence, estimate_with_interva
 from writing.reports import Told, study_of_every_finding, told
 
 BASE = Invented()
+SIMULTANEOUS = "alpha: 0.05, interval: {adjusted: simultaneous}"
 OWN = "alpha: 0.05, several_tests: {among: none, reason: one question}"
 ONE_SIDED = "alpha: 0.05, sidedness: one-sided"
 UNADJUSTED = "alpha: 0.05, several_tests: {adjust: none, reason: one question}"
@@ -25,13 +26,13 @@ def of(v: str, *, sign: str = "positive", more: str = "", role: str = "primary",
 
 
 FEW = {"u": "1 2 3 4", "v": "1 2 3 4"}
-CLOSE = "2 1 8 5 4 3 7 6 9 10"
+CLOSE = "5 1 2 4 6 3 8 10 9 7"
 """Ten values that rise with RISING: two-sided p 0.017, interval above 0."""
 
 
-def of_three(**parts: Any) -> Invented:
+def of_three(role: str = "primary", **parts: Any) -> Invented:
     """Return a study of three associations, of which A1 alone has a small p."""
-    plan = {"A1": association(), "A2": association("u", "w"), "A3": association("v", "w")}
+    plan = {"A1": association(role=role), "A2": association("u", "w"), "A3": association("v", "w")}
     return replace(BASE, columns={"u": RISING, "v": CLOSE, "w": MIXED}, associations=plan, **parts)
 
 
@@ -83,11 +84,18 @@ SENTENCES = {
             "alpha, 0.05. That does not show that there is none: the interval still holds values of rho from −0.52 to 0.72."
         ),
     ),
-    "not shown, without interval": (
+    "not shown, tau-b": (
         of(MIXED, more="coefficient: Kendall tau-b"),
         (
             "By the rule of the plan the expected positive association was not shown: the adjusted p = 0.727 lay above "
-            "alpha, 0.05. That does not show that there is none."
+            "alpha, 0.05. That does not show that there is none: the interval still holds values of tau-b from −0.39 to 0.57."
+        ),
+    ),
+    "not shown, without interval": (
+        replace(BASE, columns={"u": "1 2 3", "v": "1 3 2"}, inference="alpha: 0.5"),
+        (
+            "By the rule of the plan the expected positive association was not shown: the adjusted p = 1 lay above alpha, "
+            "0.5. That does not show that there is none."
         ),
     ),
     "not shown, one-sided upwards": (
@@ -124,6 +132,14 @@ SENTENCES = {
             "By the rule of the plan the expected positive association was not shown: the adjusted p = 0.052 lay above "
             "alpha, 0.05, which bounds the chance of any false finding. The interval of this association alone holds values of rho from 0.12 to 0.95; it is not adjusted "
             "for the number of tests, and the test decides."
+        ),
+    ),
+    "not shown once adjusted, like its interval": (
+        of_three(inference=SIMULTANEOUS),
+        (
+            "By the rule of the plan the expected positive association was not shown: the adjusted p = 0.052 lay above "
+            "alpha, 0.05, which bounds the chance of any false finding. That does not show that there is none: the interval "
+            "still holds values of rho from −0.06 to 0.96."
         ),
     ),
     "not shown at another level than the interval's": (
@@ -282,7 +298,16 @@ ESTIMATES = {
     "lower bound": (of(MIXED, inference=ONE_SIDED), "0.16 (95% lower bound: from −0.43 up)"),
     "upper bound": (of(MIXED, sign="negative", inference=ONE_SIDED), "0.16 (95% upper bound: up to 0.66)"),
     "dependent rows": (of(MIXED, rows="leave_out: []"), "0.16 (no interval)"),
-    "tau-b": (of(MIXED, more="coefficient: Kendall tau-b"), "0.11 (no interval)"),
+    "tau-b": (of(MIXED, more="coefficient: Kendall tau-b"), "0.11 (95% interval −0.39 to 0.57)"),
+    "simultaneous": (of_three(inference=SIMULTANEOUS), "0.75 (simultaneous 95% interval −0.06 to 0.96)"),
+    "outside the family": (
+        of_three(inference=SIMULTANEOUS, role="exploratory"),
+        "0.75 (95% interval alone, 0.12 to 0.95)",
+    ),
+    "simultaneous bound": (
+        of_three(inference=f"{SIMULTANEOUS}, sidedness: one-sided"),
+        "0.75 (simultaneous 95% lower bound: from 0.05 up)",
+    ),
     "not estimable": (of("5 " * 10), "not estimable: the second variable has one value in all complete rows"),
 }
 

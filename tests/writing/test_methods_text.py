@@ -13,6 +13,8 @@ from rankdocket.references import Description
 from rankdocket.stats.adjustments.holm import HOLM
 from rankdocket.stats.critical import CRITICAL_VALUES
 from rankdocket.stats.intervals.bonett_wright import BONETT_WRIGHT
+from rankdocket.stats.intervals.jackknife import JACKKNIFE
+from rankdocket.stats.intervals.tau_jackknife import TAU_JACKKNIFE
 from rankdocket.stats.null import MONTE_CARLO_INTERVAL, MONTE_CARLO_LOOKS, NULL_DESCRIPTIONS, TWO_SIDED
 from rankdocket.stats.nulls.tau_exact import TAU_NULL_DESCRIPTIONS
 from rankdocket.stats.ranks import TieGroups
@@ -50,7 +52,9 @@ RULES: dict[str, Description] = {
     "looks": MONTE_CARLO_LOOKS,
     "critical values": CRITICAL_VALUES,
     "Holm": HOLM.describe,
-    "interval": BONETT_WRIGHT.describe,
+    "interval": JACKKNIFE.describe,
+    "interval of tau-b": TAU_JACKKNIFE.describe,
+    "Bonett-Wright": BONETT_WRIGHT.describe,
     **{check.key: check.demand for check in CHECKS},
 }
 
@@ -83,15 +87,26 @@ RAN: dict[str, tuple[Invented, set[str]]] = {
     ),
     "tau-b": (
         replace(BASE, associations=TAU),
-        {"critical values", "tau: exact, no ties", "tau-b", "two-sided", *ALL_CHECKS_BUT_SHAPE},
+        {"critical values", "tau: exact, no ties", "tau-b", "interval of tau-b", "two-sided", *ALL_CHECKS_BUT_SHAPE},
     ),
     "tau-b with ties": (
         replace(BASE, columns={"u": RISING, "v": "1 1 2 3 4 5 6 7 8 9"}, associations=TAU),
-        {"critical values", "tau: exact, conditional on the ties", "tau-b", "two-sided", *ALL_CHECKS_BUT_SHAPE},
+        {
+            "critical values",
+            "tau: exact, conditional on the ties",
+            "tau-b",
+            "interval of tau-b",
+            "two-sided",
+            *ALL_CHECKS_BUT_SHAPE,
+        },
     ),
     "one-sided": (
         replace(BASE, inference="alpha: 0.05, sidedness: one-sided"),
         {"critical values", "exact, no ties", "rho", "interval", *ALL_CHECKS_BUT_SHAPE},
+    ),
+    "Bonett-Wright": (
+        replace(BASE, inference="alpha: 0.05, interval: {by: Bonett-Wright}"),
+        {"critical values", "exact, no ties", "rho", "two-sided", "Bonett-Wright", *ALL_CHECKS_BUT_SHAPE},
     ),
     "not adjusted": (
         replace(BASE, inference="alpha: 0.05, several_tests: {adjust: none, reason: one question}"),
@@ -239,7 +254,7 @@ def test_intervals_are_said_to_be_unadjusted_where_there_are_any() -> None:
     unadjusted = "alpha: 0.05, several_tests: {adjust: none, reason: one question}"
     for invented in (BASE, replace(BASE, inference=unadjusted)):
         assert NOT_ADJUSTED in text(told(invented.analysed()))
-    for invented in (replace(BASE, rows="leave_out: []"), replace(BASE, associations=TAU)):
+    for invented in (replace(BASE, rows="leave_out: []"), replace(BASE, columns={"u": "1 2 3", "v": "1 3 2"})):
         assert "ntervals" not in text(told(invented.analysed()))
 
 

@@ -136,7 +136,7 @@ def test_the_numbers_of_a_size_stand_with_their_k() -> None:
     assert rows["Above the size of interest"] == (
         "0.30: z = 1.199 against it and 2.801 against its negative, k = 1.045, approximate p = 0.118"
     )
-    assert "; 90% interval 0.09 to 0.90" in rows["Within the size of interest"]
+    assert "; 90% interval −0.04 to 0.92" in rows["Within the size of interest"]
     assert rows["Test"].startswith("p = 0.049, ")
     value = listed(of(NEAR, "null_value: 0.2"), "numbers-A1")["Null value"]
     assert value == "rho is 0.2: z = 1.493, k = 1.02, approximate p = 0.135"

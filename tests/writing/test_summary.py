@@ -87,9 +87,10 @@ def test_what_has_no_estimate_has_no_main_number() -> None:
 def test_the_other_associations_are_named_with_their_findings() -> None:
     """In the order of the page; none is left out (golden)."""
     report = study_of_every_finding()
-    assert "The others: A3 not shown, A4 withheld and A6 no finding stated. All stand in Table 5." in paragraphs(
-        report.document
-    )
+    assert (
+        "The others: A3 not shown, A4 withheld and A6 no finding stated. All stand in Table 5. Each interval holds for its "
+        "association alone."
+    ) in paragraphs(report.document)
     (note,) = [
         block.prose
         for block in report.document.summary.blocks

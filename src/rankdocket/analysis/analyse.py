@@ -8,13 +8,14 @@ import numpy as np
 
 from rankdocket.analysis.check import direction_of
 from rankdocket.analysis.checks import CHECKS
-from rankdocket.analysis.checks.independence import KEY as INDEPENDENCE
 from rankdocket.analysis.decide import decide
 from rankdocket.analysis.family import adjustment_of, family_of
 from rankdocket.analysis.family_max_t import draws_together, family_max_t, require_like_rows
 from rankdocket.analysis.filing import filed
+from rankdocket.analysis.intervals import interval_alone, resample_address, with_adjusted_intervals
 from rankdocket.analysis.more_variables import examine_more_variables
 from rankdocket.analysis.nulls import budget_of, drawing_plan, levels_of, null_choice, smallest_possible_p
+from rankdocket.analysis.rank_codes import rank_codes
 from rankdocket.analysis.results import (
     Analysis,
     AssociationAnalysis,
@@ -31,8 +32,7 @@ from rankdocket.analysis.size import size_analysis
 from rankdocket.errors import InputError
 from rankdocket.stats.coefficient import FEWEST_ROWS, Coefficient
 from rankdocket.stats.comparisons import pearson_r, t_value_p
-from rankdocket.stats.interval import Interval, IntervalQuestion, NoInterval
-from rankdocket.stats.intervals import interval_of
+from rankdocket.stats.interval import IntervalQuestion, NoInterval
 from rankdocket.stats.null import TailShares
 from rankdocket.stats.null_result import NullQuestion, NullResult, null_result
 from rankdocket.stats.ranks import Codes
@@ -71,14 +71,15 @@ def analyse(spec: StudySpec, data: StudyData, progress: Callable[[str], None] = 
         progress(name)
     together = family_max_t(results, spec)
     findings = decide(results, spec, adjustment_of(spec) if together is None else together)
+    printed = with_adjusted_intervals(results, findings, spec)
     more = {name: examine_more_variables(name, results, spec, data) for name in results}
-    return Analysis(spec, data, results, findings, family_of(spec), more, together)
+    return Analysis(spec, data, printed, findings, family_of(spec), more, together)
 
 
 def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnalysis:
     """Check, estimate, test and compare one association."""
     checks = tuple(check.examine(screened, spec) for check in CHECKS)
-    x, y = _rank_codes(screened)
+    x, y = rank_codes(screened)
     estimate = _estimate(screened, checks, x, y)
     direction = direction_of(screened, spec)
     if isinstance(estimate, NotEstimable):
@@ -92,7 +93,7 @@ def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnaly
         )
     test = _test(screened, spec, checks, estimate.coefficient)
     question = IntervalQuestion(estimate.coefficient, x, y, spec.inference.confidence_level, direction)
-    interval = _interval(checks, question)
+    interval = interval_alone(screened, spec, checks, question)
     comparisons = Comparisons(
         t_value_p=t_value_p(estimate.coefficient, direction)
         if screened.spec.coefficient == "Spearman rho" and isinstance(test, RankTest)
@@ -101,7 +102,10 @@ def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnaly
         doubled_p=test.tails.doubled if isinstance(test, RankTest) and direction == "two-sided" else None,
     )
     size = size_analysis(screened, spec, test, question, interval) if isinstance(test, RankTest) else None
-    return AssociationAnalysis(screened, checks, estimate, test, interval, comparisons, smallest, size)
+    stream = resample_address(screened.spec.name, spec)
+    return AssociationAnalysis(
+        screened, checks, estimate, test, interval, comparisons, smallest, size, interval_stream=stream
+    )
 
 
 def without_seed(spec: StudySpec, screened: Mapping[str, Screened]) -> tuple[str, ...]:
@@ -137,12 +141,6 @@ def _will_be_tested(screened: Screened, spec: StudySpec) -> bool:
     if min(screened.x_ties.distinct, screened.y_ties.distinct) < 2 or len(screened.rows) < FEWEST_ROWS:
         return False
     return all(check.examine(screened, spec).withholds == "nothing" for check in CHECKS if not check.joint)
-
-
-def _rank_codes(screened: Screened) -> tuple[Codes, Codes]:
-    x = np.array([row.x_doubled_rank for row in screened.rows], dtype=np.int64)
-    y = np.array([row.y_doubled_rank for row in screened.rows], dtype=np.int64)
-    return x, y
 
 
 def _estimate(
@@ -182,7 +180,7 @@ def _test(
     address = (spec.study.number, screened.spec.name, "permutations") if choice.needs_draws else ()
     null = null_result(
         choice,
-        _rank_codes(screened),
+        rank_codes(screened),
         NullQuestion(
             observed, direction, Fraction(inference.alpha), levels_of(screened.spec, spec), inference.confidence_level
         ),
@@ -207,14 +205,6 @@ def _p_with_interval(
         # After several looks, the interval of the last one, which shares the level with them.
         return tails.p(direction), (null.looks[-1].low, null.looks[-1].high)
     return tails.p(direction), tails.interval(direction, level)
-
-
-def _interval(checks: tuple[CheckOutcome, ...], question: IntervalQuestion) -> Interval | NoInterval:
-    """Return the interval; it needs independent rows as much as the test does, and is withheld with it."""
-    for outcome in checks:
-        if outcome.key == INDEPENDENCE and outcome.withholds != "nothing":
-            return NoInterval(outcome.reason)
-    return interval_of(question)
 
 
 def _pearson(screened: Screened, spec: StudySpec) -> float | None:

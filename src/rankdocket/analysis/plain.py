@@ -12,6 +12,7 @@ from typing import Final
 
 from rankdocket.analysis.adjustment_plain import adjustment_to_plain, member_to_plain
 from rankdocket.analysis.filing import exact_decimal, filed, filed_beside, half
+from rankdocket.analysis.interval_plain import interval_plan_to_plain, intervals_to_plain
 from rankdocket.analysis.more_variables_plain import more_variables_to_plain
 from rankdocket.analysis.null_plain import null_to_plain, rank_test_to_plain, series_to_plain
 from rankdocket.analysis.results import (
@@ -33,7 +34,6 @@ from rankdocket.analysis.size_plain import (
 )
 from rankdocket.analysis.variables import VariableSummary, summarise
 from rankdocket.canonical import Plain
-from rankdocket.stats.interval import Interval
 from rankdocket.stats.nulls.monte_carlo import look_ends
 from rankdocket.stats.ranks import TieGroups
 from rankdocket.study.spec import StudySpec
@@ -53,10 +53,11 @@ def analysis_to_plain(analysis: Analysis) -> dict[str, Plain]:
             "family": list(analysis.family),
             "family_size": len(analysis.family),
             **adjustment_to_plain(analysis),
+            "interval": interval_plan_to_plain(analysis),
         },
         "associations": {
             name: {
-                **_association(result, analysis.findings[name], analysis.spec.inference.alpha),
+                **_association(result, analysis.findings[name], analysis.spec),
                 **more_variables_to_plain(analysis.more[name]),
             }
             for name, result in analysis.results.items()
@@ -188,7 +189,8 @@ def _check(outcome: CheckOutcome) -> dict[str, Plain]:
     return {"state": outcome.state, "reason": outcome.reason, "withholds": outcome.withholds, **limit, **found}
 
 
-def _association(result: AssociationAnalysis, finding: Finding, alpha: Decimal) -> dict[str, Plain]:
+def _association(result: AssociationAnalysis, finding: Finding, spec: StudySpec) -> dict[str, Plain]:
+    alpha, adjusted = spec.inference.alpha, spec.inference.interval.adjusted
     smallest: dict[str, Plain] = {}
     if result.smallest_attainable_p is not None:
         smallest = {"smallest_attainable_p": filed_beside(result.smallest_attainable_p, alpha)}
@@ -198,7 +200,7 @@ def _association(result: AssociationAnalysis, finding: Finding, alpha: Decimal) 
         "estimate": _estimate(result),
         "test": _test(result, alpha),
         **_null(result, alpha),
-        "interval": _interval(result),
+        **intervals_to_plain(result, adjusted),
         "comparisons": _comparisons(result, alpha),
         **size_to_plain(result, alpha),
         "finding": {**_finding(finding, alpha), **deciding_to_plain(result, alpha)},
@@ -247,20 +249,6 @@ def _null(result: AssociationAnalysis, alpha: Decimal) -> dict[str, Plain]:
     if not isinstance(result.test, RankTest) or not isinstance(result.estimate, Estimate):
         return {}
     return {"null": null_to_plain(result.test, result.estimate.coefficient, alpha)}
-
-
-def _interval(result: AssociationAnalysis) -> dict[str, Plain]:
-    interval = result.interval
-    if not isinstance(interval, Interval):
-        return {"state": "none", "reason": interval.reason}
-    return {
-        "state": "given",
-        "low": filed(interval.low),
-        "high": filed(interval.high),
-        "level": str(interval.level),
-        "by": interval.method,
-        "cap_binds": interval.cap_binds,
-    }
 
 
 def _comparisons(result: AssociationAnalysis, alpha: Decimal) -> dict[str, Plain]:

@@ -183,7 +183,16 @@ class Comparisons:
 class AssociationAnalysis:
     """Everything found for one association.
 
-    ``size`` is ``None`` where the plan names neither a null value nor a smallest size of interest, and without a test.
+    Attributes
+    ----------
+    interval
+        The one that is printed: adjusted for the family where the plan says so and the association is concerned.
+    interval_alone
+        The interval at the plan’s own level where ``interval`` is an adjusted one, else ``None``.
+    interval_stream
+        The address of the random stream of its resamples; empty without them.
+    size
+        ``None`` where the plan names neither a null value nor a smallest size of interest, and without a test.
     """
 
     screened: Screened
@@ -194,6 +203,8 @@ class AssociationAnalysis:
     comparisons: Comparisons
     smallest_attainable_p: Fraction | None
     size: SizeAnalysis | NoAnswer | None = None
+    interval_alone: Interval | NoInterval | None = None
+    interval_stream: tuple[str, ...] = ()
 
 
 FindingBasis: TypeAlias = Literal["family", "own p-value", "outside the family"]

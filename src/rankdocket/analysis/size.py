@@ -8,11 +8,11 @@ from typing import Final
 from rankdocket.analysis.check import direction_of
 from rankdocket.analysis.family import sharers_of
 from rankdocket.analysis.filing import DIGITS, filed, rounded_down
+from rankdocket.analysis.intervals import interval_as_planned, resample_address
 from rankdocket.analysis.results import RankTest, Screened
 from rankdocket.analysis.size_results import SizeAnalysis, SizeTests, ValueTest
 from rankdocket.stats.equivalence import minimum_effect, size_verdict, tost_z, value_test
 from rankdocket.stats.interval import Interval, IntervalQuestion, NoInterval
-from rankdocket.stats.intervals import interval_by
 from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.stats.z_interval import capped, tie_cap
 from rankdocket.stats.z_scale import NullVariance, null_factor
@@ -119,4 +119,6 @@ def _interval_of_equivalence(
     level = equivalence_level(spec.inference.alpha, sharers_of(screened.spec, spec))
     if level <= 0:
         return NoInterval("alpha leaves no level for it")
-    return interval_by(interval.method, replace(question, level=level, direction="two-sided"))
+    # The stream is that of the printed interval, so that both rest on the same resamples.
+    asked = replace(question, level=level, direction="two-sided")
+    return interval_as_planned(spec, asked, resample_address(screened.spec.name, spec))

@@ -1,13 +1,13 @@
 """Groups of rows: the coefficient of each, and how two of them differ; no finding and no p-value for one group."""
 
 from rankdocket.analysis.check import direction_of
+from rankdocket.analysis.intervals import interval_as_planned, resample_address
 from rankdocket.analysis.more_results import VARIANCE, Absent, Difference, Group, GroupComparison, Subgroups
 from rankdocket.analysis.more_rows import NOT_VARYING, TOO_FEW, TableRows, absent_estimate, withheld_test
 from rankdocket.analysis.results import AssociationAnalysis
 from rankdocket.stats.coefficient import FEWEST_ROWS, Coefficient
 from rankdocket.stats.differences import GroupCoefficient, difference_two_groups
 from rankdocket.stats.interval import IntervalQuestion, NoInterval
-from rankdocket.stats.intervals import interval_of
 from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.stats.rho import rho
 from rankdocket.stats.tau import tau_b
@@ -52,7 +52,9 @@ def _group(
     if withheld is not None:
         return Group(label, n, coefficient, NoInterval(withheld.reason))
     question = IntervalQuestion(coefficient, x, y, spec.inference.confidence_level, direction_of(result.screened, spec))
-    return Group(label, n, coefficient, interval_of(question))
+    address = resample_address(association.name, spec)
+    interval = interval_as_planned(spec, question, (*address, label) if address else ())
+    return Group(label, n, coefficient, interval)
 
 
 def _group_comparison(result: AssociationAnalysis, groups: tuple[Group, ...], spec: StudySpec) -> GroupComparison:

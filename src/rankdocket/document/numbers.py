@@ -7,7 +7,7 @@ of alpha on which a p-value lies.
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
-from decimal import ROUND_HALF_EVEN, ROUND_UP, Context, Decimal
+from decimal import ROUND_FLOOR, ROUND_HALF_EVEN, ROUND_UP, Context, Decimal
 from fractions import Fraction
 from typing import Final
 
@@ -148,6 +148,24 @@ class Numbers:
         """Return a filed decimal between 0 and 1 as a percentage with the digits that it has."""
         exact = self._exact(key)
         return Number(key, exact, f"{_plain_text(Decimal(exact) * 100)}%")
+
+    def percent_down(self, key: str) -> Number:
+        """Return a filed decimal as :meth:`percent_short` does, but rounded down, as a lower bound is."""
+        return self._percent(key, ROUND_FLOOR)
+
+    def percent_short(self, key: str) -> Number:
+        """Return a filed decimal above 0 and below 1 as a percentage with its first digits.
+
+        It has one decimal, or as many more as give itself and what is missing to everything three digits each.
+        """
+        return self._percent(key, ROUND_HALF_EVEN)
+
+    def _percent(self, key: str, rounding: str) -> Number:
+        exact = self._exact(key)
+        value = Decimal(exact)
+        places = max(1, -value.adjusted(), -(1 - value).adjusted())
+        printed = (value * 100).quantize(Decimal(1).scaleb(-places), rounding=rounding)
+        return Number(key, exact, f"{_plain_text(printed)}%")
 
     def decimals_for(self, key: str) -> int:
         """Return the decimals of the coefficient at ``key``, which its interval shares."""

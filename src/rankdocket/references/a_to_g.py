@@ -44,6 +44,12 @@ WORKS: Final = (
         "dependency. Annals of Statistics 29: 1165–1188.",
     ),
     Reference(
+        "benjamini2005",
+        "Benjamini & Yekutieli 2005",
+        "Benjamini Y, Yekutieli D (2005). False discovery rate–adjusted multiple confidence intervals for "
+        "selected parameters. Journal of the American Statistical Association 100: 71–81.",
+    ),
+    Reference(
         "bonett2000",
         "Bonett & Wright 2000",
         "Bonett DG, Wright TA (2000). Sample size requirements for estimating Pearson, Kendall and Spearman "

@@ -9,6 +9,12 @@ from rankdocket.references.work import Reference
 
 WORKS: Final = (
     Reference(
+        "halton1960",
+        "Halton 1960",
+        "Halton JH (1960). On the efficiency of certain quasi-random sequences of points in evaluating "
+        "multi-dimensional integrals. Numerische Mathematik 2: 84–90.",
+    ),
+    Reference(
         "hochberg1988",
         "Hochberg 1988",
         "Hochberg Y (1988). A sharper Bonferroni procedure for multiple tests of significance. Biometrika 75: 800–802.",

@@ -77,6 +77,11 @@ class IntervalQuestion:
     resampling: Resampling | None = None
 
 
+def tail_of_level(level: Decimal, direction: Direction) -> Decimal:
+    """Return the probability left beyond each limit: half of 1 − ``level``, or all of it for a bound."""
+    return (1 - level) / 2 if direction == "two-sided" else 1 - level
+
+
 @dataclass(frozen=True, slots=True)
 class Interval:
     """An interval for a coefficient.

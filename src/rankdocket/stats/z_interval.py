@@ -10,7 +10,7 @@ import numpy as np
 from scipy.special import ndtri, stdtrit
 
 from rankdocket.stats.coefficient import Coefficient
-from rankdocket.stats.interval import RESTRAINTS, Interval, IntervalQuestion, NoInterval, Restraint
+from rankdocket.stats.interval import RESTRAINTS, Interval, IntervalQuestion, NoInterval, Restraint, tail_of_level
 from rankdocket.stats.ranks import Codes, doubled_midranks, tie_groups
 
 BELOW_ONE: Final = nextafter(1, 0)
@@ -150,8 +150,7 @@ def why_none(coefficient: Coefficient, fewest: int, most: int | None = None) -> 
 
 def tail_of(question: IntervalQuestion) -> float:
     """Return the probability left beyond each limit asked for: half of 1 − level, or all of it for a bound."""
-    tail = 1 - question.level
-    return max(float(tail / 2 if question.direction == "two-sided" else tail), LEAST_TAIL)
+    return max(float(tail_of_level(question.level, question.direction)), LEAST_TAIL)
 
 
 def normal_quantile(tail: float) -> float:

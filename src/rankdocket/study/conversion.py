@@ -20,6 +20,7 @@ from rankdocket.study.spec import (
     GroupsSpec,
     HypothesisSpec,
     InferenceSpec,
+    IntervalSpec,
     LeaveOutSpec,
     Person,
     PValueSpec,
@@ -156,6 +157,7 @@ def _inference(parts: Parts, form: InferenceForm) -> InferenceSpec:
         sidedness=form.sidedness,
         confidence_level=form.confidence_level,
         planned_power=form.planned_power,
+        interval=IntervalSpec(form.interval.by, form.interval.adjusted, form.interval.resamples),
         several_tests=SeveralTestsSpec(several.adjust, several.among, several.reason),
         p_value=PValueSpec(
             p_value.by,

@@ -5,6 +5,7 @@ from typing import Final
 
 from rankdocket.errors import Fault
 from rankdocket.study.form import InferenceForm, PValueForm
+from rankdocket.study.interval_decision import interval_faults
 from rankdocket.study.messages import Message, fault
 from rankdocket.study.one_variable import max_t_faults
 from rankdocket.study.parts import Parts
@@ -28,6 +29,8 @@ def decision_faults(parts: Parts) -> Iterator[Fault]:
         yield from _family_faults(parts, parts.inference)
         yield from _reason_faults(parts, parts.inference)
         yield from max_t_faults(parts, _FAMILY_ROLES.get(parts.inference.several_tests.among, ()))
+    if parts.sound(("inference",), "interval"):
+        yield from interval_faults(parts, parts.inference)
     if parts.sound(("inference",), "p_value"):
         yield from _draw_faults(parts, parts.inference.p_value)
 

@@ -19,6 +19,8 @@ from rankdocket.vocabulary import (
     EXPECTED_SIGNS,
     FAMILIES,
     IF_NOT_MET,
+    INTERVAL_ADJUSTMENTS,
+    INTERVAL_BY,
     NUMBER_STYLES,
     P_BY,
     READERS,
@@ -32,6 +34,8 @@ from rankdocket.vocabulary import (
     ExpectedSign,
     Family,
     IfNotMet,
+    IntervalAdjustment,
+    IntervalBy,
     NumberStyle,
     PBy,
     Reader,
@@ -57,6 +61,8 @@ THOUSANDS_MARKS: Final = (",", ".", " ", "'", "\u2019", "\u00a0", "\u202f")
 LAST_ROW: Final = 100_000_000
 MOST_PERMUTATIONS: Final = 10_000_000
 FEWEST_PERMUTATIONS: Final = 999
+FEWEST_RESAMPLES: Final = 999
+MOST_RESAMPLES: Final = 1_000_000
 MOST_SECONDS: Final = Decimal(86_400)
 MOST_MEMORY: Final = 64 * 2**30
 LARGEST_SEED: Final = 2**63 - 1
@@ -281,6 +287,20 @@ class PValueForm(Form):
     )
 
 
+class IntervalForm(Form):
+    """How intervals are computed."""
+
+    by: Annotated[IntervalBy, kinds.OneOf(INTERVAL_BY)] = Field(
+        default="guarded jackknife", description="The interval rule."
+    )
+    adjusted: Annotated[IntervalAdjustment, kinds.OneOf(INTERVAL_ADJUSTMENTS)] = Field(
+        default="none", description="What the intervals of the family are adjusted for."
+    )
+    resamples: Annotated[int, kinds.WholeNumber(FEWEST_RESAMPLES, MOST_RESAMPLES)] = Field(
+        default=9_999, description="Resamples of the rows drawn for the BCa bootstrap."
+    )
+
+
 class InferenceForm(Form):
     """The decision rule of the study."""
 
@@ -297,6 +317,7 @@ class InferenceForm(Form):
         default=Decimal("0.80"),
         description="Probability with which the smallest detectable coefficient is to be found.",
     )
+    interval: IntervalForm = Field(default_factory=IntervalForm, description="How intervals are computed.")
     several_tests: SeveralTestsForm = Field(
         default_factory=SeveralTestsForm, description="Adjustment for several tests."
     )

@@ -104,6 +104,11 @@ def _inference(inference: InferenceSpec) -> Plain:
         "sidedness": inference.sidedness,
         "confidence_level": _shortest(inference.confidence_level),
         "planned_power": _shortest(inference.planned_power),
+        "interval": {
+            "by": inference.interval.by,
+            "adjusted": inference.interval.adjusted,
+            "resamples": inference.interval.resamples,
+        },
         "several_tests": {
             "adjust": inference.several_tests.adjust,
             "among": inference.several_tests.among,

@@ -16,6 +16,8 @@ from rankdocket.vocabulary import (
     ExpectedSign,
     Family,
     IfNotMet,
+    IntervalAdjustment,
+    IntervalBy,
     NumberStyle,
     PBy,
     Reader,
@@ -239,6 +241,15 @@ class PValueSpec:
 
 
 @dataclass(frozen=True, slots=True)
+class IntervalSpec:
+    """How intervals are computed, what those of the family are adjusted for, and resamples where a rule draws."""
+
+    by: IntervalBy
+    adjusted: IntervalAdjustment
+    resamples: int
+
+
+@dataclass(frozen=True, slots=True)
 class InferenceSpec:
     """``inference``: the decision rule of the study."""
 
@@ -246,6 +257,7 @@ class InferenceSpec:
     sidedness: Sidedness
     confidence_level: Decimal
     planned_power: Decimal
+    interval: IntervalSpec
     several_tests: SeveralTestsSpec
     p_value: PValueSpec
     place: Place

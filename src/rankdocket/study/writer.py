@@ -33,6 +33,8 @@ _PLAIN_WORDS: Final = frozenset(
         *vocabulary.SIDEDNESS,
         *vocabulary.ADJUSTMENTS,
         *vocabulary.FAMILIES,
+        *vocabulary.INTERVAL_BY,
+        *vocabulary.INTERVAL_ADJUSTMENTS,
         *vocabulary.P_BY,
         *vocabulary.IF_NOT_MET,
         *vocabulary.READERS,
@@ -154,6 +156,11 @@ def _inference(inference: InferenceSpec) -> _Value:
         "sidedness": inference.sidedness,
         "confidence_level": inference.confidence_level,
         "planned_power": inference.planned_power,
+        "interval": {
+            "by": inference.interval.by,
+            "adjusted": inference.interval.adjusted,
+            "resamples": inference.interval.resamples,
+        },
         "several_tests": {"adjust": several.adjust, "among": several.among, "reason": several.reason},
         "p_value": {
             "by": p_value.by,

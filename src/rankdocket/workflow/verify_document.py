@@ -139,6 +139,7 @@ def _ways_to_print(key: str, fresh: Fresh) -> set[str]:
     numbers = Numbers(fresh.plain, report.coefficient_decimals, report.p_value_decimals, report.number_style, alpha)
     ways: tuple[Callable[[str], Number], ...] = (
         numbers.whole, numbers.label, numbers.as_filed, numbers.level, numbers.share, numbers.percent,
+        numbers.percent_down, numbers.percent_short,
         numbers.coefficient, numbers.p_value, numbers.attainable_p,
     )  # fmt: skip
     found = set()

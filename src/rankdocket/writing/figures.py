@@ -9,6 +9,7 @@ from rankdocket.document.model import FigureBlock, Prose
 from rankdocket.document.prose import only, prose, text_of
 from rankdocket.stats.interval import Interval
 from rankdocket.study.spec import VariableSpec
+from rankdocket.writing.intervals import interval_cell, intervals_hold
 from rankdocket.writing.phrases import (
     N,
     address,
@@ -16,7 +17,6 @@ from rankdocket.writing.phrases import (
     coefficient_symbol,
     direction_sentence,
     estimate_with_interval,
-    interval_range,
     label,
     label_with_unit,
     level,
@@ -38,8 +38,9 @@ def interval_strip(story: Story) -> FigureBlock:
         kind="interval-strip",
         caption=prose(
             "Estimates (diamonds) with {level} intervals (lines); short ticks mark the smallest size of interest. An "
-            "association without an estimate keeps its line.",
+            "association without an estimate keeps its line. {intervals}",
             level=level(story),
+            intervals=intervals_hold(story),
         ),
         alternative=f"One line an association, in the order of the plan. {alternative}.",
         data={"axis_label": "coefficient", "lines": lines},
@@ -65,7 +66,7 @@ def _strip_line(story: Story, name: str, result: AssociationAnalysis) -> Plain:
     value = story.numbers.coefficient(address(name, "estimate", "value"))
     line["estimate"], line["text"] = value.exact, value.text
     if isinstance(result.interval, Interval):
-        spread = interval_range(story, name)
+        spread = interval_cell(story, name)
         line["low"] = story.numbers.coefficient(address(name, "interval", "low")).exact
         line["high"] = story.numbers.coefficient(address(name, "interval", "high")).exact
         line["text"] = f"{value.text} ({text_of(spread)})"

@@ -133,13 +133,15 @@ def _still_open(story: Story, name: str) -> Prose:
         return only(" That does not show that there is none.")
     values = interval_values(story, name)
     symbol = coefficient_symbol(result.screened.spec)
+    is_adjusted = result.interval_alone is not None
     if result.interval.low > 0 or result.interval.high < 0:
         return prose(
-            " The interval of this association alone holds values of {symbol} {values}; it is {why}, and the test decides.",
+            " The interval {whose}holds values of {symbol} {values}; it is {why}, and the test decides.",
+            whose="" if is_adjusted else "of this association alone ",
             symbol=symbol,
             values=values,
             why="built differently from the test"
-            if story.analysis.findings[name].p_adjusted in (None, result.test.p)
+            if is_adjusted or story.analysis.findings[name].p_adjusted in (None, result.test.p)
             else "not adjusted for the number of tests",
         )
     return prose(

@@ -1,6 +1,6 @@
 """Turns of phrase that several sections share: names of variables, an estimate with its interval, a p with its count."""
 
-from typing import Final
+from typing import Final, Literal
 
 from rankdocket.analysis.deciding import shows_direction
 from rankdocket.analysis.results import AssociationAnalysis, Estimate, RankTest, Withheld
@@ -75,25 +75,46 @@ def estimate_with_interval(story: Story, name: str) -> Prose:
     estimate = story.numbers.coefficient(address(name, "estimate", "value"))
     if not isinstance(result.interval, Interval):
         return prose("{estimate} (no interval)", estimate=estimate)
-    template = {
-        "two-sided": "{estimate} ({level} interval {range})",
-        "greater": "{estimate} ({level} lower bound: {range})",
-        "less": "{estimate} ({level} upper bound: {range})",
-    }[result.interval.direction]
-    return prose(template, estimate=estimate, level=level(story), range=interval_range(story, name))
+    direction, holds = result.interval.direction, interval_holds(story, name)
+    noun = {"two-sided": "interval", "greater": "lower bound", "less": "upper bound"}[direction]
+    words = {
+        "as planned": f"{{level}} {noun}",
+        "alone": f"{{level}} {noun} alone",
+        "simultaneous": f"simultaneous {{level}} {noun}",
+        "after selection": f"{{level}} {noun} after selection",
+    }[holds]
+    if direction != "two-sided":
+        words += ":"
+    elif holds in ("alone", "after selection"):
+        words += ","
+    return prose(
+        f"{{estimate}} ({words} {{range}})",
+        estimate=estimate,
+        level=level(story),
+        range=interval_range(story, name),
+    )
 
 
-def interval_range(story: Story, name: str) -> Prose:
+def interval_holds(story: Story, name: str) -> Literal["as planned", "alone", "simultaneous", "after selection"]:
+    """Return for what the interval of an association holds: "alone" is said where the plan adjusts other intervals."""
+    adjusted = story.analysis.spec.inference.interval.adjusted
+    if adjusted == "none":
+        return "as planned"
+    return "alone" if story.analysis.results[name].interval_alone is None else adjusted
+
+
+def interval_range(story: Story, name: str, which: Literal["interval", "interval_alone"] = "interval") -> Prose:
     """Return "0.27 to 0.98", or of a one-sided bound "from 0.27 up" or "up to 0.98".
 
     Limits have the decimals of the estimate, or more where they need them.
     """
-    interval = story.analysis.results[name].interval
+    result = story.analysis.results[name]
+    interval = result.interval if which == "interval" else result.interval_alone
     if not isinstance(interval, Interval):
         raise TypeError(f"{name} has no interval")
     decimals = story.numbers.decimals_for(address(name, "estimate", "value"))
-    low = story.numbers.coefficient(address(name, "interval", "low"), decimals)
-    high = story.numbers.coefficient(address(name, "interval", "high"), decimals)
+    low = story.numbers.coefficient(address(name, which, "low"), decimals)
+    high = story.numbers.coefficient(address(name, which, "high"), decimals)
     match interval.direction:
         case "two-sided":
             return prose("{low} to {high}", low=low, high=high)

@@ -5,10 +5,11 @@ from typing import Literal
 from rankdocket.analysis.results import Estimate, RankTest
 from rankdocket.document.model import Block, FieldList, Link, Paragraph, Prose, Section, Supplied
 from rankdocket.document.prose import joined, only, prose
-from rankdocket.stats.interval import Interval
 from rankdocket.writing.adjustment import adjusted_rows
+from rankdocket.writing.coverage import coverage_rows
 from rankdocket.writing.figures import rank_plot, raw_plot
 from rankdocket.writing.findings import finding_sentence, finding_word, size_sentence
+from rankdocket.writing.intervals import interval_rows
 from rankdocket.writing.more_variables import more_variables_tables
 from rankdocket.writing.null_picture import null_picture
 from rankdocket.writing.nulls import critical_rows, error_rows, null_sentence
@@ -88,18 +89,8 @@ def _numbers(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
         rows.append(("Estimate", only(state_word(result))))
         return tuple(rows)
     rows.append((result.screened.spec.coefficient, estimate_with_interval(story, name)))
-    if not isinstance(result.interval, Interval):
-        rows.append(("Interval", prose("none: {reason}", reason=result.interval.reason)))
-    elif result.interval.cap_binds:
-        rows.append(
-            (
-                "Cap",
-                only(
-                    "the estimate lay beyond the cap that the tie steps set; the interval is that of the cap, its outer "
-                    "limit set to one in size"
-                ),
-            )
-        )
+    rows += interval_rows(story, name)
+    rows += coverage_rows(story, name)
     if isinstance(result.test, RankTest):
         rows += [
             ("Null", null_sentence(story, name)),

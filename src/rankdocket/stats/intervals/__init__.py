@@ -1,7 +1,10 @@
 """The catalogue of interval rules: for each coefficient those to rely on first, then those kept for comparison."""
 
+from dataclasses import replace
 from types import MappingProxyType
 from typing import Final
+
+import numpy as np
 
 from rankdocket.stats.interval import Interval, IntervalMethod, IntervalQuestion, NoInterval
 from rankdocket.stats.intervals.bca_bootstrap import BCA_BOOTSTRAP
@@ -11,7 +14,7 @@ from rankdocket.stats.intervals.fisher import FISHER
 from rankdocket.stats.intervals.influence_values import INFLUENCE_VALUES
 from rankdocket.stats.intervals.jackknife import JACKKNIFE
 from rankdocket.stats.intervals.tau_jackknife import TAU_JACKKNIFE
-from rankdocket.vocabulary import CoefficientName
+from rankdocket.vocabulary import CoefficientName, IntervalBy
 
 INTERVAL_METHODS: Final[tuple[IntervalMethod, ...]] = (
     JACKKNIFE,
@@ -24,17 +27,43 @@ INTERVAL_METHODS: Final[tuple[IntervalMethod, ...]] = (
 )
 """Every interval rule."""
 
-USUAL_METHODS: Final = MappingProxyType[CoefficientName, IntervalMethod]({"Spearman rho": BONETT_WRIGHT})
-"""The rule of :func:`interval_of` by coefficient."""
+USUAL: Final[IntervalBy] = "guarded jackknife"
+"""The rule of :func:`interval_of`, in the word of a plan."""
+
+_PLANNED: Final = MappingProxyType[IntervalBy, tuple[IntervalMethod, ...]](
+    {
+        "guarded jackknife": (JACKKNIFE, TAU_JACKKNIFE),
+        "Bonett-Wright": (BONETT_WRIGHT,),
+        "influence values": (INFLUENCE_VALUES,),
+        "BCa bootstrap": (BCA_BOOTSTRAP,),
+        "Fieller-Hartley-Pearson": (FIELLER,),
+        "Fisher z": (FISHER,),
+    }
+)
+"""Word of a plan → the rules that it stands for, one a coefficient at most."""
 
 
 def interval_of(question: IntervalQuestion) -> Interval | NoInterval:
     """Return the interval by the usual rule for the coefficient, or why there is none."""
+    return planned_interval(USUAL, question)
+
+
+def planned_interval(by: IntervalBy, question: IntervalQuestion) -> Interval | NoInterval:
+    """Return the interval by the rule that a plan names, or why there is none; no other rule stands in for it.
+
+    Rows are put in order first: no digit, and no resample, depends on the order in which they came.
+    """
     name = question.coefficient.name
-    method = USUAL_METHODS.get(name)
+    method = planned_method(by, name)
     if method is None:
-        return NoInterval(f"no interval is offered for {_short(name)} yet")
-    return method.function(question)
+        return NoInterval(f"the plan asks for {by}, which makes no interval for {_short(name)}")
+    order = np.lexsort((question.y_codes, question.x_codes))
+    return method.function(replace(question, x_codes=question.x_codes[order], y_codes=question.y_codes[order]))
+
+
+def planned_method(by: IntervalBy, name: CoefficientName) -> IntervalMethod | None:
+    """Return the rule that a plan’s word means for a coefficient; ``None`` where there is none."""
+    return next((method for method in _PLANNED[by] if name in method.coefficients), None)
 
 
 def interval_by(method_key: str, question: IntervalQuestion) -> Interval | NoInterval:

@@ -4,7 +4,16 @@ from typing import Final
 
 from rankdocket.document.model import CaveatBlock
 from rankdocket.writing.caveat import CaveatRule
-from rankdocket.writing.caveats import adjustment, more_variables, requirements, results, size, study
+from rankdocket.writing.caveats import (
+    adjustment,
+    coverage,
+    intervals,
+    more_variables,
+    requirements,
+    results,
+    size,
+    study,
+)
 from rankdocket.writing.section import NumberedCaveat, Story
 
 CAVEATS: Final[tuple[CaveatRule, ...]] = (
@@ -16,16 +25,22 @@ CAVEATS: Final[tuple[CaveatRule, ...]] = (
     results.TWO_SIDED_RULE,
     results.TEST_AND_INTERVAL,
     size.EQUIVALENCE_AND_INTERVAL,
-    results.PERFECT,
+    coverage.LOW_COVERAGE,
+    intervals.PERFECT,
+    intervals.GUARD,
+    intervals.CAP,
+    intervals.FALLBACK,
     results.SMALL_SAMPLE,
     study.LEFT_OUT_ROWS,
     study.INCOMPLETE_ROWS,
     more_variables.GROUPS,
     more_variables.GIVEN_COVARIATES,
-    study.NO_INTERVAL,
+    intervals.BEYOND,
+    intervals.RESAMPLES,
+    intervals.NO_INTERVAL,
     adjustment.CONDITION_OF_ADJUSTMENT,
-    study.INTERVAL_BASIS,
     size.SIZE_BASIS,
+    intervals.INTERVAL_BASIS,
     study.ASSOCIATION_ONLY,
     study.INDEPENDENCE_NULL,
     study.DECISION,

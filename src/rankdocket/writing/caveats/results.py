@@ -1,10 +1,10 @@
-"""Caveats about single results: nothing to estimate, perfect agreement, small samples, test against interval, draws."""
+"""Caveats about single results: nothing to estimate, small samples, test against interval, draws."""
 
 from fractions import Fraction
 from typing import Final
 
 from rankdocket.analysis.deciding import deciding_p, interval_shows
-from rankdocket.analysis.results import Estimate, NotEstimable, RankTest
+from rankdocket.analysis.results import NotEstimable, RankTest
 from rankdocket.document.model import Prose
 from rankdocket.document.prose import prose
 from rankdocket.stats.interval import Interval
@@ -14,7 +14,7 @@ from rankdocket.writing.phrases import P, address, interval_range, p_equals, poi
 from rankdocket.writing.section import Story
 
 FEWEST: Final = 4
-"""With as many rows the interval spans nearly everything (Bonett & Wright's variance has one degree of freedom)."""
+"""With as many rows an interval spans nearly everything: its variance has one degree of freedom (bonett2000)."""
 
 SMALL: Final = 10
 """Below this many rows an interval is read as indicative only (house rule after simulation)."""
@@ -36,30 +36,6 @@ def _not_estimable(story: Story) -> tuple[FoundCaveat, ...]:
     )
 
 
-def _perfect(story: Story) -> tuple[FoundCaveat, ...]:
-    found = []
-    for name, result in story.analysis.results.items():
-        estimate = result.estimate
-        if not isinstance(estimate, Estimate):
-            continue
-        coefficient = estimate.coefficient
-        if coefficient.numerator**2 == coefficient.x_square * coefficient.y_square:
-            found.append(
-                FoundCaveat(
-                    (name,),
-                    prose(
-                        "{name}: all rows follow one order, so that the sample holds no disagreement from which an error "
-                        "could be estimated{interval}.",
-                        name=pointer(name),
-                        interval="; for the interval half of the disagreement of one row moved across the widest tie steps was assumed"
-                        if isinstance(result.interval, Interval)
-                        else "",
-                    ),
-                )
-            )
-    return tuple(found)
-
-
 def _small(story: Story) -> tuple[FoundCaveat, ...]:
     small = {
         name: result
@@ -73,8 +49,11 @@ def _small(story: Story) -> tuple[FoundCaveat, ...]:
         if name not in lone and isinstance(result.test, RankTest) and result.test.tails.is_exact
     )
     others = tuple(name for name in small if name not in (*lone, *counted))
-    few = "{names}: with so few rows the data exclude little. The interval is indicative"
-    templates = {few + "; the p-value, counted over all orderings of the rows, is exact.": counted, few + ".": others}
+    few = "{names}: with so few rows the data exclude little. Read the interval as indicative"
+    templates = {
+        few + "; the p-value, counted over all orderings of the rows, is exact and the primary result.": counted,
+        few + ".": others,
+    }
     templates["{names}: an interval from so few rows is uninformative; it is printed so that nothing is missing."] = (
         lone
     )
@@ -110,7 +89,7 @@ def _disagree(story: Story) -> tuple[FoundCaveat, ...]:
                     p=deciding_p_words(story, name),
                     range=interval_range(story, name),
                     why="The interval is not adjusted for the number of tests"
-                    if adjusted
+                    if adjusted and result.interval_alone is None
                     else "They are built differently",
                 ),
             )
@@ -192,7 +171,6 @@ def _conventions(story: Story) -> tuple[FoundCaveat, ...]:
 
 
 NOT_ESTIMABLE = CaveatRule("not_estimable", 80, _not_estimable)
-PERFECT = CaveatRule("perfect_agreement", 55, _perfect)
 SMALL_SAMPLE = CaveatRule("small_sample", 50, _small)
 TEST_AND_INTERVAL = CaveatRule("test_and_interval", 70, _disagree)
 UNDECIDED = CaveatRule("undecided", 75, _undecided)

@@ -1,10 +1,8 @@
-"""Caveats about the whole study: supplied words, rows left out, what an interval rests on, and the usual cautions."""
+"""Caveats about the whole study: supplied words, rows left out, and the usual cautions."""
 
-from rankdocket.analysis.checks.independence import KEY as INDEPENDENCE
-from rankdocket.analysis.results import Estimate, RankTest
+from rankdocket.analysis.results import RankTest
 from rankdocket.document.model import Emphasis, Link, Supplied
 from rankdocket.document.prose import lint, listed, only, prose
-from rankdocket.stats.interval import Interval
 from rankdocket.writing.caveat import CaveatRule, FoundCaveat
 from rankdocket.writing.citations import cite
 from rankdocket.writing.phrases import address, pointer
@@ -109,32 +107,6 @@ def _left_out(story: Story) -> tuple[FoundCaveat, ...]:
     )
 
 
-def _interval_rests_on(story: Story) -> tuple[FoundCaveat, ...]:
-    if not any(isinstance(result.interval, Interval) for result in story.analysis.results.values()):
-        return ()
-    return (
-        FoundCaveat(
-            (),
-            prose(
-                "The intervals rest on a variance that holds for normal-type dependence {cite}. Where the spread of one "
-                "variable changes with the other, or nearly perfect order comes with a few gross errors, or values are "
-                "coarsely tied, they cover the true value less often than their level says.",
-                cite=cite("bonett2000"),
-            ),
-        ),
-    )
-
-
-def _no_interval_for_tau(story: Story) -> tuple[FoundCaveat, ...]:
-    return tuple(
-        FoundCaveat((name,), prose("{name}: {reason}.", name=pointer(name), reason=result.interval.reason))
-        for name, result in story.analysis.results.items()
-        if isinstance(result.estimate, Estimate)
-        and not isinstance(result.interval, Interval)
-        and not any(outcome.key == INDEPENDENCE and outcome.withholds != "nothing" for outcome in result.checks)
-    )
-
-
 def _association_only(story: Story) -> tuple[FoundCaveat, ...]:
     del story  # holds for every rank correlation
     return (
@@ -179,8 +151,6 @@ def _decision(story: Story) -> tuple[FoundCaveat, ...]:
 SUPPLIED_WORDS = CaveatRule("supplied_words", 90, _supplied)
 INCOMPLETE_ROWS = CaveatRule("incomplete_rows", 40, _incomplete)
 LEFT_OUT_ROWS = CaveatRule("left_out_rows", 45, _left_out)
-INTERVAL_BASIS = CaveatRule("interval_basis", 30, _interval_rests_on)
-NO_INTERVAL = CaveatRule("no_interval", 35, _no_interval_for_tau)
 ASSOCIATION_ONLY = CaveatRule("association_only", 20, _association_only)
 INDEPENDENCE_NULL = CaveatRule("independence_null", 15, _independence_null)
 DECISION = CaveatRule("decision", 10, _decision)

@@ -4,22 +4,28 @@ from itertools import product
 from typing import Final
 
 from rankdocket.analysis.checks import CHECKS
+from rankdocket.analysis.coverage import coverage_of
+from rankdocket.analysis.intervals import AFTER_SELECTION, SIMULTANEOUS
 from rankdocket.analysis.results import Estimate, RankTest
 from rankdocket.document.model import Block, Link, Number, Paragraph, Prose, Section
 from rankdocket.document.prose import joined, only, prose, text_of
 from rankdocket.references import Description
+from rankdocket.stats.coverage.lookup import SimulatedCoverage
 from rankdocket.stats.critical import CRITICAL_VALUES
 from rankdocket.stats.interval import Interval
 from rankdocket.stats.intervals import INTERVAL_METHODS
+from rankdocket.stats.intervals.bca_bootstrap import BCA_BOOTSTRAP
 from rankdocket.stats.null import MONTE_CARLO_INTERVAL, MONTE_CARLO_LOOKS, NULL_DESCRIPTIONS, TWO_SIDED, NullMethod
 from rankdocket.stats.nulls.tau_exact import TAU_NULL_DESCRIPTIONS
 from rankdocket.stats.rho import RHO
 from rankdocket.stats.tau import TAU_B
 from rankdocket.vocabulary import COEFFICIENTS, CoefficientName
 from rankdocket.writing.adjustment import adjustment_text
+from rankdocket.writing.coverage import COVERAGE_SENTENCE
 from rankdocket.writing.described import described
+from rankdocket.writing.intervals import given
 from rankdocket.writing.more_variables_methods import more_variables_descriptions
-from rankdocket.writing.phrases import address, full_stop, pointers
+from rankdocket.writing.phrases import address, full_stop, interval_holds, pointers
 from rankdocket.writing.section import SectionRule, Story
 from rankdocket.writing.size_methods import could_show_methods, size_methods
 
@@ -227,12 +233,45 @@ def _family(story: Story) -> Prose:
 def _intervals(story: Story) -> Prose:
     given = [result.interval for result in story.analysis.results.values() if isinstance(result.interval, Interval)]
     ran = {interval.method for interval in given}
-    parts = [described(method.describe) for method in INTERVAL_METHODS if method.key in ran]
+    slots = {"resamples": "inference/interval/resamples"} if BCA_BOOTSTRAP.key in ran else {}
+    parts = [
+        described(
+            method.describe,
+            **{slot: story.numbers.whole(at) for slot, at in slots.items() if method.key == BCA_BOOTSTRAP.key},
+        )
+        for method in INTERVAL_METHODS
+        if method.key in ran
+    ]
     if any(interval.direction != "two-sided" for interval in given):
         parts.append(only("For a one-sided test it is the bound on the side that the plan expects, at the same level."))
+    if any(isinstance(coverage_of(result), SimulatedCoverage) for result in story.analysis.results.values()):
+        parts.append(only(COVERAGE_SENTENCE))
     if parts:
-        parts.append(only("Intervals were not adjusted for the number of tests: each holds for its association alone."))
+        parts.append(_adjusted_intervals(story))
     return joined(tuple(parts))
+
+
+def _adjusted_intervals(story: Story) -> Prose:
+    numbers, at = story.numbers, "inference/interval"
+    holds = {interval_holds(story, name) for name in given(story)}
+    slots = {
+        "family": numbers.whole("inference/family_size"),
+        "level": numbers.percent("inference/confidence_level"),
+    }
+    if "simultaneous" in holds:
+        words = described(SIMULTANEOUS, each=numbers.percent_down(f"{at}/level"), **slots)
+    elif "after selection" in holds:
+        selected = numbers.whole(f"{at}/selected")
+        words = described(AFTER_SELECTION, each=numbers.percent_down(f"{at}/level"), selected=selected, **slots)
+    elif "alone" in holds:
+        words = only(
+            "No interval came to be adjusted: the plan adjusts those of others only, and each that is given holds for its "
+            "association alone."
+        )
+    else:
+        return only("Intervals were not adjusted for the number of tests: each holds for its association alone.")
+    others = only("The other intervals hold for their association alone.")
+    return joined((words, others)) if len(holds) > 1 else words
 
 
 def _comparisons(story: Story) -> Prose:

@@ -28,7 +28,7 @@ def write(story: Story) -> Section:
         for table in story.analysis.data.tables.values()
     ]
     if story.analysis.spec.inference.p_value.seed is not None:
-        rows.append(("Seed of drawn orderings", only(story.numbers.label("inference/seed"))))
+        rows.append((_seed_of(story), only(story.numbers.label("inference/seed"))))
     blocks: tuple[Block, ...] = (
         FieldList(tuple(rows), key="digests"),
         TableBlock(
@@ -68,6 +68,11 @@ def _how_to() -> tuple[Prose, ...]:
             "were cut off, nor a register rewritten as a whole: deposit the head digest with somebody else."
         ),
     )
+
+
+def _seed_of(story: Story) -> str:
+    drawn = story.analysis.spec.inference.interval.by == "BCa bootstrap"
+    return "Seed of drawn orderings and resamples" if drawn else "Seed of drawn orderings"
 
 
 SECTION = SectionRule("record", write)

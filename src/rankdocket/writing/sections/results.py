@@ -9,15 +9,14 @@ from rankdocket.writing.adjustment import bound_note, bounded
 from rankdocket.writing.could_show import could_show_table
 from rankdocket.writing.figures import interval_strip
 from rankdocket.writing.findings import finding_word, smallest_of_interest
+from rankdocket.writing.intervals import interval_cell, interval_head, intervals_hold
 from rankdocket.writing.phrases import (
     EN_DASH_CELL,
     N,
     P,
     address,
     estimate_with_interval,
-    interval_range,
     label_head,
-    level,
     p_equals,
     pointer,
     variables_of,
@@ -56,7 +55,7 @@ def master_table(story: Story) -> TableBlock:
             Column(only("Tied x, y"), "tied", "right", share=3),
             Column(only("Coefficient"), "coefficient", share=3),
             Column(only("Estimate"), "estimate", "decimal", share=3),
-            Column(_interval_head(story), "interval", "right", share=4),
+            Column(interval_head(story), "interval", "right", share=4),
             Column(prose("{p}, {sided}", p=P, sided=sided), "p", "decimal", share=3),
             Column(prose("{p}, adjusted ({rule})", p=P, rule=adjusted), "p_adjusted", "decimal", share=3),
             Column(only("Expected"), "expected_sign", share=3),
@@ -66,13 +65,6 @@ def master_table(story: Story) -> TableBlock:
         rows=tuple(_master_row(story, name, result) for name, result in story.analysis.results.items()),
         notes=_master_notes(story),
     )
-
-
-def _interval_head(story: Story) -> Prose:
-    """Return which interval it is; where p-values are adjusted, that intervals are not."""
-    sided, several = story.analysis.spec.inference.sidedness, story.analysis.spec.inference.several_tests.adjust
-    template = "{level} interval" if sided == "two-sided" else "{level} bound, one-sided"
-    return prose(template if several == "none" else template + ", unadjusted", level=level(story))
 
 
 def _master_row(story: Story, name: str, result: AssociationAnalysis) -> tuple[Prose, ...]:
@@ -97,7 +89,7 @@ def _master_row(story: Story, name: str, result: AssociationAnalysis) -> tuple[P
         tied,
         only(spec.coefficient),
         only(numbers.coefficient(address(name, "estimate", "value"))) if estimated else EN_DASH_CELL,
-        interval_range(story, name) if isinstance(result.interval, Interval) else EN_DASH_CELL,
+        interval_cell(story, name) if isinstance(result.interval, Interval) else EN_DASH_CELL,
         only(numbers.p_value(address(name, "test", "p"))) if isinstance(result.test, RankTest) else EN_DASH_CELL,
         _adjusted(story, name),
         only(spec.hypothesis.expected_sign),
@@ -119,9 +111,10 @@ def _caveat_numbers(story: Story, name: str) -> Prose:
 
 def _master_notes(story: Story) -> tuple[Prose, ...]:
     notes = [
-        only(
+        prose(
             "Every association of the plan has its row, whatever became of it. Caveats that concern the whole study are "
-            "not repeated here. Each interval holds for its association alone."
+            "not repeated here. {intervals}",
+            intervals=intervals_hold(story),
         )
     ]
     if bounded(story) is not None:

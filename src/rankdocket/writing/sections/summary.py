@@ -4,10 +4,11 @@ from typing import Final
 
 from rankdocket.analysis.results import Estimate
 from rankdocket.document.model import Block, FieldList, Items, Link, Paragraph, Prose, Section, Supplied
-from rankdocket.document.prose import joined, listed, only, prose
+from rankdocket.document.prose import joined, listed, only, prose, text_of
 from rankdocket.vocabulary import FINDINGS
 from rankdocket.writing.adjustment import bound_sentence
 from rankdocket.writing.findings import finding_sentence, finding_word
+from rankdocket.writing.intervals import given, intervals_hold
 from rankdocket.writing.phrases import (
     N,
     address,
@@ -38,26 +39,9 @@ def summary(story: Story) -> Section:
         Paragraph(_tally(story)),
     ]
     blocks.extend(FieldList(_answer(story, name), key=f"summary-{name}") for name in shown)
-    if more:
-        blocks.append(
-            Paragraph(
-                prose(
-                    "The others: {others}. All stand in {table}.",
-                    others=listed(
-                        tuple(
-                            prose(
-                                "{name} {word}",
-                                name=pointer(name),
-                                word=finding_word(story.analysis.findings[name]),
-                            )
-                            for name in more
-                        )
-                    ),
-                    table=Link("results", "Table 5"),
-                ),
-                "note",
-            )
-        )
+    several = intervals_hold(story) if len(given(story)) > 1 else only("")
+    if more or text_of(several):
+        blocks.append(Paragraph(sentences(_others(story, more), several), "note"))
     heaviest = _heaviest(story, shown)
     blocks.append(
         Paragraph(
@@ -67,6 +51,16 @@ def summary(story: Story) -> Section:
     blocks.append(Items(tuple(caveat.block.prose for caveat in heaviest)))
     blocks.append(Paragraph(_changes(story), "note"))
     return Section("summary", "", only("Summary"), tuple(blocks), opens="page")
+
+
+def _others(story: Story, more: tuple[str, ...]) -> Prose:
+    """Return the findings that this page has no room to tell; empty where there are none."""
+    if not more:
+        return only("")
+    words = tuple(
+        prose("{name} {word}", name=pointer(name), word=finding_word(story.analysis.findings[name])) for name in more
+    )
+    return prose("The others: {others}. All stand in {table}.", others=listed(words), table=Link("results", "Table 5"))
 
 
 def _heaviest(story: Story, told: tuple[str, ...]) -> tuple[NumberedCaveat, ...]:

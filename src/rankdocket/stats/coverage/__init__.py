@@ -1,0 +1,1 @@
+"""How often intervals cover the true value in simulated samples: the shipped table, its simulation, and the look into it."""
