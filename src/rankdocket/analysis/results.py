@@ -12,6 +12,7 @@ from typing import Literal, TypeAlias
 
 from rankdocket.analysis.max_t_result import FamilyMaxT, MemberMaxT
 from rankdocket.analysis.more_results import MoreVariables
+from rankdocket.analysis.shape import Shape
 from rankdocket.stats.choose_null import NullChoice
 from rankdocket.stats.coefficient import Coefficient
 from rankdocket.stats.interval import Interval, NoInterval
@@ -110,6 +111,8 @@ class CheckOutcome:
         A sentence part in words, without digits.
     withholds
         What the plan withholds because of it: nothing, the test, or the estimate and the test.
+    waived
+        The plan’s written reason for waiving it, where it is not met or doubtful; it then withholds nothing.
     """
 
     key: str
@@ -118,6 +121,7 @@ class CheckOutcome:
     found: Measure | None
     reason: str
     withholds: Literal["nothing", "test", "all"] = "nothing"
+    waived: str | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -189,6 +193,8 @@ class AssociationAnalysis:
         The interval at the plan’s own level where ``interval`` is an adjusted one, else ``None``.
     interval_stream
         The address of the random stream of its resamples; empty without them.
+    shape
+        A look at the shape, where there is an estimate.
     """
 
     screened: Screened
@@ -200,6 +206,7 @@ class AssociationAnalysis:
     smallest_attainable_p: Fraction | None
     interval_alone: Interval | NoInterval | None = None
     interval_stream: tuple[str, ...] = ()
+    shape: Shape | None = None
 
 
 FindingBasis: TypeAlias = Literal["family", "own p-value", "outside the family"]

@@ -31,6 +31,7 @@ from rankdocket.study.spec import (
     StudySpec,
     VariableSpec,
 )
+from rankdocket.study.waivers import waivers_of
 
 
 def spec_of(parts: Parts) -> StudySpec:
@@ -118,6 +119,7 @@ def _variable(parts: Parts, name: str, form: VariableForm) -> VariableSpec:
         lowest_to_highest=form.lowest_to_highest,
         other_spellings=form.other_spellings,
         missing_codes=form.missing_codes,
+        derived_from=form.derived_from,
         place=parts.key_place("variables", name),
     )
 
@@ -132,6 +134,7 @@ def _association(parts: Parts, name: str, form: AssociationForm) -> AssociationS
         role=form.role,
         hypothesis=HypothesisSpec(form.hypothesis.expected_sign, form.hypothesis.smallest_of_interest),
         coefficient=form.coefficient,
+        waived=waivers_of(form.waived),
         place=parts.key_place("associations", name),
         covariates=form.covariates,
         compare_with=form.compare_with,

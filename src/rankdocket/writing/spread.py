@@ -27,6 +27,7 @@ from rankdocket.writing.phrases import (
     variables_of,
 )
 from rankdocket.writing.section import Story
+from rankdocket.writing.shape import xi_rows
 
 
 def spread(story: Story, name: str, position: int) -> Section:
@@ -109,6 +110,7 @@ def _numbers(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
     if result.smallest_attainable_p is not None:
         rows.append(("Smallest attainable p", only(numbers.attainable_p(address(name, "smallest_attainable_p")))))
     rows += adjusted_rows(story, name)
+    rows += xi_rows(story, name)
     rows.append(("Finding", only(finding_word(story.analysis.findings[name]))))
     return tuple(rows)
 

@@ -4,18 +4,31 @@ from typing import Final
 
 from rankdocket.document.model import CaveatBlock
 from rankdocket.writing.caveat import CaveatRule
-from rankdocket.writing.caveats import adjustment, coverage, intervals, more_variables, requirements, results, study
+from rankdocket.writing.caveats import (
+    adjustment,
+    built_in,
+    coverage,
+    intervals,
+    more_variables,
+    requirements,
+    results,
+    shape,
+    study,
+)
 from rankdocket.writing.section import NumberedCaveat, Story
 
 CAVEATS: Final[tuple[CaveatRule, ...]] = (
     requirements.DEPENDENT_ROWS,
     study.SUPPLIED_WORDS,
     results.NOT_ESTIMABLE,
+    built_in.BUILT_IN,
+    built_in.BUILT_IN_SIZE,
     requirements.REQUIREMENTS,
     results.UNDECIDED,
     results.TWO_SIDED_RULE,
     results.TEST_AND_INTERVAL,
     coverage.LOW_COVERAGE,
+    shape.HIDDEN_SHAPE,
     intervals.PERFECT,
     intervals.GUARD,
     intervals.CAP,
