@@ -30,6 +30,7 @@ IfNotMet: TypeAlias = Literal["estimate without test", "withhold all", "test wit
 Reader: TypeAlias = Literal["client", "reviewer", "regulator", "court"]
 Signature: TypeAlias = Literal["prepared", "checked", "released"]
 NumberStyle: TypeAlias = Literal["leading zero", "no leading zero"]
+WaivableCheck: TypeAlias = Literal["complete rows", "missing values", "ties", "built-in association"]
 
 CheckState: TypeAlias = Literal["met", "doubtful", "not met", "not examined"]
 FindingWord: TypeAlias = Literal["shown", "shown, opposite sign", "not shown", "withheld", "not estimable"]
@@ -54,6 +55,7 @@ READERS: Final = get_args(Reader)
 SIGNATURES: Final = get_args(Signature)
 NUMBER_STYLES: Final = get_args(NumberStyle)
 CHECK_STATES: Final = get_args(CheckState)
+WAIVABLE_CHECKS: Final = get_args(WaivableCheck)
 FINDINGS: Final = get_args(FindingWord)
 
 FOR_BOTH: Final[tuple[IntervalBy, ...]] = ("guarded jackknife", "Fieller-Hartley-Pearson")

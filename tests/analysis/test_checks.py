@@ -8,7 +8,7 @@ from dataclasses import dataclass, replace
 
 import pytest
 
-from analysis.invented import FALLING, INDEPENDENT, MISSING, RISING, Invented, association
+from analysis.invented import FALLING, INDEPENDENT, MISSING, MIXED, RISING, Invented, association
 from rankdocket.analysis import checks
 from rankdocket.analysis.check import Check
 from rankdocket.analysis.checks import CHECKS
@@ -65,6 +65,11 @@ FLAT_HALF = "a variable is constant in one half of the rows"
 ONE_WAY = "the two halves of x do not lean in opposite directions"
 OPPOSED = "the direction in the lower half of x is opposite to that in the upper half"
 
+UNTOLD = "the plan does not say from what the variables were worked out"
+NOTHING_SHARED = "nothing that the plan declares is common to both variables"
+OF_THE_OTHER = "one of the variables was worked out from the other"
+OF_THE_SAME = "both variables were worked out from the same"
+
 TWENTY_TWO = " ".join(str(place) for place in range(1, 23))
 LEANS_BY_03 = (1, 6, 7, 4, 2, 8, 11, 10, 9, 5, 3)
 """Eleven places whose squared differences from 1 ... 11 sum to 154."""
@@ -75,6 +80,14 @@ LEANS_BY_029 = (3, 8, 7, 1, 5, 10, 4, 2, 11, 9, 6)
 def bent(lower: tuple[int, ...], upper: tuple[int, ...]) -> str:
     """Return values that lean upwards as the first half does and then downwards as the second does."""
     return " ".join(str(value) for value in (*lower, *(12 - value for value in upper)))
+
+
+def derived(**origins: str) -> Invented:
+    """Return the base study with a third column and with what some variables were worked out from."""
+    keys = {
+        name: f"label: value of {name}, scale: measured, unit: mm, derived_from: {of}" for name, of in origins.items()
+    }
+    return replace(BASE, columns={**BASE.columns, "w": MIXED}, variables=keys)
 
 
 def drawn_at(alpha: str) -> str:
@@ -248,6 +261,19 @@ CASES = (
         "not examined",
         "no rank correlation exists for these rows",
         ("0.05", None),
+    ),
+    Case("built_in", BASE, "not examined", UNTOLD),
+    Case("built_in", derived(u="[]"), "met", NOTHING_SHARED),
+    Case("built_in", derived(u="[w]", v="[u]"), "not met", OF_THE_OTHER, withholds="test"),
+    Case("built_in", derived(u="[v]"), "not met", OF_THE_OTHER, withholds="test"),
+    Case("built_in", derived(u="[w]", v="[w]"), "not met", OF_THE_SAME, withholds="test"),
+    Case("built_in", replace(derived(u="[v]"), requirements=limits(then="test with caveat")), "not met", OF_THE_OTHER),
+    Case(
+        "built_in",
+        replace(derived(u="[v]"), requirements=limits(then="withhold all")),
+        "not met",
+        OF_THE_OTHER,
+        withholds="all",
     ),
     Case("independence", BASE, "met", DECLARED),
     Case("independence", in_lab("independent_because: each trial had its own rig"), "met", DECLARED),

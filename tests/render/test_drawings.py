@@ -119,6 +119,24 @@ def test_a_point_stands_where_its_values_say() -> None:
     assert cx == pytest.approx((ax + bx) / 2, abs=0.02)
 
 
+def test_the_step_curve_rises_halfway_between_its_steps() -> None:
+    """From the marks of its ends: level, then upright, then level, in thin black."""
+    points = [{"x": str(x), "y": str(y), "count": 1} for x, y in ((0, 0), (4, 0), (8, 6), (10, 6))]
+    curve = [{"x_from": "0", "x_to": "4", "y": "0"}, {"x_from": "8", "x_to": "10", "y": "6"}]
+    bare, curved = (plot_of("raw-plot", points, curve=steps) for steps in ([], curve))
+    (a, b, c, d) = ((x, y) for x, y, _ in circles(curved))
+    (line,) = {e.attrib["d"] for e in tree(curved).iter(f"{SVG}path")} - {
+        e.attrib["d"] for e in tree(bare).iter(f"{SVG}path")
+    }
+    numbers = [float(text) for text in re.findall(r"-?[\d.]+", line)]
+    corners = list(zip(numbers[0::2], numbers[1::2], strict=True))
+    halfway = (b[0] + c[0]) / 2
+    expected = [a, b, (halfway, b[1]), (halfway, c[1]), c, d]
+    assert len(corners) == len(expected)
+    for corner, place in zip(corners, expected, strict=True):
+        assert corner == pytest.approx(place, abs=0.02)
+
+
 def test_the_area_of_a_mark_grows_with_its_count() -> None:
     for kind in ("raw-plot", "rank-plot"):
         figure = plot_of(kind, [{"x": "1", "y": "1", "count": 1}, {"x": "2", "y": "3", "count": 9}])

@@ -139,3 +139,12 @@ def test_xi_counts_as_visible_from_three_null_spreads() -> None:
     assert has_hidden_shape(nought, Xi(31, Fraction(3, 10), Fraction(1, 100)))
     assert not has_hidden_shape(nought, Xi(31, Fraction(299, 1000), Fraction(1, 100)))
     assert not has_hidden_shape(nought, Xi(31, Fraction(3, 10), Fraction(0)))
+
+
+def test_many_rows_do_not_overflow_the_null_variance() -> None:
+    """At 40,000 rows sums of squares pass what an int64 holds; without ties the published variance still comes out."""
+    n = 40_000
+    places = np.arange(n, dtype=np.int64)
+    xi = xi_of_codes(places, places)
+    assert isinstance(xi, Xi)
+    assert xi.null_variance == Fraction((n - 2) * (4 * n - 7), 10 * (n + 1) * (n - 1) ** 2)

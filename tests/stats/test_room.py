@@ -8,7 +8,7 @@ import pytest
 
 from rankdocket.references import REFERENCES, Description
 from rankdocket.stats.adjustments import ADJUSTMENTS
-from rankdocket.stats.chatterjee import XI
+from rankdocket.stats.chatterjee import XI, XI_NULL
 from rankdocket.stats.differences import TWO_GROUPS
 from rankdocket.stats.equivalence import EQUIVALENCE, MINIMUM_EFFECT, NULL_VALUE
 from rankdocket.stats.intervals import INTERVAL_METHODS
@@ -37,6 +37,7 @@ DESCRIPTIONS = (
     MINIMUM_EFFECT,
     EQUIVALENCE,
     XI,
+    XI_NULL,
     ISOTONIC,
     STUDENTISED,
     RUNS,

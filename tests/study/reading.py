@@ -38,6 +38,7 @@ VARIABLE = VariableSpec(
     lowest_to_highest=(),
     other_spellings={},
     missing_codes={},
+    derived_from=None,
     place=SPEC_PLACE,
 )
 

@@ -8,7 +8,7 @@ import pytest
 import yaml
 
 from rankdocket import vocabulary
-from rankdocket.study.form import json_schema
+from rankdocket.study.json_schema import json_schema
 from rankdocket.study.reader import read_spec
 from rankdocket.study.writer import spec_as_used
 from study.faults import changed

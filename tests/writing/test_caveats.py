@@ -13,11 +13,13 @@ from rankdocket.writing.caveat import CaveatRule
 from rankdocket.writing.caveats import (
     CAVEATS,
     adjustment,
+    built_in,
     coverage,
     intervals,
     more_variables,
     requirements,
     results,
+    shape,
     size,
     study,
 )
@@ -58,6 +60,12 @@ THREE_LEVELS = {
     "w": "1 " * 38 + "2 " * 21 + "3 " * 16,
 }
 """Three levels nearly in order: intervals for rho by Bonett-Wright and for tau-b by the jackknife cover less there."""
+DERIVED = replace(QUIET, variables={"v": "label: the ratio, scale: measured, unit: mm, derived_from: [u]"})
+BENT = {
+    "u": " ".join(str(place) for place in range(1, 21)),
+    "v": " ".join(str(abs(10 * place - 103)) for place in range(1, 21)),
+}
+"""Twenty values that fall and rise again: rho 0.09."""
 
 ALWAYS = {"association_only", "decision"}
 """Rules that hold for every report."""
@@ -66,6 +74,9 @@ SPEAKS: dict[str, Invented] = {
     "dependent_rows": replace(QUIET, rows="leave_out: []"),
     "supplied_words": replace(QUIET, study="title: Load causes creep, question: Do they rise together?"),
     "not_estimable": replace(QUIET, columns={"u": RISING, "v": "5 " * 10}),
+    "built_in": DERIVED,
+    "built_in_size": DERIVED,
+    "hidden_shape": replace(QUIET, columns=BENT),
     "requirements": replace(QUIET, requirements="fewest_complete_rows: 11"),
     "undecided": replace(QUIET, columns=TWELVE, inference=DRAWN.format(alpha="0.1")),
     "two_sided_rule": replace(QUIET, columns=LOPSIDED, inference="alpha: 0.3"),
@@ -169,7 +180,18 @@ def test_the_catalogue_holds_every_rule_once_with_a_weight_of_its_own() -> None:
     """A rule that is written and not listed would never speak."""
     written = [
         rule
-        for module in (adjustment, coverage, intervals, more_variables, requirements, results, size, study)
+        for module in (
+            adjustment,
+            built_in,
+            coverage,
+            intervals,
+            more_variables,
+            requirements,
+            results,
+            shape,
+            size,
+            study,
+        )
         for _, rule in inspect.getmembers(module, lambda value: isinstance(value, CaveatRule))
     ]
     assert {rule.key for rule in written} == {rule.key for rule in CAVEATS}
@@ -180,6 +202,25 @@ def test_the_catalogue_holds_every_rule_once_with_a_weight_of_its_own() -> None:
 
 
 WORDS = {
+    "built_in": (
+        "A1: the requirement “separate origins” is not met: one of the variables was worked out from the other (value of "
+        "u), so that an association is built in, and zero is not what the rows would show if nothing else tied the two. "
+        "The estimate is given without a test."
+    ),
+    "built_in_size": (
+        "A1: variables of one origin move together, or against one another, by the way they were worked out (Pearson 1897; "
+        "Oldham 1962). A common denominator and a part held against its whole push a coefficient up; a change held against "
+        "its own baseline pushes it down. How far, by example: for quantities without any association among themselves, "
+        "simulated by the authors of this program with 100 rows, the mean rho was 0.48 for two ratios with a common "
+        "denominator (standard deviation 20% of the mean in all quantities) and −0.68 for a change against its baseline of "
+        "equal spread."
+    ),
+    "hidden_shape": (
+        "A1: look at the plot (Figure A1a): rho is near zero, and yet value of v visibly goes with value of u in a way that "
+        "has no one direction, such as up and down again: Chatterjee’s xi is 0.72, 5.5 standard deviations above what rows "
+        "without any relation give on average (Chatterjee 2021). A coefficient near zero says only that no common direction "
+        "prevails."
+    ),
     "dependent_rows": (
         "Every test and every interval is withheld: the plan does not say whether rows are repeated or in time order. "
         "Rows that belong together, treated as if they did not, give false findings far more often than alpha says."
@@ -252,6 +293,57 @@ WORDS = {
 def test_a_caveat_in_words(key: str) -> None:
     """The sentence as it stands, numbers and all (golden)."""
     assert [sentence.replace("\u00a0", " ") for sentence in caveats_of(SPEAKS[key])[key]] == [WORDS[key]]
+
+
+@pytest.mark.parametrize(
+    ("study", "rule", "said"),
+    [
+        (
+            replace(QUIET, requirements="fewest_complete_rows: 11"),
+            "requirements",
+            (
+                "A1: the requirement “enough complete rows” is not met (waived): fewer complete rows than the plan asks for (found "
+                "10, limit 11). Reason given in the plan for waiving it: a pilot. The result stands with this reservation."
+            ),
+        ),
+        (
+            replace(QUIET, columns={"u": RISING, "v": "1 1 2 2 3 3 5 4 4 5"}, requirements="most_tied: 0.9"),
+            "requirements",
+            (
+                "A1: the requirement “share of tied rows” is doubtful (waived): more rows share a value than the plan’s limit "
+                "(found 100%, limit 90%). Reason given in the plan for waiving it: a pilot. The result stands with this "
+                "reservation."
+            ),
+        ),
+        (
+            DERIVED,
+            "built_in",
+            (
+                "A1: the requirement “separate origins” is not met (waived): one of the variables was worked out from the other "
+                "(value of u), so that an association is built in, and zero is not what the rows would show if nothing else tied "
+                "the two. Reason given in the plan for waiving it: a pilot. The result stands with this reservation."
+            ),
+        ),
+    ],
+    ids=["rows", "ties", "origins"],
+)
+def test_the_caveat_of_a_waived_requirement_quotes_the_reason(study: Invented, rule: str, said: str) -> None:
+    """The requirement stays not met, the reason is printed as supplied, and the test is given."""
+    waived = "waived: {complete rows: a pilot, ties: a pilot, built-in association: a pilot}"
+    report = told(replace(study, associations={"A1": association(more=waived)}).analysed())
+    assert [sentence.replace("\u00a0", " ") for sentence in report.caveats()[rule]] == [said]
+    place = [column.name for column in report.table("requirements-table").columns].index("outcome")
+    outcomes = [text_of(row[place]) for row in report.table("requirements-table").rows]
+    assert [outcome for outcome in outcomes if "(waived)" in outcome] == [
+        "doubtful (waived)" if "doubtful" in said else "not met (waived)"
+    ]
+
+
+def test_words_in_a_reason_for_waiving_are_linted_as_supplied() -> None:
+    """They are printed, and the report says that they are no result."""
+    waived = "waived: {ties: it was proven elsewhere}"
+    (found,) = caveats_of(replace(QUIET, associations={"A1": association(more=waived)}))["supplied_words"]
+    assert found.startswith("The words supplied at associations.A1.waived.ties say “proven”.")
 
 
 def test_supplied_words_are_quoted_wherever_they_stand() -> None:

@@ -99,7 +99,8 @@ def test_alternative_texts_tell_the_figure_with_its_numbers() -> None:
         "Rows ranked higher on clamp load tended to be ranked higher on creep; rho 0.85 (95% interval 0.10 to 0.98)."
     )
     assert (
-        raw.alternative == f"Scatter of Creep (µm) against Clamp load (N), values as received, 7 rows. {told_in_words}"
+        raw.alternative == f"Scatter of Creep (µm) against Clamp load (N), values as received, 7 rows. {told_in_words} "
+        "A rising step curve goes from 4 to 11.5 on the upright axis."
     )
     assert rank.alternative == f"Scatter of Creep (µm) against Clamp load (N), midranks, 7 rows. {told_in_words}"
     assert interval_strip(report.story).alternative == (
@@ -112,7 +113,8 @@ def test_captions_say_what_a_mark_is() -> None:
     report = demonstration_report("gasket-creep")
     assert (
         text_of(raw_plot(report.story, "A1").caption)
-        == "Raw plot: clamp load and creep, one mark a row (n\u00a0=\u00a07)."
+        == "Raw plot: clamp load and creep, one mark a row (n\u00a0=\u00a07). The line is the rising step curve nearest "
+        "to the rows."
     )
     assert text_of(interval_strip(report.story).caption).startswith("Estimates (diamonds) with 95% intervals (lines)")
 

@@ -28,6 +28,7 @@ from rankdocket.analysis.results import (
     Withheld,
 )
 from rankdocket.analysis.screen import screen_association
+from rankdocket.analysis.shape import shape_of
 from rankdocket.analysis.size import size_analysis
 from rankdocket.errors import InputError
 from rankdocket.stats.coefficient import FEWEST_ROWS, Coefficient
@@ -78,7 +79,7 @@ def analyse(spec: StudySpec, data: StudyData, progress: Callable[[str], None] = 
 
 def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnalysis:
     """Check, estimate, test and compare one association."""
-    checks = tuple(check.examine(screened, spec) for check in CHECKS)
+    checks = tuple(check.outcome(screened, spec) for check in CHECKS)
     x, y = rank_codes(screened)
     estimate = _estimate(screened, checks, x, y)
     direction = direction_of(screened, spec)
@@ -102,9 +103,17 @@ def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnaly
         doubled_p=test.tails.doubled if isinstance(test, RankTest) and direction == "two-sided" else None,
     )
     size = size_analysis(screened, spec, test, question, interval) if isinstance(test, RankTest) else None
-    stream = resample_address(screened.spec.name, spec)
     return AssociationAnalysis(
-        screened, checks, estimate, test, interval, comparisons, smallest, size, interval_stream=stream
+        screened,
+        checks,
+        estimate,
+        test,
+        interval,
+        comparisons,
+        smallest,
+        size,
+        interval_stream=resample_address(screened.spec.name, spec),
+        shape=shape_of(estimate.coefficient, (x, y), [(row.x, row.y) for row in screened.rows]),
     )
 
 
@@ -140,7 +149,7 @@ def _will_be_tested(screened: Screened, spec: StudySpec) -> bool:
     """Return whether a test is to come, from what may be looked at before anything joint is computed."""
     if min(screened.x_ties.distinct, screened.y_ties.distinct) < 2 or len(screened.rows) < FEWEST_ROWS:
         return False
-    return all(check.examine(screened, spec).withholds == "nothing" for check in CHECKS if not check.joint)
+    return all(check.outcome(screened, spec).withholds == "nothing" for check in CHECKS if not check.joint)
 
 
 def _estimate(

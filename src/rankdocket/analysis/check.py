@@ -5,7 +5,7 @@ result is known.  The one exception, the shape look, says so in its own file.
 """
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from decimal import Decimal
 from fractions import Fraction
 from typing import Literal
@@ -14,7 +14,7 @@ from rankdocket.analysis.filing import filed_beside
 from rankdocket.analysis.results import CheckOutcome, Measure, Screened
 from rankdocket.references import Description
 from rankdocket.study.spec import StudySpec
-from rankdocket.vocabulary import Direction
+from rankdocket.vocabulary import Direction, WaivableCheck
 
 
 @dataclass(frozen=True, slots=True)
@@ -33,6 +33,8 @@ class Check:
         True when the check looks at both variables together, so that a screening must not show it.
     examine
         The check itself.
+    waived_as
+        The word by which a plan may waive it; ``None`` for a check that withholds nothing, or may not be waived.
     """
 
     key: str
@@ -40,6 +42,15 @@ class Check:
     demand: Description
     joint: bool
     examine: Callable[[Screened, StudySpec], CheckOutcome]
+    waived_as: WaivableCheck | None = None
+
+    def outcome(self, screened: Screened, spec: StudySpec) -> CheckOutcome:
+        """Return what it finds; where the plan waives it, it withholds nothing and keeps its state."""
+        found = self.examine(screened, spec)
+        reason = None if self.waived_as is None else screened.spec.waived.get(self.waived_as)
+        if reason is None or found.state not in ("not met", "doubtful"):
+            return found
+        return replace(found, withholds="nothing", waived=reason)
 
 
 def direction_of(screened: Screened, spec: StudySpec) -> Direction:

@@ -11,6 +11,7 @@ from fractions import Fraction
 from typing import Final
 
 from rankdocket.analysis.adjustment_plain import adjustment_to_plain, member_to_plain
+from rankdocket.analysis.built_in_plain import built_in_to_plain
 from rankdocket.analysis.filing import exact_decimal, filed, filed_beside, half
 from rankdocket.analysis.interval_plain import interval_plan_to_plain, intervals_to_plain
 from rankdocket.analysis.more_variables_plain import more_variables_to_plain
@@ -26,6 +27,7 @@ from rankdocket.analysis.results import (
     Screened,
     Withheld,
 )
+from rankdocket.analysis.shape_plain import shape_to_plain
 from rankdocket.analysis.size_plain import (
     could_show_to_plain,
     deciding_to_plain,
@@ -63,6 +65,7 @@ def analysis_to_plain(analysis: Analysis) -> dict[str, Plain]:
             for name, result in analysis.results.items()
         },
         **series_to_plain(tuple(analysis.results.values())),
+        **built_in_to_plain(tuple(analysis.results.values())),
         **could_show_to_plain(
             {name: result.screened for name, result in analysis.results.items()},
             {name: result.checks for name, result in analysis.results.items()},
@@ -186,7 +189,15 @@ def _ties(ties: TieGroups) -> dict[str, Plain]:
 def _check(outcome: CheckOutcome) -> dict[str, Plain]:
     limit: dict[str, Plain] = {} if outcome.limit is None else {"limit": outcome.limit.exact}
     found: dict[str, Plain] = {} if outcome.found is None else {"found": outcome.found.exact}
-    return {"state": outcome.state, "reason": outcome.reason, "withholds": outcome.withholds, **limit, **found}
+    waived: dict[str, Plain] = {} if outcome.waived is None else {"waived": outcome.waived}
+    return {
+        "state": outcome.state,
+        "reason": outcome.reason,
+        "withholds": outcome.withholds,
+        **limit,
+        **found,
+        **waived,
+    }
 
 
 def _association(result: AssociationAnalysis, finding: Finding, spec: StudySpec) -> dict[str, Plain]:
@@ -202,6 +213,7 @@ def _association(result: AssociationAnalysis, finding: Finding, spec: StudySpec)
         **_null(result, alpha),
         **intervals_to_plain(result, adjusted),
         "comparisons": _comparisons(result, alpha),
+        **shape_to_plain(result),
         **size_to_plain(result, alpha),
         "finding": {**_finding(finding, alpha), **deciding_to_plain(result, alpha)},
         "worksheet": _worksheet(result.screened),

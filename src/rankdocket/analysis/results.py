@@ -12,6 +12,7 @@ from typing import Literal, TypeAlias
 
 from rankdocket.analysis.max_t_result import FamilyMaxT, MemberMaxT
 from rankdocket.analysis.more_results import MoreVariables
+from rankdocket.analysis.shape import Shape
 from rankdocket.analysis.size_results import SizeAnalysis
 from rankdocket.stats.choose_null import NullChoice
 from rankdocket.stats.coefficient import Coefficient
@@ -112,6 +113,8 @@ class CheckOutcome:
         A sentence part in words, without digits.
     withholds
         What the plan withholds because of it: nothing, the test, or the estimate and the test.
+    waived
+        The plan’s written reason for waiving it, where it is not met or doubtful; it then withholds nothing.
     """
 
     key: str
@@ -120,6 +123,7 @@ class CheckOutcome:
     found: Measure | None
     reason: str
     withholds: Literal["nothing", "test", "all"] = "nothing"
+    waived: str | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -191,6 +195,8 @@ class AssociationAnalysis:
         The interval at the plan’s own level where ``interval`` is an adjusted one, else ``None``.
     interval_stream
         The address of the random stream of its resamples; empty without them.
+    shape
+        A look at the shape, where there is an estimate.
     size
         ``None`` where the plan names neither a null value nor a smallest size of interest, and without a test.
     """
@@ -205,6 +211,7 @@ class AssociationAnalysis:
     size: SizeAnalysis | NoAnswer | None = None
     interval_alone: Interval | NoInterval | None = None
     interval_stream: tuple[str, ...] = ()
+    shape: Shape | None = None
 
 
 FindingBasis: TypeAlias = Literal["family", "own p-value", "outside the family"]

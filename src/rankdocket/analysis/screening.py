@@ -49,16 +49,18 @@ class Screening:
 
     @property
     def all_met(self) -> bool:
-        """True when no requirement is not met and the plan could be run."""
+        """True when every requirement that is not met is waived and the plan could be run."""
         return not (self.seedless or self.unlike) and all(
-            outcome.state != "not met" for outcomes in self.outcomes.values() for outcome in outcomes
+            outcome.state != "not met" or outcome.waived is not None
+            for outcomes in self.outcomes.values()
+            for outcome in outcomes
         )
 
 
 def screen_study(spec: StudySpec, data: StudyData) -> Screening:
     """Look at the data and the requirements of a study."""
     screened = screen_all(spec, data)
-    outcomes = {name: tuple(check.examine(rows, spec) for check in BLIND_CHECKS) for name, rows in screened.items()}
+    outcomes = {name: tuple(check.outcome(rows, spec) for check in BLIND_CHECKS) for name, rows in screened.items()}
     plain: dict[str, Plain] = {
         "schema": SCHEMA,
         "without_seed": list(without_seed(spec, screened)),

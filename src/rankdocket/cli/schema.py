@@ -21,7 +21,7 @@ def schema_command(as_json: bool, quiet: bool, debug: bool) -> int:
 
 
 def _schema() -> Answer:
-    from rankdocket.study.form import json_schema
+    from rankdocket.study.json_schema import json_schema
 
     schema = json_schema()
     return Answer(json.dumps(schema, ensure_ascii=False, indent=2, sort_keys=True), schema)

@@ -101,6 +101,19 @@ WORKS: Final = (
         "variance. Annals of Mathematical Statistics 12: 367–395.",
     ),
     Reference(
+        "oldham1962",
+        "Oldham 1962",
+        "Oldham PD (1962). A note on the analysis of repeated measurements of the same subjects. Journal of Chronic "
+        "Diseases 15: 969–977.",
+    ),
+    Reference(
+        "pearson1897",
+        "Pearson 1897",
+        "Pearson K (1897). Mathematical contributions to the theory of evolution. On a form of spurious correlation "
+        "which may arise when indices are used in the measurement of organs. Proceedings of the Royal Society of "
+        "London 60: 489–498.",
+    ),
+    Reference(
         "phipson2010",
         "Phipson & Smyth 2010",
         "Phipson B, Smyth GK (2010). Permutation p-values should never be zero: calculating exact p-values when "

@@ -20,10 +20,15 @@ from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.stats.ranks import Codes, exact_dot, tie_groups
 
 XI: Final = Description(
-    "Chatterjee’s xi of the second variable on the first was computed as a diagnostic of shape; rows tied in the first "
-    "variable entered as the average over all their orders. Its null variance is exact, given the ties; its p-value is "
-    "approximate, from the normal distribution.",
-    ("chatterjee2021", "mantel1967"),
+    "Chatterjee’s xi of the second variable on the first, and of the first on the second, was computed as a diagnostic "
+    "of shape, without a finding; rows tied in the variable that gives the order entered as the average over all their "
+    "orders.",
+    ("chatterjee2021",),
+)
+
+XI_NULL: Final = Description(
+    "Its null variance is exact, given the ties; its p-value is approximate, from the normal distribution.",
+    ("mantel1967",),
 )
 
 FEWEST_ROWS: Final = 3
@@ -104,6 +109,8 @@ def xi_of_codes(x_codes: Codes, y_codes: Codes) -> Xi | NoAnswer:
 
 def _mean_path(r: Codes, sizes: tuple[int, ...]) -> Fraction:
     """Return the sum of |steps| along ``r``, averaged over all orders within stretches of the given sizes."""
+    if max(sizes) == 1:
+        return Fraction(int(np.abs(np.diff(r)).sum()))
     stretches = np.split(r, np.cumsum(sizes)[:-1])
     within = [_gaps(stretch) for stretch in stretches]
     path = sum((Fraction(2 * gaps, len(stretch)) for gaps, stretch in zip(within, stretches, strict=True)), Fraction(0))
@@ -150,7 +157,8 @@ def _distance_sums(r: Codes) -> tuple[Fraction, Fraction, Fraction]:
     before = np.concatenate(([0], np.cumsum(r, dtype=np.int64)[:-1]))
     rows = r * (2 * place - n) - 2 * before + int(r.sum())
     squares = 2 * n * exact_dot(r, r) - 2 * int(r.sum()) ** 2
-    return Fraction(int(rows.sum())), Fraction(squares), Fraction(exact_dot(rows, rows))
+    # A row sum may be as large as n², and its square, summed, too large for an int64 from some thousand rows on.
+    return Fraction(int(rows.sum())), Fraction(squares), Fraction(sum(row * row for row in rows.tolist()))
 
 
 def _weight_sums(sizes: tuple[int, ...]) -> tuple[Fraction, Fraction, Fraction]:

@@ -5,11 +5,13 @@ from collections.abc import Iterator, Sequence
 from rankdocket.errors import Fault
 from rankdocket.study.claims import claim_faults
 from rankdocket.study.decision import decision_faults
+from rankdocket.study.derivation import circle_faults
 from rankdocket.study.form import AssociationForm, DataForm, VariableForm
 from rankdocket.study.labels import nearest_label
 from rankdocket.study.messages import Message, fault
 from rankdocket.study.more_variables import more_variables_faults
 from rankdocket.study.parts import Parts, table_of
+from rankdocket.study.waivers import waiver_faults
 from rankdocket.study.wording import composed, shown, suggestion
 from rankdocket.vocabulary import NOT_APPLICABLE
 
@@ -31,6 +33,8 @@ def consistency_faults(parts: Parts) -> list[Fault]:
         if parts.sound(("associations", name), "between"):
             faults.extend(_between_faults(parts, name, association))
             faults.extend(more_variables_faults(parts, name, association))
+    faults.extend(circle_faults(parts))
+    faults.extend(waiver_faults(parts))
     faults.extend(_rows_faults(parts))
     faults.extend(decision_faults(parts))
     faults.extend(claim_faults(parts))

@@ -32,6 +32,7 @@ from rankdocket.study.spec import (
     StudySpec,
     VariableSpec,
 )
+from rankdocket.study.waivers import waivers_of
 
 
 def spec_of(parts: Parts) -> StudySpec:
@@ -119,6 +120,7 @@ def _variable(parts: Parts, name: str, form: VariableForm) -> VariableSpec:
         lowest_to_highest=form.lowest_to_highest,
         other_spellings=form.other_spellings,
         missing_codes=form.missing_codes,
+        derived_from=form.derived_from,
         place=parts.key_place("variables", name),
     )
 
@@ -133,6 +135,7 @@ def _association(parts: Parts, name: str, form: AssociationForm) -> AssociationS
         role=form.role,
         hypothesis=_hypothesis(form.hypothesis),
         coefficient=form.coefficient,
+        waived=waivers_of(form.waived),
         place=parts.key_place("associations", name),
         covariates=form.covariates,
         compare_with=form.compare_with,

@@ -1,11 +1,11 @@
-"""The shape of the YAML: which keys there are, what each means, what it takes; the JSON Schema comes from here.
+"""The shape of the YAML: which keys there are, what each means, what it takes; the JSON Schema comes from it.
 
 The forms hold what stands in the file, key by key.  What needs two keys at once is in
 :mod:`rankdocket.study.consistency`, the way to the frozen values in :mod:`rankdocket.study.conversion`.
 """
 
 from decimal import Decimal
-from typing import Annotated, Any, Final
+from typing import Annotated, Final
 
 from pydantic import BaseModel, ConfigDict, Field
 from pydantic.config import JsonDict
@@ -28,6 +28,7 @@ from rankdocket.vocabulary import (
     SCALES,
     SIDEDNESS,
     SIGNATURES,
+    WAIVABLE_CHECKS,
     Adjustment,
     Claim,
     CoefficientName,
@@ -44,9 +45,6 @@ from rankdocket.vocabulary import (
     Sidedness,
     Signature,
 )
-
-SCHEMA_DIALECT: Final = "https://json-schema.org/draft/2020-12/schema"
-SCHEMA_ID: Final = "urn:rankdocket:spec:1"
 
 NAME_PATTERN: Final = "[A-Za-z][A-Za-z0-9_-]*"
 TRAP_WORDS: Final = ("on", "off", "yes", "no", "y", "n", "null", "true", "false")
@@ -192,6 +190,11 @@ class VariableForm(Form):
     missing_codes: Annotated[dict[str, str], kinds.MissingCodes()] = Field(
         default={}, description="Cell texts that mean missing in this column alone."
     )
+    derived_from: tuple[Prose, ...] | None = Field(
+        default=None,
+        description="What it was worked out from: names of variables, or of columns of its table. [] when from nothing "
+        "else; silence is no answer.",
+    )
 
 
 class HypothesisForm(Form):
@@ -242,6 +245,11 @@ class AssociationForm(Form):
         default=None, description="Another association of the same table, whose rho is compared on the same rows."
     )
     groups: GroupsForm | None = Field(default=None, description="Groups of rows that are looked at one by one.")
+    waived: dict[str, Prose] = Field(
+        default={},
+        description="Requirements that the plan waives for it, each with the written reason; printed.",
+        json_schema_extra={"propertyNames": {"enum": list(WAIVABLE_CHECKS)}},
+    )
 
 
 class SeveralTestsForm(Form):
@@ -374,33 +382,3 @@ class SpecForm(Form):
         default_factory=RequirementsForm, description="Limits, and what follows when one is not met."
     )
     report: ReportForm = Field(default_factory=ReportForm, description="How the report is made.")
-
-
-def json_schema() -> dict[str, Any]:
-    """Return the JSON Schema (draft 2020-12) of a spec, for editors and for other programs.
-
-    It states the shape; what needs two keys at once, or the data, is not in it.
-    """
-    found = SpecForm.model_json_schema()
-    head = {"$schema": SCHEMA_DIALECT, "$id": SCHEMA_ID, "title": "Spec of a rank correlation study"}
-    cleaned = _cleaned(found)
-    assert isinstance(cleaned, dict)
-    return {**head, **cleaned}
-
-
-def _cleaned(part: Any) -> Any:
-    """Drop class names, and what says "or null": a key that is not needed is left out, never written as nothing."""
-    if isinstance(part, list):
-        return [_cleaned(item) for item in part]
-    if not isinstance(part, dict):
-        return part
-    kept = {
-        key: _cleaned(value)
-        for key, value in part.items()
-        if not (key == "default" and value is None) and not (key == "title" and isinstance(value, str))
-    }
-    choices = kept.get("anyOf")
-    if isinstance(choices, list) and {"type": "null"} in choices:
-        remaining = [choice for choice in choices if choice != {"type": "null"}]
-        kept = {**{key: value for key, value in kept.items() if key != "anyOf"}, **remaining[0]}
-    return kept

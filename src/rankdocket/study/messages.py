@@ -74,6 +74,8 @@ class Message(IntEnum):
     OTHER_SEPARATOR = 59
     NO_DATA = 60
     FAMILY_ROWS_DIFFER = 61
+    DERIVED_IN_A_CIRCLE = 62
+    CHECK_NOT_WAIVABLE = 63
 
 
 MEANINGS: Final = {
@@ -138,6 +140,8 @@ MEANINGS: Final = {
     Message.OTHER_SEPARATOR: "the fields of a data file are separated by another mark than the declared one",
     Message.NO_DATA: "a data file holds no data",
     Message.FAMILY_ROWS_DIFFER: "the associations of a family do not have the same complete rows",
+    Message.DERIVED_IN_A_CIRCLE: "a variable is derived from itself",
+    Message.CHECK_NOT_WAIVABLE: "a requirement that cannot be waived, or that does not exist",
 }
 """Message → what it means, in short."""
 

@@ -67,6 +67,8 @@ def _variable(variable: VariableSpec) -> Plain:
         "lowest_to_highest": list(variable.lowest_to_highest),
         "other_spellings": dict(variable.other_spellings),
         "missing_codes": dict(variable.missing_codes),
+        # Absent where the spec is silent, so that a plan from before this key keeps its digest.
+        **({} if variable.derived_from is None else {"derived_from": list(variable.derived_from)}),
     }
 
 
@@ -83,6 +85,9 @@ def _association(association: AssociationSpec) -> Plain:
         },
         "coefficient": association.coefficient,
         **_more_variables(association),
+        **(
+            {"waived": {str(word): reason for word, reason in association.waived.items()}} if association.waived else {}
+        ),
     }
 
 

@@ -25,6 +25,7 @@ from rankdocket.vocabulary import (
     Scale,
     Sidedness,
     Signature,
+    WaivableCheck,
 )
 
 
@@ -137,6 +138,9 @@ class VariableSpec:
         Label as it may stand in the file → label of ``lowest_to_highest``.
     missing_codes
         Codes of this column alone, beside those of its table.
+    derived_from
+        Names of variables, or of columns of its table, from which it was worked out; empty when the spec says that it
+        was not worked out from anything, ``None`` when it is silent.
     """
 
     name: str
@@ -148,6 +152,7 @@ class VariableSpec:
     lowest_to_highest: tuple[str, ...]
     other_spellings: Mapping[str, str]
     missing_codes: Mapping[str, str]
+    derived_from: tuple[str, ...] | None
     place: Place
 
 
@@ -188,6 +193,8 @@ class AssociationSpec:
 
     Attributes
     ----------
+    waived
+        Each requirement that the plan waives, with the written reason.
     covariates
         Variables of the same table that a partial rank correlation holds fixed; empty when none is asked for.
     compare_with
@@ -203,6 +210,7 @@ class AssociationSpec:
     role: Role
     hypothesis: HypothesisSpec
     coefficient: CoefficientName
+    waived: Mapping[WaivableCheck, str]
     place: Place
     covariates: tuple[str, ...] = ()
     compare_with: str | None = None

@@ -7,6 +7,7 @@ from decimal import Decimal
 
 from rankdocket.errors import Fault, InputError
 from rankdocket.study.cells import plain_digits, read_number
+from rankdocket.study.derivation import origin_faults
 from rankdocket.study.groups import group_faults
 from rankdocket.study.labels import nearest_label
 from rankdocket.study.messages import Message, fault, in_file_order
@@ -44,7 +45,7 @@ def read_variables(spec: StudySpec, tables: Mapping[str, Table]) -> dict[str, Va
         With every fault of all variables.
     """
     values: dict[str, VariableValues] = {}
-    faults = [*_rows_faults(spec, tables), *group_faults(spec, tables)]
+    faults = [*_rows_faults(spec, tables), *origin_faults(spec, tables), *group_faults(spec, tables)]
     for name, variable in spec.variables.items():
         try:
             values[name] = read_variable(tables[variable.table], variable)

@@ -123,6 +123,7 @@ def _variable(variable: VariableSpec) -> _Value:
         "lowest_to_highest": variable.lowest_to_highest,
         "other_spellings": variable.other_spellings,
         "missing_codes": variable.missing_codes,
+        "derived_from": variable.derived_from,
     }
 
 
@@ -141,6 +142,7 @@ def _association(association: AssociationSpec) -> _Value:
         "covariates": association.covariates or None,
         "compare_with": association.compare_with,
         "groups": _groups(association),
+        "waived": {str(word): reason for word, reason in association.waived.items()},
     }
 
 

@@ -30,8 +30,9 @@ from rankdocket.vocabulary import CHECK_STATES, FINDINGS
 Fact: TypeAlias = tuple[str, ...]
 
 _SIDES: Final = ("at or below alpha", "above alpha")
-_OUTCOMES: Final = sorted((*FINDINGS, *CHECK_STATES, "no finding", *_SIDES), key=len, reverse=True)
-_OUTCOME: Final = re.compile(rf"\b(?:{'|'.join(map(re.escape, _OUTCOMES))})\b")
+_WAIVED: Final = ("not met (waived)", "doubtful (waived)")
+_OUTCOMES: Final = sorted((*FINDINGS, *CHECK_STATES, *_WAIVED, "no finding", *_SIDES), key=len, reverse=True)
+_OUTCOME: Final = re.compile(rf"\b(?:{'|'.join(map(re.escape, _OUTCOMES))})(?!\w)")
 """Findings, outcomes of checks and sides of alpha, wherever the program's own words hold them."""
 
 

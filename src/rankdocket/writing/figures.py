@@ -20,10 +20,12 @@ from rankdocket.writing.phrases import (
     label,
     label_with_unit,
     level,
+    sentences,
     state_word,
     variables_of,
 )
 from rankdocket.writing.section import Story
+from rankdocket.writing.shape import curve_caption, curve_data, curve_in_words
 
 
 def interval_strip(story: Story) -> FigureBlock:
@@ -83,18 +85,22 @@ def raw_plot(story: Story, name: str) -> FigureBlock:
         key=f"{name}-raw",
         number=f"{name}a",
         kind="raw-plot",
-        caption=_caption(
-            "Raw plot: {x} and {y}, one mark a row ({n}\u00a0=\u00a0{rows})."
-            if len(points) == len(result.screened.rows)
-            else "Raw plot: {x} and {y}; a larger mark stands for several equal rows ({n}\u00a0=\u00a0{rows}).",
-            story,
-            name,
+        caption=sentences(
+            _caption(
+                "Raw plot: {x} and {y}, one mark a row ({n}\u00a0=\u00a0{rows})."
+                if len(points) == len(result.screened.rows)
+                else "Raw plot: {x} and {y}; a larger mark stands for several equal rows ({n}\u00a0=\u00a0{rows}).",
+                story,
+                name,
+            ),
+            curve_caption(story, name),
         ),
-        alternative=_alternative(story, name, "values as received"),
+        alternative=_alternative(story, name, "values as received") + curve_in_words(story, name),
         data={
             "x": _axis(story, x),
             "y": _axis(story, y),
             "points": tuple({"x": f"{px:f}", "y": f"{py:f}", "count": rows} for (px, py), rows in points.items()),
+            "curve": curve_data(story, name),
         },
     )
 

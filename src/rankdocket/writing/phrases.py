@@ -3,7 +3,7 @@
 from typing import Final, Literal
 
 from rankdocket.analysis.deciding import shows_direction
-from rankdocket.analysis.results import AssociationAnalysis, Estimate, RankTest, Withheld
+from rankdocket.analysis.results import AssociationAnalysis, CheckOutcome, Estimate, RankTest, Withheld
 from rankdocket.document.model import Emphasis, Link, Prose, Supplied
 from rankdocket.document.prose import joined, listed, only, prose, text_of
 from rankdocket.stats.interval import Interval
@@ -143,6 +143,11 @@ def state_word(result: AssociationAnalysis) -> str:
     if isinstance(estimate, Estimate):
         raise TypeError("this association has an estimate")
     return f"{'withheld' if isinstance(estimate, Withheld) else 'not estimable'}: {estimate.reason}"
+
+
+def outcome_words(outcome: CheckOutcome) -> str:
+    """Return the state of a requirement, and that the plan waives it."""
+    return outcome.state if outcome.waived is None else f"{outcome.state} (waived)"
 
 
 def p_equals(story: Story, key: str) -> Prose:

@@ -10,6 +10,7 @@ from rankdocket.analysis.screening import Screening
 from rankdocket.analysis.variables import VariableSummary, summarise
 from rankdocket.document.numbers import Numbers
 from rankdocket.writing.could_show import could_show_words
+from rankdocket.writing.phrases import full_stop, outcome_words
 
 _LABELS = {check.key: check.label for check in CHECKS}
 
@@ -75,7 +76,9 @@ def _questions(screening: Screening) -> Iterator[str]:
         for outcome in outcomes:
             if outcome.state in ("not met", "doubtful"):
                 asked = True
-                yield f"{name}: {_LABELS[outcome.key].lower()} is {outcome.state}: {outcome.reason}{_figures(screening, name, outcome)}."
+                yield f"{name}: {_LABELS[outcome.key].lower()} is {outcome_words(outcome)}: {outcome.reason}{_figures(screening, name, outcome)}."
+                if outcome.waived is not None:
+                    yield f"{name}: the plan waives that, with the reason: {full_stop(outcome.waived).text}"
     if screening.seedless:
         asked = True
         yield (

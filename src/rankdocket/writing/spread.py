@@ -27,6 +27,7 @@ from rankdocket.writing.phrases import (
     variables_of,
 )
 from rankdocket.writing.section import Story
+from rankdocket.writing.shape import xi_rows
 from rankdocket.writing.size import size_rows, verdict_sentence
 
 
@@ -112,6 +113,7 @@ def _numbers(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
         rows.append(("Smallest attainable p", only(numbers.attainable_p(address(name, "smallest_attainable_p")))))
     rows += size_rows(story, name)
     rows += adjusted_rows(story, name)
+    rows += xi_rows(story, name)
     rows.append(("Finding", only(finding_word(story.analysis.findings[name]))))
     return tuple(rows)
 

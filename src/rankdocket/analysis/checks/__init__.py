@@ -5,6 +5,7 @@ from typing import Final
 from rankdocket.analysis.check import Check
 from rankdocket.analysis.checks import (
     attainable_p,
+    built_in,
     enough_rows,
     independence,
     missing_share,
@@ -20,5 +21,6 @@ CHECKS: Final[tuple[Check, ...]] = (
     tie_share.CHECK,
     attainable_p.CHECK,
     independence.CHECK,
+    built_in.CHECK,
     shape.CHECK,
 )

@@ -38,4 +38,5 @@ CHECK = Check(
     ),
     joint=False,
     examine=examine,
+    waived_as="missing values",
 )

@@ -34,4 +34,5 @@ CHECK = Check(
     ),
     joint=False,
     examine=examine,
+    waived_as="ties",
 )

@@ -1,13 +1,13 @@
 """The raw plot: values as received, one open circle for each place, its area growing with the rows there."""
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from decimal import Decimal
 from itertools import pairwise
 from math import cos, radians, sin
 from typing import Final
 
 from rankdocket.canonical import Plain
-from rankdocket.render.canvas import SMALL_SIZE, TEXT_SIZE, Lettering, Sheet
+from rankdocket.render.canvas import SMALL_SIZE, TEXT_SIZE, Lettering, Point, Sheet
 from rankdocket.render.drawing import Drawing
 from rankdocket.render.panel import (
     TICK,
@@ -27,6 +27,7 @@ from rankdocket.render.ticks import Scale, even_scale, leading, power_label, wra
 
 _RADIUS: Final = 2.1
 _WEIGHT: Final = 0.8
+_CURVE_WEIGHT: Final = 0.9
 _MARGIN: Final = 8.0
 _PANEL_HEIGHT: Final = 150.0
 _WANTED_TICKS: Final = 4
@@ -60,7 +61,22 @@ def _draw(data: Mapping[str, Plain], width: float) -> Sheet:
     write_titles(sheet, panel, x_title, y_title)
     places = [panel.at(mark.x, mark.y) for mark in marks]
     sheet.circles(list(zip(places, radii(marks, _RADIUS), strict=True)), weight=_WEIGHT * thinning(marks), filled=False)
+    steps = [(number_of(s, "x_from"), number_of(s, "x_to"), number_of(s, "y")) for s in parts_of(data, "curve")]
+    if steps:
+        sheet.line(_stairs(panel, steps), weight=_CURVE_WEIGHT)
     return sheet
+
+
+def _stairs(panel: Panel, steps: Sequence[tuple[Decimal, Decimal, Decimal]]) -> list[Point]:
+    """Return the corners of a step curve; between two steps it rises or falls halfway."""
+    corners: list[Point] = []
+    for x_from, x_to, y in steps:
+        start, end = panel.at(x_from, y), panel.at(x_to, y)
+        if corners:
+            halfway = (corners[-1][0] + start[0]) / 2
+            corners += [(halfway, corners[-1][1]), (halfway, start[1])]
+        corners += [start, end]
+    return corners
 
 
 class _XLabels:

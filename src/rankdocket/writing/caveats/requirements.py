@@ -2,12 +2,13 @@
 
 from rankdocket.analysis.checks import CHECKS
 from rankdocket.analysis.checks.attainable_p import KEY as ATTAINABLE
+from rankdocket.analysis.checks.built_in import KEY as BUILT_IN
 from rankdocket.analysis.checks.independence import KEY as INDEPENDENCE
 from rankdocket.analysis.results import AssociationAnalysis, CheckOutcome, NotEstimable, Withheld
 from rankdocket.document.model import Number, Prose
 from rankdocket.document.prose import only, prose
 from rankdocket.writing.caveat import CaveatRule, FoundCaveat
-from rankdocket.writing.phrases import address, pointer
+from rankdocket.writing.phrases import address, full_stop, outcome_words, pointer
 from rankdocket.writing.section import Story
 
 _SHARED = INDEPENDENCE
@@ -36,7 +37,7 @@ def _find(story: Story) -> tuple[FoundCaveat, ...]:
         FoundCaveat((name,), _words(story, name, outcome))
         for name, result in story.analysis.results.items()
         for outcome in result.checks
-        if outcome.state in ("not met", "doubtful") and outcome.key not in (_SHARED, "not_constant")
+        if outcome.state in ("not met", "doubtful") and outcome.key not in (_SHARED, BUILT_IN, "not_constant")
     )
 
 
@@ -49,17 +50,25 @@ def _words(story: Story, name: str, outcome: CheckOutcome) -> Prose:
         else only("")
     )
     return prose(
-        "{name}: the requirement “{label}” is {state}: {reason}{held}. {after}",
+        "{name}: the requirement “{label}” is {state}: {reason}{held}.{waived} {after}",
         name=pointer(name),
         label=check.label.lower(),
-        state=outcome.state,
+        state=outcome_words(outcome),
         reason=outcome.reason,
         held=held,
-        after=_what_is_given(story.analysis.results[name], outcome),
+        waived=waiver_words(outcome),
+        after=what_is_given(story.analysis.results[name], outcome),
     )
 
 
-def _what_is_given(result: AssociationAnalysis, outcome: CheckOutcome) -> str:
+def waiver_words(outcome: CheckOutcome) -> Prose:
+    """Return why the plan waives a requirement, as a sentence with a blank before it; nothing where it does not."""
+    if outcome.waived is None:
+        return only("")
+    return prose(" Reason given in the plan for waiving it: {reason}", reason=full_stop(outcome.waived))
+
+
+def what_is_given(result: AssociationAnalysis, outcome: CheckOutcome) -> str:
     """Return what stands in the end: one requirement may leave a result that another withholds."""
     if isinstance(result.estimate, NotEstimable):
         return "No coefficient exists for these rows."

@@ -28,6 +28,11 @@ def supplied_texts(story: Story) -> tuple[tuple[str, str], ...]:
     texts += [
         (f"rows.leave_out.{place}.reason", item.reason) for place, item in enumerate(spec.rows.leave_out, start=1)
     ]
+    texts += [
+        (f"associations.{name}.waived.{word}", reason)
+        for name, association in spec.associations.items()
+        for word, reason in association.waived.items()
+    ]
     texts.append(("the reason for this edition", story.facts.reason))
     return tuple(texts)
 

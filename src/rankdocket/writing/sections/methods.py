@@ -10,11 +10,13 @@ from rankdocket.analysis.results import Estimate, RankTest
 from rankdocket.document.model import Block, Link, Number, Paragraph, Prose, Section
 from rankdocket.document.prose import joined, only, prose, text_of
 from rankdocket.references import Description
+from rankdocket.stats.chatterjee import XI, XI_NULL
 from rankdocket.stats.coverage.lookup import SimulatedCoverage
 from rankdocket.stats.critical import CRITICAL_VALUES
 from rankdocket.stats.interval import Interval
 from rankdocket.stats.intervals import INTERVAL_METHODS
 from rankdocket.stats.intervals.bca_bootstrap import BCA_BOOTSTRAP
+from rankdocket.stats.isotonic import ISOTONIC
 from rankdocket.stats.null import MONTE_CARLO_INTERVAL, MONTE_CARLO_LOOKS, NULL_DESCRIPTIONS, TWO_SIDED, NullMethod
 from rankdocket.stats.nulls.tau_exact import TAU_NULL_DESCRIPTIONS
 from rankdocket.stats.rho import RHO
@@ -27,6 +29,7 @@ from rankdocket.writing.intervals import given
 from rankdocket.writing.more_variables_methods import more_variables_descriptions
 from rankdocket.writing.phrases import address, full_stop, interval_holds, pointers
 from rankdocket.writing.section import SectionRule, Story
+from rankdocket.writing.shape import any_shape, any_xi_null
 from rankdocket.writing.size_methods import could_show_methods, size_methods
 
 
@@ -72,6 +75,7 @@ def method_paragraphs(story: Story) -> tuple[Prose, ...]:
             could_show_methods(story),
             _comparisons(story),
             _more_variables(story),
+            _shape(story),
         )
         if text_of(part)
     )
@@ -288,6 +292,11 @@ def _more_variables(story: Story) -> Prose:
     if parts:
         parts.append(only("These are supplementary: no finding rests on them."))
     return joined(tuple(parts))
+
+
+def _shape(story: Story) -> Prose:
+    rules = ((ISOTONIC, any_shape(story)), (XI, any_shape(story)), (XI_NULL, any_xi_null(story)))
+    return joined(tuple(described(rule) for rule, ran in rules if ran))
 
 
 _COEFFICIENTS: Final[dict[CoefficientName, Description]] = {"Spearman rho": RHO, "Kendall tau-b": TAU_B}

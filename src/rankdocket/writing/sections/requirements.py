@@ -5,7 +5,7 @@ from rankdocket.analysis.results import CheckOutcome
 from rankdocket.document.model import Block, Column, Prose, Section, TableBlock
 from rankdocket.document.prose import only
 from rankdocket.writing.caveats.requirements import measure
-from rankdocket.writing.phrases import EN_DASH_CELL, pointer
+from rankdocket.writing.phrases import EN_DASH_CELL, outcome_words, pointer
 from rankdocket.writing.section import SectionRule, Story
 
 _CONSEQUENCE = {"nothing": "none", "test": "test withheld", "all": "estimate and test withheld"}
@@ -51,7 +51,7 @@ def _row(story: Story, name: str, label: str, outcome: CheckOutcome) -> tuple[Pr
         only(label),
         EN_DASH_CELL if limit is None else only(limit),
         EN_DASH_CELL if found is None else only(found),
-        only(outcome.state),
+        only(outcome_words(outcome)),
         only(outcome.reason),
         only(_CONSEQUENCE[outcome.withholds]),
     )

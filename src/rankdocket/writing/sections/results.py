@@ -189,6 +189,7 @@ def _comparisons(story: Story) -> TableBlock | None:
         Column(prose("{p}, as used", p=P), "p", "decimal", share=3),
         Column(prose("{p} from the t value", p=P), "p_t", "decimal", share=3),
         Column(prose("{p} by doubling the smaller tail", p=P), "p_doubled", "decimal", share=4),
+        Column(only("Rank coefficient, as used"), "coefficient", "decimal", share=4),
         Column(only("Product-moment coefficient of the values (Pearson)"), "pearson", "decimal", share=5),
         Column(only("Short form without tie terms"), "short_form", "decimal", share=4),
     )
@@ -202,7 +203,8 @@ def _comparisons(story: Story) -> TableBlock | None:
         notes=(
             only(
                 "The t value only approximates the null, worst with few rows and many ties; the short form is wrong where "
-                "there are ties; the product-moment coefficient answers another question."
+                "there are ties; the product-moment coefficient answers another question, and where it is nearer to zero "
+                "than the rank coefficient, the relation may keep its direction and be curved: see the raw plots."
             ),
         ),
     )
@@ -217,6 +219,7 @@ def _comparison_row(story: Story, name: str) -> tuple[Prose, ...]:
         only(numbers.p_value(address(name, "test", "p"))) if isinstance(result.test, RankTest) else EN_DASH_CELL,
         EN_DASH_CELL if comparisons.t_value_p is None else only(numbers.p_value(f"{at}/t_value_p")),
         EN_DASH_CELL if comparisons.doubled_p is None else only(numbers.p_value(f"{at}/doubled_p")),
+        only(numbers.coefficient(address(name, "estimate", "value"))),
         EN_DASH_CELL if comparisons.pearson is None else only(numbers.coefficient(f"{at}/pearson")),
         only(numbers.coefficient(f"{at}/short_form")) if has_short_form else EN_DASH_CELL,
     )
