@@ -84,6 +84,8 @@ class Screened:
     rows: tuple[CompleteRow, ...]
     x_ties: TieGroups
     y_ties: TieGroups
+    suspicious: tuple[LeftOutRow, ...] = ()
+    """Rows of the table that the plan calls suspicious and does not leave out, each with its reason."""
 
 
 @dataclass(frozen=True, slots=True)
