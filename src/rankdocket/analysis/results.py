@@ -5,13 +5,14 @@ own type with the reason in words, so that forgetting the case is a type error.
 """
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from decimal import Decimal
 from fractions import Fraction
 from typing import Literal, TypeAlias
 
 from rankdocket.analysis.max_t_result import FamilyMaxT, MemberMaxT
 from rankdocket.analysis.more_results import MoreVariables
+from rankdocket.analysis.sensitivity.table import NoTable, SensitivityTable
 from rankdocket.stats.choose_null import NullChoice
 from rankdocket.stats.coefficient import Coefficient
 from rankdocket.stats.interval import Interval, NoInterval
@@ -247,3 +248,5 @@ class Analysis:
     """What the plan asks about more than two variables, by association."""
     max_t: FamilyMaxT | None = None
     """Their coefficients adjusted together, where the plan asks for that and any of them has a test."""
+    sensitivity: Mapping[str, SensitivityTable | NoTable] = field(default_factory=dict)
+    """What another method, or other rows, would have said of each association."""

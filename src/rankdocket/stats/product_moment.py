@@ -79,7 +79,7 @@ def product_moment(x: Sequence[Decimal], y: Sequence[Decimal]) -> ProductMoment 
     return ProductMoment(_centred(x), _centred(y))
 
 
-def product_moment_tails(observed: ProductMoment, drawing: DrawingPlan | None) -> TailCounts | NoAnswer:
+def product_moment_tails(observed: ProductMoment, drawing: DrawingPlan | NoAnswer) -> TailCounts | NoAnswer:
     """Return the permutations at least as extreme: counted one and all to MOST_ENUMERATED rows, drawn above.
 
     Parameters
@@ -87,15 +87,15 @@ def product_moment_tails(observed: ProductMoment, drawing: DrawingPlan | None) -
     observed
         The coefficient.
     drawing
-        How orders are drawn, one look; not looked at where all are counted.
+        How orders are drawn, one look, or why they are not; not looked at where all are counted.
     """
     n = len(observed.x)
     if n <= MOST_ENUMERATED:
         orders = np.array(list(permutations(range(n))), dtype=np.int64)
         ties = min(len(set(observed.x)), len(set(observed.y))) < n
         return _counted(observed, iter((orders,)), factorial(n), ties=ties)
-    if drawing is None:
-        return NoAnswer("it needs drawn permutations, and none were provided for")
+    if isinstance(drawing, NoAnswer):
+        return drawing
     drawn = (keys.astype(np.int64) for keys in drawn_orders(np.arange(n, dtype=np.int64), drawing.generator))
     tails = _counted(observed, drawn, drawing.permutations, ties=False)
     return TailCounts("drawn permutations", tails.greater, tails.less, tails.two_sided, tails.of)
