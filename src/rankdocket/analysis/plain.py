@@ -26,6 +26,7 @@ from rankdocket.analysis.results import (
     Screened,
     Withheld,
 )
+from rankdocket.analysis.sensitivity_plain import sensitivity_rules_to_plain, sensitivity_to_plain
 from rankdocket.analysis.variables import VariableSummary, summarise
 from rankdocket.canonical import Plain
 from rankdocket.stats.nulls.monte_carlo import look_ends
@@ -53,10 +54,12 @@ def analysis_to_plain(analysis: Analysis) -> dict[str, Plain]:
             name: {
                 **_association(result, analysis.findings[name], analysis.spec),
                 **more_variables_to_plain(analysis.more[name]),
+                **sensitivity_to_plain(analysis.sensitivity.get(name), analysis.spec.inference.alpha),
             }
             for name, result in analysis.results.items()
         },
         **series_to_plain(tuple(analysis.results.values())),
+        **sensitivity_rules_to_plain(analysis),
         "tally": {
             "associations": len(analysis.results),
             "findings": dict(words),
@@ -84,6 +87,9 @@ def data_to_plain(spec: StudySpec, data: StudyData) -> dict[str, Plain]:
 def screened_to_plain(screened: Screened, outcomes: tuple[CheckOutcome, ...]) -> dict[str, Plain]:
     """Return an association’s rows and checks: the part of its analysis that shows nothing joint."""
     flow = screened.flow
+    suspicious: dict[str, Plain] = (
+        {"suspicious_lines": [row.row for row in screened.suspicious]} if screened.suspicious else {}
+    )
     return {
         "x": screened.spec.x,
         "y": screened.spec.y,
@@ -95,6 +101,7 @@ def screened_to_plain(screened: Screened, outcomes: tuple[CheckOutcome, ...]) ->
             "missing_y": flow.missing_y,
             "missing_both": flow.missing_both,
             "complete": flow.complete,
+            **suspicious,
         },
         "ties_x": _ties(screened.x_ties),
         "ties_y": _ties(screened.y_ties),

@@ -67,9 +67,7 @@ class LeaveOneOut:
     undefined: tuple[int, ...]
 
 
-def leave_one_out(
-    x_codes: Codes, y_codes: Codes, name: CoefficientName = "Spearman rho"
-) -> LeaveOneOut | NoAnswer:
+def leave_one_out(x_codes: Codes, y_codes: Codes, name: CoefficientName = "Spearman rho") -> LeaveOneOut | NoAnswer:
     """Return the coefficient without each row in turn, as integers, in n log n steps; or why there is none.
 
     Raises
@@ -83,9 +81,7 @@ def leave_one_out(
         return NoAnswer("there are no complete rows")
     found = _WITHOUT_EACH[name](x_codes, y_codes)
     integers = zip(found.numerator.tolist(), found.x_square.tolist(), found.y_square.tolist(), strict=True)
-    without = tuple(
-        RowLeftOut(row, Coefficient(name, len(x_codes) - 1, *parts)) for row, parts in enumerate(integers)
-    )
+    without = tuple(RowLeftOut(row, Coefficient(name, len(x_codes) - 1, *parts)) for row, parts in enumerate(integers))
     defined = [left for left in without if left.coefficient.is_defined]
     if not defined:
         return NoAnswer("without any one row a variable does not vary")

@@ -16,7 +16,7 @@ from rankdocket.stats.coefficient import FILED_DIGITS, root_ratio_text
 from rankdocket.stats.exact_values import equally_long
 from rankdocket.stats.matrix_product import product
 from rankdocket.stats.no_answer import NoAnswer
-from rankdocket.stats.null import TailCounts
+from rankdocket.stats.null import NullMethod, TailCounts
 from rankdocket.stats.nulls.monte_carlo import DrawingPlan, drawn_orders
 from rankdocket.stats.ranks import Codes, dense_codes
 
@@ -124,7 +124,7 @@ def _counted(observed: ProductMoment, blocks: Iterator[Codes], number: int, *, t
         missing -= len(orders[:missing])
         if missing == 0:
             break
-    method = "exact, conditional on the ties" if ties else "exact, no ties"
+    method: NullMethod = "exact, conditional on the ties" if ties else "exact, no ties"
     return TailCounts(method, greater, less, two_sided, number)
 
 
@@ -150,8 +150,7 @@ class _Fixed:
     def of(cls, x: list[int], y: list[int], observed: int) -> "_Fixed":
         x_most, y_most = (max(abs(value) for value in column) for column in (x, y))
         x_shares, y_shares = (
-            np.array([float(Fraction(value, most)) for value in column])
-            for column, most in ((x, x_most), (y, y_most))
+            np.array([float(Fraction(value, most)) for value in column]) for column, most in ((x, x_most), (y, y_most))
         )
         bound = float(np.sqrt(np.sum(x_shares**2) * np.sum(y_shares**2)))
         near = 2 * (len(x) + 3) * ROUNDING * bound

@@ -195,9 +195,13 @@ def _rows_faults(parts: Parts) -> Iterator[Fault]:
                 remedy = f"Write {key}: {NOT_APPLICABLE}, or leave independent_because out."
                 place = parts.key_place("rows", "independent_because")
                 yield fault(place, "rows.independent_because", Message.CONTRADICTION, what, remedy)
-    for key, entries in (("leave_out", parts.rows.leave_out), ("suspicious", parts.rows.suspicious)):
-        for position, item in enumerate(entries):
-            if parts.sound(("rows",), key) and not item.where:
+    named = {
+        "leave_out": [item.where for item in parts.rows.leave_out],
+        "suspicious": [item.where for item in parts.rows.suspicious],
+    }
+    for key, columns in named.items():
+        for position, where in enumerate(columns):
+            if parts.sound(("rows",), key) and not where:
                 place = parts.key_place("rows", key, position, "where")
                 what = "no column stands here."
                 remedy = 'Write where: {station: "E07"}.'

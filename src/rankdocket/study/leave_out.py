@@ -46,9 +46,7 @@ def suspicious_rows(tables: Mapping[str, Table], suspicious: Sequence[LeaveOutSp
     return _named_rows(tables, suspicious, "rows.suspicious")
 
 
-def _named_rows(
-    tables: Mapping[str, Table], entries: Sequence[LeaveOutSpec], key: str
-) -> dict[str, dict[int, str]]:
+def _named_rows(tables: Mapping[str, Table], entries: Sequence[LeaveOutSpec], key: str) -> dict[str, dict[int, str]]:
     rows: dict[str, dict[int, str]] = {name: {} for name in tables}
     faults: list[Fault] = []
     for position, item in enumerate(entries, start=1):

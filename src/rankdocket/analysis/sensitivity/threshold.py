@@ -58,7 +58,7 @@ class Threshold:
     name: CoefficientName
     direction: Direction
     bound: float
-    _of_ties: dict[Ties | int, int | None | NoAnswer] = field(default_factory=dict)
+    _of_ties: dict[Ties | int, int | NoAnswer | None] = field(default_factory=dict)
     _spent: list[int] = field(default_factory=lambda: [0])
 
     def finding(self, coefficient: Coefficient, ties: Callable[[], Ties]) -> FindingWord:
@@ -177,9 +177,7 @@ def threshold_of(
     return Threshold(rule, observed.name, direction, bound)
 
 
-def own_bound(
-    shown: Shows, name: CoefficientName, direction: Direction, choice: NullChoice, ties: Ties
-) -> int | None:
+def own_bound(shown: Shows, name: CoefficientName, direction: Direction, choice: NullChoice, ties: Ties) -> int | None:
     """Return the least numerator outward that rows with these ties show; ``None`` if they show none."""
     if choice.route == "series":
         return _least_of_series(ties[0].n, direction, shown)

@@ -4,7 +4,16 @@ from typing import Final
 
 from rankdocket.document.model import CaveatBlock
 from rankdocket.writing.caveat import CaveatRule
-from rankdocket.writing.caveats import adjustment, coverage, intervals, more_variables, requirements, results, study
+from rankdocket.writing.caveats import (
+    adjustment,
+    coverage,
+    intervals,
+    more_variables,
+    requirements,
+    results,
+    sensitivity,
+    study,
+)
 from rankdocket.writing.section import NumberedCaveat, Story
 
 CAVEATS: Final[tuple[CaveatRule, ...]] = (
@@ -15,6 +24,7 @@ CAVEATS: Final[tuple[CaveatRule, ...]] = (
     results.UNDECIDED,
     results.TWO_SIDED_RULE,
     results.TEST_AND_INTERVAL,
+    sensitivity.WOULD_CHANGE,
     coverage.LOW_COVERAGE,
     intervals.PERFECT,
     intervals.GUARD,

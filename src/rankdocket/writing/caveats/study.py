@@ -28,6 +28,9 @@ def supplied_texts(story: Story) -> tuple[tuple[str, str], ...]:
     texts += [
         (f"rows.leave_out.{place}.reason", item.reason) for place, item in enumerate(spec.rows.leave_out, start=1)
     ]
+    texts += [
+        (f"rows.suspicious.{place}.reason", item.reason) for place, item in enumerate(spec.rows.suspicious, start=1)
+    ]
     texts.append(("the reason for this edition", story.facts.reason))
     return tuple(texts)
 

@@ -27,6 +27,7 @@ from rankdocket.writing.intervals import given
 from rankdocket.writing.more_variables_methods import more_variables_descriptions
 from rankdocket.writing.phrases import address, full_stop, interval_holds, pointers
 from rankdocket.writing.section import SectionRule, Story
+from rankdocket.writing.sensitivity_methods import sensitivity_paragraph
 
 
 def write(story: Story) -> Section:
@@ -69,6 +70,7 @@ def method_paragraphs(story: Story) -> tuple[Prose, ...]:
             _intervals(story),
             _comparisons(story),
             _more_variables(story),
+            _sensitivity(story),
         )
         if text_of(part)
     )
@@ -285,6 +287,13 @@ def _more_variables(story: Story) -> Prose:
     if parts:
         parts.append(only("These are supplementary: no finding rests on them."))
     return joined(tuple(parts))
+
+
+def _sensitivity(story: Story) -> Prose:
+    printed = {
+        result.interval.method for result in story.analysis.results.values() if isinstance(result.interval, Interval)
+    }
+    return sensitivity_paragraph(story, described, frozenset(printed))
 
 
 _COEFFICIENTS: Final[dict[CoefficientName, Description]] = {"Spearman rho": RHO, "Kendall tau-b": TAU_B}

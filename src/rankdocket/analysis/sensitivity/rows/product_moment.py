@@ -3,7 +3,7 @@
 from typing import Final
 
 from rankdocket.analysis.sensitivity.row_rule import RowRule
-from rankdocket.analysis.sensitivity.subject import NO_FINDING, Subject
+from rankdocket.analysis.sensitivity.subject import Subject
 from rankdocket.analysis.sensitivity.table import RowP, TableRow
 from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.stats.product_moment import product_moment, product_moment_tails
@@ -26,7 +26,11 @@ def make(subject: Subject) -> tuple[TableRow, ...]:
     plan = subject.draws.plan(KEY, "Spearman rho", len(rows))
     tails = product_moment_tails(found, plan)
     if isinstance(tails, NoAnswer):
-        return (TableRow(KEY, KEY, LABEL, "supplementary", subject.not_applicable(tails.reason), found, absent=tails.reason),)
+        return (
+            TableRow(
+                KEY, KEY, LABEL, "supplementary", subject.not_applicable(tails.reason), found, absent=tails.reason
+            ),
+        )
     p = tails.p(subject.direction)
     drawn = not tails.is_exact
     return (

@@ -1,6 +1,5 @@
 """With the rows put back that the plan leaves out: those of each reason, then all of them."""
 
-from collections.abc import Callable
 from dataclasses import replace
 from typing import Final
 
@@ -22,12 +21,9 @@ def make(subject: Subject) -> tuple[TableRow, ...]:
     if not subject.screened.flow.left_out:
         return ()
     reasons = tuple(dict.fromkeys(entry.reason for entry in _entries(subject)))
-    made = [
-        _with(subject, f"{KEY}-{place}", lambda entry, reason=reason: entry.reason != reason, reason)
-        for place, reason in enumerate(reasons, start=1)
-    ]
+    made = [_with(subject, f"{KEY}-{place}", reason) for place, reason in enumerate(reasons, start=1)]
     if len(reasons) > 1:
-        made.append(_with(subject, f"{KEY}-all", lambda _: False, None))
+        made.append(_with(subject, f"{KEY}-all", None))
     return tuple(made)
 
 
@@ -39,9 +35,11 @@ def _entries(subject: Subject) -> tuple[LeaveOutSpec, ...]:
     )
 
 
-def _with(subject: Subject, key: str, stays: Callable[[LeaveOutSpec], bool], reason: str | None) -> TableRow:
+def _with(subject: Subject, key: str, reason: str | None) -> TableRow:
+    """Return the row with those of one reason put back, or with all of them."""
     rows = subject.spec.rows
-    fewer = replace(rows, leave_out=tuple(entry for entry in rows.leave_out if stays(entry)))
+    still = tuple(entry for entry in rows.leave_out if reason is not None and entry.reason != reason)
+    fewer = replace(rows, leave_out=still)
     screened = screen_association(subject.screened.spec, replace(subject.spec, rows=fewer), subject.data)
     used = set(subject.lines)
     back = Lines(tuple(row.row for row in screened.rows if row.row not in used), reason)

@@ -73,9 +73,7 @@ def _finding(threshold: Threshold, x: Codes, y: Codes) -> FindingWord:
     return threshold.finding(coefficient_of(threshold.name, x, y), ties_without(x, y, ()))
 
 
-def _candidates(
-    subject: Subject, threshold: Threshold, before: FindingWord, sets: Codes
-) -> npt.NDArray[np.bool_]:
+def _candidates(subject: Subject, threshold: Threshold, before: FindingWord, sets: Codes) -> npt.NDArray[np.bool_]:
     """Return the sets that may change the finding; single rows were looked at before."""
     if sets.shape[1] == 1:
         return np.zeros(len(sets), dtype=np.bool_)
