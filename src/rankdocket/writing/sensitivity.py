@@ -5,10 +5,10 @@ from typing import Final
 from rankdocket.analysis.sensitivity.table import NoTable, SensitivityTable, TableRow
 from rankdocket.document.model import Block, Column, Link, Paragraph, Prose, Supplied, TableBlock
 from rankdocket.document.prose import joined, listed, only, prose, text_of
-from rankdocket.writing.phrases import EN_DASH_CELL, address, capitalised, p_equals
+from rankdocket.writing.phrases import EN_DASH_CELL, P, address, capitalised, p_equals
 from rankdocket.writing.section import Story
 
-CAPTION: Final = "Would another method, or other rows, have said otherwise?"
+CAPTION: Final = "{name}: would another method, or other rows, have said otherwise?"
 
 
 def table_key(name: str) -> str:
@@ -54,13 +54,9 @@ def sensitivity_clause(story: Story, name: str) -> Prose | None:
     at = address(name, "sensitivity", "tally")
     asked, link = story.numbers.whole(f"{at}/asked"), table_link(story, name)
     if not table.changing:
-        return prose(
-            "none of {asked} looks by other methods or at other rows changes the finding ({link})",
-            asked=asked,
-            link=link,
-        )
+        return prose("none of the {asked} sensitivity rows of {link} changes the finding", asked=asked, link=link)
     return prose(
-        "{changing} of {asked} looks by other methods or at other rows would change the finding ({link})",
+        "by {changing} of the {asked} sensitivity rows of {link} the finding would change",
         changing=story.numbers.whole(f"{at}/changing"),
         asked=asked,
         link=link,
@@ -77,12 +73,12 @@ def _table(story: Story, name: str, table: SensitivityTable) -> TableBlock:
     return TableBlock(
         key=table_key(name),
         number=table_number(story, name),
-        caption=prose(CAPTION + " {name}", name=Supplied(name)),
+        caption=prose(CAPTION, name=Supplied(name)),
         columns=(
             Column(only("What was done"), "done", share=8),
             Column(only("Kind"), "kind", share=3),
             Column(only("Value"), "value", "right", share=3),
-            Column(only("Interval or p"), "interval_or_p", share=5),
+            Column(prose("Interval or {p}", p=P), "interval_or_p", share=6),
             Column(only("Would the finding change?"), "change", share=5),
         ),
         rows=tuple(_cells(story, name, row) for row in table.rows),
@@ -101,7 +97,7 @@ def _notes(table: SensitivityTable) -> tuple[Prose, ...]:
         notes.append(
             only(
                 "For the last column the p-value of a row took the place of the association’s own in the rule of the plan, the "
-                "other p-values of the family staying as they are; of an interval it says whether zero lies on the other side "
+                "other p-values of the family staying as they are; for an interval it says whether zero lies on the other side "
                 "of its limits than of those printed. Some set of rows changes nearly every finding: how few they are is what "
                 "counts."
             )
@@ -173,7 +169,7 @@ def _beside(story: Story, at: str, row: TableRow) -> Prose:
     if row.p is not None:
         p = p_equals(story, f"{at}/p")
         if row.p.draws is not None:
-            return prose("{p}, {draws} drawn permutations", p=p, draws=numbers.whole(f"{at}/draws"))
+            return prose("{p}, {draws} draws", p=p, draws=numbers.whole(f"{at}/draws"))
         return prose("{p}, {method}", p=p, method=row.p.method)
     if row.interval is not None:
         decimals = numbers.decimals_for(f"{at}/value")
@@ -203,16 +199,13 @@ def changing_in_words(story: Story, name: str) -> tuple[Prose, ...]:
     """Return what would change the finding, each as the end of "the finding would be another one …"."""
     table = table_of(story, name)
     assert table is not None
-    single = any(row.ends is not None for row in table.changing)
     parts = []
     for row in table.changing:
         at = address(name, "sensitivity", "rows", row.key)
         if row.ends is not None:
             parts.append(prose("without any one of {rows} rows", rows=story.numbers.whole(f"{at}/changing_rows")))
-        elif row.search is not None and row.rows is not None and single:
-            continue  # said already: one row alone changes it
         elif row.kind == "studentised":
-            parts.append(only("by the studentised permutation test, which allows other dependence"))
+            parts.append(only("by the studentised permutation test"))
         elif row.rows is not None and row.kind != "put-back":
             parts.append(prose("without {lines}", lines=lines_in_words(story, at, len(row.rows.lines))))
         elif row.rows is not None:

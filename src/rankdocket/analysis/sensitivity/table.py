@@ -153,14 +153,14 @@ class SensitivityTable:
         """The sensitivity rows that would change the finding and are worth a caveat.
 
         Every finding hangs on some set of rows; a set counts while it is so small that all sets of its size could
-        have been tried.
+        have been tried, and one of a single row is counted where each row was left out in turn.
         """
         return tuple(
             row
             for row in self.rows
             if row.standing == "sensitivity"
             and row.verdict.change == "yes"
-            and (row.search is None or row.rows is None or len(row.rows.lines) <= EXHAUSTIVE_ROWS)
+            and (row.search is None or row.rows is None or 1 < len(row.rows.lines) <= EXHAUSTIVE_ROWS)
         )
 
 

@@ -59,14 +59,8 @@ def _verdict(subject: Subject, found: Interval) -> Verdict:
         return Verdict("not applicable", reason=NOT_PRINTED)
     inside, inside_printed = _holds_zero(found), _holds_zero(printed)
     if inside == inside_printed:
-        return Verdict(
-            "no",
-            reason="zero lies inside, as in the one printed" if inside else "zero lies outside, as of the one printed",
-        )
-    return Verdict(
-        "yes",
-        reason="zero lies inside, outside the one printed" if inside else "zero lies outside, inside the one printed",
-    )
+        return Verdict("no", reason="zero lies inside both" if inside else "zero lies outside both")
+    return Verdict("yes", reason="zero lies inside this one alone" if inside else "zero lies outside this one alone")
 
 
 def _holds_zero(interval: Interval) -> bool:
