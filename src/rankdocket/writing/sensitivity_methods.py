@@ -4,7 +4,7 @@ from collections.abc import Callable
 
 from rankdocket.analysis.sensitivity.table import SensitivityTable, TableRow
 from rankdocket.document.model import Number, Prose
-from rankdocket.document.prose import joined, only
+from rankdocket.document.prose import joined, only, prose
 from rankdocket.references import Description
 from rankdocket.stats.intervals import INTERVAL_METHODS
 from rankdocket.stats.intervals.bca_bootstrap import KEY as BOOTSTRAP
@@ -12,6 +12,7 @@ from rankdocket.stats.leave_one_out import LEAVE_ONE_OUT
 from rankdocket.stats.product_moment import PRODUCT_MOMENT
 from rankdocket.stats.removals import REMOVALS
 from rankdocket.stats.studentised import STUDENTISED
+from rankdocket.writing.citations import cite
 from rankdocket.writing.section import Story
 
 Described = Callable[..., Prose]
@@ -48,12 +49,17 @@ def sensitivity_paragraph(story: Story, described: Described, printed: frozenset
     ]
     parts += [described(description, **slots) for description, slots in _descriptions(story, rows)]
     ran = {row.interval.method for row in rows if row.interval is not None} - printed
-    resamples = {"resamples": story.numbers.whole("sensitivity/resamples")}
-    parts += [
-        described(method.describe, **(resamples if method.key == BOOTSTRAP else {}))
+    others = tuple(
+        prose("{label} {cite}", label=method.label, cite=cite(*method.describe.cites))
         for method in INTERVAL_METHODS
         if method.key in ran
-    ]
+    )
+    if others:
+        parts.append(prose("Intervals were made by other rules as well: {rules}.", rules=joined(others, "; ")))
+    if BOOTSTRAP in ran:
+        parts.append(
+            prose("Resamples drawn for the bootstrap: {number}.", number=story.numbers.whole("sensitivity/resamples"))
+        )
     return joined(tuple(parts))
 
 
