@@ -18,6 +18,7 @@ from rankdocket.writing.caveats import (
     more_variables,
     requirements,
     results,
+    sensitivity,
     study,
 )
 from writing.reports import (
@@ -77,6 +78,7 @@ SPEAKS: dict[str, Invented] = {
         associations={"A1": association(), "A2": association("u", "w", more="coefficient: Kendall tau-b")},
     ),
     "perfect_agreement": replace(QUIET, columns={"u": RISING, "v": FALLING}),
+    "would_change": replace(QUIET, columns={"u": RISING, "v": NEAR}, inference="alpha: 0.02"),
     "small_sample": replace(QUIET, columns=SMALL_ORDERED),
     "left_out_rows": replace(QUIET, rows=LEFT_OUT),
     "incomplete_rows": replace(QUIET, columns={"u": RISING, "v": "1 3 2 5 4 7 - 9 8 10"}),
@@ -159,7 +161,7 @@ def test_the_catalogue_holds_every_rule_once_with_a_weight_of_its_own() -> None:
     """A rule that is written and not listed would never speak."""
     written = [
         rule
-        for module in (adjustment, coverage, intervals, more_variables, requirements, results, study)
+        for module in (adjustment, coverage, intervals, more_variables, requirements, results, sensitivity, study)
         for _, rule in inspect.getmembers(module, lambda value: isinstance(value, CaveatRule))
     ]
     assert {rule.key for rule in written} == {rule.key for rule in CAVEATS}

@@ -1,7 +1,5 @@
 """What the methods text says of the sensitivity tables: the rules that ran, each once."""
 
-from collections.abc import Callable
-
 from rankdocket.analysis.sensitivity.table import SensitivityTable, TableRow
 from rankdocket.document.model import Number, Prose
 from rankdocket.document.prose import joined, only, prose
@@ -13,20 +11,17 @@ from rankdocket.stats.product_moment import PRODUCT_MOMENT
 from rankdocket.stats.removals import REMOVALS
 from rankdocket.stats.studentised import STUDENTISED
 from rankdocket.writing.citations import cite
+from rankdocket.writing.described import described
 from rankdocket.writing.section import Story
 
-Described = Callable[..., Prose]
 
-
-def sensitivity_paragraph(story: Story, described: Described, printed: frozenset[str]) -> Prose:
+def sensitivity_paragraph(story: Story, printed: frozenset[str]) -> Prose:
     """Return the paragraph; empty without any table.
 
     Parameters
     ----------
     story
         The study.
-    described
-        Puts a description and its slots into words.
     printed
         Keys of the interval rules that the text describes already.
     """

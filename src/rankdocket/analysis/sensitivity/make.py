@@ -9,15 +9,18 @@ import numpy as np
 from rankdocket.analysis.check import direction_of
 from rankdocket.analysis.checks.independence import KEY as INDEPENDENCE
 from rankdocket.analysis.decide import decision_rule
+from rankdocket.analysis.max_t_result import FamilyMaxT
 from rankdocket.analysis.results import AssociationAnalysis, Estimate, Finding, NotEstimable, RankTest
 from rankdocket.analysis.sensitivity.cheap import draws_of
 from rankdocket.analysis.sensitivity.rows import ROWS
-from rankdocket.analysis.sensitivity.subject import Decision, Subject
-from rankdocket.analysis.sensitivity.table import NoTable, SensitivityTable
+from rankdocket.analysis.sensitivity.subject import NO_FINDING, Decision, Subject
+from rankdocket.analysis.sensitivity.table import NoTable, SensitivityTable, Verdict
 from rankdocket.analysis.sensitivity.threshold import threshold_of
 from rankdocket.stats.adjustment import AdjustmentRule
 from rankdocket.study.spec import StudySpec
 from rankdocket.study.table import StudyData
+
+TOGETHER: Final = "the plan adjusts coefficients together, so that no p-value alone decides"
 
 NOT_REPAIRED: Final = "no row of such a table repairs that"
 
@@ -26,7 +29,7 @@ def sensitivity_of(
     results: Mapping[str, AssociationAnalysis],
     findings: Mapping[str, Finding],
     plan: tuple[StudySpec, StudyData],
-    adjustment: AdjustmentRule,
+    adjustment: AdjustmentRule | FamilyMaxT,
 ) -> Mapping[str, SensitivityTable | NoTable]:
     """Return the table of every association, or why it has none; the findings must have been made before."""
     return {name: _table(name, results, findings[name], plan, adjustment) for name in results}
@@ -37,7 +40,7 @@ def _table(
     results: Mapping[str, AssociationAnalysis],
     finding: Finding,
     plan: tuple[StudySpec, StudyData],
-    adjustment: AdjustmentRule,
+    adjustment: AdjustmentRule | FamilyMaxT,
 ) -> SensitivityTable | NoTable:
     result, (spec, data) = results[name], plan
     if isinstance(result.estimate, NotEstimable):
@@ -52,13 +55,25 @@ def _table(
         np.array([getattr(row, side) for row in result.screened.rows], dtype=np.int64)
         for side in ("x_doubled_rank", "y_doubled_rank")
     )
-    rule = decision_rule(name, results, spec, adjustment)
+    together = isinstance(adjustment, FamilyMaxT) and name in adjustment.members
+    rule = None if isinstance(adjustment, FamilyMaxT) else decision_rule(name, results, spec, adjustment)
     decision = None
     if rule is not None and finding.word is not None and isinstance(result.test, RankTest):
         threshold = partial(threshold_of, rule, (x, y), result.estimate.coefficient, direction, draws)
         decision = Decision(rule, finding.word, cache(threshold))
+    undecided = Verdict("not applicable", reason=TOGETHER) if together else NO_FINDING
     subject = Subject(
-        spec, data, result.screened, x, y, result.estimate.coefficient, result.interval, direction, draws, decision
+        spec,
+        data,
+        result.screened,
+        x,
+        y,
+        result.estimate.coefficient,
+        result.interval,
+        direction,
+        draws,
+        decision,
+        undecided,
     )
     rows = tuple(row for each in ROWS for row in each.make(subject))
     return SensitivityTable(rows, None if decision is None else decision.finding)

@@ -29,7 +29,7 @@ def without_each(subject: Subject) -> LeaveOneOut | NoAnswer:
 def threshold_for(subject: Subject) -> Threshold | NoAnswer:
     """Return where the finding changes, if the null that says so repeats the finding itself."""
     if subject.decision is None:
-        return NoAnswer(NO_FINDING_STATED)
+        return NoAnswer(subject.undecided.reason or NO_FINDING_STATED)
     threshold = subject.decision.threshold()
     if isinstance(threshold, NoAnswer):
         return threshold

@@ -54,7 +54,9 @@ class Subject:
     x, y
         Codes of the complete rows.
     decision
-        ``None`` where the plan states no finding.
+        ``None`` where the plan states no finding, or decides by more than p-values.
+    undecided
+        What is said instead of a verdict where there is no decision.
     """
 
     spec: StudySpec
@@ -67,6 +69,7 @@ class Subject:
     direction: Direction
     draws: Draws
     decision: Decision | None
+    undecided: Verdict = NO_FINDING
 
     @property
     def lines(self) -> tuple[int, ...]:
@@ -76,13 +79,13 @@ class Subject:
     def verdict(self, p: Fraction, *, positive: bool) -> Verdict:
         """Return whether the finding would change at this p-value of a coefficient above 0, or not."""
         if self.decision is None:
-            return NO_FINDING
+            return self.undecided
         found = self.decision.rule.word(p, positive=positive)
         return Verdict("no" if found == self.decision.finding else "yes", found)
 
     def not_applicable(self, reason: str) -> Verdict:
         """Return that the question does not apply; no finding stays no finding."""
-        return NO_FINDING if self.decision is None else Verdict("not applicable", reason=reason)
+        return self.undecided if self.decision is None else Verdict("not applicable", reason=reason)
 
     def with_p(self, row: TableRow, coefficient: Coefficient, p: RowP | NoAnswer) -> TableRow:
         """Return a row of a coefficient with its p-value and its verdict."""

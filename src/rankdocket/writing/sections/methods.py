@@ -293,7 +293,7 @@ def _sensitivity(story: Story) -> Prose:
     printed = {
         result.interval.method for result in story.analysis.results.values() if isinstance(result.interval, Interval)
     }
-    return sensitivity_paragraph(story, described, frozenset(printed))
+    return sensitivity_paragraph(story, frozenset(printed))
 
 
 _COEFFICIENTS: Final[dict[CoefficientName, Description]] = {"Spearman rho": RHO, "Kendall tau-b": TAU_B}

@@ -4,7 +4,7 @@ from typing import Final
 
 from rankdocket.analysis.sensitivity.cheap import RESAMPLES
 from rankdocket.analysis.sensitivity.row_rule import RowRule
-from rankdocket.analysis.sensitivity.subject import NO_FINDING, Subject
+from rankdocket.analysis.sensitivity.subject import Subject
 from rankdocket.analysis.sensitivity.table import TableRow, Verdict
 from rankdocket.stats.interval import Interval, IntervalMethod, IntervalQuestion, NoInterval, Resampling
 from rankdocket.stats.intervals import INTERVAL_METHODS
@@ -53,7 +53,7 @@ def _interval(subject: Subject, method: IntervalMethod, key: str) -> Interval | 
 def _verdict(subject: Subject, found: Interval) -> Verdict:
     """Return whether zero lies on the other side of the interval's limits than it does in the printed one."""
     if subject.decision is None:
-        return NO_FINDING
+        return subject.undecided
     printed = subject.interval
     if not isinstance(printed, Interval):
         return Verdict("not applicable", reason=NOT_PRINTED)
