@@ -42,4 +42,4 @@ def _would_change(story: Story) -> tuple[FoundCaveat, ...]:
     return tuple(found)
 
 
-WOULD_CHANGE = CaveatRule("would_change", 60, _would_change)
+WOULD_CHANGE = CaveatRule("would_change", 65, _would_change)
