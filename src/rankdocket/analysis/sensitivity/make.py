@@ -4,12 +4,11 @@ from collections.abc import Mapping
 from functools import cache, partial
 from typing import Final
 
-import numpy as np
-
 from rankdocket.analysis.check import direction_of
 from rankdocket.analysis.checks.independence import KEY as INDEPENDENCE
 from rankdocket.analysis.decide import decision_rule
 from rankdocket.analysis.max_t_result import FamilyMaxT
+from rankdocket.analysis.rank_codes import rank_codes
 from rankdocket.analysis.results import AssociationAnalysis, Estimate, Finding, NotEstimable, RankTest
 from rankdocket.analysis.sensitivity.cheap import draws_of
 from rankdocket.analysis.sensitivity.rows import ROWS
@@ -51,10 +50,7 @@ def _table(
     if not isinstance(result.estimate, Estimate):
         return NoTable(result.estimate.reason)
     direction, draws = direction_of(result.screened, spec), draws_of(name, spec)
-    x, y = (
-        np.array([getattr(row, side) for row in result.screened.rows], dtype=np.int64)
-        for side in ("x_doubled_rank", "y_doubled_rank")
-    )
+    x, y = rank_codes(result.screened)
     together = isinstance(adjustment, FamilyMaxT) and name in adjustment.members
     rule = None if isinstance(adjustment, FamilyMaxT) else decision_rule(name, results, spec, adjustment)
     decision = None

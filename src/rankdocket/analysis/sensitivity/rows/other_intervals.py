@@ -2,6 +2,8 @@
 
 from typing import Final
 
+import numpy as np
+
 from rankdocket.analysis.sensitivity.cheap import RESAMPLES
 from rankdocket.analysis.sensitivity.row_rule import RowRule
 from rankdocket.analysis.sensitivity.subject import Subject
@@ -45,9 +47,10 @@ def _interval(subject: Subject, method: IntervalMethod, key: str) -> Interval | 
         resampling = Resampling(plan.permutations, plan.generator)
     printed = subject.interval
     level = printed.level if isinstance(printed, Interval) else subject.spec.inference.confidence_level
-    return method.function(
-        IntervalQuestion(subject.coefficient, subject.x, subject.y, level, subject.direction, resampling)
-    )
+    # As for a printed one, no digit and no resample depends on the order in which the rows came.
+    order = np.lexsort((subject.y, subject.x))
+    x, y = subject.x[order], subject.y[order]
+    return method.function(IntervalQuestion(subject.coefficient, x, y, level, subject.direction, resampling))
 
 
 def _verdict(subject: Subject, found: Interval) -> Verdict:
