@@ -9,6 +9,8 @@ import pytest
 
 from rankdocket.analysis.check import Check
 from rankdocket.analysis.checks import CHECKS
+from rankdocket.analysis.sensitivity.row_rule import RowRule
+from rankdocket.analysis.sensitivity.rows import ROWS
 from rankdocket.references import REFERENCES
 from rankdocket.render.drawing import Drawing
 from rankdocket.render.drawings import DRAWINGS
@@ -25,6 +27,7 @@ from rankdocket.writing.sections import APPENDICES, BODY
 
 CATALOGUES: list[tuple[str, type[Any], tuple[Any, ...], str]] = [
     ("rankdocket.analysis.checks", Check, CHECKS, "key"),
+    ("rankdocket.analysis.sensitivity.rows", RowRule, ROWS, "key"),
     ("rankdocket.stats.intervals", IntervalMethod, INTERVAL_METHODS, "key"),
     ("rankdocket.stats.adjustments", AdjustmentRule, ADJUSTMENTS, "key"),
     ("rankdocket.writing.caveats", CaveatRule, CAVEATS, "key"),

@@ -5,6 +5,7 @@ from fractions import Fraction
 from itertools import combinations
 
 import numpy as np
+import numpy.typing as npt
 import pytest
 from scipy import stats
 
@@ -169,3 +170,31 @@ def test_too_few_rows_and_bounds_that_are_none() -> None:
             smallest_removal(np.arange(9), np.arange(9), _is_half, bounds)
     with pytest.raises(ValueError, match="differ in length"):
         smallest_removal(np.arange(9), np.arange(8), _is_half, AMPLE)
+
+
+def test_the_finding_is_asked_for_candidates_only() -> None:
+    """Sets that are known not to change it are passed over; what is found stays the same."""
+    x, y = _planted()
+    asked: list[int] = []
+
+    def finding(x_left: Codes, y_left: Codes) -> bool:
+        asked.append(len(x_left))
+        return _is_half(x_left, y_left)
+
+    def pairs_with_a_planted_row(sets: Codes) -> npt.NDArray[np.bool_]:
+        return (sets == len(x) - 2).any(axis=1) & (sets.shape[1] == 2)
+
+    found = smallest_removal(x, y, finding, AMPLE, pairs_with_a_planted_row)
+    assert isinstance(found, Removal)
+    assert found == smallest_removal(x, y, _is_half, AMPLE)
+    assert len(asked) <= len(x) + 1
+
+
+def test_tau_without_each_row_is_that_of_the_rows_that_remain() -> None:
+    """Ranked anew by scipy."""
+    rng = np.random.default_rng(6)
+    x, y = rng.integers(0, 6, (2, 15))
+    found = leave_one_out(x, y, "Kendall tau-b")
+    assert isinstance(found, LeaveOneOut)
+    expected = [stats.kendalltau(np.delete(x, row), np.delete(y, row)).statistic for row in range(15)]
+    assert [left.coefficient.value for left in found.without] == pytest.approx(expected, rel=1e-12)

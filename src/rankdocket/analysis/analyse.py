@@ -28,6 +28,7 @@ from rankdocket.analysis.results import (
     Withheld,
 )
 from rankdocket.analysis.screen import screen_association
+from rankdocket.analysis.sensitivity.make import sensitivity_of
 from rankdocket.analysis.shape import shape_of
 from rankdocket.analysis.size import size_analysis
 from rankdocket.errors import InputError
@@ -71,10 +72,12 @@ def analyse(spec: StudySpec, data: StudyData, progress: Callable[[str], None] = 
         results[name] = analyse_association(rows, spec)
         progress(name)
     together = family_max_t(results, spec)
-    findings = decide(results, spec, adjustment_of(spec) if together is None else together)
+    adjustment = adjustment_of(spec) if together is None else together
+    findings = decide(results, spec, adjustment)
     printed = with_adjusted_intervals(results, findings, spec)
     more = {name: examine_more_variables(name, results, spec, data) for name in results}
-    return Analysis(spec, data, printed, findings, family_of(spec), more, together)
+    sensitivity = sensitivity_of(printed, findings, (spec, data), adjustment)
+    return Analysis(spec, data, printed, findings, family_of(spec), more, together, sensitivity)
 
 
 def analyse_association(screened: Screened, spec: StudySpec) -> AssociationAnalysis:

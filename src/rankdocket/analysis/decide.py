@@ -11,7 +11,7 @@ from rankdocket.analysis.max_t_result import FamilyMaxT
 from rankdocket.analysis.results import AssociationAnalysis, Estimate, Finding, NotEstimable, RankTest
 from rankdocket.stats.adjustment import AdjustmentRule
 from rankdocket.study.spec import StudySpec
-from rankdocket.vocabulary import FindingWord
+from rankdocket.vocabulary import ExpectedSign, FindingWord
 
 
 @dataclass(frozen=True, slots=True)
@@ -44,6 +44,45 @@ def decide(
         )
         for name, result in results.items()
     }
+
+
+@dataclass(frozen=True, slots=True)
+class DecisionRule:
+    """What the plan’s rule makes of one association at another p-value, the others of its family keeping theirs.
+
+    Attributes
+    ----------
+    name
+        The association.
+    raw
+        The p-values of its family, its own among them; empty for an association decided on its own p.
+    """
+
+    name: str
+    raw: Mapping[str, Fraction]
+    adjustment: AdjustmentRule
+    alpha: Fraction
+    expected: ExpectedSign
+
+    def word(self, p: Fraction, *, positive: bool) -> FindingWord:
+        """Return the finding for this p-value of a coefficient above 0, or not."""
+        deciding = p
+        if self.raw:
+            raw = {**self.raw, self.name: p}
+            deciding = dict(zip(raw, self.adjustment.function(tuple(raw.values())), strict=True))[self.name]
+        return _word_at(deciding, self.alpha, self.expected, positive=positive)
+
+
+def decision_rule(
+    name: str, results: Mapping[str, AssociationAnalysis], spec: StudySpec, adjustment: AdjustmentRule
+) -> DecisionRule | None:
+    """Return the rule that decides an association by its rank test; ``None`` for one that the plan decides otherwise."""
+    association = results[name].screened.spec
+    basis = basis_of(association, spec)
+    if basis == "outside the family" or deciding_test(association) != "rank test":
+        return None
+    raw = {member: _p_at(results[member], None) for member in family_of(spec)} if basis == "family" else {}
+    return DecisionRule(name, raw, adjustment, Fraction(spec.inference.alpha), association.hypothesis.expected_sign)
 
 
 def _by_rule(members: Mapping[str, AssociationAnalysis], adjustment: AdjustmentRule) -> dict[str, _Adjusted]:
@@ -105,10 +144,14 @@ def _finding(result: AssociationAnalysis, spec: StudySpec, adjusted: Fraction | 
 
 
 def _word(result: AssociationAnalysis, spec: StudySpec, p: Fraction) -> FindingWord:
-    if p > Fraction(spec.inference.alpha):
-        return "not shown"
+    alpha = Fraction(spec.inference.alpha)
     if deciding_test(result.screened.spec) == "within":
-        return "shown"
-    expected = result.screened.spec.hypothesis.expected_sign
-    found = "positive" if is_positive(result) else "negative"
+        return "shown" if p <= alpha else "not shown"
+    return _word_at(p, alpha, result.screened.spec.hypothesis.expected_sign, positive=is_positive(result))
+
+
+def _word_at(p: Fraction, alpha: Fraction, expected: ExpectedSign, *, positive: bool) -> FindingWord:
+    if p > alpha:
+        return "not shown"
+    found = "positive" if positive else "negative"
     return "shown" if expected in ("either", found) else "shown, opposite sign"

@@ -27,6 +27,7 @@ from rankdocket.analysis.results import (
     Screened,
     Withheld,
 )
+from rankdocket.analysis.sensitivity_plain import sensitivity_rules_to_plain, sensitivity_to_plain
 from rankdocket.analysis.shape_plain import shape_to_plain
 from rankdocket.analysis.size_plain import (
     could_show_to_plain,
@@ -61,6 +62,7 @@ def analysis_to_plain(analysis: Analysis) -> dict[str, Plain]:
             name: {
                 **_association(result, analysis.findings[name], analysis.spec),
                 **more_variables_to_plain(analysis.more[name]),
+                **sensitivity_to_plain(analysis.sensitivity.get(name), analysis.spec.inference.alpha),
             }
             for name, result in analysis.results.items()
         },
@@ -71,6 +73,7 @@ def analysis_to_plain(analysis: Analysis) -> dict[str, Plain]:
             {name: result.checks for name, result in analysis.results.items()},
             analysis.spec,
         ),
+        **sensitivity_rules_to_plain(analysis),
         "tally": {
             "associations": len(analysis.results),
             "findings": dict(words),
@@ -98,6 +101,9 @@ def data_to_plain(spec: StudySpec, data: StudyData) -> dict[str, Plain]:
 def screened_to_plain(screened: Screened, outcomes: tuple[CheckOutcome, ...]) -> dict[str, Plain]:
     """Return an association’s rows and checks: the part of its analysis that shows nothing joint."""
     flow = screened.flow
+    suspicious: dict[str, Plain] = (
+        {"suspicious_lines": [row.row for row in screened.suspicious]} if screened.suspicious else {}
+    )
     return {
         "x": screened.spec.x,
         "y": screened.spec.y,
@@ -109,6 +115,7 @@ def screened_to_plain(screened: Screened, outcomes: tuple[CheckOutcome, ...]) ->
             "missing_y": flow.missing_y,
             "missing_both": flow.missing_both,
             "complete": flow.complete,
+            **suspicious,
         },
         "ties_x": _ties(screened.x_ties),
         "ties_y": _ties(screened.y_ties),

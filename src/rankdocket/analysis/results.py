@@ -5,13 +5,14 @@ own type with the reason in words, so that forgetting the case is a type error.
 """
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from decimal import Decimal
 from fractions import Fraction
 from typing import Literal, TypeAlias
 
 from rankdocket.analysis.max_t_result import FamilyMaxT, MemberMaxT
 from rankdocket.analysis.more_results import MoreVariables
+from rankdocket.analysis.sensitivity.table import NoTable, SensitivityTable
 from rankdocket.analysis.shape import Shape
 from rankdocket.analysis.size_results import SizeAnalysis
 from rankdocket.stats.choose_null import NullChoice
@@ -87,6 +88,8 @@ class Screened:
     rows: tuple[CompleteRow, ...]
     x_ties: TieGroups
     y_ties: TieGroups
+    suspicious: tuple[LeftOutRow, ...] = ()
+    """Rows of the table that the plan calls suspicious and does not leave out, each with its reason."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -257,3 +260,5 @@ class Analysis:
     """What the plan asks about more than two variables, by association."""
     max_t: FamilyMaxT | None = None
     """Their coefficients adjusted together, where the plan asks for that and any of them has a test."""
+    sensitivity: Mapping[str, SensitivityTable | NoTable] = field(default_factory=dict)
+    """What another method, or other rows, would have said of each association."""

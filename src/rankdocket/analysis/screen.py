@@ -8,7 +8,7 @@ from decimal import Decimal
 
 from rankdocket.analysis.results import CompleteRow, LeftOutRow, RowFlow, Screened
 from rankdocket.stats.ranks import dense_codes, doubled_midranks, tie_groups
-from rankdocket.study.leave_out import rows_left_out
+from rankdocket.study.leave_out import rows_left_out, suspicious_rows
 from rankdocket.study.spec import AssociationSpec, StudySpec
 from rankdocket.study.table import StudyData, VariableValues
 
@@ -46,7 +46,12 @@ def screen_association(association: AssociationSpec, spec: StudySpec, data: Stud
             complete, x_values, y_values, doubled_midranks(x_codes), doubled_midranks(y_codes), strict=True
         )
     )
-    return Screened(association, flow, rows, tie_groups(x_codes), tie_groups(y_codes))
+    suspicious = tuple(
+        LeftOutRow(row, reason)
+        for row, reason in sorted(suspicious_rows(data.tables, spec.rows.suspicious)[table.spec.name].items())
+        if row not in left_out
+    )
+    return Screened(association, flow, rows, tie_groups(x_codes), tie_groups(y_codes), suspicious)
 
 
 def screen_all(spec: StudySpec, data: StudyData) -> Mapping[str, Screened]:

@@ -254,9 +254,10 @@ class Numbers:
         """Return whether the p-value at ``key`` belongs to an association that has no test whose p was not counted."""
         if self._is_of_a_claim(key):
             return False
-        method, together = f"{'/'.join(key.split('/')[:2])}/test/method", "inference/max_t/method"
+        together, beside = "inference/max_t/method", f"{key.rpartition('/')[0]}/method"
         if key.endswith("/finding/p_adjusted") and self.has(together):
             return look_up(self.plain, together) == COUNTED_TOGETHER
+        method = beside if self.has(beside) else f"{'/'.join(key.split('/')[:2])}/test/method"
         return not self.has(method) or look_up(self.plain, method) in COUNTED
 
     def _is_of_a_claim(self, key: str) -> bool:

@@ -1,25 +1,33 @@
-"""How far rho moves when one row is left out."""
+"""How far a coefficient moves when one row is left out."""
 
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from fractions import Fraction
+from types import MappingProxyType
 from typing import Final
 
 from rankdocket.references import Description
 from rankdocket.stats.coefficient import Coefficient
 from rankdocket.stats.exact_values import equally_long
-from rankdocket.stats.influence import rho_without_each
+from rankdocket.stats.influence import WithoutEach, rho_without_each, tau_without_each
 from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.stats.ranks import Codes
+from rankdocket.vocabulary import CoefficientName
 
 LEAVE_ONE_OUT: Final = Description(
-    "Rho was computed anew, the remaining rows ranked anew, with each complete row left out in turn.",
+    "The coefficient was computed anew, the remaining rows ranked anew, with each complete row left out in turn.",
     ("devlin1975", "croux2010"),
+)
+
+
+_WITHOUT_EACH: Final[Mapping[CoefficientName, Callable[[Codes, Codes], WithoutEach]]] = MappingProxyType(
+    {"Spearman rho": rho_without_each, "Kendall tau-b": tau_without_each}
 )
 
 
 @dataclass(frozen=True, slots=True)
 class RowLeftOut:
-    """Rho without one row.
+    """A coefficient without one row.
 
     Attributes
     ----------
@@ -34,21 +42,21 @@ class RowLeftOut:
 
     @property
     def order_key(self) -> Fraction:
-        """rho·|rho| exactly: ordered as rho is.  Only for a defined coefficient."""
+        """The coefficient times its size, exactly: ordered as it is.  Only for a defined coefficient."""
         left = self.coefficient
         return Fraction(left.numerator * abs(left.numerator), left.x_square * left.y_square)
 
 
 @dataclass(frozen=True, slots=True)
 class LeaveOneOut:
-    """Rho without each row in turn.
+    """A coefficient without each row in turn.
 
     Attributes
     ----------
     without
         One for each complete row, in their order.
     lowest, highest
-        The least and the greatest rho left; of equal ones that of the first row.
+        The least and the greatest coefficient left; of equal ones that of the first row.
     undefined
         Rows without which a variable does not vary.
     """
@@ -59,8 +67,8 @@ class LeaveOneOut:
     undefined: tuple[int, ...]
 
 
-def leave_one_out(x_codes: Codes, y_codes: Codes) -> LeaveOneOut | NoAnswer:
-    """Return rho without each row in turn, as integers, in n log n steps; or why there is none.
+def leave_one_out(x_codes: Codes, y_codes: Codes, name: CoefficientName = "Spearman rho") -> LeaveOneOut | NoAnswer:
+    """Return the coefficient without each row in turn, as integers, in n log n steps; or why there is none.
 
     Raises
     ------
@@ -71,11 +79,9 @@ def leave_one_out(x_codes: Codes, y_codes: Codes) -> LeaveOneOut | NoAnswer:
     """
     if equally_long(x_codes, y_codes) == 0:
         return NoAnswer("there are no complete rows")
-    found = rho_without_each(x_codes, y_codes)
+    found = _WITHOUT_EACH[name](x_codes, y_codes)
     integers = zip(found.numerator.tolist(), found.x_square.tolist(), found.y_square.tolist(), strict=True)
-    without = tuple(
-        RowLeftOut(row, Coefficient("Spearman rho", len(x_codes) - 1, *parts)) for row, parts in enumerate(integers)
-    )
+    without = tuple(RowLeftOut(row, Coefficient(name, len(x_codes) - 1, *parts)) for row, parts in enumerate(integers))
     defined = [left for left in without if left.coefficient.is_defined]
     if not defined:
         return NoAnswer("without any one row a variable does not vary")

@@ -5,11 +5,12 @@ The idea is that of walsh2014 for tables of two by two; its use for a rank corre
 
 from collections.abc import Callable, Hashable, Iterable
 from dataclasses import dataclass
-from itertools import combinations
+from itertools import chain, combinations
 from math import comb
 from typing import Final, Literal, TypeAlias
 
 import numpy as np
+import numpy.typing as npt
 
 from rankdocket.references import Description
 from rankdocket.stats.exact_values import equally_long
@@ -26,6 +27,9 @@ REMOVALS: Final = Description(
 
 Finding: TypeAlias = Callable[[Codes, Codes], Hashable]
 """What is concluded from the rows that are there."""
+
+Candidates: TypeAlias = Callable[[Codes], npt.NDArray[np.bool_]]
+"""Which sets of rows, shape (sets, size), may change the finding; the others are known not to.  Shape (sets,)."""
 
 HowSure: TypeAlias = Literal["exhaustive", "upper bound"]
 """Whether no smaller set exists, or a smaller one may exist."""
@@ -98,13 +102,14 @@ class NoRemoval:
 
 
 def smallest_removal(
-    x_codes: Codes, y_codes: Codes, finding: Finding, bounds: SearchBounds
+    x_codes: Codes, y_codes: Codes, finding: Finding, bounds: SearchBounds, candidates: Candidates | None = None
 ) -> Removal | NoRemoval | NoAnswer:
     """Return the smallest set of rows found whose removal changes the finding.
 
     All single rows are tried; with at most EXHAUSTIVE_N complete rows also all sets of two and of three; each as far as
     the bounds allow.  Beyond, the row that lowers rho most is left out again and again until the finding changes, and so
-    is the row that raises it most; of the two sets the smaller one is kept, less the rows it does not need.
+    is the row that raises it most; of the two sets the smaller one is kept, less the rows it does not need.  Where
+    ``candidates`` are told, the finding is asked for them only while all sets are tried.
 
     Raises
     ------
@@ -121,7 +126,7 @@ def smallest_removal(
     before = finding(x_codes, y_codes)
     tried = 0
     for size in _sizes_to_try(n, most_rows, bounds.most_findings):
-        for rows in combinations(range(n), size):
+        for rows in _sets(n, size, candidates):
             after = search.without(rows)
             if after != before:
                 return Removal(rows, before, after, "exhaustive", size - 1)
@@ -159,6 +164,15 @@ def _sizes_to_try(n: int, most_rows: int, most_findings: int) -> Iterable[int]:
         if left < 0:
             return
         yield size
+
+
+def _sets(n: int, size: int, candidates: Candidates | None) -> Iterable[tuple[int, ...]]:
+    """Return all sets of so many rows that may change the finding, in lexical order."""
+    every = combinations(range(n), size)
+    if candidates is None:
+        return every
+    sets = np.fromiter(chain.from_iterable(every), dtype=np.int64).reshape(-1, size)
+    return (tuple(rows) for rows in sets[candidates(sets)].tolist())
 
 
 @dataclass(frozen=True, slots=True, eq=False)

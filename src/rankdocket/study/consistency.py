@@ -201,12 +201,17 @@ def _rows_faults(parts: Parts) -> Iterator[Fault]:
                 remedy = f"Write {key}: {NOT_APPLICABLE}, or leave independent_because out."
                 place = parts.key_place("rows", "independent_because")
                 yield fault(place, "rows.independent_because", Message.CONTRADICTION, what, remedy)
-    for position, item in enumerate(parts.rows.leave_out):
-        if parts.sound(("rows",), "leave_out") and not item.where:
-            place = parts.key_place("rows", "leave_out", position, "where")
-            what = "no column stands here."
-            remedy = 'Write where: {station: "E07"}.'
-            yield fault(place, f"rows.leave_out.{position + 1}.where", Message.KEY_MISSING, what, remedy)
+    named = {
+        "leave_out": [item.where for item in parts.rows.leave_out],
+        "suspicious": [item.where for item in parts.rows.suspicious],
+    }
+    for key, columns in named.items():
+        for position, where in enumerate(columns):
+            if parts.sound(("rows",), key) and not where:
+                place = parts.key_place("rows", key, position, "where")
+                what = "no column stands here."
+                remedy = 'Write where: {station: "E07"}.'
+                yield fault(place, f"rows.{key}.{position + 1}.where", Message.KEY_MISSING, what, remedy)
 
 
 def _twice(parts: Parts, address: tuple[str, ...], entries: Sequence[str]) -> Iterator[Fault]:

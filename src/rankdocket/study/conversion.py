@@ -97,6 +97,10 @@ def _rows(parts: Parts, form: RowsForm) -> RowsSpec:
         LeaveOutSpec(item.where, item.reason, parts.key_place("rows", "leave_out", position))
         for position, item in enumerate(form.leave_out)
     )
+    suspicious = tuple(
+        LeaveOutSpec(item.where, item.reason, parts.key_place("rows", "suspicious", position))
+        for position, item in enumerate(form.suspicious)
+    )
     return RowsSpec(
         one_row_is=form.one_row_is,
         repeated_within=form.repeated_within,
@@ -104,6 +108,7 @@ def _rows(parts: Parts, form: RowsForm) -> RowsSpec:
         independent_because=form.independent_because,
         leave_out=left_out,
         place=parts.key_place("rows"),
+        suspicious=suspicious,
     )
 
 

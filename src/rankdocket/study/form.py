@@ -153,6 +153,16 @@ class LeaveOutForm(Form):
     reason: Prose = Field(description="Why these rows are left out; printed.")
 
 
+class SuspiciousForm(Form):
+    """Rows that stay in and are looked at without."""
+
+    where: dict[str, Annotated[str, kinds.CellText()]] = Field(
+        description="Column and cell text; a row is meant when all of them agree.",
+        json_schema_extra={"minProperties": 1},
+    )
+    reason: Prose = Field(description="What is suspicious about these rows; printed.")
+
+
 class RowsForm(Form):
     """What one row is, and whether rows stand in one another's way."""
 
@@ -165,6 +175,9 @@ class RowsForm(Form):
     )
     independent_because: OptionalProse = Field(default=None, description="Why rows are independent; printed.")
     leave_out: tuple[LeaveOutForm, ...] = Field(default=(), description="Rows left out, each with its reason.")
+    suspicious: tuple[SuspiciousForm, ...] = Field(
+        default=(), description="Rows that stay in the analysis and without which it is looked at as well."
+    )
 
 
 class ColumnForm(Form):

@@ -1,4 +1,4 @@
-"""The rows that the plan leaves out, by number, each with its reason."""
+"""The rows that the plan leaves out or calls suspicious, by number, each with its reason."""
 
 from collections.abc import Mapping, Sequence
 
@@ -32,10 +32,25 @@ def rows_left_out(tables: Mapping[str, Table], leave_out: Sequence[LeaveOutSpec]
     InputError
         If no table has the columns of an entry, or an entry matches no row of any table.
     """
+    return _named_rows(tables, leave_out, "rows.leave_out")
+
+
+def suspicious_rows(tables: Mapping[str, Table], suspicious: Sequence[LeaveOutSpec]) -> dict[str, dict[int, str]]:
+    """Return table → row number → reason for the rows that the plan calls suspicious.
+
+    Raises
+    ------
+    InputError
+        If no table has the columns of an entry, or an entry matches no row of any table.
+    """
+    return _named_rows(tables, suspicious, "rows.suspicious")
+
+
+def _named_rows(tables: Mapping[str, Table], entries: Sequence[LeaveOutSpec], key: str) -> dict[str, dict[int, str]]:
     rows: dict[str, dict[int, str]] = {name: {} for name in tables}
     faults: list[Fault] = []
-    for position, item in enumerate(leave_out, start=1):
-        field = f"rows.leave_out.{position}"
+    for position, item in enumerate(entries, start=1):
+        field = f"{key}.{position}"
         concerned = [table for table in tables.values() if all(cells_of(table, c) is not None for c in item.where)]
         if not concerned:
             faults.extend(_column_faults(tables, item, field))

@@ -130,7 +130,7 @@ MEANINGS: Final = {
     Message.NOT_A_COUNT: "a count is not a whole number from 0",
     Message.MORE_THAN_TWO: "a two-valued variable has more than two values",
     Message.UNIT_DIFFERS: "the unit in the file differs from the declared one",
-    Message.NO_ROW_MATCHED: "a leave_out matches no row",
+    Message.NO_ROW_MATCHED: "an entry of leave_out or suspicious matches no row",
     Message.FILE_NOT_READABLE: "a file that the spec names cannot be read",
     Message.SEED_MISSING: "permutations must be drawn and no seed is stated",
     Message.NO_SUCH_STUDY: "a study is asked for that is not there",

@@ -48,12 +48,19 @@ def _reading(data: DataSpec) -> Plain:
 
 
 def _rows(rows: RowsSpec) -> Plain:
+    # A plan that calls no row suspicious is the same plan as one from before there was such a key.
+    suspicious: dict[str, Plain] = (
+        {"suspicious": [{"where": dict(item.where), "reason": item.reason} for item in rows.suspicious]}
+        if rows.suspicious
+        else {}
+    )
     return {
         "one_row_is": rows.one_row_is,
         "repeated_within": rows.repeated_within,
         "time_order": rows.time_order,
         "independent_because": rows.independent_because,
         "leave_out": [{"where": dict(item.where), "reason": item.reason} for item in rows.leave_out],
+        **suspicious,
     }
 
 

@@ -88,7 +88,7 @@ class DataSpec:
 
 @dataclass(frozen=True, slots=True)
 class LeaveOutSpec:
-    """Rows that the plan leaves out: every row in which all the named columns hold the given text."""
+    """Rows that the plan leaves out, or calls suspicious: those in which all the named columns hold the given text."""
 
     where: Mapping[str, str]
     reason: str
@@ -100,7 +100,8 @@ class RowsSpec:
     """``rows``: what one row is and whether rows stand in one another's way.
 
     ``repeated_within`` and ``time_order`` hold a column name, the words "not applicable", or ``None`` when the
-    spec is silent, which is not an answer.
+    spec is silent, which is not an answer.  Rows that are ``suspicious`` stay in the analysis; a sensitivity table looks
+    at it without them.
     """
 
     one_row_is: str
@@ -109,6 +110,7 @@ class RowsSpec:
     independent_because: str | None
     leave_out: tuple[LeaveOutSpec, ...]
     place: Place
+    suspicious: tuple[LeaveOutSpec, ...] = ()
 
     @property
     def declared_independent(self) -> bool:

@@ -111,6 +111,7 @@ def _rows(rows: RowsSpec) -> _Value:
         "time_order": rows.time_order,
         "independent_because": rows.independent_because,
         "leave_out": [{"where": item.where, "reason": item.reason} for item in rows.leave_out],
+        "suspicious": [{"where": item.where, "reason": item.reason} for item in rows.suspicious],
     }
 
 

@@ -27,6 +27,7 @@ from rankdocket.writing.phrases import (
     variables_of,
 )
 from rankdocket.writing.section import Story
+from rankdocket.writing.sensitivity import sensitivity_blocks
 from rankdocket.writing.shape import xi_rows
 from rankdocket.writing.size import size_rows, verdict_sentence
 
@@ -63,6 +64,8 @@ def spread(story: Story, name: str, position: int) -> Section:
         blocks.append(Paragraph(finding_sentence(story, name), "answer"))
     blocks.append(FieldList(_numbers(story, name), key=f"numbers-{name}"))
     blocks += more_variables_tables(story, name, position)
+    if isinstance(result.estimate, Estimate):
+        blocks += sensitivity_blocks(story, name)
     blocks.append(Paragraph(_caveats(story, name), "note"))
     # Only a spread with plots fills a page of its own.
     opens: Literal["page", "here"] = "page" if isinstance(result.estimate, Estimate) else "here"

@@ -33,6 +33,9 @@ def supplied_texts(story: Story) -> tuple[tuple[str, str], ...]:
         for name, association in spec.associations.items()
         for word, reason in association.waived.items()
     ]
+    texts += [
+        (f"rows.suspicious.{place}.reason", item.reason) for place, item in enumerate(spec.rows.suspicious, start=1)
+    ]
     texts.append(("the reason for this edition", story.facts.reason))
     return tuple(texts)
 

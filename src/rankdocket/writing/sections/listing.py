@@ -1,5 +1,6 @@
 """Appendix B: the data as received, the columns that the plan uses."""
 
+from collections.abc import Mapping
 from typing import Final
 
 from rankdocket.document.model import Block, Column, Emphasis, Paragraph, Prose, Section, Supplied, TableBlock
@@ -31,6 +32,12 @@ def _listing(story: Story, name: str, table: Table, position: int) -> TableBlock
         if story.analysis.spec.variables[result.screened.spec.x].table == name
         for left in result.screened.flow.left_out
     }
+    suspicious = {
+        row.row: row.reason
+        for result in story.analysis.results.values()
+        if story.analysis.spec.variables[result.screened.spec.x].table == name
+        for row in result.screened.suspicious
+    }
     notes = (
         (
             prose(
@@ -50,17 +57,23 @@ def _listing(story: Story, name: str, table: Table, position: int) -> TableBlock
             Column(only("Line"), "line", "right", share=2),
             *(Column(only(Supplied(column)), column, share=4) for column in columns),
             Column(only("Left out by the plan"), "left_out", share=4),
+            *((Column(only("Suspicious by the plan, kept"), "suspicious", share=4),) if suspicious else ()),
         ),
         rows=tuple(
             (
                 only(story.numbers.label(f"tables/{name}/lines/{line}")),
                 *(_cell(table.columns[column][line]) for column in columns),
-                only(Supplied(reasons[row])) if row in reasons else EN_DASH_CELL,
+                _reason(reasons, row),
+                *((_reason(suspicious, row),) if suspicious else ()),
             )
             for line, row in enumerate(table.row_numbers[:MOST_ROWS])
         ),
         notes=notes,
     )
+
+
+def _reason(reasons: Mapping[int, str], row: int) -> Prose:
+    return only(Supplied(reasons[row])) if row in reasons else EN_DASH_CELL
 
 
 def _cell(literal: str) -> Prose:
@@ -76,7 +89,7 @@ def _used_columns(story: Story, name: str) -> tuple[str, ...]:
         for association in spec.associations.values()
         if association.groups is not None and spec.variables[association.x].table == name
     }
-    used |= {column for left in spec.rows.leave_out for column in left.where}
+    used |= {column for left in (*spec.rows.leave_out, *spec.rows.suspicious) for column in left.where}
     written = {composed(column) for column in used}
     return tuple(column for column in story.analysis.data.tables[name].columns if column in written)
 

@@ -29,6 +29,7 @@ from rankdocket.writing.intervals import given
 from rankdocket.writing.more_variables_methods import more_variables_descriptions
 from rankdocket.writing.phrases import address, full_stop, interval_holds, pointers
 from rankdocket.writing.section import SectionRule, Story
+from rankdocket.writing.sensitivity_methods import sensitivity_paragraph
 from rankdocket.writing.shape import any_shape, any_xi_null
 from rankdocket.writing.size_methods import could_show_methods, size_methods
 
@@ -76,6 +77,7 @@ def method_paragraphs(story: Story) -> tuple[Prose, ...]:
             _comparisons(story),
             _more_variables(story),
             _shape(story),
+            _sensitivity(story),
         )
         if text_of(part)
     )
@@ -297,6 +299,13 @@ def _more_variables(story: Story) -> Prose:
 def _shape(story: Story) -> Prose:
     rules = ((ISOTONIC, any_shape(story)), (XI, any_shape(story)), (XI_NULL, any_xi_null(story)))
     return joined(tuple(described(rule) for rule, ran in rules if ran))
+
+
+def _sensitivity(story: Story) -> Prose:
+    printed = {
+        result.interval.method for result in story.analysis.results.values() if isinstance(result.interval, Interval)
+    }
+    return sensitivity_paragraph(story, frozenset(printed))
 
 
 _COEFFICIENTS: Final[dict[CoefficientName, Description]] = {"Spearman rho": RHO, "Kendall tau-b": TAU_B}

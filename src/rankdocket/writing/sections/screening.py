@@ -1,10 +1,10 @@
 """Section 3: each variable alone."""
 
-from rankdocket.document.model import Block, Column, Items, Prose, Section, Supplied, TableBlock
+from rankdocket.document.model import Block, Column, Emphasis, Items, Paragraph, Prose, Section, Supplied, TableBlock
 from rankdocket.document.numbers import look_up
 from rankdocket.document.prose import listed, only, prose
 from rankdocket.study.spec import VariableSpec
-from rankdocket.writing.phrases import EN_DASH_CELL, label_head
+from rankdocket.writing.phrases import EN_DASH_CELL, address, label_head
 from rankdocket.writing.section import SectionRule, Story
 
 _FIVE = ("smallest", "lower_quartile", "median", "upper_quartile", "largest")
@@ -21,7 +21,34 @@ def write(story: Story) -> Section:
     )
     if ordered:
         blocks.append(Items(ordered))
+    suspicious = suspicious_rows(story)
+    if suspicious:
+        blocks += [
+            Paragraph(
+                only(
+                    "Rows that the plan calls suspicious; they stay in the analysis, and the sensitivity tables look at it "
+                    "without them:"
+                )
+            ),
+            Items(suspicious, numbered=True),
+        ]
     return Section("screening", "3", only("Screening"), tuple(blocks))
+
+
+def suspicious_rows(story: Story) -> tuple[Prose, ...]:
+    """Return each row that the plan calls suspicious, once, with its reason."""
+    found: dict[tuple[str, int], Prose] = {}
+    for name, result in story.analysis.results.items():
+        table = story.analysis.spec.variables[result.screened.spec.x].table
+        for position, row in enumerate(result.screened.suspicious):
+            if (table, row.row) not in found:
+                found[table, row.row] = prose(
+                    "Line {line} of {table}: {reason}",
+                    line=story.numbers.label(address(name, "rows", "suspicious_lines", str(position))),
+                    table=Emphasis(table, "code"),
+                    reason=Supplied(row.reason),
+                )
+    return tuple(found.values())
 
 
 def variables_table(story: Story) -> TableBlock:
