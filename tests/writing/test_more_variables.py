@@ -138,7 +138,7 @@ def test_the_methods_text_describes_what_ran_and_nothing_else() -> None:
     assert "two groups of different rows were compared" in text
     assert "no variable in common" not in text
     plain = told(replace(AIR, associations={"A1": association("ozone", "wind")}).analysed())
-    assert "supplementary" not in plain.text()
+    assert "These are supplementary" not in plain.text()
 
 
 def test_the_record_holds_every_cell_from_which_it_can_be_recomputed() -> None:

@@ -144,23 +144,13 @@ class DataForm(Form):
 
 
 class LeaveOutForm(Form):
-    """Rows that the plan leaves out."""
-
-    where: dict[str, Annotated[str, kinds.CellText()]] = Field(
-        description="Column and cell text; a row is left out when all of them agree.",
-        json_schema_extra={"minProperties": 1},
-    )
-    reason: Prose = Field(description="Why these rows are left out; printed.")
-
-
-class SuspiciousForm(Form):
-    """Rows that stay in and are looked at without."""
+    """Rows that the plan leaves out, or calls suspicious."""
 
     where: dict[str, Annotated[str, kinds.CellText()]] = Field(
         description="Column and cell text; a row is meant when all of them agree.",
         json_schema_extra={"minProperties": 1},
     )
-    reason: Prose = Field(description="What is suspicious about these rows; printed.")
+    reason: Prose = Field(description="Why these rows are named; printed.")
 
 
 class RowsForm(Form):
@@ -175,7 +165,7 @@ class RowsForm(Form):
     )
     independent_because: OptionalProse = Field(default=None, description="Why rows are independent; printed.")
     leave_out: tuple[LeaveOutForm, ...] = Field(default=(), description="Rows left out, each with its reason.")
-    suspicious: tuple[SuspiciousForm, ...] = Field(
+    suspicious: tuple[LeaveOutForm, ...] = Field(
         default=(), description="Rows that stay in the analysis and without which it is looked at as well."
     )
 

@@ -2,7 +2,7 @@
 
 from dataclasses import dataclass
 from fractions import Fraction
-from typing import Literal, TypeAlias
+from typing import Final, Literal, TypeAlias
 
 from rankdocket.stats.coefficient import Coefficient
 from rankdocket.stats.interval import Interval
@@ -16,6 +16,10 @@ Standing: TypeAlias = Literal["sensitivity", "supplementary"]
 
 Change: TypeAlias = Literal["yes", "no", "no finding", "not applicable"]
 """Whether the finding would be another one: no finding is stated for the association, or the row decides none."""
+
+
+SHARE: Final = 5
+"""A set of rows that is more than one in so many is not called small."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -141,6 +145,12 @@ class TableRow:
     search: Search | None = None
 
 
+def _are_few(lines: tuple[int, ...], left: Coefficient | ProductMoment | None) -> bool:
+    """Return whether a set of rows is few enough for a caveat; ``left`` is the coefficient of those that remain."""
+    remain = left.n if isinstance(left, Coefficient) else 0
+    return 1 < len(lines) <= EXHAUSTIVE_ROWS and SHARE * len(lines) <= remain + len(lines)
+
+
 @dataclass(frozen=True, slots=True)
 class SensitivityTable:
     """The table of one association; ``finding`` is the one that its rows are held against, if any is stated."""
@@ -153,14 +163,15 @@ class SensitivityTable:
         """The sensitivity rows that would change the finding and are worth a caveat.
 
         Every finding hangs on some set of rows; a set counts while it is so small that all sets of its size could
-        have been tried, and one of a single row is counted where each row was left out in turn.
+        have been tried, and no more than a fifth of the rows; one of a single row is counted where each row was left
+        out in turn.
         """
         return tuple(
             row
             for row in self.rows
             if row.standing == "sensitivity"
             and row.verdict.change == "yes"
-            and (row.search is None or row.rows is None or 1 < len(row.rows.lines) <= EXHAUSTIVE_ROWS)
+            and (row.search is None or row.rows is None or _are_few(row.rows.lines, row.value))
         )
 
 

@@ -11,7 +11,7 @@ from rankdocket.analysis.sensitivity.cheap import cheap_p, coefficient_of
 from rankdocket.analysis.sensitivity.row_rule import RowRule
 from rankdocket.analysis.sensitivity.single_rows import changing_rows, threshold_for, without_each
 from rankdocket.analysis.sensitivity.subject import NO_FINDING, Subject, ties_without
-from rankdocket.analysis.sensitivity.table import Lines, Search, TableRow, Verdict
+from rankdocket.analysis.sensitivity.table import SHARE, Lines, Search, TableRow, Verdict
 from rankdocket.analysis.sensitivity.threshold import Threshold
 from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.stats.ranks import Codes
@@ -22,7 +22,6 @@ from rankdocket.vocabulary import FindingWord
 KEY: Final = "removal"
 LABEL: Final = "the smallest set of rows found whose removal changes the finding"
 
-SHARE: Final = 5
 MOST: Final = 40
 ROWS_AND_STEPS: Final = 20_000
 """Rows removed together at most: a fifth, forty, and fewer where there are very many; three are always looked for."""
