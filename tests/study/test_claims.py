@@ -5,7 +5,7 @@ import pytest
 import yaml
 
 from rankdocket.canonical import digest_of
-from rankdocket.study.form import json_schema
+from rankdocket.study.json_schema import json_schema
 from rankdocket.study.plan import plan_of
 from rankdocket.study.reader import read_spec
 from rankdocket.study.spec import HypothesisSpec
