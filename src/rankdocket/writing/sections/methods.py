@@ -7,7 +7,7 @@ from rankdocket.analysis.checks import CHECKS
 from rankdocket.analysis.coverage import coverage_of
 from rankdocket.analysis.intervals import AFTER_SELECTION, SIMULTANEOUS
 from rankdocket.analysis.results import Estimate, RankTest
-from rankdocket.document.model import Block, Link, Number, Paragraph, Prose, Section
+from rankdocket.document.model import Link, Number, Paragraph, Prose, Section
 from rankdocket.document.prose import joined, only, prose, text_of
 from rankdocket.references import Description
 from rankdocket.stats.chatterjee import XI, XI_NULL
@@ -35,52 +35,50 @@ from rankdocket.writing.size_methods import could_show_methods, size_methods
 
 
 def write(story: Story) -> Section:
-    """Return the methods text; a rule that did not run is not described."""
-    blocks: list[Block] = [Paragraph(text) for text in method_paragraphs(story)]
+    """Return the methods text under its headings; a rule that did not run is not described."""
+    parts = [
+        (key, title, tuple(Paragraph(text) for text in paragraphs)) for key, title, paragraphs in method_parts(story)
+    ]
+    parts.append(("deviations", only("Deviations from the plan"), (Paragraph(_DEVIATIONS),)))
     return Section(
         "methods",
         "4",
         only("Methods"),
-        tuple(blocks),
+        (),
+        tuple(Section(key, f"4.{place}", title, blocks) for place, (key, title, blocks) in enumerate(parts, start=1)),
+    )
+
+
+def method_parts(story: Story) -> tuple[tuple[str, Prose, tuple[Prose, ...]], ...]:
+    """Return key, heading and paragraphs of each part of the methods text, in the order in which the work was done."""
+    parts = (
+        ("methods-rows", only("Rows and requirements"), (_ranking(story), _checks(story))),
+        ("methods-tests", only("Coefficients and tests"), (_coefficients(story), _nulls(story), _sides(story))),
+        ("methods-findings", only("Findings and tests of size"), (_family(story), size_methods(story))),
         (
-            Section(
-                "deviations",
-                "4.1",
-                only("Deviations from the plan"),
-                (
-                    Paragraph(
-                        only(
-                            "The plan printed in the appendix is the one that was run. Whether it was fixed before the data "
-                            "were seen is not recorded: no plan was locked."
-                        )
-                    ),
-                ),
-            ),
+            "methods-intervals",
+            only("Intervals, and what the rows could show"),
+            (_intervals(story), could_show_methods(story)),
+        ),
+        (
+            "methods-beside",
+            only("Beside the findings"),
+            (_comparisons(story), _more_variables(story), _shape(story), _sensitivity(story)),
         ),
     )
+    written = ((key, title, tuple(part for part in paragraphs if text_of(part))) for key, title, paragraphs in parts)
+    return tuple((key, title, paragraphs) for key, title, paragraphs in written if paragraphs)
 
 
 def method_paragraphs(story: Story) -> tuple[Prose, ...]:
-    """Return the paragraphs of the methods text in the order in which the work was done."""
-    return tuple(
-        part
-        for part in (
-            _ranking(story),
-            _checks(story),
-            _coefficients(story),
-            _nulls(story),
-            _sides(story),
-            _family(story),
-            size_methods(story),
-            _intervals(story),
-            could_show_methods(story),
-            _comparisons(story),
-            _more_variables(story),
-            _shape(story),
-            _sensitivity(story),
-        )
-        if text_of(part)
-    )
+    """Return the paragraphs of the methods text without their headings."""
+    return tuple(paragraph for _, _, paragraphs in method_parts(story) for paragraph in paragraphs)
+
+
+_DEVIATIONS: Final = only(
+    "The plan printed in the appendix is the one that was run. Whether it was fixed before the data were seen is not "
+    "recorded: no plan was locked."
+)
 
 
 def _ranking(story: Story) -> Prose:
