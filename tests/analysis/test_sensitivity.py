@@ -274,6 +274,14 @@ def test_coefficients_adjusted_together_leave_no_verdict_on_a_p() -> None:
     assert {found.verdict.change for found in rows} == {"not applicable"}
 
 
+def test_a_claim_of_a_size_leaves_no_verdict_on_a_p_of_independence() -> None:
+    """Another test decides it; the figures stand all the same."""
+    claimed = {"A1": association(more="smallest_of_interest: 0.2, claim: above")}
+    rows = table(replace(CLEAR, associations=claimed).analysed()).rows
+    assert {found.verdict.change for found in rows} == {"not applicable"}
+    assert next(found for found in rows if found.key == "studentised").p is not None
+
+
 def test_dependent_rows_leave_no_table() -> None:
     """The reason says that no row of it would repair that."""
     found = replace(CLEAR, rows="repeated_within: u, time_order: not applicable").analysed().sensitivity["A1"]

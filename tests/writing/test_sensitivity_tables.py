@@ -50,13 +50,10 @@ def test_a_change_is_a_caveat_and_a_clause_of_the_summary() -> None:
     (sentence, *_) = report.caveats()["would_change"]
     assert sentence.startswith("A1: the finding would be another one ")
     assert "Table 6.1" in sentence
-    clause = next(
-        text_of(content)
-        for block in report.section("summary").blocks
-        for label, content in getattr(block, "rows", ())
-        if label == "Other methods"
-    )
-    assert clause.startswith(f"by {len(changing)} of the ")
+    notes = [text_of(block.prose) for block in report.section("summary").blocks if hasattr(block, "prose")]
+    (note,) = [text for text in notes if text.startswith("By sensitivity rows the finding would change")]
+    assert f"A1 by {len(changing)} of " in note
+    assert note.endswith("(Table 6.1).")
 
 
 def test_suspicious_rows_are_listed_as_such() -> None:

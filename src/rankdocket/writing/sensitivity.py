@@ -5,7 +5,7 @@ from typing import Final
 from rankdocket.analysis.sensitivity.table import NoTable, SensitivityTable, TableRow
 from rankdocket.document.model import Block, Column, Link, Paragraph, Prose, Supplied, TableBlock
 from rankdocket.document.prose import joined, listed, only, prose, text_of
-from rankdocket.writing.phrases import EN_DASH_CELL, P, address, capitalised, p_equals
+from rankdocket.writing.phrases import EN_DASH_CELL, P, address, capitalised, p_equals, pointer
 from rankdocket.writing.section import Story
 
 CAPTION: Final = "{name}: would another method, or other rows, have said otherwise?"
@@ -46,20 +46,27 @@ def sensitivity_blocks(story: Story, name: str) -> tuple[Block, ...]:
     return ()
 
 
-def sensitivity_clause(story: Story, name: str) -> Prose | None:
-    """Return how many rows would change the finding, for the summary; ``None`` where no finding is stated."""
-    table = table_of(story, name)
-    if table is None or table.finding is None:
+def sensitivity_note(story: Story, names: tuple[str, ...]) -> Prose | None:
+    """Return by how many rows the findings would change, for the summary; ``None`` where none is stated."""
+    clauses = tuple(
+        _clause(story, name, table)
+        for name in names
+        if (table := table_of(story, name)) is not None and table.finding is not None
+    )
+    if not clauses:
         return None
+    return prose("By sensitivity rows the finding would change: {clauses}.", clauses=joined(clauses, "; "))
+
+
+def _clause(story: Story, name: str, table: SensitivityTable) -> Prose:
     at = address(name, "sensitivity", "tally")
-    asked, link = story.numbers.whole(f"{at}/asked"), table_link(story, name)
-    if not table.changing:
-        return prose("none of the {asked} sensitivity rows of {link} changes the finding", asked=asked, link=link)
+    changing = story.numbers.whole(f"{at}/changing") if table.changing else "none"
     return prose(
-        "by {changing} of the {asked} sensitivity rows of {link} the finding would change",
-        changing=story.numbers.whole(f"{at}/changing"),
-        asked=asked,
-        link=link,
+        "{name} by {changing} of {asked} ({table})",
+        name=pointer(name),
+        changing=changing,
+        asked=story.numbers.whole(f"{at}/asked"),
+        table=table_link(story, name),
     )
 
 

@@ -22,7 +22,7 @@ from rankdocket.writing.phrases import (
 )
 from rankdocket.writing.section import NumberedCaveat, Story
 from rankdocket.writing.sections.changes import moved_findings
-from rankdocket.writing.sensitivity import sensitivity_clause
+from rankdocket.writing.sensitivity import sensitivity_note
 from rankdocket.writing.size import tests_of, verdict_sentence
 
 MOST_ASSOCIATIONS: Final = 3
@@ -43,6 +43,9 @@ def summary(story: Story) -> Section:
     several = intervals_hold(story) if len(given(story)) > 1 else only("")
     if more or text_of(several):
         blocks.append(Paragraph(sentences(_others(story, more), several), "note"))
+    note = sensitivity_note(story, shown)
+    if note is not None:
+        blocks.append(Paragraph(note, "note"))
     heaviest = _heaviest(story, shown)
     blocks.append(
         Paragraph(
@@ -133,9 +136,6 @@ def _answer(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
         )
         if tests_of(story, name) is not None:
             rows.append(("Size", verdict_sentence(story, name)))
-        clause = sensitivity_clause(story, name)
-        if clause is not None:
-            rows.append(("Other methods", clause))
     else:
         rows.append(("Answer", prose("{state}.", state=state_word(result).capitalize())))
         rows.append(("Finding", only(finding_word(story.analysis.findings[name]))))
