@@ -8,7 +8,7 @@ from analysis.invented import FALLING, MIXED, RISING, Invented, association, dem
 from rankdocket.analysis.plain import analysis_to_plain
 from rankdocket.analysis.results import Analysis
 from rankdocket.canonical import Plain, readable_bytes, sha256
-from rankdocket.document.model import Block, Document, Section, TableBlock
+from rankdocket.document.model import Block, Document, Paragraph, Section, TableBlock
 from rankdocket.document.prose import all_prose, text_of
 from rankdocket.study.writer import spec_as_used
 from rankdocket.writing.caveats import CAVEATS
@@ -36,6 +36,11 @@ class Told:
     def section(self, key: str) -> Section:
         """Return a section, wherever it stands."""
         return next(section for section in sections_of(self.document) if section.key == key)
+
+    def methods(self) -> list[str]:
+        """Return the words of each paragraph below the heading of the methods."""
+        parts = self.section("methods").sections
+        return [text_of(block.prose) for part in parts for block in part.blocks if isinstance(block, Paragraph)]
 
     def block(self, key: str) -> Block:
         """Return the block with a key."""

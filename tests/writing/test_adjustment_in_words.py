@@ -87,9 +87,7 @@ def test_the_condition_of_a_rule_is_a_caveat(adjust: str, words: tuple[str, ...]
 def test_the_permutations_of_a_family_are_told_with_their_error() -> None:
     """How many there were, how many reached the observed coefficient, from which seed, and between which ends."""
     report = of("step-down maxT")
-    methods = " ".join(
-        text_of(block.prose) for block in report.section("methods").blocks if isinstance(block, Paragraph)
-    )
+    methods = " ".join(report.methods())
     assert "the ranks of value of u were put in random order 999 times, from seed 7" in methods
     assert "(subset pivotality)" in methods
     rows = numbers_of_spread(report, "A1")

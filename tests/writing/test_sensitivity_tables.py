@@ -69,12 +69,7 @@ def test_suspicious_rows_are_listed_as_such() -> None:
 
 def test_methods_describe_what_ran_and_cite_it() -> None:
     """The permutation tests, the row left out, the sets, and the other intervals."""
-    methods = [
-        text_of(block.prose)
-        for block in demonstration_report("weld-smoke").section("methods").blocks
-        if hasattr(block, "prose")
-    ]
-    (said,) = [text for text in methods if text.startswith("What other methods")]
+    (said,) = [text for text in demonstration_report("weld-smoke").methods() if text.startswith("What other methods")]
     for words in ("Pitman 1937", "Yu & Hutson 2024", "Walsh et al. 2014", "Efron 1987", "Devlin et al. 1975"):
         assert words in said
 

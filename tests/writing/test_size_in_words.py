@@ -155,7 +155,7 @@ def test_the_tables_say_which_p_was_adjusted() -> None:
 def test_the_methods_describe_the_tests_that_ran_and_no_others() -> None:
     """With their factors and works; nothing of them where the plan does not ask."""
     with_size, with_value, without = (
-        plainly("\n".join(text_of(block.prose) for block in report.section("methods").blocks))  # type: ignore[union-attr]
+        plainly("\n".join(report.methods()))
         for report in (
             of(NEAR, "smallest_of_interest: 0.30, claim: above"),
             of(NEAR, "null_value: 0.2"),
