@@ -91,7 +91,8 @@ SPEAKS: dict[str, Invented] = {
         associations={"A1": association(more="smallest_of_interest: 0.9")},
         inference="alpha: 0.05, interval: {by: Bonett-Wright}",
     ),
-    "size_basis": replace(QUIET, associations={"A1": association(more="null_value: 0.2")}),
+    "size_finding": replace(QUIET, associations={"A1": association(more="null_value: 0.2")}),
+    "size_basis": replace(QUIET, associations={"A1": association(more="smallest_of_interest: 0.3")}),
     "low_coverage": replace(
         QUIET,
         columns=THREE_LEVELS,

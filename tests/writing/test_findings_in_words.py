@@ -130,7 +130,7 @@ SENTENCES = {
         of_three(),
         (
             "By the rule of the plan the expected positive association was not shown: the adjusted p = 0.052 lay above "
-            "alpha, 0.05, which bounds the chance of any false finding. The interval of this association alone holds values of rho from 0.12 to 0.95; it is not adjusted "
+            "alpha, 0.05. The interval of this association alone holds values of rho from 0.12 to 0.95; it is not adjusted "
             "for the number of tests, and the test decides."
         ),
     ),
@@ -138,7 +138,7 @@ SENTENCES = {
         of_three(inference=SIMULTANEOUS),
         (
             "By the rule of the plan the expected positive association was not shown: the adjusted p = 0.052 lay above "
-            "alpha, 0.05, which bounds the chance of any false finding. That does not show that there is none: the interval "
+            "alpha, 0.05. That does not show that there is none: the interval "
             "still holds values of rho from −0.06 to 0.96."
         ),
     ),
@@ -259,8 +259,8 @@ def test_the_answer_of_a_spread_is_one_run_of_sentences() -> None:
     """Direction in these rows, the finding, the size: in this order, without a word on how large it is (golden)."""
     assert plainly(spread(study_of_every_finding(), "A3")[1]) == (
         "In these rows the ranks of value of u and value of mixed leaned the same way: rho 0.51 (95% interval −0.13 to "
-        "0.85). By the rule of the plan an association was not shown: the adjusted p = 0.281 lay above alpha, 0.05, which "
-        "bounds the chance of any false finding. That does not show that there is none: the interval still holds values of rho from −0.13 to 0.85. The interval holds "
+        "0.85). By the rule of the plan an association was not shown: the adjusted p = 0.281 lay above alpha, 0.05."
+        " That does not show that there is none: the interval still holds values of rho from −0.13 to 0.85. The interval holds "
         "values of rho both smaller and larger in size than the smallest size of interest, 0.30. Verdict about size, by "
         "approximate tests at level 0.05 over 5 members of the family: undecided."
     )

@@ -8,7 +8,6 @@ from rankdocket.document.prose import only, prose
 from rankdocket.stats.interval import Interval
 from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.vocabulary import ExpectedSign
-from rankdocket.writing.adjustment import bounded
 from rankdocket.writing.phrases import address, coefficient_symbol, interval_values, p_equals
 from rankdocket.writing.section import Story
 from rankdocket.writing.size import OPEN, by_of, claimed, claimed_opposite
@@ -116,11 +115,9 @@ def _what(story: Story, name: str, expected: ExpectedSign) -> Prose:
 
 
 def _rule(story: Story, finding: Finding) -> str:
-    """Return which p lay on which side of alpha, and what alpha bounds where it bounds more than one test."""
-    if finding.basis != "family" or story.analysis.spec.inference.several_tests.adjust == "none":
-        return "{p} lay {side} alpha, {alpha}"
-    what = bounded(story)
-    return "the adjusted {p} lay {side} alpha, {alpha}" + ("" if what is None else f", which bounds {what}")
+    """Return which p lay on which side of alpha."""
+    adjusted = finding.basis == "family" and story.analysis.spec.inference.several_tests.adjust != "none"
+    return ("the adjusted " if adjusted else "") + "{p} lay {side} alpha, {alpha}"
 
 
 def _still_open(story: Story, name: str) -> Prose:

@@ -30,6 +30,7 @@ CAVEATS: Final[tuple[CaveatRule, ...]] = (
     results.TWO_SIDED_RULE,
     results.TEST_AND_INTERVAL,
     size.EQUIVALENCE_AND_INTERVAL,
+    size.SIZE_FINDING,
     sensitivity.WOULD_CHANGE,
     coverage.LOW_COVERAGE,
     shape.HIDDEN_SHAPE,

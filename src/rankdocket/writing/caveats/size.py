@@ -1,7 +1,8 @@
 """Caveats about tests of size: what they rest on, and where test and interval of equivalence part."""
 
 from rankdocket.analysis.size_results import SizeAnalysis
-from rankdocket.document.prose import prose
+from rankdocket.document.model import Prose
+from rankdocket.document.prose import only, prose
 from rankdocket.stats.equivalence import is_within
 from rankdocket.stats.interval import Interval
 from rankdocket.writing.caveat import CaveatRule, FoundCaveat
@@ -12,26 +13,31 @@ from rankdocket.writing.size import by_of, size_of_interest, tests_of
 
 
 def _rests_on(story: Story) -> tuple[FoundCaveat, ...]:
-    names = tuple(name for name, result in story.analysis.results.items() if isinstance(result.size, SizeAnalysis))
+    names = tuple(name for name in _asked_about_size(story) if by_of(story, name) != "rank test")
     if not names:
         return ()
-    decided = tuple(name for name in names if by_of(story, name) != "rank test")
-    finding = (
-        prose(" The finding of {names} rests on such a test.", names=pointers(decided))
-        if decided
-        else prose(" No finding rests on them alone.")
-    )
-    return (
-        FoundCaveat(
-            decided,
-            prose(
-                "Tests of a null value and of size are approximate: they take a variance that holds near normal-type "
-                "dependence {cite} and count no orderings.{finding} A verdict about size is taken at alpha shared equally "
-                "among the members of an adjusted family, which errs on the safe side.",
-                cite=cite("bonett2000"),
-                finding=finding,
-            ),
-        ),
+    finding = prose(" The finding of {names} rests on such a test.", names=pointers(names))
+    return (FoundCaveat(names, _basis(finding)),)
+
+
+def _stands_beside(story: Story) -> tuple[FoundCaveat, ...]:
+    names = _asked_about_size(story)
+    if not names or any(by_of(story, name) != "rank test" for name in names):
+        return ()
+    return (FoundCaveat((), _basis(only(" No finding rests on them alone."))),)
+
+
+def _asked_about_size(story: Story) -> tuple[str, ...]:
+    return tuple(name for name, result in story.analysis.results.items() if isinstance(result.size, SizeAnalysis))
+
+
+def _basis(finding: Prose) -> Prose:
+    return prose(
+        "Tests of a null value and of size are approximate: they take a variance that holds near normal-type dependence "
+        "{cite} and count no orderings.{finding} A verdict about size is taken at alpha shared equally among the members of "
+        "an adjusted family, which errs on the safe side.",
+        cite=cite("bonett2000"),
+        finding=finding,
     )
 
 
@@ -66,5 +72,6 @@ def _parted(story: Story) -> tuple[FoundCaveat, ...]:
     return tuple(found)
 
 
-SIZE_BASIS = CaveatRule("size_basis", 65, _rests_on)
+SIZE_FINDING = CaveatRule("size_finding", 65, _rests_on)
+SIZE_BASIS = CaveatRule("size_basis", 31, _stands_beside)
 EQUIVALENCE_AND_INTERVAL = CaveatRule("equivalence_and_interval", 68, _parted)
