@@ -6,6 +6,7 @@ import sys
 from pathlib import Path
 
 import pytest
+from pypdf import PdfReader
 
 from rankdocket.register import chain, manifest
 from rankdocket.workflow.verify import verify
@@ -21,6 +22,15 @@ def test_a_committed_edition_agrees(name: str, tmp_path: Path) -> None:
     found = verify(str(study))
     assert found.problems == ()
     assert found.edition == "1"
+
+
+@pytest.mark.parametrize("name", ["gasket-creep", "weld-smoke"])
+def test_the_summary_of_a_committed_edition_is_page_2_and_no_more(name: str) -> None:
+    """It begins there and its last line, about changes, stands there too."""
+    pages = [page.extract_text() for page in PdfReader(STUDIES / name / "editions" / "1" / "report.pdf").pages]
+    (begins,) = [place for place, text in enumerate(pages, start=1) if "Question. Do " in text]
+    assert begins == 2
+    assert "Changes: nothing was issued before." in pages[1]
 
 
 @pytest.mark.parametrize("name", ["gasket-creep", "weld-smoke"])

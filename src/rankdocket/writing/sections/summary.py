@@ -1,5 +1,6 @@
 """Page 2: question, answer, main number, caveats, in words for somebody with three minutes."""
 
+from math import ceil
 from typing import Final
 
 from rankdocket.analysis.results import Estimate
@@ -26,15 +27,30 @@ from rankdocket.writing.sensitivity import sensitivity_note
 from rankdocket.writing.size import tests_of, verdict_sentence
 
 MOST_ASSOCIATIONS: Final = 3
-"""So many associations fit on one page; the rest is pointed to."""
+"""So many associations are told of at most; the rest is pointed to."""
 
 MOST_CAVEATS: Final = 3
 
+MOST_LINES: Final = 42
+"""Lines of text that a page takes beside its heading, by the count of :func:`_lines`; a page of print is the judge."""
+
+CHARACTERS: Final = {"body": 70, "note": 82, "item": 66, "field": 60}
+"""Of one line of a paragraph, a note, an entry of a list and an answer, on the safe side."""
+
 
 def summary(story: Story) -> Section:
-    """Return the one-page summary: primary associations first."""
+    """Return the one-page summary: primary associations first, as many as the page has room for."""
     names = _in_order(story)
-    shown, more = names[:MOST_ASSOCIATIONS], names[MOST_ASSOCIATIONS:]
+    shown = min(MOST_ASSOCIATIONS, len(names))
+    blocks = _blocks(story, names, shown)
+    while shown > 1 and sum(map(_lines, blocks)) > MOST_LINES:
+        shown -= 1
+        blocks = _blocks(story, names, shown)
+    return Section("summary", "", only("Summary"), blocks, opens="page")
+
+
+def _blocks(story: Story, names: tuple[str, ...], number: int) -> tuple[Block, ...]:
+    shown, more = names[:number], names[number:]
     blocks: list[Block] = [
         Paragraph(prose("Question. {question}", question=Supplied(story.analysis.spec.study.question))),
         Paragraph(_tally(story)),
@@ -46,15 +62,31 @@ def summary(story: Story) -> Section:
     note = sensitivity_note(story, shown)
     if note is not None:
         blocks.append(Paragraph(note, "note"))
-    heaviest = _heaviest(story, shown)
     blocks.append(
         Paragraph(
             prose("To be read with the result (all caveats: section {section}):", section=Link("requirements", "5"))
         )
     )
-    blocks.append(Items(tuple(caveat.block.prose for caveat in heaviest)))
+    blocks.append(Items(tuple(caveat.block.prose for caveat in _heaviest(story, shown))))
     blocks.append(Paragraph(_changes(story), "note"))
-    return Section("summary", "", only("Summary"), tuple(blocks), opens="page")
+    return tuple(blocks)
+
+
+def _lines(block: Block) -> int:
+    """Return how many lines of the page a block of the summary takes, about; a list of fields has one of space."""
+    match block:
+        case Paragraph():
+            return _of(block.prose, "note" if block.role == "note" else "body")
+        case Items():
+            return sum(_of(item, "item") for item in block.items)
+        case FieldList():
+            return 1 + sum(_of(content, "field") for _, content in block.rows)
+        case _:
+            raise TypeError(f"a summary has no {type(block).__name__}")
+
+
+def _of(words: Prose, kind: str) -> int:
+    return ceil(len(text_of(words)) / CHARACTERS[kind])
 
 
 def _others(story: Story, more: tuple[str, ...]) -> Prose:
