@@ -110,6 +110,7 @@ def test_the_other_associations_are_named_with_their_findings() -> None:
         if isinstance(block, Paragraph) and text_of(block.prose).startswith("The others: ")
     ]
     assert {piece.target for piece in note.pieces if isinstance(piece, Link)} == {
+        "association-A5",
         "association-A3",
         "association-A4",
         "association-A6",
