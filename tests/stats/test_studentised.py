@@ -12,7 +12,7 @@ from rankdocket.stats.influence import influence_variance, is_perfect, rho_influ
 from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.stats.ranks import Codes
 from rankdocket.stats.rho import rho
-from rankdocket.stats.studentised import StudentisedTest, studentised_test
+from rankdocket.stats.studentised import StudentisedTest, studentised_of_all_orders, studentised_test
 from rankdocket.vocabulary import Direction
 
 DIRECTIONS: tuple[Direction, ...] = ("greater", "less", "two-sided")
@@ -72,6 +72,12 @@ def test_drawn_p_values_are_near_those_of_all_orders(x: tuple[int, ...], y: tupl
         assert float(found.tails.p(direction)) == pytest.approx(
             share, abs=5 * sqrt(share * (1 - share) / 20_000) + 1e-4
         )
+    counted = studentised_of_all_orders(x_codes, y_codes)
+    assert isinstance(counted, StudentisedTest)
+    assert counted.statistic == found.statistic
+    assert {way: counted.tails.p(way) for way in DIRECTIONS} == {
+        way: Fraction(round(720 * shares[way]), 720) for way in DIRECTIONS
+    }
 
 
 def test_the_data_count_as_one_more_permutation() -> None:
@@ -127,6 +133,10 @@ def test_where_there_is_no_test_there_is_a_reason() -> None:
     generator = np.random.default_rng(0)
     level, three = np.zeros(6, dtype=np.int64), np.arange(3)
     assert studentised_test(np.arange(6), level, draws=9, generator=generator) == NoAnswer("a variable does not vary")
+    assert studentised_of_all_orders(np.arange(9), np.arange(9)) == NoAnswer(
+        "there are too many rows to go through all orders"
+    )
+    assert studentised_of_all_orders(np.arange(6), level) == NoAnswer("a variable does not vary")
     assert studentised_test(three, three, draws=9, generator=generator) == NoAnswer(
         "the test needs four or more complete rows"
     )

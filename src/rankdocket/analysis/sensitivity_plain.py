@@ -7,8 +7,8 @@ from rankdocket.analysis.results import Analysis
 from rankdocket.analysis.sensitivity.cheap import DRAWS, RESAMPLES
 from rankdocket.analysis.sensitivity.table import NoTable, SensitivityTable, TableRow
 from rankdocket.canonical import Plain
+from rankdocket.stats.all_orders import MOST_ENUMERATED
 from rankdocket.stats.coefficient import Coefficient
-from rankdocket.stats.product_moment import MOST_ENUMERATED
 from rankdocket.stats.removals import EXHAUSTIVE_N, EXHAUSTIVE_ROWS
 
 

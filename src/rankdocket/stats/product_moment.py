@@ -4,7 +4,6 @@ from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from decimal import Decimal
 from fractions import Fraction
-from itertools import permutations
 from math import factorial, gcd, lcm
 from typing import Final
 
@@ -12,11 +11,12 @@ import numpy as np
 import numpy.typing as npt
 
 from rankdocket.references import Description
+from rankdocket.stats.all_orders import MOST_ENUMERATED, all_orders, enumerated_method
 from rankdocket.stats.coefficient import FILED_DIGITS, root_ratio_text
 from rankdocket.stats.exact_values import equally_long
 from rankdocket.stats.matrix_product import product
 from rankdocket.stats.no_answer import NoAnswer
-from rankdocket.stats.null import NullMethod, TailCounts
+from rankdocket.stats.null import TailCounts
 from rankdocket.stats.nulls.monte_carlo import DrawingPlan, drawn_orders
 from rankdocket.stats.ranks import Codes, dense_codes
 
@@ -28,9 +28,6 @@ PRODUCT_MOMENT: Final = Description(
     "compared as integers.",
     ("pitman1937", "phipson2010"),
 )
-
-MOST_ENUMERATED: Final = 8
-"""Rows up to which all orders are gone through: 40 320 of them."""
 
 ROUNDING: Final = 2.0**-52
 """Twice the largest relative error of one rounding."""
@@ -91,9 +88,8 @@ def product_moment_tails(observed: ProductMoment, drawing: DrawingPlan | NoAnswe
     """
     n = len(observed.x)
     if n <= MOST_ENUMERATED:
-        orders = np.array(list(permutations(range(n))), dtype=np.int64)
         ties = min(len(set(observed.x)), len(set(observed.y))) < n
-        return _counted(observed, iter((orders,)), factorial(n), ties=ties)
+        return _counted(observed, iter((all_orders(n),)), factorial(n), ties=ties)
     if isinstance(drawing, NoAnswer):
         return drawing
     drawn = (keys.astype(np.int64) for keys in drawn_orders(np.arange(n, dtype=np.int64), drawing.generator))
@@ -124,8 +120,7 @@ def _counted(observed: ProductMoment, blocks: Iterator[Codes], number: int, *, t
         missing -= len(orders[:missing])
         if missing == 0:
             break
-    method: NullMethod = "exact, conditional on the ties" if ties else "exact, no ties"
-    return TailCounts(method, greater, less, two_sided, number)
+    return TailCounts(enumerated_method(has_ties=ties), greater, less, two_sided, number)
 
 
 @dataclass(frozen=True, slots=True, eq=False)

@@ -16,9 +16,10 @@ import numpy.typing as npt
 
 from rankdocket.errors import ComputeError
 from rankdocket.references import Description
+from rankdocket.stats.all_orders import MOST_ENUMERATED, all_orders, enumerated_method
 from rankdocket.stats.joint_counts import Standing, standing
 from rankdocket.stats.no_answer import NoAnswer
-from rankdocket.stats.null import TailCounts
+from rankdocket.stats.null import NullMethod, TailCounts
 from rankdocket.stats.nulls.monte_carlo import drawn_orders
 from rankdocket.stats.ranks import SAFE_SUM, Codes, exact_dot
 from rankdocket.stats.rho import rho
@@ -27,9 +28,9 @@ Floats = npt.NDArray[np.float64]
 
 STUDENTISED: Final = Description(
     "Whether rho is zero, the variables being free to depend on each other in other ways, was tested by permutations of "
-    "rho on the inverse hyperbolic tangent scale over its standard error from influence values; {draws} permutations "
-    "were drawn from seed {seed}, the data themselves counted as one more. The test is exact under independence of the rows "
-    "and holds approximately when only rho is zero.",
+    "rho on the inverse hyperbolic tangent scale over its standard error from influence values; to {enumerated} rows all "
+    "permutations were gone through, above {draws} were drawn from the seed of the plan, the data themselves counted as one "
+    "more. The test is exact under independence of the rows and holds approximately when only rho is zero.",
     ("diciccio2017", "yu2024", "croux2010", "phipson2010"),
 )
 
@@ -52,7 +53,8 @@ class StudentisedTest:
     standard_error
         √(Σψ²)/n of the influence values, on the scale of rho.
     tails
-        Drawn permutations with a statistic at least as large, as small, as far from 0; p is (b + 1)/(B + 1).
+        Permutations, all or drawn, with a statistic at least as large, as small, as far from 0; drawn, p is
+        (b + 1)/(B + 1).
     """
 
     statistic: float | None
@@ -83,11 +85,38 @@ def studentised_test(
     """
     if draws < 1:
         raise ValueError(f"at least one permutation must be drawn, not {draws}")
+    obstacle = _obstacle(x_codes, y_codes)
+    if obstacle is not None:
+        return obstacle
+    return _against(x_codes, y_codes, "drawn permutations", _blocks(len(x_codes), draws, generator))
+
+
+def studentised_of_all_orders(x_codes: Codes, y_codes: Codes) -> StudentisedTest | NoAnswer:
+    """Return the studentised test against every permutation, for up to MOST_ENUMERATED rows, or why there is none.
+
+    Two statistics that lie nearer to each other than SAME count as equal; the tails are exact but for that.
+    """
+    n = len(x_codes)
+    if n > MOST_ENUMERATED:
+        return NoAnswer("there are too many rows to go through all orders")
+    obstacle = _obstacle(x_codes, y_codes)
+    if obstacle is not None:
+        return obstacle
+    has_ties = min(len(np.unique(codes)) for codes in (x_codes, y_codes)) < n
+    return _against(x_codes, y_codes, enumerated_method(has_ties=has_ties), iter((all_orders(n),)))
+
+
+def _obstacle(x_codes: Codes, y_codes: Codes) -> NoAnswer | None:
     if not rho(x_codes, y_codes).is_defined:
         return NoAnswer("a variable does not vary")
     if len(x_codes) < FEWEST_ROWS:
         return NoAnswer("the test needs four or more complete rows")
-    # Sorted by both, so that the draws meet the same pairs whatever order the rows of the file have.
+    return None
+
+
+def _against(x_codes: Codes, y_codes: Codes, method: NullMethod, blocks: Iterator[Codes]) -> StudentisedTest:
+    """Return the test against the orders of y in ``blocks``."""
+    # Sorted by both, so that the orders meet the same pairs whatever order the rows of the file have.
     order = np.lexsort((y_codes, x_codes))
     fixed = _Fixed.of(x_codes[order], np.sort(y_codes))
     place = np.empty(len(order), dtype=np.int64)
@@ -95,13 +124,14 @@ def studentised_test(
     observed, errors = fixed.statistics(place[np.newaxis, :])
     statistic, error = float(observed[0]), float(errors[0])
     near = abs(statistic) * (1 - SAME)
-    greater = less = two_sided = 0
-    for rows in _blocks(len(order), draws, generator):
-        drawn, _ = fixed.statistics(rows)
-        greater += int(np.count_nonzero(drawn >= (near if statistic > 0 else statistic * (1 + SAME))))
-        less += int(np.count_nonzero(drawn <= (-near if statistic < 0 else statistic * (1 + SAME))))
-        two_sided += int(np.count_nonzero(np.abs(drawn) >= near))
-    tails = TailCounts("drawn permutations", greater, less, two_sided, draws)
+    greater = less = two_sided = of = 0
+    for rows in blocks:
+        found, _ = fixed.statistics(rows)
+        greater += int(np.count_nonzero(found >= (near if statistic > 0 else statistic * (1 + SAME))))
+        less += int(np.count_nonzero(found <= (-near if statistic < 0 else statistic * (1 + SAME))))
+        two_sided += int(np.count_nonzero(np.abs(found) >= near))
+        of += len(rows)
+    tails = TailCounts(method, greater, less, two_sided, of)
     return StudentisedTest(None if np.isinf(statistic) else statistic, error, tails)
 
 

@@ -61,16 +61,13 @@ def sensitivity_paragraph(story: Story, printed: frozenset[str]) -> Prose:
 def _descriptions(story: Story, rows: list[TableRow]) -> list[tuple[Description, dict[str, Number]]]:
     numbers = story.numbers
     found: list[tuple[Description, dict[str, Number]]] = []
-    if any(row.kind == "product-moment" and row.p is not None for row in rows):
-        slots = {
-            "enumerated": numbers.whole("sensitivity/enumerated_rows"),
-            "draws": numbers.whole("sensitivity/draws"),
-        }
-        found.append((PRODUCT_MOMENT, slots))
-    if any(row.kind == "studentised" and row.p is not None for row in rows):
-        found.append(
-            (STUDENTISED, {"draws": numbers.whole("sensitivity/draws"), "seed": numbers.label("inference/seed")})
-        )
+    slots = {"enumerated": numbers.whole("sensitivity/enumerated_rows"), "draws": numbers.whole("sensitivity/draws")}
+    tested = {row.kind for row in rows if row.p is not None}
+    found += [
+        (rule, slots)
+        for kind, rule in (("product-moment", PRODUCT_MOMENT), ("studentised", STUDENTISED))
+        if kind in tested
+    ]
     if any(row.ends is not None for row in rows):
         found.append((LEAVE_ONE_OUT, {}))
     if any(row.search is not None for row in rows):
