@@ -1,5 +1,6 @@
 """The checker of a record copy holds waivers, levels, coverage and what goes beyond two variables against their rules."""
 
+import csv
 import json
 from dataclasses import replace
 from pathlib import Path
@@ -140,6 +141,23 @@ def test_a_forged_value_is_named(study: Invented, key: str, value: Any, told: st
     """Whatever its kind, with what it is when made anew."""
     found = problems(study, tmp_path, (key, value))
     assert any(problem.startswith(told) for problem in found), found
+
+
+@pytest.mark.parametrize(
+    ("study", "levels"), [(FAMILY, ["0.9875"] * 3 + ["", "0.95"]), (SELECTED, ["0.95", "0.95", "0.90", "", "0.90"])]
+)
+def test_results_say_the_level_of_each_interval(study: Invented, levels: list[str], tmp_path: Path) -> None:
+    """That of the interval whose limits stand beside it, none without one; another level in the table is named."""
+    assert problems(study, tmp_path) == []
+    file = tmp_path / "results.csv"
+    with file.open(encoding="utf-8", newline="") as lines:
+        rows = list(csv.DictReader(lines))
+    assert [row["interval_level"] for row in rows] == levels
+    assert [bool(row["interval_low"]) for row in rows] == [bool(level) for level in levels]
+    file.write_text(file.read_text("utf-8").replace(f",{levels[0]},", ",0.99,", 1), "utf-8")
+    found: list[str] = []
+    checker.check_results(tmp_path, analysis_to_plain(study.analysed()), found)
+    assert found == [f"results.csv, line 2: interval_level is 0.99, analysis.json has {levels[0]}."]
 
 
 def test_a_forged_cell_beyond_two_variables_is_named(tmp_path: Path) -> None:

@@ -44,9 +44,9 @@ WAIVED_AS = {
 }  # fmt: skip
 RESULT_ADDRESSES = {
     "n": "rows/complete", "value": "estimate/value", "interval_low": "interval/low", "interval_high": "interval/high",
-    "interval_by": "interval/by", "p": "test/p", "p_by": "test/method", "finding_by": "finding/by",
-    "p_of_finding": "finding/p", "p_adjusted": "finding/p_adjusted", "finding": "finding/word",
-    "size_verdict": "size/verdict",
+    "interval_level": "interval/level", "interval_by": "interval/by", "p": "test/p", "p_by": "test/method",
+    "finding_by": "finding/by", "p_of_finding": "finding/p", "p_adjusted": "finding/p_adjusted",
+    "size_verdict": "size/verdict", "finding": "finding/word",
 }  # fmt: skip
 """Column of results.csv → where its value stands below an association of analysis.json, if not under its own name."""
 
