@@ -1,6 +1,7 @@
 """What the rows could show: from their number, their ties and the plan, never from what was found in them."""
 
 from dataclasses import replace
+from decimal import Decimal
 from typing import Any
 
 import pytest
@@ -10,6 +11,7 @@ from rankdocket.analysis.plain import analysis_to_plain
 from rankdocket.analysis.screening import screen_study
 from rankdocket.canonical import Plain
 from rankdocket.document.numbers import look_up
+from rankdocket.stats.coverage.table import coverage_table
 from rankdocket.writing.screening_page import screening_page
 
 
@@ -21,6 +23,9 @@ def of(n: int, *, more: str = "", **parts: Any) -> Invented:
     return replace(
         Invented(), columns={"u": counted(n), "v": counted(n)}, associations={"A1": association(more=more)}, **parts
     )
+
+
+TEXTBOOK = "alpha: 0.05, interval: {by: Bonett-Wright}"
 
 
 def shown(invented: Invented) -> Plain:
@@ -44,9 +49,40 @@ def test_the_smallest_rho_is_that_of_the_planned_power(n: int, power: str, expec
 
 def test_the_widths_are_those_of_the_textbook_interval() -> None:
     """A published example: n = 15, rho 0.8699639, 0.5840951 to 0.9638297 (Bonett & Wright's variance)."""
-    found = of(15, more="smallest_of_interest: 0.8699639")
+    found = of(15, more="smallest_of_interest: 0.8699639", inference=TEXTBOOK)
     assert value(found, "width_at_interest") == pytest.approx(0.9638297 - 0.5840951, abs=2e-7)
     assert 0.9 < value(found, "width_at_zero") < 1.1
+
+
+@pytest.mark.parametrize("n", [10, 30, 100])
+def test_the_widths_are_those_of_the_rule_of_the_plan(n: int) -> None:
+    """The guarded jackknife of normal-type dependence, as the table of simulated coverage has it from other samples."""
+    [expected] = [
+        float(row.width)
+        for row in coverage_table()
+        if (row.method, row.family.key, row.n) == ("jackknife on z, guarded", "normal", n)
+        and (row.level, row.truth) == (Decimal("0.95"), 0)
+    ]
+    found = of(n, more="smallest_of_interest: 0.3")
+    assert value(found, "width_at_zero") == pytest.approx(expected, rel=0.01)
+    textbook = replace(found, inference=TEXTBOOK)
+    assert value(textbook, "width_at_zero") < value(found, "width_at_zero") - 0.003
+
+
+@pytest.mark.parametrize(
+    ("invented", "by"),
+    [
+        (of(30), "guarded jackknife"),
+        (of(30, inference="alpha: 0.05, confidence_level: 0.990"), "guarded jackknife"),
+        (of(30, inference=TEXTBOOK), "Bonett-Wright"),
+        (of(30, inference="alpha: 0.05, interval: {by: Fisher z}"), "Bonett-Wright"),
+        (of(30, inference="alpha: 0.05, confidence_level: 0.8"), "Bonett-Wright"),
+        (of(30, more="smallest_of_interest: 0.96"), "Bonett-Wright"),
+    ],
+)
+def test_whose_widths_they_are_is_filed(invented: Invented, by: str) -> None:
+    """The simulated ones where rule, level and size were simulated; else both are the textbook's."""
+    assert look_up(shown(invented), "width_by") == by
 
 
 def test_the_strictest_level_counts() -> None:
@@ -117,9 +153,13 @@ def test_the_blind_page_tells_the_figures_or_why_there_are_none() -> None:
     """One line an association after its smallest possible p."""
     page = screening_page(screen_study(*of(30, more="smallest_of_interest: 0.3").read()))
     assert (
-        "A1: with power 0.80 a rho of 0.50 in size would be found; a 95% interval would be about 0.72 wide at zero and 0.68 "
-        "at the smallest size of interest."
+        "A1: with power 0.80 a rho of 0.50 in size would be found; a 95% interval would be about 0.77 wide at zero and 0.73 "
+        "at the smallest size of interest, as simulated for untied rows."
     ) in page
+    textbook = of(30, more="smallest_of_interest: 0.3", inference=TEXTBOOK)
+    assert (
+        "a 95% interval would be about 0.72 wide at zero and 0.68 at the smallest size of interest, by the textbook formula."
+    ) in screening_page(screen_study(*textbook.read()))
     tau = screening_page(screen_study(*of(12, more="coefficient: Kendall tau-b").read()))
     assert (
         "A1: no smallest detectable rho: the formula is for rho; no width of an interval: the formula is for rho."

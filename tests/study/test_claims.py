@@ -36,7 +36,7 @@ def test_the_usual_claim_is_any_association() -> None:
 
 @pytest.mark.parametrize(
     ("written", "read"),
-    [("0.2", "0.2"), ("-0.35", "-0.35"), ("\u22120.35", "-0.35"), ('"-.5"', "-0.5"), ("0", "0"), ("-0.0", "0")],
+    [("0.2", "0.2"), ("-0.35", "-0.35"), ("\u22120.35", "-0.35"), ('"-.5"', "-0.5"), ("0.00001", "0.00001")],
 )
 def test_a_null_value_may_have_a_sign(written: str, read: str) -> None:
     """It is a place on the scale of the coefficient, not a size."""
@@ -49,6 +49,14 @@ def test_a_null_value_may_have_a_sign(written: str, read: str) -> None:
         ("1", "1 is not possible here. Write a number more than -1 and less than 1. (message 31)"),
         ("-1", "-1 is not possible here. Write a number more than -1 and less than 1. (message 31)"),
         ("-2.5", "-2.5 is not possible here. Write a number more than -1 and less than 1. (message 31)"),
+        (
+            "0",
+            "0 is not possible here: the rank test is of that. Leave null_value out; the rank test then decides. (message 31)",
+        ),
+        (
+            "-0.0",
+            "0 is not possible here: the rank test is of that. Leave null_value out; the rank test then decides. (message 31)",
+        ),
         ("some", '"some" is not a number. Write a number more than -1 and less than 1. (message 30)'),
         ('"0,2"', '"0,2" is not a number. Write 0.2. (message 30)'),
     ],

@@ -5,12 +5,8 @@ from typing import Any
 
 import pytest
 
-import rankdocket.workflow.record_checker as checker
 from analysis.invented import FALLING, MIXED, RISING, Invented, association
-from rankdocket.analysis.plain import analysis_to_plain
-from rankdocket.canonical import readable_bytes
-from rankdocket.study.plan import plan_of
-from rankdocket.workflow.record_tables import record_tables
+from workflow.record import problems
 
 NEAR = "3 4 1 9 2 5 6 8 10 7"
 FIVE = "1 1 2 2 3 3 3 4 4 5"
@@ -33,28 +29,6 @@ FEW = replace(
     associations={"A1": association(more="null_value: 0.3"), "A2": association()},
 )
 ONE_SIDED = "alpha: 0.05, sidedness: one-sided"
-
-
-def problems(invented: Invented, tmp_path: Any, *forged: tuple[str, Any]) -> list[str]:
-    """File a study's record, forge values of its analysis, and return what the checker says."""
-    analysis = invented.analysed()
-    plain: Any = analysis_to_plain(analysis)
-    tables = record_tables(analysis, plain)
-    for key, value in forged:
-        *way, last = key.split("/")
-        part = plain["associations"]
-        for step in way:
-            part = part[step]
-        part[last] = value
-    for name, content in tables.items():
-        (tmp_path / name).write_bytes(content)
-    (tmp_path / "plan.json").write_bytes(readable_bytes(plan_of(analysis.spec)))
-    found: list[str] = []
-    checker.check_associations(tmp_path, plain, found)
-    checker.check_sizes(tmp_path, plain, found)
-    checker.check_findings(tmp_path, plain, found)
-    checker.check_results(tmp_path, plain, found)
-    return found
 
 
 @pytest.mark.parametrize(

@@ -6,6 +6,7 @@ import pytest
 
 from analysis.invented import INDEPENDENT, MIXED, RISING, Invented, association, read_texts
 from rankdocket.analysis.analyse import analyse
+from rankdocket.analysis.deciding import deciding_p
 from rankdocket.analysis.results import Analysis
 from rankdocket.document.model import FieldList, Items, Link, Number, Paragraph, Supplied, TableBlock
 from rankdocket.document.prose import text_of
@@ -151,6 +152,73 @@ def test_values_of_the_edition_before_are_no_numbers_of_this_one() -> None:
             assert not any(isinstance(piece, Number) for piece in row[places[name]].pieces)
         for name in ("estimate", "p"):
             assert text_of(row[places[name]]) == "–" or isinstance(row[places[name]].pieces[0], Number)
+
+
+CLAIMED = Invented(
+    columns={"u": RISING, "v": "3 4 1 9 2 5 6 8 10 7", "w": RISING},
+    associations={
+        "A1": association("u", "v", more="smallest_of_interest: 0.30, claim: above"),
+        "A2": association("u", "v", more="null_value: 0.3"),
+        "A3": association("u", "w"),
+    },
+)
+UNCLAIMED = replace(CLAIMED, associations={name: association("u", "v") for name in ("A1", "A2", "A3")})
+
+
+def p_of(analysis: Analysis, name: str, *, of_claim: bool) -> float:
+    """Return the p-value that a test of the analysis gave."""
+    p = deciding_p(analysis.results[name]) if of_claim else getattr(analysis.results[name].test, "p", None)
+    assert p is not None
+    return float(p)
+
+
+@pytest.mark.parametrize(
+    ("before", "now", "notes"),
+    [
+        (
+            UNCLAIMED,
+            CLAIMED,
+            [" now is that of the claim, which decided, for A1 and A2; for others that of independence."],
+        ),
+        (CLAIMED, UNCLAIMED, [" before is that of the claim, which decided, for A1 and A2; for others that of "]),
+        (CLAIMED, CLAIMED, [" before is that of the claim", " now is that of the claim"]),
+        (UNCLAIMED, UNCLAIMED, []),
+    ],
+    ids=["claim made", "claim dropped", "claim kept", "no claim"],
+)
+def test_the_p_that_decided_is_the_one_compared(before: Invented, now: Invented, notes: list[str]) -> None:
+    """That of independence would not show why a finding about a claim moved; whose p it is, is said."""
+    old, new = before.analysed(), now.analysed()
+    report = told(new, replacing(old, plan_changed=True))
+    for row in rows(report):
+        of_claim = row[0] != "A3"
+        assert float(row[5].removeprefix("< ")) == pytest.approx(
+            p_of(old, row[0], of_claim=of_claim and before is CLAIMED), abs=0.001
+        )
+        assert float(row[6].removeprefix("< ")) == pytest.approx(
+            p_of(new, row[0], of_claim=of_claim and now is CLAIMED), abs=0.001
+        )
+    told_notes = [text_of(note) for note in report.table("changes-table").notes][1:]
+    assert len(told_notes) == len(notes)
+    for note, expected in zip(told_notes, notes, strict=True):
+        assert expected in note
+    claimed = old if before is CLAIMED else new
+    if notes:
+        assert abs(p_of(claimed, "A1", of_claim=True) - p_of(claimed, "A1", of_claim=False)) > 0.01
+
+
+def test_an_edition_from_before_there_were_claims_shows_its_p_of_independence() -> None:
+    """Its record does not say what decided."""
+    occasion = replacing(UNCLAIMED.analysed())
+    assert occasion.before is not None
+    associations = occasion.before.plain["associations"]
+    assert isinstance(associations, dict)
+    for entry in associations.values():
+        assert isinstance(entry, dict)
+        assert isinstance(entry["finding"], dict)
+        del entry["finding"]["by"], entry["finding"]["p"]
+    now = UNCLAIMED.analysed()
+    assert all(row[5] == row[6] != "–" for row in rows(told(now, occasion)))
 
 
 def with_file(text: str) -> Analysis:

@@ -182,11 +182,38 @@ def test_the_table_of_what_could_be_shown() -> None:
     assert isinstance(table, TableBlock)
     assert table.number == "9"
     rows = [[plainly(text_of(cell)) for cell in row] for row in table.rows]
-    assert rows[0] == ["A1", "10", "< 0.000001", "0.84", "1.26", "1.21"]
+    assert rows[0] == ["A1", "10", "< 0.000001", "0.84", "1.41", "1.37"]
     assert rows[1][3:] == ["–", "–", "–"]
     assert "A2: no smallest size of rho and no width: the formula is for rho." in [
         text_of(note) for note in table.notes
     ]
+
+
+def widths_said(report: Told) -> tuple[str, str]:
+    """Return what note and methods say of expected widths."""
+    notes = [text_of(note) for note in report.table("could-show").notes]
+    return " ".join(note for note in notes if note.startswith("The widths")), plainly(report.text())
+
+
+def test_whose_widths_are_expected_is_said() -> None:
+    """In the note of the table and in the methods text, by name where two rules stand in one table."""
+    simulated, textbook = "has on average in untied rows", "of the textbook interval of Bonett and Wright; "
+    note, said = widths_said(of(NEAR, "smallest_of_interest: 0.3"))
+    assert note.startswith("The widths are those that the guarded jackknife interval has on average in untied rows")
+    assert "The width is the mean width of the guarded jackknife interval, simulated " in said
+    assert textbook not in note
+    note, said = widths_said(of(NEAR, "smallest_of_interest: 0.3", inference="alpha: 0.05, interval: {by: Fisher z}"))
+    assert note.startswith("The widths are those of the textbook interval of Bonett and Wright; ")
+    assert "The width is that of the textbook interval of Bonett and Wright, whatever the rule of the plan" in said
+    assert simulated not in note
+    plan = {"A1": association(), "A2": association(more="smallest_of_interest: 0.99")}
+    note, said = widths_said(told(replace(Invented(), associations=plan).analysed()))
+    assert "The widths of A1 are those that the guarded " in note
+    assert "The widths of A2 are those of the textbook " in note
+    assert "The width for A1 is the mean width " in said
+    assert "The width for A2 is that of the textbook " in said
+    one_sided = of(NEAR, "smallest_of_interest: 0.3", inference="alpha: 0.05, sidedness: one-sided")
+    assert widths_said(one_sided)[0] == ""
 
 
 def test_there_is_no_such_table_where_no_estimate_is_given() -> None:

@@ -1,9 +1,11 @@
 """What rows could show: from their number, their ties and the plan alone, never from a coefficient found in them."""
 
+from collections.abc import Mapping
 from dataclasses import dataclass
 from decimal import Decimal
 from fractions import Fraction
-from typing import Final
+from types import MappingProxyType
+from typing import Final, Literal, TypeAlias
 
 from rankdocket.analysis.checks.independence import KEY as INDEPENDENCE
 from rankdocket.analysis.family import adjusts_together, sharers_of
@@ -11,6 +13,7 @@ from rankdocket.analysis.nulls import levels_of, smallest_possible_p
 from rankdocket.analysis.results import CheckOutcome, Screened
 from rankdocket.references import Description
 from rankdocket.stats.coefficient import FEWEST_ROWS as FEWEST_OF_A_COEFFICIENT
+from rankdocket.stats.guarded_width import LARGEST_RHO, LEVELS, guarded_width_at
 from rankdocket.stats.interval_width import width_at
 from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.stats.sample_size import FEWEST_ROWS, PlannedTest, smallest_rho
@@ -19,10 +22,27 @@ from rankdocket.study.spec import AssociationSpec, StudySpec
 COULD_SHOW: Final = Description(
     "What the rows could show was worked out from their number, their ties and the plan alone: the smallest p that they "
     "allow; the smallest size of rho that the test of independence finds with the planned power, {power}, by the normal "
-    "approximation with one variance without association and that of Bonett and Wright with it; and the width of the "
-    "textbook interval at two sizes of rho. The coefficient found in these rows enters none of them.",
+    "approximation with one variance without association and that of Bonett and Wright with it; and, of an interval with "
+    "two limits, the width at two sizes of rho. The coefficient found in these rows enters none of them.",
     ("bonett2000",),
 )
+
+WidthBy: TypeAlias = Literal["guarded jackknife", "Bonett-Wright"]
+
+WIDTH_BY: Final[Mapping[WidthBy, Description]] = MappingProxyType(
+    {
+        "guarded jackknife": Description(
+            "The width{of} is the mean width of the guarded jackknife interval, simulated for variables that follow the "
+            "bivariate normal law without ties, as a multiple of the width that the formula of Bonett and Wright gives.",
+            ("bonett2000",),
+        ),
+        "Bonett-Wright": Description(
+            "The width{of} is that of the textbook interval of Bonett and Wright, whatever the rule of the plan.",
+            ("bonett2000",),
+        ),
+    }
+)
+"""By what an expected width was found → what is said of it."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -39,15 +59,18 @@ class CouldShow:
         The smallest p that rows, ties and null allow.
     smallest_rho
         The smallest size of rho that the test of independence finds with the planned power at ``level``.
+    width_by
+        Whose widths they are: those of the plan's own rule where they were simulated.
     width_at_zero, width_at_interest
-        Width of the textbook interval when rho comes out at 0, at the smallest size of interest; the latter is
-        ``None`` where the plan names no such size.
+        Width of an interval for a rho of 0, of the smallest size of interest; the latter is ``None`` where the plan
+        names no such size.
     """
 
     rows: int
     level: Fraction
     attainable_p: Fraction | NoAnswer
     smallest_rho: float | NoAnswer
+    width_by: WidthBy
     width_at_zero: float | NoAnswer
     width_at_interest: float | NoAnswer | None
 
@@ -62,17 +85,18 @@ def could_show(screened: Screened, spec: StudySpec, outcomes: tuple[CheckOutcome
     outcomes
         Of the checks that show nothing joint; others do no harm.
     """
-    rows, level = len(screened.rows), strictest_level(screened.spec, spec)
+    rows, level, by = len(screened.rows), strictest_level(screened.spec, spec), _width_by(screened.spec, spec)
     if rows < FEWEST_OF_A_COEFFICIENT or min(screened.x_ties.distinct, screened.y_ties.distinct) < 2:
         nothing = NoAnswer("no rank correlation exists for these rows")
         interest = None if screened.spec.hypothesis.smallest_of_interest is None else nothing
-        return CouldShow(rows, level, nothing, nothing, nothing, interest)
+        return CouldShow(rows, level, nothing, nothing, by, nothing, interest)
     attainable = smallest_possible_p(screened, spec)
     return CouldShow(
         rows,
         level,
         attainable,
         _smallest_rho(screened, spec, outcomes, attainable),
+        by,
         _width(screened, spec, outcomes, Decimal(0)),
         None
         if screened.spec.hypothesis.smallest_of_interest is None
@@ -117,7 +141,15 @@ def _width(screened: Screened, spec: StudySpec, outcomes: tuple[CheckOutcome, ..
         return NoAnswer("a one-sided bound has no width")
     if len(screened.rows) < FEWEST_ROWS:
         return _TOO_FEW
-    return width_at(len(screened.rows), float(rho), level=spec.inference.confidence_level)
+    width = guarded_width_at if _width_by(screened.spec, spec) == "guarded jackknife" else width_at
+    return width(len(screened.rows), float(rho), level=spec.inference.confidence_level)
+
+
+def _width_by(association: AssociationSpec, spec: StudySpec) -> WidthBy:
+    """Return whose width is expected; both widths of an association are by one rule, so that they can be compared."""
+    inference, size = spec.inference, association.hypothesis.smallest_of_interest or Decimal(0)
+    was_simulated = inference.confidence_level in LEVELS and float(size) <= LARGEST_RHO
+    return "guarded jackknife" if inference.interval.by == "guarded jackknife" and was_simulated else "Bonett-Wright"
 
 
 _FOR_RHO: Final = NoAnswer("the formula is for rho")

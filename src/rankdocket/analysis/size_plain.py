@@ -116,11 +116,13 @@ def _could_show(found: CouldShow, alpha: Decimal) -> dict[str, Plain]:
     interest: dict[str, Plain] = (
         {} if found.width_at_interest is None else {"width_at_interest": _answer(found.width_at_interest)}
     )
+    by: dict[str, Plain] = {} if isinstance(found.width_at_zero, NoAnswer) else {"width_by": found.width_by}
     return {
         "rows": found.rows,
         "level": filed(found.level),
         "attainable_p": attainable,
         "smallest_rho": _answer(found.smallest_rho),
+        **by,
         "width_at_zero": _answer(found.width_at_zero),
         **interest,
     }

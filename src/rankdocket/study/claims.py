@@ -34,6 +34,12 @@ def _null_faults(parts: Parts, name: str, association: AssociationForm) -> Itera
         what = f"null_value and claim: {hypothesis.claim} are two claims, and an association has one finding."
         remedy = "Leave null_value out, or write claim: any."
         yield fault(place, f"associations.{name}.hypothesis.null_value", Message.CONTRADICTION, what, remedy)
+    elif hypothesis.null_value == 0:
+        # Its approximate p would decide in the place of a counted one.
+        place = parts.value_place("associations", name, "hypothesis", "null_value")
+        what = "0 is not possible here: the rank test is of that."
+        remedy = "Leave null_value out; the rank test then decides."
+        yield fault(place, f"associations.{name}.hypothesis.null_value", Message.OUT_OF_RANGE, what, remedy)
 
 
 def _coefficient_faults(parts: Parts, name: str, association: AssociationForm) -> Iterator[Fault]:

@@ -3,11 +3,13 @@
 Needs Python 3.9 or later and nothing else.  It holds every file against SHA256SUMS; ranks the values of rows.csv
 anew and holds the worksheets against them; recomputes each coefficient in whole numbers; counts all orderings of
 the rows where there are few enough; derives p, adjusted p and finding from the counts; holds results.csv against
-analysis.json; computes the approximate tests of size and of null values again; and looks up every printed number of
-document.json in analysis.json and in report.html.
+analysis.json; computes the approximate tests of size and of null values again; holds waivers against the plan, levels of
+intervals against their rule and a coverage against its own counts; computes coefficients of groups, of a comparison and
+of a partial correlation again; and looks up every printed number of document.json in analysis.json and in report.html.
 
-It does not read the spec and the data as received, does not recompute intervals, drawn permutations, the permutations of
-a family by step-down maxT, the bars of a null and what the rows could have shown, and does not open the PDF.
+It does not read the spec and the data as received, does not recompute limits of intervals, the whole numbers of a partial
+correlation, tests beyond two variables, drawn permutations, those of a family by step-down maxT, the bars of a null,
+shape, sensitivity and what the rows could have shown, and does not open the PDF.
 """
 
 # ruff: noqa: T201 - it speaks to a person at a terminal
@@ -22,7 +24,7 @@ import re
 import sys
 from collections import Counter, defaultdict
 from collections.abc import Iterator
-from decimal import ROUND_HALF_EVEN, Context, Decimal
+from decimal import ROUND_FLOOR, ROUND_HALF_EVEN, Context, Decimal
 from fractions import Fraction
 from functools import reduce
 from math import atanh, comb, erfc, factorial, gcd, isclose, prod, sqrt
@@ -30,34 +32,22 @@ from operator import add, mul, sub
 from pathlib import Path
 from typing import Any
 
-MOST_ROWS_COUNTED = 14
-"""Up to here counting takes seconds on any machine; more rows are left to the program itself."""
-
-DIGITS = 12
-"""Significant digits of every filed value that is not whole."""
-
-FLOAT_DIGITS = 40
-"""Significant digits of a coefficient before it is taken as a double for the tests of size."""
-
-LEAST_P = 1e-300
-"""A p of the normal law that is smaller is filed as this."""
-
+MOST_ROWS_COUNTED = 14  # Up to here counting takes seconds on any machine; more rows are left to the program itself.
+DIGITS = 12  # Significant digits of every filed value that is not whole.
+FLOAT_DIGITS = 40  # Significant digits of a coefficient before it is taken as a double for the tests of size.
+LEAST_P = 1e-300  # A p of the normal law that is smaller is filed as this.
 RHO = "Spearman rho"
 MAX_T = "step-down maxT"
+WAIVED_AS = {
+    "enough_rows": "complete rows", "missing_share": "missing values", "tie_share": "ties",
+    "built_in": "built-in association",
+}  # fmt: skip
 RESULT_ADDRESSES = {
-    "n": "rows/complete",
-    "value": "estimate/value",
-    "interval_low": "interval/low",
-    "interval_high": "interval/high",
-    "interval_by": "interval/by",
-    "p": "test/p",
-    "p_by": "test/method",
-    "finding_by": "finding/by",
-    "p_of_finding": "finding/p",
-    "p_adjusted": "finding/p_adjusted",
-    "finding": "finding/word",
-    "size_verdict": "size/verdict",
-}
+    "n": "rows/complete", "value": "estimate/value", "interval_low": "interval/low", "interval_high": "interval/high",
+    "interval_level": "interval/level", "interval_by": "interval/by", "p": "test/p", "p_by": "test/method",
+    "finding_by": "finding/by", "p_of_finding": "finding/p", "p_adjusted": "finding/p_adjusted",
+    "size_verdict": "size/verdict", "finding": "finding/word",
+}  # fmt: skip
 """Column of results.csv → where its value stands below an association of analysis.json, if not under its own name."""
 
 NUMBER_ELEMENT = re.compile(r'data-key="([^"]+)"[^>]*>([^<]*)<')
@@ -71,7 +61,10 @@ def main(folder: Path) -> int:
     try:
         analysis = json.loads((folder / "analysis.json").read_text(encoding="utf-8"))
         left = check_associations(folder, analysis, problems)
+        check_waivers(folder, analysis, problems)
         check_sizes(folder, analysis, problems)
+        check_intervals(folder, analysis, problems)
+        check_more_variables(folder, analysis, problems)
         together = check_findings(folder, analysis, problems)
         check_results(folder, analysis, problems)
         numbers = check_printed(folder, analysis, problems)
@@ -140,7 +133,7 @@ def check_associations(folder: Path, analysis: Any, problems: list[str]) -> list
         y = doubled_midranks([Fraction(row["y_value"]) for row in its_rows])
         check_worksheet(folder, name, (its_rows, x, y), problems)
         if found["estimate"]["state"] == "estimated":
-            check_estimate(name, found, (x, y), problems)
+            check_coefficient(name, found["estimate"], sums_of(found["coefficient"], x, y), problems)
         if found["test"]["state"] == "tested" and not check_test(name, found, (x, y), alpha, problems):
             left.append(name)
     return left
@@ -171,12 +164,11 @@ def check_worksheet(
             hold(f"{file}, line {place + 2}: {column}", row[column], used[place][column], problems)
 
 
-def check_estimate(name: str, found: Any, ranks: tuple[list[int], list[int]], problems: list[str]) -> None:
-    """Compute the coefficient again."""
-    sums = sums_of(found["coefficient"], *ranks)
-    for position, key in enumerate(("numerator", "x_square", "y_square")):
-        hold(f"{name}: {key}", found["estimate"][key], str(sums[position]), problems)
-    hold(f"{name}: the coefficient", Decimal(found["estimate"]["value"]), coefficient(*sums), problems)
+def check_coefficient(what: str, filed: Any, sums: tuple[int, int, int], problems: list[str]) -> None:
+    """Hold a coefficient and its whole numbers against those made anew."""
+    for key, anew in zip(("numerator", "x_square", "y_square"), sums):  # noqa: B905
+        hold(f"{what}: {key}", filed[key], str(anew), problems)
+    hold(f"{what}: the coefficient", Decimal(filed["value"]), coefficient(*sums), problems)
 
 
 def check_test(name: str, found: Any, ranks: tuple[list[int], list[int]], alpha: Fraction, problems: list[str]) -> bool:
@@ -331,6 +323,108 @@ def hold_near(what: str, filed: str, anew: float, problems: list[str], z_square:
         problems.append(f"{what} is {filed}, made anew {anew:.12g}.")
 
 
+def check_waivers(folder: Path, analysis: Any, problems: list[str]) -> None:
+    """Hold the reasons of waived requirements against the plan; what is waived withholds nothing."""
+    plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))
+    for name, found in sorted(analysis["associations"].items()):
+        reasons = plan["associations"][name].get("waived", {})
+        for key, outcome in sorted(found["checks"].items()):
+            reason = reasons.get(WAIVED_AS.get(key)) if outcome["state"] in ("not met", "doubtful") else None
+            hold(f"{name}: {key}: why it is waived", outcome.get("waived"), reason, problems)
+            if reason is not None:
+                hold(f"{name}: {key}: what it withholds", outcome["withholds"], "nothing", problems)
+
+
+def check_intervals(folder: Path, analysis: Any, problems: list[str]) -> None:
+    """Compute the level of adjusted intervals again, and hold each interval against it or the plan's."""
+    plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))["inference"]
+    adjusted, alone, level = plan["interval"]["adjusted"], Decimal(plan["confidence_level"]), None
+    family, filed = analysis["inference"]["family"], analysis["inference"]["interval"]
+    shown = [name for name in family if analysis["associations"][name]["finding"]["word"].startswith("shown")]
+    selected = len(shown) if adjusted == "after selection" else None
+    members = {"simultaneous": family, "after selection": shown}.get(adjusted, [])
+    if members:
+        error = (1 if selected is None else selected) * (1 - alone)
+        level = 1 - Context(prec=DIGITS, rounding=ROUND_FLOOR).divide(error, Decimal(len(family)))
+    hold("inference: how intervals are adjusted", filed["adjusted"], adjusted, problems)
+    hold("inference: how many are selected", filed.get("selected"), selected, problems)
+    hold("inference: adjusted level", Decimal(filed["level"]) if "level" in filed else None, level, problems)
+    for name, found in sorted(analysis["associations"].items()):
+        is_member, has_two = name in members, "interval_alone" in found
+        if has_two or found["interval"]["state"] == "given":
+            hold(f"{name}: a second interval", has_two, is_member, problems)
+        for which, is_adjusted in (("interval", is_member), ("interval_alone", False)):
+            interval, what = found.get(which, {"state": "none"}), f"{name}: {which}"
+            if interval["state"] == "given":
+                hold(f"{what}: level", Decimal(interval["level"]), level if is_adjusted else alone, problems)
+                hold(f"{what}: holds", interval["holds"], adjusted if is_adjusted else "alone", problems)
+                if not Decimal(interval["low"]) < Decimal(interval["high"]):
+                    problems.append(f"{what}: {interval['low']} is not below {interval['high']}.")
+        if found["interval"].get("coverage", {}).get("state") == "simulated":
+            check_coverage(name, found["interval"]["coverage"], Fraction(found["interval"]["level"]), problems)
+
+
+def check_coverage(name: str, coverage: Any, level: Fraction, problems: list[str]) -> None:
+    """Judge a simulated coverage again by its misses over those that the level allows."""
+    lowest = coverage["lowest"]
+    for what, row in (("coverage", coverage), ("lowest coverage", lowest)):
+        hold(f"{name}: {what}: samples", row["samples"], int(row["share"].split("/")[1]), problems)
+    if Fraction(lowest["share"]) > Fraction(coverage["share"]):
+        problems.append(f"{name}: the lowest coverage {lowest['share']} is above the nearest {coverage['share']}.")
+    misses = (1 - Fraction(coverage["share"])) / (1 - level)
+    judged = "too low" if misses > Fraction(7, 5) else "wide" if misses < Fraction(3, 5) else "near"
+    hold(f"{name}: coverage: judged", coverage["judged"], judged, problems)
+
+
+def check_more_variables(folder: Path, analysis: Any, problems: list[str]) -> None:
+    """Rank again what a partial coefficient, a comparison and groups of rows rest on."""
+    plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))["associations"]
+    cells: Any = defaultdict(lambda: defaultdict(dict))
+    for row in read_csv(folder / "rows.csv"):
+        for axis in "xy":
+            cells[row["association"], ""][axis][row["row"]] = row[f"{axis}_value"]
+    for row in read_csv(folder / "more_rows.csv") if (folder / "more_rows.csv").exists() else ():
+        cells[row["association"], row["used_for"]][row["variable"]][row["row"]] = row["value"]
+    for name, found in sorted(analysis["associations"].items()):
+        for key, asked in (("partial", "covariates"), ("comparison", "compare_with"), ("subgroups", "groups")):
+            hold(f"{name}: {key}", key in found, asked in plan[name], problems)
+        pair, own = (found["x"], found["y"]), {found[axis]: cells[name, ""][axis] for axis in "xy"}
+        for key in sorted({"partial", "comparison"} & found.keys()):
+            filed, what, columns = found[key], f"{name}: {key}", {**cells[name, key], **own}
+            used = filed["variables"] if key == "comparison" else filed["covariates"]
+            lines = [line for line in own[pair[0]] if all(line in columns.get(variable, ()) for variable in used)]
+            hold(f"{what}: rows", filed["n"], len(lines), problems)
+            if filed["state"] == "estimated" and key == "partial":
+                check_coefficient(f"{what}: rho", filed["rho"], ranked(columns, pair, lines, RHO), problems)
+                whole = (int(filed[part]) for part in ("numerator", "x_square", "y_square"))
+                hold(f"{what}: the coefficient", Decimal(filed["value"]), coefficient(*whole), problems)
+            elif filed["state"] == "estimated":
+                other = analysis["associations"][filed["with"]]
+                for which, two in (("first", pair), ("second", (other["x"], other["y"]))):
+                    check_coefficient(f"{what}: {which}", filed[which], ranked(columns, two, lines, RHO), problems)
+        if "subgroups" in found:
+            check_groups(name, found, own, next(iter(cells[name, "groups"].values()), {}), problems)
+
+
+def check_groups(name: str, found: Any, own: Any, label_of: dict[str, str], problems: list[str]) -> None:
+    """Rank each group of rows again; a spreadsheet's apostrophe before a name, or its minus, is not of the name."""
+    hold(f"{name}: rows looked at for groups", len(label_of), len(own[found["x"]]), problems)
+    without = sum(not label for label in label_of.values())
+    hold(f"{name}: rows without a group", found["subgroups"]["without_group"], without, problems)
+    for group in found["subgroups"]["groups"]:
+        label, what = group["label"], f"{name}: group {group['label']}"
+        lines = [row for row, text in label_of.items() if text in (label, f"'{label}", label.replace("\u2212", "-"))]
+        hold(f"{what}: rows", group["n"], len(lines), problems)
+        if group.get("state") == "estimated":
+            sums = ranked(own, (found["x"], found["y"]), lines, found["coefficient"])
+            check_coefficient(what, group, sums, problems)
+
+
+def ranked(columns: Any, pair: tuple[str, str], lines: list[str], name: str) -> tuple[int, int, int]:
+    """Return the whole numbers of a coefficient of these rows, ranked among themselves."""
+    return sums_of(name, *(doubled_midranks([Fraction(columns[one][line]) for line in lines]) for one in pair))
+
+
 def check_findings(folder: Path, analysis: Any, problems: list[str]) -> list[str]:
     """Adjust every p again and decide again by the plan; return whose adjusted p rests on filed counts."""
     plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))
@@ -446,11 +540,8 @@ def check_results(folder: Path, analysis: Any, problems: list[str]) -> None:
         problems.append(f"results.csv has the associations {', '.join(names)}, analysis.json others.")
         return
     for line, row in enumerate(rows, start=2):
-        its_own = {
-            **analysis["associations"][row["association"]],
-            "association": row["association"],
-            "sidedness": analysis["inference"]["sidedness"],
-        }
+        found, sidedness = analysis["associations"][row["association"]], analysis["inference"]["sidedness"]
+        its_own = {**found, "association": row["association"], "sidedness": sidedness}
         for column, cell in row.items():
             filed = look_up(its_own, RESULT_ADDRESSES.get(column, column))
             if cell != ("" if filed is None else str(filed)):
@@ -575,6 +666,10 @@ def check_printed(folder: Path, analysis: Any, problems: list[str]) -> int:
             problems.append(f"document.json prints {key} as {text}, {in_words} times; report.html {on_page} times.")
         elif in_words < on_page:
             problems.append(f"report.html prints {key} as {text}, {on_page} times; document.json {in_words} times.")
+    for name, found in sorted(analysis["associations"].items()):
+        key = f"associations/{name}/interval/level"
+        if "interval_alone" in found and look_up(analysis, key) and not any(number["key"] == key for number in numbers):
+            problems.append(f"document.json does not print {key}.")
     return len(numbers)
 
 

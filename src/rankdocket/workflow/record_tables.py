@@ -59,8 +59,8 @@ def _ranks(name: str, result: AssociationAnalysis, plain: Mapping[str, Plain]) -
 
 def _results(analysis: Analysis, plain: Mapping[str, Plain]) -> bytes:
     head = (
-        "association", "x", "y", "n", "coefficient", "value", "interval_low", "interval_high", "interval_by",
-        "p", "sidedness", "p_by", "finding_by", "p_of_finding", "p_adjusted", "size_verdict", "finding",
+        "association", "x", "y", "n", "coefficient", "value", "interval_low", "interval_high",
+        "interval_level", "interval_by", "p", "sidedness", "p_by", "finding_by", "p_of_finding", "p_adjusted", "size_verdict", "finding",
     )  # fmt: skip
     return _csv(head, (_result(name, result, analysis, plain) for name, result in analysis.results.items()))
 
@@ -79,6 +79,7 @@ def _result(name: str, result: AssociationAnalysis, analysis: Analysis, plain: M
         str(look_up(plain, f"{at}/estimate/value")) if isinstance(result.estimate, Estimate) else _ABSENT,
         filed(interval.low) if interval else _ABSENT,
         filed(interval.high) if interval else _ABSENT,
+        str(interval.level) if interval else _ABSENT,
         interval.method if interval else _ABSENT,
         str(look_up(plain, f"{at}/test/p")) if tested else _ABSENT,
         analysis.spec.inference.sidedness,

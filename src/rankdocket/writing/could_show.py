@@ -1,5 +1,7 @@
 """What the rows could show, as a table: from their number, their ties and the plan alone."""
 
+from collections.abc import Mapping
+from types import MappingProxyType
 from typing import Final
 
 from rankdocket.analysis.results import Estimate
@@ -45,9 +47,9 @@ def could_show_table(story: Story) -> TableBlock | None:
             prose(
                 "Worked out from the number of rows, their ties and the plan alone. The size of rho is that which the test "
                 "of independence finds with that power at the strictest level that the adjustment of the family can put "
-                "to it; it is approximate and does not allow for ties. The widths are those of "
-                "the textbook interval of Bonett and Wright; the interval of this report can be wider.",
+                "to it; it is approximate and does not allow for ties.",
             ),
+            *_whose_widths(story),
             *_reasons(story),
         ),
     )
@@ -60,6 +62,15 @@ def has_answers(story: Story) -> bool:
         for name in story.analysis.results
         for key in ("smallest_rho", "width_at_zero")
     )
+
+
+def widths_by(story: Story) -> dict[str, tuple[str, ...]]:
+    """Return by what widths were found → the associations with such a width."""
+    found: dict[str, list[str]] = {}
+    for name in story.analysis.results:
+        if story.numbers.has(f"{_AT}/{name}/width_by"):
+            found.setdefault(str(look_up(story.plain, f"{_AT}/{name}/width_by")), []).append(name)
+    return {by: tuple(names) for by, names in found.items()}
 
 
 def could_show_words(numbers: Numbers, name: str, *, is_strict: bool) -> str:
@@ -79,12 +90,22 @@ def could_show_words(numbers: Numbers, name: str, *, is_strict: bool) -> str:
     widths = [f"{_width(numbers, f'{at}/width_at_zero').text} wide at zero"]
     if numbers.has(f"{at}/width_at_interest/value"):
         widths.append(f"{_width(numbers, f'{at}/width_at_interest').text} at the smallest size of interest")
-    return "; ".join([*parts, f"a {level} interval would be about {' and '.join(widths)}"])
+    how = _HOW[str(look_up(numbers.plain, f"{at}/width_by"))]
+    return "; ".join([*parts, f"a {level} interval would be about {' and '.join(widths)}, {how}"])
 
 
 def _width(numbers: Numbers, at: str) -> Number:
     """Return a width; unlike a coefficient it has nothing to fear near 1."""
     return numbers.coefficient(f"{at}/value", numbers.coefficient_decimals)
+
+
+def _whose_widths(story: Story) -> tuple[Prose, ...]:
+    """Return whose widths the table shows, with the names where not all are by one rule."""
+    found = widths_by(story)
+    return tuple(
+        prose(_NOTES[by], of=prose(" of {names}", names=pointers(names)) if len(found) > 1 else "")
+        for by, names in found.items()
+    )
 
 
 def _level(story: Story) -> Number:
@@ -107,6 +128,18 @@ def _row(story: Story, name: str) -> tuple[Prose, ...]:
         width("width_at_interest"),
     )
 
+
+_NOTES: Final[Mapping[str, str]] = MappingProxyType(
+    {
+        "guarded jackknife": "The widths{of} are those that the guarded jackknife interval has on average in untied rows of "
+        "the bivariate normal law, as simulated; the interval of this report can be wider or narrower.",
+        "Bonett-Wright": "The widths{of} are those of the textbook interval of Bonett and Wright; the interval of this "
+        "report can be wider.",
+    }
+)
+_HOW: Final[Mapping[str, str]] = MappingProxyType(
+    {"guarded jackknife": "as simulated for untied rows", "Bonett-Wright": "by the textbook formula"}
+)
 
 _COLUMNS: Final = (
     ("attainable_p", "attainable p"),

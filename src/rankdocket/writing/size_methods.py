@@ -1,11 +1,11 @@
 """The methods text of tests of size and of what the rows could show."""
 
-from rankdocket.analysis.could_show import COULD_SHOW
+from rankdocket.analysis.could_show import COULD_SHOW, WIDTH_BY
 from rankdocket.analysis.size_results import SizeAnalysis
 from rankdocket.document.model import Prose
 from rankdocket.document.prose import joined, listed, only, prose
 from rankdocket.stats.equivalence import EQUIVALENCE, MINIMUM_EFFECT, NULL_VALUE
-from rankdocket.writing.could_show import has_answers
+from rankdocket.writing.could_show import has_answers, widths_by
 from rankdocket.writing.described import described
 from rankdocket.writing.phrases import address, pointer, pointers
 from rankdocket.writing.section import Story
@@ -49,7 +49,13 @@ def could_show_methods(story: Story) -> Prose:
     """Return how the table of what the rows could show was made; empty where it holds no answer."""
     if not has_answers(story):
         return only("")
-    return described(COULD_SHOW, power=story.numbers.level("could_show/planned_power"))
+    found = widths_by(story)
+    widths = [
+        described(WIDTH_BY[by], of=prose(" for {names}", names=pointers(found[by])) if len(found) > 1 else "")
+        for by in WIDTH_BY
+        if by in found
+    ]
+    return joined((described(COULD_SHOW, power=story.numbers.level("could_show/planned_power")), *widths))
 
 
 def _factors(story: Story, names: tuple[str, ...], key: str) -> Prose:

@@ -1,9 +1,10 @@
 """Section 7: what changed since the edition before; the heading stands in every report."""
 
+from collections.abc import Iterator
 from dataclasses import replace
 
 from rankdocket.document.model import Block, Column, Emphasis, Items, Paragraph, Prose, Section, Supplied, TableBlock
-from rankdocket.document.numbers import look_up
+from rankdocket.document.numbers import Numbers, look_up
 from rankdocket.document.prose import listed, only, prose
 from rankdocket.writing.findings import finding_word
 from rankdocket.writing.phrases import EN_DASH_CELL, P, address, full_stop, pointer
@@ -81,22 +82,51 @@ def _table(story: Story, before: Before) -> TableBlock:
             Column(prose("{p} now", p=P), "p", "decimal", share=3),
         ),
         rows=tuple(_row(story, before, name) for name in _names(story, before)),
-        notes=(only("Values of the edition before are as its own record holds them; they were not computed again."),),
+        notes=(
+            only("Values of the edition before are as its own record holds them; they were not computed again."),
+            *_claim_notes(story, before),
+        ),
     )
 
 
 def _row(story: Story, before: Before, name: str) -> tuple[Prose, ...]:
     old = replace(story.numbers, plain=before.plain)
-    estimate, p = address(name, "estimate", "value"), address(name, "test", "p")
+    estimate, p_before, p = address(name, "estimate", "value"), _p(old, name), _p(story.numbers, name)
     return (
         _named(story, name),
         only(_finding_before(before, name)),
         only(_finding_now(story, name)),
         only(Supplied(old.coefficient(estimate).text)) if old.has(estimate) else EN_DASH_CELL,
         only(story.numbers.coefficient(estimate)) if story.numbers.has(estimate) else EN_DASH_CELL,
-        only(Supplied(old.p_value(p).text)) if old.has(p) else EN_DASH_CELL,
+        only(Supplied(old.p_value(p_before).text)) if old.has(p_before) else EN_DASH_CELL,
         only(story.numbers.p_value(p)) if story.numbers.has(p) else EN_DASH_CELL,
     )
+
+
+def _p(numbers: Numbers, name: str) -> str:
+    """Return where the p-value that decided stands, before it is adjusted: that of a claim, else of independence."""
+    return address(name, "finding", "p") if _claims(numbers, name) else address(name, "test", "p")
+
+
+def _claims(numbers: Numbers, name: str) -> bool:
+    """Return whether a claim was to decide; editions from before there were claims do not say what decided."""
+    by = address(name, "finding", "by")
+    return numbers.has(by) and look_up(numbers.plain, by) != "rank test"
+
+
+def _claim_notes(story: Story, before: Before) -> Iterator[Prose]:
+    """Yield for which associations a p is not that of independence."""
+    for when, plain in (("before", before.plain), ("now", story.numbers.plain)):
+        numbers = replace(story.numbers, plain=plain)
+        names = tuple(
+            name for name in _names(story, before) if _claims(numbers, name) and numbers.has(_p(numbers, name))
+        )
+        if names:
+            yield prose(
+                f"{{p}} {when} is that of the claim, which decided, for {{names}}; for others that of independence.",
+                p=P,
+                names=listed(tuple(_named(story, name) for name in names)),
+            )
 
 
 def _finding_before(before: Before, name: str) -> str:
