@@ -251,7 +251,7 @@ def test_numbers_of_a_plan_follow_the_number_style() -> None:
         ).analysed()
     )
     text = report.text()
-    assert "alpha, .05, which bounds" in text
+    assert "alpha, .05." in text
     assert "size of interest .30" in text
     assert "0.05" not in text
     assert "0.30" not in text
