@@ -14,7 +14,7 @@ from rankdocket.study.tables import read_table
 from rankdocket.study.variables import read_variables
 
 STUDIES = Path(__file__).resolve().parents[2] / "studies"
-DEMONSTRATIONS = ("first-look", "gasket-creep", "weld-smoke")
+DEMONSTRATIONS = ("first-look", "gasket-creep", "weld-smoke", "two-kilns")
 
 INDEPENDENT = "repeated_within: not applicable, time_order: not applicable"
 NO_LIMITS = "fewest_complete_rows: 3, most_missing: 1, most_tied: 1"

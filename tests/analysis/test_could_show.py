@@ -153,8 +153,8 @@ def test_the_blind_page_tells_the_figures_or_why_there_are_none() -> None:
     """One line an association after its smallest possible p."""
     page = screening_page(screen_study(*of(30, more="smallest_of_interest: 0.3").read()))
     assert (
-        "A1: with power 0.80 a rho of 0.50 in size would be found; a 95% interval would be about 0.77 wide at zero and 0.73 "
-        "at the smallest size of interest, as simulated for untied rows."
+        "A1: with power 0.80 a rho of 0.50 in size would be told from zero; a 95% interval would be about 0.77 wide at zero and "
+        "0.73 at the smallest size of interest, as simulated for untied rows."
     ) in page
     textbook = of(30, more="smallest_of_interest: 0.3", inference=TEXTBOOK)
     assert (

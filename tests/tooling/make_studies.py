@@ -14,12 +14,15 @@ ROOT = Path(__file__).resolve().parents[2]
 
 FIRST_LOOK_SEED = 1203
 WELD_SMOKE_SEED = 4207
+TWO_KILNS_SEED = 6118
 
 GASKET_CREEP = ((310, 4), (340, 6), (355, 5), (355, 9), (410, 8), (460, 12), (520, 11))
 """Clamp load in N and creep in µm: fixed values with two equal loads, whose null is small enough to be counted by hand."""
 
 TRADES = (("welder", 19), ("fitter", 15), ("store", 8))
 GRADES = ("none", "seldom", "weekly", "daily")
+COLOURS = ("straw", "salmon", "red", "plum")
+BLOOMS = ("none", "trace", "patches", "coat")
 
 
 def main(folder: Path) -> None:
@@ -35,6 +38,7 @@ def studies() -> dict[str, str]:
         "first-look/received/rising_trial.csv": first_look(),
         "gasket-creep/received/2026-02-16/creep_tests.csv": gasket_creep(),
         "weld-smoke/received/2026-03-02/shift_samples.csv": weld_smoke(),
+        "two-kilns/received/2026-04-13/brick_tests.csv": two_kilns(),
     }
 
 
@@ -89,6 +93,38 @@ def weld_smoke() -> str:
     units = ("", "", "h", "mg/m³", "µg/g", "g/L", "", "µg/g", "")
     decimal_comma = [[cell.replace(".", ",") for cell in row] for row in rows]
     return text_of(head, [units, *decimal_comma], ";")
+
+
+def two_kilns() -> str:
+    """Return 66 bricks of two kilns: one cracked before the test, one under a jammed press, three whose bloom was not graded."""
+    draw = random.Random(TWO_KILNS_SEED)
+    rows = []
+    for place in range(1, 67):
+        kiln = "Long" if place % 2 else "Round"
+        soak = draw.gauss(1042 if kiln == "Long" else 1031, 14)
+        burnt = (soak - 1036) / 15
+        # The long kiln burns evenly, so that its absorption follows the soak more closely.
+        absorption = 13.5 - 1.5 * burnt + draw.gauss(0, 1.0 if kiln == "Long" else 2.2)
+        density = 1790 - 3 * (absorption - 13.5) + draw.gauss(0, 24)
+        strength = math.exp(3.45 - 0.085 * (absorption - 13.5) + 0.05 * burnt + draw.gauss(0, 0.13))
+        colour = COLOURS[min(3, max(0, round(1.5 + 0.9 * burnt + draw.gauss(0, 0.5))))]
+        bloom = BLOOMS[min(3, max(0, round(0.9 + 0.18 * (absorption - 13.5) + draw.gauss(0, 0.8))))]
+        rows.append(
+            [f"B{place:02d}", kiln, draw.randint(1, 14), f"{soak:.0f}", f"{absorption:.1f}", f"{density:.0f}",
+             f"{strength:.1f}", f"{1000 * strength / density:.2f}", colour, bloom, ""]
+        )  # fmt: skip
+    for place in (11, 34, 58):
+        rows[place][9] = "?"
+    rows[28][10] = "cracked"
+    rows[28][6] = "9.8"
+    rows[28][7] = f"{1000 * 9.8 / float(rows[28][5]):.2f}"
+    rows[45][10] = "platen jammed"
+    rows[45][6] = "58.3"
+    rows[45][7] = f"{1000 * 58.3 / float(rows[45][5]):.2f}"
+    draw.shuffle(rows)
+    head = ("brick", "kiln", "course", "soak_c", "absorption", "density", "strength", "specific", "colour", "bloom", "note")  # fmt: skip
+    units = ("", "", "", "°C", "%", "kg/m³", "MPa", "kJ/kg", "", "", "")
+    return text_of(head, [units, *rows], ",")
 
 
 def text_of(head: tuple[str, ...], rows: list, separator: str) -> str:

@@ -29,7 +29,7 @@ def test_each_row_says_what_it_is_and_what_it_would_change() -> None:
     """A kind, a value, a p or an interval, and an answer; lines and the plan's reasons stand in the first cell."""
     report = told(SUSPECT.analysed())
     table = report.table("sensitivity-A1")
-    assert table.number == "6.1"
+    assert table.number == "11.1"
     assert text_of(table.columns[-1].head) == "Would the finding change?"
     for found in cells(table).values():
         assert found[0] in ("sensitivity", "supplementary")
@@ -49,11 +49,11 @@ def test_a_change_is_a_caveat_and_a_clause_of_the_summary() -> None:
     assert all(row.standing == "sensitivity" for row in changing)
     (sentence, *_) = report.caveats()["would_change"]
     assert sentence.startswith("A1: the finding would be another one ")
-    assert "Table 6.1" in sentence
+    assert "Table 11.1" in sentence
     notes = [text_of(block.prose) for block in report.section("summary").blocks if hasattr(block, "prose")]
     (note,) = [text for text in notes if text.startswith("By sensitivity rows the finding would change")]
     assert f"A1 by {len(changing)} of " in note
-    assert note.endswith("(Table 6.1).")
+    assert note.endswith("(Table 11.1).")
 
 
 def test_suspicious_rows_are_listed_as_such() -> None:
@@ -86,3 +86,28 @@ def test_dependent_rows_are_the_reason_why_there_is_no_table() -> None:
     """Said where the table would stand."""
     report = told(replace(SUSPECT, rows="repeated_within: u, time_order: not applicable").analysed())
     assert "no row of such a table repairs that." in report.text()
+
+
+def test_a_claim_that_no_row_tests_is_said_once() -> None:
+    """Below the table, and not in every row of it."""
+    report = demonstration_report("two-kilns")
+    for name, is_claim in (("A1", False), ("A2", True), ("A3", True)):
+        table = report.table(f"sensitivity-{name}")
+        assert ({found[3] for found in cells(table).values()} == {"not applicable"}) == is_claim
+        told_of = [text_of(note) for note in table.notes if text_of(note).startswith("The finding of this association")]
+        assert len(told_of) == is_claim
+
+
+def test_sets_of_one_row_are_rows() -> None:
+    """Where only single rows were all tried, no "sets of up to 1" are."""
+    heads = list(cells(demonstration_report("two-kilns").table("sensitivity-A1")))
+    assert heads[-1].endswith(
+        "none found among sets of up to 13 rows; every row alone was tried, larger ones by a greedy search"
+    )
+
+
+def test_caveats_stand_with_the_finding_and_tables_below_them() -> None:
+    """So that their line never falls alone on a page behind the tables."""
+    blocks = demonstration_report("two-kilns").section("association-A1").blocks
+    keys = [getattr(block, "key", None) or text_of(block.prose)[:7] for block in blocks[-4:]]  # type: ignore[union-attr]
+    assert keys == ["numbers-A1", "Caveats", "groups-A1", "sensitivity-A1"]

@@ -8,7 +8,7 @@ import pytest
 from analysis.invented import FALLING, MIXED, RISING, Invented, association
 from rankdocket.document.model import FieldList, TableBlock
 from rankdocket.document.prose import text_of
-from writing.reports import Told, told
+from writing.reports import Told, demonstration_report, told
 
 NEAR = "3 4 1 9 2 5 6 8 10 7"
 LONG = " ".join(str(place) for place in range(1, 61))
@@ -180,7 +180,7 @@ def test_the_table_of_what_could_be_shown() -> None:
     report = told(replace(Invented(), associations=plan).analysed())
     table = report.table("could-show")
     assert isinstance(table, TableBlock)
-    assert table.number == "9"
+    assert table.number == "7"
     rows = [[plainly(text_of(cell)) for cell in row] for row in table.rows]
     assert rows[0] == ["A1", "10", "< 0.000001", "0.84", "1.41", "1.37"]
     assert rows[1][3:] == ["–", "–", "–"]
@@ -220,3 +220,25 @@ def test_there_is_no_such_table_where_no_estimate_is_given() -> None:
     """The reasons stand with the associations."""
     report = told(replace(Invented(), columns={"u": RISING, "v": "5 " * 10}).analysed())
     assert "could-show" not in [getattr(block, "key", None) for block in report.section("results-section").blocks]
+
+
+def test_a_claim_is_no_question_of_what_independence_could_show() -> None:
+    """The note names the associations whose finding another test decides, and no others."""
+    words = "A1: the finding is that of a claim, whose own test decides; the size given here is no answer about it."
+    for more, is_said in (("smallest_of_interest: 0.30, claim: above", True), ("smallest_of_interest: 0.30", False)):
+        table = of(NEAR, more).table("could-show")
+        assert (words in [text_of(note) for note in table.notes]) == is_said
+
+
+def test_a_verdict_that_lags_behind_a_shown_claim_says_its_level_is_stricter() -> None:
+    """The verdict takes alpha over the members, the finding the rule of the plan; where they agree nothing is added."""
+    report = demonstration_report("two-kilns")
+    lagging = ": undecided, at a stricter level than the finding."
+    sentences = {
+        name: plainly(text_of(report.section(f"association-{name}").blocks[1].prose))  # type: ignore[union-attr]
+        for name in ("A2", "A3")
+    }
+    assert "a rho within plus or minus 0.40 was shown" in sentences["A3"]
+    assert sentences["A3"].endswith(lagging)
+    assert sentences["A2"].endswith(": above 0.40 shown.")
+    assert listed(report, "numbers-A3")["Verdict about size"].startswith("undecided, at level 0.05 over ")

@@ -11,10 +11,10 @@ from analysis.invented import FALLING, MIXED, RISING, Invented, association
 from rankdocket.analysis.plain import analysis_to_plain
 from rankdocket.analysis.results import Estimate
 from rankdocket.canonical import Plain
-from rankdocket.document.model import FieldList, Items, Number, Paragraph, Prose
+from rankdocket.document.model import FieldList, Items, Number, Paragraph, Prose, TableBlock
 from rankdocket.document.numbers import look_up
 from rankdocket.document.prose import text_of
-from writing.reports import EVERY_FINDING, Told, demonstration_report, study_of_every_finding, told
+from writing.reports import EVERY_FINDING, Told, demonstration_report, sections_of, study_of_every_finding, told
 
 TAU = {"A1": association(more="coefficient: Kendall tau-b")}
 ONE_SIDED = "alpha: 0.05, sidedness: one-sided"
@@ -251,7 +251,25 @@ def test_numbers_of_a_plan_follow_the_number_style() -> None:
         ).analysed()
     )
     text = report.text()
-    assert "alpha, .05, which bounds" in text
+    assert "alpha, .05." in text
     assert "size of interest .30" in text
     assert "0.05" not in text
     assert "0.30" not in text
+
+
+def test_tables_are_numbered_in_the_order_of_the_pages() -> None:
+    """Upwards within the body and within each spread, and a number that counts associations is no other table’s."""
+    report = demonstration_report("two-kilns")
+    seen = [
+        (section.key, block.number)
+        for section in sections_of(report.document)
+        for block in section.blocks
+        if isinstance(block, TableBlock) and block.number[0].isdigit()
+    ]
+    whole = [int(number) for _, number in seen if "." not in number]
+    assert whole == sorted(whole)
+    assert whole == list(range(1, len(whole) + 1))
+    for key in {key for key, number in seen if "." in number}:
+        kinds = [int(number.split(".")[0]) for section, number in seen if section == key]
+        assert kinds == sorted(kinds)
+        assert min(kinds) > max(whole)

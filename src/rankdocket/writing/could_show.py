@@ -10,8 +10,8 @@ from rankdocket.document.numbers import Numbers, look_up
 from rankdocket.document.prose import only, prose
 from rankdocket.writing.phrases import EN_DASH_CELL, N, P, pointer, pointers
 from rankdocket.writing.section import Story
+from rankdocket.writing.size import by_of
 
-TABLE: Final = "Table 9"
 _AT: Final = "could_show/rows_of"
 
 
@@ -21,7 +21,7 @@ def could_show_table(story: Story) -> TableBlock | None:
         return None
     return TableBlock(
         key="could-show",
-        number="9",
+        number="7",
         caption=only("What these rows could show, whatever was found in them"),
         columns=(
             Column(only("Association"), "association", share=2),
@@ -50,9 +50,19 @@ def could_show_table(story: Story) -> TableBlock | None:
                 "to it; it is approximate and does not allow for ties.",
             ),
             *_whose_widths(story),
+            *_claims(story),
             *_reasons(story),
         ),
     )
+
+
+def _claims(story: Story) -> tuple[Prose, ...]:
+    """Return that another test than that of independence decides, where one does."""
+    names = tuple(name for name in story.analysis.results if by_of(story, name) != "rank test")
+    words = (
+        "{names}: the finding is that of a claim, whose own test decides; the size given here is no answer about it."
+    )
+    return (prose(words, names=pointers(names)),) if names else ()
 
 
 def has_answers(story: Story) -> bool:
@@ -81,7 +91,7 @@ def could_show_words(numbers: Numbers, name: str, *, is_strict: bool) -> str:
     strictest = " at the strictest level of the family" if is_strict else ""
     found = numbers.has(f"{at}/smallest_rho/value")
     parts = [
-        f"with power {power}{strictest} a rho of {numbers.coefficient(f'{at}/smallest_rho/value').text} in size would be found"
+        f"with power {power}{strictest} a rho of {numbers.coefficient(f'{at}/smallest_rho/value').text} in size would be told from zero"
         if found
         else f"no smallest detectable rho: {_reason(numbers, f'{at}/smallest_rho')}"
     ]

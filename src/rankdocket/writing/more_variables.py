@@ -79,7 +79,7 @@ def _given_covariates(story: Story, name: str, partial: GivenCovariates, positio
     sided = story.analysis.spec.inference.sidedness
     return TableBlock(
         key=f"given-covariates-{name}",
-        number=f"10.{position}",
+        number=f"8.{position}",
         caption=prose("{name} given covariates", name=pointer(name)),
         columns=(
             Column(only("Coefficient"), "coefficient", share=8),
@@ -143,7 +143,7 @@ def _compared(story: Story, name: str, comparison: Comparison, position: int) ->
         )
     return TableBlock(
         key=f"compared-{name}",
-        number=f"11.{position}",
+        number=f"9.{position}",
         caption=prose("{name} compared with {other}", name=pointer(name), other=other),
         columns=(
             Column(only("rho"), "coefficient", share=8),
@@ -173,7 +173,7 @@ def _groups(story: Story, name: str, subgroups: Subgroups, position: int) -> Tab
     notes = _group_notes(story, at, subgroups)
     return TableBlock(
         key=f"groups-{name}",
-        number=f"12.{position}",
+        number=f"10.{position}",
         caption=prose("{name} in groups by {column}", name=pointer(name), column=Supplied(subgroups.column)),
         columns=(
             Column(only("Group"), "group", share=6),

@@ -45,7 +45,7 @@ def null_sentence(story: Story, name: str) -> Prose:
     return sentences(
         words,
         prose(
-            "{what} would have needed about {duration} and {memory}; the budget was {most} and {room}.",
+            "{what} would have needed, by the forecast, {duration} and {memory}; the budget was {most} and {room}.",
             what=_TOLD[test.choice.route],
             duration=story.numbers.duration(f"{needed}/seconds"),
             memory=story.numbers.memory(f"{needed}/memory"),

@@ -2,6 +2,7 @@
 
 from typing import Final
 
+from rankdocket.analysis.sensitivity.make import OF_A_CLAIM
 from rankdocket.analysis.sensitivity.table import NoTable, SensitivityTable, TableRow
 from rankdocket.document.model import Block, Column, Link, Paragraph, Prose, Supplied, TableBlock
 from rankdocket.document.prose import joined, listed, only, prose, text_of
@@ -22,8 +23,8 @@ def table_link(story: Story, name: str) -> Link:
 
 
 def table_number(story: Story, name: str) -> str:
-    """Return the printed number: 6 and the position of the association."""
-    return f"6.{list(story.analysis.results).index(name) + 1}"
+    """Return the printed number: 11 and the position of the association."""
+    return f"11.{list(story.analysis.results).index(name) + 1}"
 
 
 def table_of(story: Story, name: str) -> SensitivityTable | None:
@@ -100,6 +101,13 @@ def _notes(table: SensitivityTable) -> tuple[Prose, ...]:
             "size is not to be compared. No finding rests on this table."
         )
     ]
+    if any(row.verdict.reason == OF_A_CLAIM for row in table.rows):
+        notes.append(
+            only(
+                "The finding of this association is that of a claim about size or of a null value. No row of this table tests "
+                "that claim: a p-value here is one of independence, so that the last column does not apply."
+            )
+        )
     if table.finding is not None:
         notes.append(
             only(
@@ -145,22 +153,23 @@ def _done(story: Story, at: str, row: TableRow) -> Prose:
 def _searched(story: Story, at: str, row: TableRow, label: str) -> Prose:
     assert row.search is not None
     tried, most = story.numbers.whole(f"{at}/tried"), story.numbers.whole(f"{at}/most")
+    every = only("every row alone") if row.search.tried == 1 else prose("every set of up to {tried} rows", tried=tried)
     if row.rows is None:
         template = (
-            "{label}: none found; every set of up to {tried} rows was tried"
+            "{label}: none found; {every} was tried"
             if row.search.tried == row.search.most
-            else "{label}: none found among sets of up to {most} rows; every set of up to {tried} was tried, larger ones by a greedy search"
+            else "{label}: none found among sets of up to {most} rows; {every} was tried, larger ones by a greedy search"
         )
         unused = {} if row.search.tried == row.search.most else {"most": most}
-        return prose(template, label=label, tried=tried, **unused)
+        return prose(template, label=label, every=every, **unused)
     lines = lines_in_words(story, at, len(row.rows.lines))
     if row.search.how_sure == "exhaustive":
         return prose("{label}: {lines}; no smaller set does", label=label, lines=lines)
     return prose(
-        "{label}: {lines}; an upper bound, found by a greedy search (every set of up to {tried} was tried)",
+        "{label}: {lines}; an upper bound, found by a greedy search ({every} was tried)",
         label=label,
         lines=lines,
-        tried=tried,
+        every=every,
     )
 
 
@@ -189,14 +198,15 @@ def _beside(story: Story, at: str, row: TableRow) -> Prose:
         if row.interval.resampled is None:
             return limits
         return prose("{limits}, {resamples} resamples", limits=limits, resamples=numbers.whole(f"{at}/resamples"))
-    return EN_DASH_CELL if row.absent is None else prose("none: {reason}", reason=row.absent)
+    # What holds for every row of a table is said once, below it.
+    return EN_DASH_CELL if row.absent in (None, OF_A_CLAIM) else prose("none: {reason}", reason=row.absent)
 
 
 def _change(story: Story, at: str, row: TableRow) -> Prose:
     verdict = row.verdict
     if row.ends is not None and row.ends.changing:
         return prose("yes, for each of {rows} rows left out alone", rows=story.numbers.whole(f"{at}/changing_rows"))
-    reason = "" if verdict.reason == (row.absent or "") else verdict.reason
+    reason = "" if verdict.reason in (row.absent or "", OF_A_CLAIM) else verdict.reason
     if verdict.change == "yes" and verdict.finding is not None:
         return prose("yes: {finding}", finding=verdict.finding)
     return prose("{change}: {reason}", change=verdict.change, reason=reason) if reason else only(verdict.change)

@@ -8,6 +8,7 @@ from rankdocket.analysis.results import RankTest
 from rankdocket.analysis.size_results import SizeAnalysis, SizeTests
 from rankdocket.document.model import Number, Prose
 from rankdocket.document.prose import only, prose
+from rankdocket.stats.equivalence import SizeVerdict
 from rankdocket.stats.interval import Interval
 from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.vocabulary import DecidingTest, ExpectedSign
@@ -120,6 +121,19 @@ def verdict_words(story: Story, name: str) -> Prose:
             return only("undecided")
 
 
+def verdict_beside_finding(story: Story, name: str) -> Prose:
+    """Return the verdict with why it lags behind a claim about size that was shown, where it does."""
+    words, tests, claim = verdict_words(story, name), tests_of(story, name), by_of(story, name)
+    verdicts: dict[DecidingTest, SizeVerdict] = {"above": "size above delta shown", "within": "size below delta shown"}
+    is_behind = (
+        tests is not None
+        and claim in verdicts
+        and story.analysis.findings[name].word == "shown"
+        and tests.verdict != verdicts[claim]
+    )
+    return prose("{verdict}, at a stricter level than the finding", verdict=words) if is_behind else words
+
+
 def verdict_sentence(story: Story, name: str) -> Prose:
     """Return the verdict as one sentence with its level; empty where there is none."""
     if tests_of(story, name) is None:
@@ -127,7 +141,7 @@ def verdict_sentence(story: Story, name: str) -> Prose:
     return prose(
         "Verdict about size, by approximate tests at {level}: {verdict}.",
         level=_level(story, name),
-        verdict=verdict_words(story, name),
+        verdict=verdict_beside_finding(story, name),
     )
 
 

@@ -63,10 +63,11 @@ def spread(story: Story, name: str, position: int) -> Section:
     else:
         blocks.append(Paragraph(finding_sentence(story, name), "answer"))
     blocks.append(FieldList(_numbers(story, name), key=f"numbers-{name}"))
+    # Before the supplementary tables: the caveats are those of the finding, and a line of their own fills no page.
+    blocks.append(Paragraph(_caveats(story, name), "note"))
     blocks += more_variables_tables(story, name, position)
     if isinstance(result.estimate, Estimate):
         blocks += sensitivity_blocks(story, name)
-    blocks.append(Paragraph(_caveats(story, name), "note"))
     # Only a spread with plots fills a page of its own.
     opens: Literal["page", "here"] = "page" if isinstance(result.estimate, Estimate) else "here"
     return Section(f"association-{name}", f"6.{position}", title, tuple(blocks), opens=opens)

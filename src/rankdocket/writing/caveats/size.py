@@ -16,7 +16,12 @@ def _rests_on(story: Story) -> tuple[FoundCaveat, ...]:
     names = tuple(name for name in _asked_about_size(story) if by_of(story, name) != "rank test")
     if not names:
         return ()
-    finding = prose(" The finding of {names} rests on such a test.", names=pointers(names))
+    words = (
+        " The finding of {names} rests on such a test."
+        if len(names) == 1
+        else " The findings of {names} rest on such tests."
+    )
+    finding = prose(words, names=pointers(names))
     return (FoundCaveat(names, _basis(finding)),)
 
 

@@ -70,7 +70,7 @@ def _inputs(story: Story, before: Before) -> tuple[Prose, ...]:
 def _table(story: Story, before: Before) -> TableBlock:
     return TableBlock(
         key="changes-table",
-        number="8",
+        number="12",
         caption=only("Each association in the edition before and in this one"),
         columns=(
             Column(only("Association"), "association", share=2),

@@ -22,7 +22,7 @@ from rankdocket.writing.phrases import (
     variables_of,
 )
 from rankdocket.writing.section import SectionRule, Story
-from rankdocket.writing.size import by_of, claim_in_table, claim_named, verdict_words
+from rankdocket.writing.size import by_of, claim_in_table, claim_named, verdict_beside_finding
 from rankdocket.writing.spread import spread
 
 
@@ -175,7 +175,7 @@ def _planned_and_found(story: Story) -> FieldList:
 
 
 def _verdict(story: Story, name: str) -> Prose:
-    words = verdict_words(story, name)
+    words = verdict_beside_finding(story, name)
     return prose("; size: {verdict}", verdict=words) if words.pieces != ("",) else words
 
 
