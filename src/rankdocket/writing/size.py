@@ -145,6 +145,11 @@ def verdict_sentence(story: Story, name: str) -> Prose:
     )
 
 
+def verdict_clause(story: Story, name: str) -> Prose:
+    """Return the verdict without its level, for readers in a hurry; there must be one."""
+    return prose("{verdict}, by approximate tests", verdict=verdict_beside_finding(story, name))
+
+
 def size_rows(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
     """Return the numbers of the tests of size for the list of an association."""
     size = story.analysis.results[name].size

@@ -24,12 +24,15 @@ from rankdocket.writing.phrases import (
 from rankdocket.writing.section import NumberedCaveat, Story
 from rankdocket.writing.sections.changes import moved_findings
 from rankdocket.writing.sensitivity import sensitivity_note
-from rankdocket.writing.size import tests_of, verdict_sentence
+from rankdocket.writing.size import tests_of, verdict_clause
 
 MOST_ASSOCIATIONS: Final = 3
 """So many associations are told of at most; the rest is pointed to."""
 
 MOST_CAVEATS: Final = 3
+
+ROOM: Final = ((3, 3), (2, 3), (2, 2), (2, 1), (1, 3), (1, 2), (1, 1))
+"""Associations told of and caveats quoted, in the order of preference; the first that fits is taken, else the last."""
 
 MOST_LINES: Final = 42
 """Lines of text that a page takes beside its heading, by the count of :func:`_lines`; a page of print is the judge."""
@@ -41,16 +44,15 @@ CHARACTERS: Final = {"body": 70, "note": 82, "item": 66, "field": 60}
 def summary(story: Story) -> Section:
     """Return the one-page summary: primary associations first, as many as the page has room for."""
     names = _in_order(story)
-    shown = min(MOST_ASSOCIATIONS, len(names))
-    blocks = _blocks(story, names, shown)
-    while shown > 1 and sum(map(_lines, blocks)) > MOST_LINES:
-        shown -= 1
-        blocks = _blocks(story, names, shown)
+    choices = ((told, caveats) for told, caveats in ROOM if told <= len(names) or told == 1)
+    for told, caveats in choices:
+        blocks = _blocks(story, names[:told], names[told:], caveats)
+        if sum(map(_lines, blocks)) <= MOST_LINES:
+            break
     return Section("summary", "", only("Summary"), blocks, opens="page")
 
 
-def _blocks(story: Story, names: tuple[str, ...], number: int) -> tuple[Block, ...]:
-    shown, more = names[:number], names[number:]
+def _blocks(story: Story, shown: tuple[str, ...], more: tuple[str, ...], caveats: int) -> tuple[Block, ...]:
     blocks: list[Block] = [
         Paragraph(prose("Question. {question}", question=Supplied(story.analysis.spec.study.question))),
         Paragraph(_tally(story)),
@@ -67,7 +69,7 @@ def _blocks(story: Story, names: tuple[str, ...], number: int) -> tuple[Block, .
             prose("To be read with the result (all caveats: section {section}):", section=Link("requirements", "5"))
         )
     )
-    blocks.append(Items(tuple(caveat.block.prose for caveat in _heaviest(story, shown))))
+    blocks.append(Items(tuple(caveat.block.prose for caveat in _heaviest(story, shown)[:caveats])))
     blocks.append(Paragraph(_changes(story), "note"))
     return tuple(blocks)
 
@@ -167,7 +169,7 @@ def _answer(story: Story, name: str) -> tuple[tuple[str, Prose], ...]:
             )
         )
         if tests_of(story, name) is not None:
-            rows.append(("Size", verdict_sentence(story, name)))
+            rows.append(("Size", verdict_clause(story, name)))
     else:
         rows.append(("Answer", prose("{state}.", state=state_word(result).capitalize())))
         rows.append(("Finding", only(finding_word(story.analysis.findings[name]))))
