@@ -31,6 +31,7 @@ from rankdocket.render.anchors import Anchors, identifier
 from rankdocket.render.columns import set_columns, stays_whole, tail
 from rankdocket.render.fonts import slanted_signs
 from rankdocket.render.markup import trusted
+from rankdocket.render.text import prose_text
 
 _CELL_SPACE: Final = 0.5
 """Em between a cell's text and its right edge, as in the style sheet."""
@@ -46,6 +47,9 @@ _LONG_TABLE: Final = 25
 
 _SHORT_TABLE: Final = 12
 """Rows up to which a table is kept on one page."""
+
+_SHORT_TEXT: Final = 600
+"""Characters up to which it is; a table of few rows with long cells would leave half a page empty before it."""
 
 
 class Setter:
@@ -198,7 +202,7 @@ class Setter:
             notes=[self.prose(note) for note in table.notes],
             landscape=table.landscape,
             long=len(table.rows) >= _LONG_TABLE,
-            short=len(table.rows) + len(table.foot) <= _SHORT_TABLE,
+            short=_is_short(table),
         )
 
     def _figure(self, figure: FigureBlock) -> Markup:
@@ -237,3 +241,8 @@ def _led_to_wide_table(blocks: Sequence[Block]) -> int:
         if not isinstance(block, Paragraph):
             break
     return 0
+
+
+def _is_short(table: TableBlock) -> bool:
+    rows = (*table.rows, *table.foot)
+    return len(rows) <= _SHORT_TABLE and sum(len(prose_text(cell)) for row in rows for cell in row) <= _SHORT_TEXT
