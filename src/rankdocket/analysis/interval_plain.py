@@ -41,15 +41,24 @@ def intervals_to_plain(result: AssociationAnalysis, adjusted: str) -> dict[str, 
     return plain
 
 
-def _interval(result: AssociationAnalysis, interval: Interval | NoInterval, holds: str) -> dict[str, Plain]:
+def limits_to_plain(interval: Interval | NoInterval) -> dict[str, Plain]:
+    """Return limits, level and rule of an interval, or why there is none."""
     if not isinstance(interval, Interval):
         return {"state": "none", "reason": interval.reason}
-    plain: dict[str, Plain] = {
+    return {
         "state": "given",
         "low": filed(interval.low),
         "high": filed(interval.high),
         "level": str(interval.level),
         "by": interval.method,
+    }
+
+
+def _interval(result: AssociationAnalysis, interval: Interval | NoInterval, holds: str) -> dict[str, Plain]:
+    if not isinstance(interval, Interval):
+        return limits_to_plain(interval)
+    plain: dict[str, Plain] = {
+        **limits_to_plain(interval),
         "holds": holds,
         "cap_binds": interval.cap_binds,
         "restraints": list(interval.restraints),

@@ -1,6 +1,7 @@
 """More than two variables as plain data: the keys ``partial``, ``comparison`` and ``subgroups`` of an association."""
 
 from rankdocket.analysis.filing import filed
+from rankdocket.analysis.interval_plain import limits_to_plain
 from rankdocket.analysis.more_results import (
     VARIANCE,
     Absent,
@@ -13,7 +14,6 @@ from rankdocket.analysis.more_results import (
 )
 from rankdocket.canonical import Plain
 from rankdocket.stats.coefficient import Coefficient
-from rankdocket.stats.interval import Interval, NoInterval
 
 
 def more_variables_to_plain(more: MoreVariables) -> dict[str, Plain]:
@@ -83,7 +83,12 @@ def _group(group: Group) -> dict[str, Plain]:
     head: dict[str, Plain] = {"label": group.label, "n": group.n}
     if isinstance(group.coefficient, Absent):
         return {**head, **_absent(group.coefficient)}
-    return {**head, "state": "estimated", **_coefficient(group.coefficient), "interval": _interval(group.interval)}
+    return {
+        **head,
+        "state": "estimated",
+        **_coefficient(group.coefficient),
+        "interval": limits_to_plain(group.interval),
+    }
 
 
 def _difference(difference: Difference | Absent) -> dict[str, Plain]:
@@ -106,17 +111,6 @@ def _coefficient(coefficient: Coefficient) -> dict[str, Plain]:
         "numerator": str(coefficient.numerator),
         "x_square": str(coefficient.x_square),
         "y_square": str(coefficient.y_square),
-    }
-
-
-def _interval(interval: Interval | NoInterval) -> dict[str, Plain]:
-    if isinstance(interval, NoInterval):
-        return {"state": "none", "reason": interval.reason}
-    return {
-        "state": "given",
-        "low": filed(interval.low),
-        "high": filed(interval.high),
-        "by": interval.method,
     }
 
 

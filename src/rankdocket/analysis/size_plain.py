@@ -7,10 +7,10 @@ from fractions import Fraction
 from rankdocket.analysis.could_show import CouldShow, could_show
 from rankdocket.analysis.deciding import deciding_p, deciding_test
 from rankdocket.analysis.filing import filed, filed_beside
+from rankdocket.analysis.interval_plain import limits_to_plain
 from rankdocket.analysis.results import AssociationAnalysis, CheckOutcome, Screened
 from rankdocket.analysis.size_results import SizeAnalysis, SizeTests
 from rankdocket.canonical import Plain
-from rankdocket.stats.interval import Interval, NoInterval
 from rankdocket.stats.no_answer import NoAnswer
 from rankdocket.study.spec import StudySpec
 
@@ -90,20 +90,8 @@ def _tests(tests: SizeTests, alpha: Decimal) -> dict[str, Plain]:
         "p_above": filed_beside(tests.p_above, alpha),
         "p_within": filed_beside(tests.p_within, alpha),
         "level": filed(tests.level),
-        "interval_of_equivalence": _interval(tests.interval),
+        "interval_of_equivalence": limits_to_plain(tests.interval),
         "verdict": tests.verdict,
-    }
-
-
-def _interval(interval: Interval | NoInterval) -> dict[str, Plain]:
-    if isinstance(interval, NoInterval):
-        return {"state": "none", "reason": interval.reason}
-    return {
-        "state": "given",
-        "low": filed(interval.low),
-        "high": filed(interval.high),
-        "level": str(interval.level),
-        "by": interval.method,
     }
 
 
