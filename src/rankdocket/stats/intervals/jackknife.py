@@ -123,11 +123,15 @@ JACKKNIFE: Final = IntervalMethod(
     jackknife,
     Description(
         "The interval was computed on the inverse hyperbolic tangent scale with the jackknife standard error, every "
-        "row left out in turn and the others ranked anew, and a quantile of Student’s t whose degrees of freedom "
-        "follow from the influence values; it is never narrower than the interval of Bonett and Wright. A coefficient "
-        "nearer to one than a cap, half of the discordance of one row moved across the widest tie steps, was replaced "
-        "by that cap, and a limit was drawn back to a guard, the largest share of related rows at which unrelated ones "
-        "could have gone unseen. Its level is approximate.",
+        "row left out in turn and the others ranked anew, and a quantile of Student’s t whose degrees of freedom are twice "
+        "the rows over the kurtosis of the influence values less one, three at least; half its width is never less than that "
+        "of Bonett and Wright, nor more than two and a half times it. With fewer than ten rows the variance is instead a "
+        "mean of that of Bonett and Wright, with the weight of ten rows, and the larger of the jackknife’s and that of the "
+        "influence values, with the weight of the rows there are; the degrees of freedom are then multiplied by the square of "
+        "this mean over the part that the larger one has in it. A coefficient nearer to one than a cap, half of the "
+        "discordance of one row moved across the widest tie steps, was replaced by that cap, and a limit was drawn back to a "
+        "guard, the error left to one side to the power of one over the rows: the largest share of related rows at which "
+        "unrelated ones could have gone unseen. Its level is approximate.",
         ("tukey1958", "satterthwaite1946", "bonett2000", "croux2010"),
     ),
     "From 4 rows; simulated at the two-sided level 0.95 for 6 to 200 rows. It holds its level in nearly all kinds of "
