@@ -53,7 +53,7 @@ def test_the_row_used_is_filed() -> None:
     answer = coverage_of(study.results["A1"])
     assert isinstance(answer, SimulatedCoverage)
     assert (filed["state"], filed["seed"], filed["n"]) == ("simulated", SEED, 10)
-    assert (filed["tie_pattern"], filed["family"]) == ("none or few ties", "normal-type dependence")
+    assert (filed["tie_pattern"], filed["family"]) == ("no ties or small tie groups", "normal-type dependence")
     assert Fraction(filed["share"]) == answer.nearest.coverage
     assert filed["share"] == f"{answer.nearest.covered}/{filed['samples']}"
     assert Fraction(filed["lowest"]["share"]) == answer.lowest.coverage <= answer.nearest.coverage

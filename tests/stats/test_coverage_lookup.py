@@ -40,9 +40,9 @@ def why_not(question: CoverageQuestion) -> str:
 @pytest.mark.parametrize(
     ("x", "y", "pattern", "family"),
     [
-        (UNTIED, UNTIED, "none or few ties", "normal"),
-        (ONE_PAIR, UNTIED, "none or few ties", "normal"),
-        (PAIRS_INSIDE, UNTIED, "none or few ties", "normal"),
+        (UNTIED, UNTIED, "no ties or small tie groups", "normal"),
+        (ONE_PAIR, UNTIED, "no ties or small tie groups", "normal"),
+        (PAIRS_INSIDE, UNTIED, "no ties or small tie groups", "normal"),
         (FIVE, FIVE, "few levels in both variables", "five levels"),
         (SKEWED, FIVE, "few levels in both variables", "five skewed levels"),
         (FIVE, THREE, "few levels in both variables", "three levels"),

@@ -74,7 +74,7 @@ def test_counts_belong_together() -> None:
         drawn = BOOTSTRAP_SAMPLES if row.method == "BCa bootstrap" else samples_of(row.n)
         assert 0 < row.covered <= row.given <= row.drawn == drawn
         assert 0 < row.width <= 2
-        if row.family.pattern == "none or few ties" and row.method != "BCa bootstrap":
+        if row.family.pattern == "no ties or small tie groups" and row.method != "BCa bootstrap":
             assert row.given == row.drawn
         assert row.error <= 0.5 / sqrt(row.given)
 

@@ -81,7 +81,7 @@ def test_the_line_names_the_row_and_the_lowest() -> None:
     found = answer(report)
     share, lowest = (f"{float(100 * row.coverage):.1f}%" for row in (found.nearest, found.lowest))
     assert line(report) == (
-        f"{share} of 6,000 samples at n\u00a0=\u00a020, rho\u00a00.950, none or few ties, normal-type dependence; "
+        f"{share} of 6,000 samples at n\u00a0=\u00a020, rho\u00a00.950, no ties or small tie groups, normal-type dependence; "
         f"lowest at that n: {lowest} ({found.lowest.family.words})"
     )
 

@@ -9,7 +9,7 @@ from rankdocket.stats.coverage.lookup import NotSimulated, SimulatedCoverage
 from rankdocket.writing.phrases import address, coefficient_symbol
 from rankdocket.writing.section import Story
 
-UNTIED: Final = "none or few ties"
+UNTIED: Final = "no ties or small tie groups"
 
 COVERAGE_SENTENCE: Final = (
     "Beside an interval stands its simulated coverage: the share of simulated samples, from a population whose coefficient "

@@ -13,7 +13,7 @@ from scipy.special import gammaincinv, ndtr, ndtri
 Floats: TypeAlias = npt.NDArray[np.float64]
 
 TiePattern: TypeAlias = Literal[
-    "none or few ties", "few levels in one variable", "few levels in both variables", "tied at one end"
+    "no ties or small tie groups", "few levels in one variable", "few levels in both variables", "tied at one end"
 ]
 """What tie groups look like, as :func:`rankdocket.stats.coverage.tie_pattern.tie_pattern` tells them apart."""
 
@@ -149,21 +149,33 @@ FAMILIES: Final = MappingProxyType(
     {
         family.key: family
         for family in (
-            Family(NORMAL, "normal-type dependence", "none or few ties", 0.99999, _normal),
-            Family(HEAVY_TAILS, "outlying rows in both variables at once", "none or few ties", 0.99999, _heavy_tails),
-            Family(AGREEING_BELOW, "closer agreement among low values", "none or few ties", 200.0, _agreeing_below),
+            Family(NORMAL, "normal-type dependence", "no ties or small tie groups", 0.99999, _normal),
+            Family(
+                HEAVY_TAILS,
+                "outlying rows in both variables at once",
+                "no ties or small tie groups",
+                0.99999,
+                _heavy_tails,
+            ),
+            Family(
+                AGREEING_BELOW,
+                "closer agreement among low values",
+                "no ties or small tie groups",
+                200.0,
+                _agreeing_below,
+            ),
             Family(
                 SPREAD_AT_BOTH_ENDS,
                 "spread grows towards both ends of x",
-                "none or few ties",
+                "no ties or small tie groups",
                 400.0,
                 _spread_at_both_ends,
             ),
-            Family(SPREAD_WITH_X, "spread grows with x", "none or few ties", 400.0, _spread_with_x),
+            Family(SPREAD_WITH_X, "spread grows with x", "no ties or small tie groups", 400.0, _spread_with_x),
             Family(
                 GROSS_ERRORS,
                 "nearly perfect order with gross errors in one row of ten",
-                "none or few ties",
+                "no ties or small tie groups",
                 0.99999,
                 _gross_errors,
             ),

@@ -46,14 +46,14 @@ def tie_pattern(x: TieGroups, y: TieGroups) -> TiePattern:
 
     * "few levels in both variables" or "few levels in one variable", where they are in few levels;
     * "tied at one end", where neither is in few levels and at least one is tied at one end;
-    * "none or few ties" otherwise.
+    * "no ties or small tie groups" otherwise.
     """
     in_levels = [_in_few_levels(ties) for ties in (x, y)]
     if all(in_levels):
         return "few levels in both variables"
     if any(in_levels):
         return "few levels in one variable"
-    return "tied at one end" if _end_share(x) or _end_share(y) else "none or few ties"
+    return "tied at one end" if _end_share(x) or _end_share(y) else "no ties or small tie groups"
 
 
 def nearest_families(x: TieGroups, y: TieGroups) -> tuple[str, ...]:
@@ -65,7 +65,7 @@ def nearest_families(x: TieGroups, y: TieGroups) -> tuple[str, ...]:
     """
     pattern = tie_pattern(x, y)
     match pattern:
-        case "none or few ties":
+        case "no ties or small tie groups":
             first = NORMAL
         case "few levels in one variable":
             first = ONE_IN_LEVELS
