@@ -10,6 +10,7 @@ from rankdocket.analysis.results import Analysis
 from rankdocket.canonical import Plain, readable_bytes, sha256
 from rankdocket.document.model import Block, Document, Paragraph, Section, TableBlock
 from rankdocket.document.prose import all_prose, text_of
+from rankdocket.study.plan_changes import PlanChange
 from rankdocket.study.writer import spec_as_used
 from rankdocket.writing.caveats import CAVEATS
 from rankdocket.writing.section import Before, Ingredient, IssueFacts, Story
@@ -95,6 +96,9 @@ def told(analysis: Analysis, occasion: Occasion = FIRST) -> Told:
     return Told(analysis, plain, tell(analysis, plain, issue), write(analysis, plain, issue))
 
 
+PLAN_CHANGE = PlanChange("inference.alpha", '"0.05"', '"0.01"')
+
+
 def replacing(
     old: Analysis, *, reason: str = "a corrected file", plan_changed: bool = False, is_draft: bool = False
 ) -> Occasion:
@@ -102,7 +106,7 @@ def replacing(
     return Occasion(
         reason=reason,
         replaces="edition 1 of 2026-01-05",
-        before=Before(analysis_to_plain(old), plan_changed),
+        before=Before(analysis_to_plain(old), (PLAN_CHANGE,) if plan_changed else ()),
         is_draft=is_draft,
     )
 

@@ -236,7 +236,14 @@ FILE = Invented(columns={"u": RISING, "v": MIXED}).data_text()
         (FILE, False, ["the file is the same, byte for byte.", "The planned keys of the spec are the same."]),
         (FILE.replace("\n", "\r\n"), False, ["the bytes differ, the values read are the same.", "The planned keys"]),
         (FILE.replace("10,5", "10,50"), False, ["the values differ.", "The planned keys of the spec are the same."]),
-        (FILE, True, ["the file is the same, byte for byte.", "The planned keys of the spec differ; both plans stand"]),
+        (
+            FILE,
+            True,
+            [
+                "the file is the same, byte for byte.",
+                "The planned keys of the spec differ: the plan was changed after an edition with results had been issued.",
+            ],
+        ),
     ],
     ids=["same", "other bytes", "other values", "other plan"],
 )
@@ -245,6 +252,39 @@ def test_each_input_is_compared_with_the_one_before(before: str, plan_changed: b
     table, plan = inputs(told(with_file(FILE), replacing(with_file(before), plan_changed=plan_changed)))
     assert table == f"Table trials: {said[0]}"
     assert plan.startswith(said[1])
+
+
+def deviations(report: Told) -> str:
+    """Return what is said of the plan's history."""
+    (section,) = [each for each in report.section("methods").sections if each.key == "deviations"]
+    block = section.blocks[0]
+    assert isinstance(block, Paragraph)
+    return text_of(block.prose)
+
+
+def test_a_plan_changed_after_results_were_seen_is_said_and_its_keys_are_listed() -> None:
+    """In section 7 by key, and under the heading of deviations; an unchanged plan is said to be so."""
+    changed = told(NOW, replacing(NOW, plan_changed=True))
+    table = changed.table("plan-changes-table")
+    assert [[text_of(cell) for cell in row] for row in table.rows] == [["inference.alpha", '"0.05"', '"0.01"']]
+    assert len(table.notes) == 1
+    assert deviations(changed).endswith(
+        "The plan differs from that of edition 1 of 2026-01-05, whose results had been seen: section 7 lists the keys."
+    )
+    same = told(NOW, replacing(NOW))
+    assert all(getattr(block, "key", "") != "plan-changes-table" for block in same.section("changes").blocks)
+    assert deviations(same).endswith("It is the plan of edition 1 of 2026-01-05, unchanged.")
+    assert "edition" not in deviations(told(NOW))
+
+
+def test_of_many_changed_keys_twenty_are_printed_and_the_others_counted() -> None:
+    """The rest stands in the record copy."""
+    occasion = replacing(NOW, plan_changed=True)
+    assert occasion.before is not None
+    many = replace(occasion, before=replace(occasion.before, plan_changes=occasion.before.plan_changes * 23))
+    table = told(NOW, many).table("plan-changes-table")
+    assert len(table.rows) == 20
+    assert text_of(table.notes[-1]) == "And 3 more, in the record copy."
 
 
 def test_the_table_of_findings_is_one_of_the_numbered_tables() -> None:

@@ -17,6 +17,7 @@ from rankdocket.document.model import Document
 from rankdocket.document.plain import document_to_plain
 from rankdocket.render.rendition import Rendition, render
 from rankdocket.study.plan import plan_of
+from rankdocket.study.plan_changes import plan_changes
 from rankdocket.study.writer import spec_as_used
 from rankdocket.vocabulary import Status
 from rankdocket.workflow.moment import Moment
@@ -166,7 +167,9 @@ def _before(study: Study, issue: Issue) -> Before | None:
         return None
     return Before(
         plain=json.loads(issue.before[ANALYSIS_BEFORE]),
-        plan_changed=issue.before[PLAN_BEFORE] != canonical_bytes(plan_of(study.spec)),
+        plan_changes=plan_changes(
+            json.loads(issue.before[PLAN_BEFORE]), json.loads(canonical_bytes(plan_of(study.spec)))
+        ),
     )
 
 

@@ -7,6 +7,7 @@ from rankdocket.analysis.results import Analysis
 from rankdocket.canonical import Plain
 from rankdocket.document.model import CaveatBlock, Section
 from rankdocket.document.numbers import Numbers
+from rankdocket.study.plan_changes import PlanChange
 from rankdocket.vocabulary import Status
 
 
@@ -21,10 +22,10 @@ class Ingredient:
 
 @dataclass(frozen=True, slots=True)
 class Before:
-    """The edition that this one replaces: its analysis.json, and whether its planned keys were others."""
+    """The edition that this one replaces: its analysis.json, and the planned keys that were others."""
 
     plain: Mapping[str, Plain]
-    plan_changed: bool
+    plan_changes: tuple[PlanChange, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

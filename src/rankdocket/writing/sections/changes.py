@@ -2,6 +2,7 @@
 
 from collections.abc import Iterator
 from dataclasses import replace
+from typing import Final
 
 from rankdocket.document.model import Block, Column, Emphasis, Items, Paragraph, Prose, Section, Supplied, TableBlock
 from rankdocket.document.numbers import Numbers, look_up
@@ -9,6 +10,9 @@ from rankdocket.document.prose import listed, only, prose
 from rankdocket.writing.findings import finding_word
 from rankdocket.writing.phrases import EN_DASH_CELL, P, address, full_stop, pointer
 from rankdocket.writing.section import Before, SectionRule, Story
+
+MOST_KEYS: Final = 20
+"""Changed keys that are printed."""
 
 
 def write(story: Story) -> Section:
@@ -35,6 +39,7 @@ def write(story: Story) -> Section:
             template, old=Supplied(facts.replaces), reason=full_stop(facts.reason), moved=moved_findings(story)
         )
         blocks = [Paragraph(opening), Items(_inputs(story, facts.before)), _table(story, facts.before)]
+        blocks.extend(_plan_table(facts.before))
     return Section("changes", "7", only("Changes since the last edition"), tuple(blocks))
 
 
@@ -60,11 +65,40 @@ def _inputs(story: Story, before: Before) -> tuple[Prose, ...]:
         else:
             sentences.append(prose("Table {table}: the values differ.", table=code))
     sentences.append(
-        only("The planned keys of the spec differ; both plans stand in the record copy, this one and the one before.")
-        if before.plan_changed
+        only(
+            "The planned keys of the spec differ: the plan was changed after an edition with results had been issued. Both "
+            "plans stand in the record copy, this one and the one before."
+        )
+        if before.plan_changes
         else only("The planned keys of the spec are the same.")
     )
     return tuple(sentences)
+
+
+def _plan_table(before: Before) -> tuple[TableBlock, ...]:
+    """Return the planned keys that differ; nothing where none does."""
+    changes, more = before.plan_changes[:MOST_KEYS], len(before.plan_changes) - MOST_KEYS
+    if not changes:
+        return ()
+    unnamed = (prose("And {more} more, in the record copy.", more=Supplied(str(more))),) if more > 0 else ()
+    return (
+        TableBlock(
+            key="plan-changes-table",
+            number="13",
+            caption=only("Planned keys that differ from those of the edition before"),
+            columns=(
+                Column(only("Key"), "key", share=5),
+                Column(only("Value before"), "value_before", share=5),
+                Column(only("Value now"), "value", share=5),
+            ),
+            rows=tuple((only(Emphasis(each.key, "code")), _planned(each.old), _planned(each.new)) for each in changes),
+            notes=(only("Values as plan.json writes them; –: that plan has no such key."), *unnamed),
+        ),
+    )
+
+
+def _planned(value: str | None) -> Prose:
+    return EN_DASH_CELL if value is None else only(Emphasis(value, "code"))
 
 
 def _table(story: Story, before: Before) -> TableBlock:

@@ -7,7 +7,7 @@ from rankdocket.analysis.checks import CHECKS
 from rankdocket.analysis.coverage import coverage_of
 from rankdocket.analysis.intervals import AFTER_SELECTION, SIMULTANEOUS
 from rankdocket.analysis.results import Estimate, RankTest
-from rankdocket.document.model import Link, Number, Paragraph, Prose, Section
+from rankdocket.document.model import Link, Number, Paragraph, Prose, Section, Supplied
 from rankdocket.document.prose import joined, only, prose, text_of
 from rankdocket.references import Description
 from rankdocket.stats.chatterjee import XI, XI_NULL
@@ -27,7 +27,7 @@ from rankdocket.writing.coverage import COVERAGE_SENTENCE
 from rankdocket.writing.described import described
 from rankdocket.writing.intervals import given
 from rankdocket.writing.more_variables_methods import more_variables_descriptions
-from rankdocket.writing.phrases import address, full_stop, interval_holds, pointers
+from rankdocket.writing.phrases import address, full_stop, interval_holds, pointers, sentences
 from rankdocket.writing.section import SectionRule, Story
 from rankdocket.writing.sensitivity_methods import sensitivity_paragraph
 from rankdocket.writing.shape import any_shape, any_xi_null
@@ -39,7 +39,7 @@ def write(story: Story) -> Section:
     parts = [
         (key, title, tuple(Paragraph(text) for text in paragraphs)) for key, title, paragraphs in method_parts(story)
     ]
-    parts.append(("deviations", only("Deviations from the plan"), (Paragraph(_DEVIATIONS),)))
+    parts.append(("deviations", only("Deviations from the plan"), (Paragraph(_deviations(story)),)))
     return Section(
         "methods",
         "4",
@@ -75,10 +75,31 @@ def method_paragraphs(story: Story) -> tuple[Prose, ...]:
     return tuple(paragraph for _, _, paragraphs in method_parts(story) for paragraph in paragraphs)
 
 
-_DEVIATIONS: Final = only(
+_RUN: Final = only(
     "The plan printed in the appendix is the one that was run. Whether it was fixed before the data were seen is not "
     "recorded: no plan was locked."
 )
+
+
+def _deviations(story: Story) -> Prose:
+    """Return what is known of the plan’s history; that results had been seen before it was changed is said."""
+    facts = story.facts
+    if facts.replaces is None:
+        return _RUN
+    old = Supplied(facts.replaces)
+    if facts.before is None:
+        compared = prose(
+            "Whether it differs from that of {old} could not be told: that record was not at hand.", old=old
+        )
+    elif facts.before.plan_changes:
+        compared = prose(
+            "The plan differs from that of {old}, whose results had been seen: section {section} lists the keys.",
+            old=old,
+            section=Link("changes", "7"),
+        )
+    else:
+        compared = prose("It is the plan of {old}, unchanged.", old=old)
+    return sentences(_RUN, compared)
 
 
 def _ranking(story: Story) -> Prose:
