@@ -73,6 +73,29 @@ def test_the_rows_stated_give_the_power_stated(name: str) -> None:
     assert fewer <= target + error
 
 
+def test_with_few_rows_the_formula_states_more_than_the_exact_test_has() -> None:
+    """Five rows for a rho of 0.99 and eleven at a small level are marked as overstated, and are."""
+    rng = np.random.default_rng(4_082)
+    for question in (replace(SHOW, rho=Decimal("0.99")), replace(SHOW, rho=Decimal("0.90"), questions=20)):
+        answer = size(question)
+        assert isinstance(answer, ShowAnswer)
+        assert isinstance(answer.power, float)
+        assert answer.is_overstated
+        assert _power(question, answer.rows, rng) < answer.power - 0.1
+
+
+@pytest.mark.parametrize(
+    ("rho", "alpha", "questions"), [("0.75", "0.05", 1), ("0.70", "0.05", 6), ("0.60", "0.05", 20)]
+)
+def test_with_enough_rows_the_exact_test_has_the_power_asked_for(rho: str, alpha: str, questions: int) -> None:
+    """Near the fewest rows that are not marked, within fifteen thousandths."""
+    question = replace(SHOW, rho=Decimal(rho), alpha=Decimal(alpha), questions=questions)
+    answer = size(question)
+    assert isinstance(answer, ShowAnswer)
+    assert answer.formula_from <= answer.rows <= answer.formula_from + 1
+    assert _power(question, answer.rows, np.random.default_rng(4_083)) >= float(question.power) - 0.015
+
+
 @pytest.mark.parametrize(
     ("target", "width", "level"), [("0.40", "0.30", "0.95"), ("0.70", "0.30", "0.90"), ("0.00", "0.80", "0.95")]
 )

@@ -82,11 +82,40 @@ def test_the_answer_says_how_it_is_decided() -> None:
     words = _words(_leaf("show everything"))
     assert "To show a rho of −0.40 with power 0.85, " in words
     assert "6 questions share an alpha of 0.05, each tested at 0.0083 one-sided, on the side of that rho." in words
-    assert re.search(r"The expected ties leave −0\.37\d of that rho", words)
+    assert re.search(r"The expected ties \([^)]*\) bring that rho nearer to zero, to −0\.37\d, and", words)
     assert re.search(r"With 10% of the rows lacking a value, \d+ rows have to be collected\.", words)
     assert "Dunn 1961" in words
     assert "Nešlehová 2007" in words
     assert "bivariate normal law" in words
+
+
+def test_so_few_rows_that_the_formula_overstates_are_said_to_be_few() -> None:
+    """In the answer, beside the power, below the table, as the first caveat and in the filed answer."""
+    story = _told("show near 1")
+    words = _words(size_leaf(story, "9.9.9"))
+    assert story.plain["power_may_be_overstated"] is True
+    assert (
+        " complete rows are needed by a formula that tends to overstate the power with so few rows, tested at" in words
+    )
+    assert re.search(r"the power is 0\.\d+ by the formula, though the exact test can have less", words)
+    assert "Where fewer than 12 rows stand, the formula tends to overstate the power" in words
+    assert (
+        "With so few rows, fewer than 12, the formula tends to overstate the power; the exact test can have less."
+        in words
+    )
+    assert _told("show").plain["power_may_be_overstated"] is False
+    assert "overstate" not in _words(_leaf("show"))
+
+
+def test_expected_shares_are_named_and_said_to_be_rescaled_where_they_do_not_add_up() -> None:
+    """Those of the second variable add up to 28; shares that add up to a hundred are used as they are."""
+    words = _words(_leaf("show everything"))
+    assert "The expected ties (values in shares of 10 : 20 : 40 : 20 : 10, and of 1 : 2 : 3" in words
+    rescaled = "Shares that do not add up to a hundred percent were rescaled to do so."
+    assert rescaled in words
+    five = size(replace(SHOW, rows=replace(PLAIN, first=FIVE)))
+    assert not isinstance(five, NoAnswer)
+    assert rescaled not in _words(size_leaf(told(five, size_to_plain(five, "9.9.9")), "9.9.9"))
 
 
 def test_what_does_not_apply_is_not_said() -> None:

@@ -42,6 +42,8 @@ def _show(answer: ShowAnswer) -> tuple[dict[str, Plain], dict[str, Plain]]:
         "alpha_each": filed(question.planned.tail * (2 if question.sidedness == "two-sided" else 1)),
     }
     found: dict[str, Plain] = {
+        "formula_from": answer.formula_from,
+        "power_may_be_overstated": answer.is_overstated,
         "power": _value(answer.power),
         "smallest_rho": _value(answer.smallest),
         "interval_width": _value(answer.width),

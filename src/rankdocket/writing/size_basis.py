@@ -28,8 +28,19 @@ def basis(story: Told) -> tuple[Block, ...]:
 
 def caveats(story: Told) -> tuple[CaveatBlock, ...]:
     """Return the caveats of a plan."""
-    keyed = (("shape", _shape(story)), ("ties", _ties(story)), ("planned", _planned(story)))
+    few = (
+        (("few-rows", _few_rows(story)),) if isinstance(story.answer, ShowAnswer) and story.answer.is_overstated else ()
+    )
+    keyed = (*few, ("shape", _shape(story)), ("ties", _ties(story)), ("planned", _planned(story)))
     return tuple(CaveatBlock(key, number, words) for number, (key, words) in enumerate(keyed, 1))
+
+
+def _few_rows(story: Told) -> Prose:
+    return prose(
+        "With so few rows, fewer than {least}, the formula tends to overstate the power; the exact test can have less. A "
+        "few rows more make up for it.",
+        least=story.numbers.whole("formula_from"),
+    )
 
 
 def _shape(story: Told) -> Prose:

@@ -1,6 +1,7 @@
 """Rows needed to show a rho, in words, as a table and as a curve."""
 
 from collections.abc import Mapping
+from dataclasses import replace
 
 from rankdocket.analysis.sizing import ShowAnswer
 from rankdocket.canonical import Plain
@@ -16,10 +17,13 @@ def shown_answer(story: Told) -> Prose:
     numbers = story.numbers
     return sentences(
         prose(
-            "To show a rho of {rho} with power {power}, {rows} complete rows are needed{way}.",
+            "To show a rho of {rho} with power {power}, {rows} complete rows are needed{by}{way}.",
             rho=story.rho("question/rho"),
             power=numbers.level("question/power"),
             rows=numbers.whole("rows"),
+            by=" by a formula that tends to overstate the power with so few rows"
+            if _answer(story).is_overstated
+            else "",
             way=_way(story),
         ),
         what_ties_leave(story),
@@ -49,7 +53,14 @@ def shown_rows(story: Told) -> TableBlock:
         (prose("Power {power}", power=story.numbers.level(f"table/powers/{i}")), f"power_{power}")
         for i, power in enumerate(powers)
     )
-    return rows_table(story, heads, only("Complete rows needed, by the rho to be shown and the power."))
+    table = rows_table(story, heads, only("Complete rows needed, by the rho to be shown and the power."))
+    if not _answer(story).has_overstated_lines:
+        return table
+    note = prose(
+        "Where fewer than {least} rows stand, the formula tends to overstate the power; the exact test can have less.",
+        least=story.numbers.whole("formula_from"),
+    )
+    return replace(table, notes=(*table.notes, note))
 
 
 def shown_with_rows(story: Told) -> Prose:
@@ -58,7 +69,12 @@ def shown_with_rows(story: Told) -> Prose:
     rows = numbers.whole("rows")
     parts = []
     if story.has("power"):
-        parts.append(prose("With {rows} rows the power is {power}", rows=rows, power=numbers.coefficient("power", 3)))
+        template = (
+            "With {rows} rows the power is {power} by the formula, though the exact test can have less"
+            if _answer(story).is_overstated
+            else "With {rows} rows the power is {power}"
+        )
+        parts.append(prose(template, rows=rows, power=numbers.coefficient("power", 3)))
     if story.has("smallest_rho"):
         parts.append(
             prose(
@@ -122,7 +138,7 @@ def shown_figure(story: Told) -> FigureBlock:
         "1",
         "rows-curve",
         caption,
-        f"{text_of(caption)} With them the power is {power.text}.",
+        f"{text_of(caption)} With them the power is {power.text} by the formula.",
         {
             "x_label": "complete rows",
             "y_label": "power",

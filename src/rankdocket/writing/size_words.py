@@ -111,10 +111,25 @@ def what_ties_leave(story: Told) -> Prose:
     """Return the sentence about ties; empty where none are expected."""
     if not story.answer.question.rows.has_ties:
         return only("")
-    return prose(
-        "The expected ties leave {left} of that rho, and the rows are reckoned for it.",
-        left=story.numbers.coefficient("rho_left", 3),
+    return joined(
+        (
+            prose(
+                "The expected ties ({classes}) bring that rho {way} {left}, and the rows are reckoned for it.",
+                classes=_ties(story),
+                way="down to" if story.answer.left > 0 else "nearer to zero, to",
+                left=story.numbers.coefficient("rho_left", 3),
+            ),
+            *_rescaled(story),
+        )
     )
+
+
+def _rescaled(story: Told) -> tuple[Prose, ...]:
+    """Return that shares were rescaled, where those given add up neither to a hundred nor to one."""
+    rows = story.answer.question.rows
+    if all(shares is None or sum(shares) in (1, 100) for shares in (rows.first, rows.second)):
+        return ()
+    return (only("Shares that do not add up to a hundred percent were rescaled to do so."),)
 
 
 def rows_table(story: Told, heads: tuple[tuple[Prose, str], ...], caption: Prose) -> TableBlock:
