@@ -3,8 +3,10 @@
 from dataclasses import replace
 
 from analysis.invented import INDEPENDENT, Invented
+from rankdocket.analysis.sensitivity.table import SensitivityTable, Verdict
 from rankdocket.document.model import TableBlock
 from rankdocket.document.prose import text_of
+from rankdocket.writing.sensitivity import changing_in_words, sensitivity_blocks
 from writing.reports import Told, demonstration_report, study_of_every_finding, told
 
 SUSPECT = Invented(
@@ -51,9 +53,40 @@ def test_a_change_is_a_caveat_and_a_clause_of_the_summary() -> None:
     assert sentence.startswith("A1: the finding would be another one ")
     assert "Table 11.1" in sentence
     notes = [text_of(block.prose) for block in report.section("summary").blocks if hasattr(block, "prose")]
-    (note,) = [text for text in notes if text.startswith("By sensitivity rows the finding would change")]
-    assert f"A1 by {len(changing)} of " in note
-    assert note.endswith("(Table 11.1).")
+    (note,) = [text for text in notes if text.startswith("By sensitivity rows, beside the search for rows to remove, ")]
+    counted = [
+        row
+        for head, row in cells(report.table("sensitivity-A1")).items()
+        if row[0] == "sensitivity" and row[3].startswith(("yes", "no")) and not head.startswith("The smallest set")
+    ]
+    assert not any(row[3].startswith(("no finding", "not applicable")) for row in counted)
+    changed = sum(row[3].startswith("yes") for row in counted)
+    assert f"the finding would change: A1 by {changed or 'none'} of {len(counted)} (Table 11.1)." in note
+
+
+def test_one_row_is_spoken_of_as_one() -> None:
+    """In the table and in the caveat; more rows are counted."""
+    report = demonstration_report("two-kilns")
+    story = report.story
+    row = next(row for row in story.analysis.sensitivity["A1"].rows if row.ends is not None)  # type: ignore[union-attr]
+    assert row.ends is not None
+    one = replace(row, ends=replace(row.ends, changing=1), verdict=Verdict("yes"))
+    single = replace(
+        story,
+        analysis=replace(story.analysis, sensitivity={"A1": SensitivityTable((one,), "shown")}),
+    )
+    assert [text_of(part) for part in changing_in_words(single, "A1")] == ["without one row"]
+    (table,) = sensitivity_blocks(single, "A1")
+    assert isinstance(table, TableBlock)
+    assert text_of(table.rows[0][4]) == "yes, for one row left out alone"
+
+
+def test_all_orderings_of_the_studentised_test_are_not_called_an_exact_test() -> None:
+    """The test allows other dependence, for which no p-value of it is exact."""
+    eight = Invented(columns={"u": "1 2 3 4 5 6 7 8", "v": "2 1 4 3 6 5 8 7"}, requirements="fewest_complete_rows: 6")
+    report = told(eight.analysed())
+    beside = first(report, "Studentised")[2]
+    assert beside.endswith(", all orderings gone through")
 
 
 def test_suspicious_rows_are_listed_as_such() -> None:

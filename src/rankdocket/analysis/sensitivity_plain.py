@@ -18,12 +18,11 @@ def sensitivity_to_plain(table: SensitivityTable | NoTable | None, alpha: Decima
         return {}
     if isinstance(table, NoTable):
         return {"sensitivity": {"state": "none", "reason": table.reason}}
-    asked = [row for row in table.rows if row.standing == "sensitivity" and row.verdict.change in ("yes", "no")]
     return {
         "sensitivity": {
             "state": "made",
             "rows": {row.key: _row(row, alpha) for row in table.rows},
-            "tally": {"asked": len(asked), "changing": len(table.changing)},
+            "tally": {"asked": len(table.asked), "changing": len(table.answering_yes)},
         }
     }
 

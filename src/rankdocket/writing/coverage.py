@@ -13,8 +13,9 @@ UNTIED: Final = "no ties or small tie groups"
 
 COVERAGE_SENTENCE: Final = (
     "Beside an interval stands its simulated coverage: the share of simulated samples, from a population whose coefficient "
-    "is known, in which an interval by the same rule and at the same level held that coefficient; with six thousand samples "
-    "its standard error near ninety-five percent is three tenths of a percentage point. It is "
+    "is known, in which an interval by the same rule and at the same level held that coefficient. Its "
+    "standard error near ninety-five percent is about three tenths of a percentage point where thousands of samples were "
+    "drawn, and about one point where hundreds were, as for the bootstrap; their number stands beside it. It is "
     "taken from a table that comes with the program and can be made again, at the simulated number of rows nearest to that "
     "of the study, the nearest pattern of ties and the nearest size of the coefficient; the lowest coverage of all "
     "populations simulated at that number of rows stands beside it. The population of the study may be like none of them."

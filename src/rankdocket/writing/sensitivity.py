@@ -3,6 +3,7 @@
 from typing import Final
 
 from rankdocket.analysis.sensitivity.make import OF_A_CLAIM
+from rankdocket.analysis.sensitivity.rows.studentised import KEY as STUDENTISED
 from rankdocket.analysis.sensitivity.table import NoTable, SensitivityTable, TableRow
 from rankdocket.document.model import Block, Column, Link, Paragraph, Prose, Supplied, TableBlock
 from rankdocket.document.prose import joined, listed, only, prose, text_of
@@ -56,12 +57,15 @@ def sensitivity_note(story: Story, names: tuple[str, ...]) -> Prose | None:
     )
     if not clauses:
         return None
-    return prose("By sensitivity rows the finding would change: {clauses}.", clauses=joined(clauses, "; "))
+    return prose(
+        "By sensitivity rows, beside the search for rows to remove, the finding would change: {clauses}.",
+        clauses=joined(clauses, "; "),
+    )
 
 
 def _clause(story: Story, name: str, table: SensitivityTable) -> Prose:
     at = address(name, "sensitivity", "tally")
-    changing = story.numbers.whole(f"{at}/changing") if table.changing else "none"
+    changing = story.numbers.whole(f"{at}/changing") if table.answering_yes else "none"
     return prose(
         "{name} by {changing} of {asked} ({table})",
         name=pointer(name),
@@ -186,7 +190,9 @@ def _beside(story: Story, at: str, row: TableRow) -> Prose:
         p = p_equals(story, f"{at}/p")
         if row.p.draws is not None:
             return prose("{p}, {draws} draws", p=p, draws=numbers.whole(f"{at}/draws"))
-        return prose("{p}, {method}", p=p, method=row.p.method)
+        return prose(
+            "{p}, {method}", p=p, method="all orderings gone through" if row.kind == STUDENTISED else row.p.method
+        )
     if row.interval is not None:
         decimals = numbers.decimals_for(f"{at}/value")
         low, high = (numbers.coefficient(f"{at}/{end}", decimals) for end in ("low", "high"))
@@ -204,6 +210,8 @@ def _beside(story: Story, at: str, row: TableRow) -> Prose:
 
 def _change(story: Story, at: str, row: TableRow) -> Prose:
     verdict = row.verdict
+    if row.ends is not None and row.ends.changing == 1:
+        return only("yes, for one row left out alone")
     if row.ends is not None and row.ends.changing:
         return prose("yes, for each of {rows} rows left out alone", rows=story.numbers.whole(f"{at}/changing_rows"))
     reason = "" if verdict.reason in (row.absent or "", OF_A_CLAIM) else verdict.reason
@@ -219,9 +227,11 @@ def changing_in_words(story: Story, name: str) -> tuple[Prose, ...]:
     parts = []
     for row in table.changing:
         at = address(name, "sensitivity", "rows", row.key)
-        if row.ends is not None:
+        if row.ends is not None and row.ends.changing == 1:
+            parts.append(only("without one row"))
+        elif row.ends is not None:
             parts.append(prose("without any one of {rows} rows", rows=story.numbers.whole(f"{at}/changing_rows")))
-        elif row.kind == "studentised":
+        elif row.kind == STUDENTISED:
             parts.append(only("by the studentised permutation test"))
         elif row.rows is not None and row.kind != "put-back":
             parts.append(prose("without {lines}", lines=lines_in_words(story, at, len(row.rows.lines))))

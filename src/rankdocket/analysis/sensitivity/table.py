@@ -174,6 +174,20 @@ class SensitivityTable:
             and (row.search is None or row.rows is None or _are_few(row.rows.lines, row.value))
         )
 
+    @property
+    def asked(self) -> tuple[TableRow, ...]:
+        """The sensitivity rows that say yes or no, beside the search for rows to remove: some set changes any finding."""
+        return tuple(
+            row
+            for row in self.rows
+            if row.standing == "sensitivity" and row.verdict.change in ("yes", "no") and row.search is None
+        )
+
+    @property
+    def answering_yes(self) -> tuple[TableRow, ...]:
+        """Those of the rows asked that would change the finding."""
+        return tuple(row for row in self.asked if row.verdict.change == "yes")
+
 
 @dataclass(frozen=True, slots=True)
 class NoTable:
