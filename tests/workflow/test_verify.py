@@ -191,6 +191,21 @@ def two_editions(issued: Sealed, tmp_path_factory: pytest.TempPathFactory) -> Pa
     return study
 
 
+def test_a_plan_changed_between_editions_is_listed_key_by_key(
+    issued: Sealed, here: Callable[..., Ran], tmp_path: Path
+) -> None:
+    """From the two plan.json files, in section 7 and under deviations; the edition verifies."""
+    study = Path(shutil.copytree(issued.study, tmp_path / "first-look"))
+    spec = (study / "study.yaml").read_text(encoding="utf-8")
+    assert spec.count("alpha: 0.05") == 1
+    (study / "study.yaml").write_text(spec.replace("alpha: 0.05", "alpha: 0.01"), encoding="utf-8")
+    assert here("issue", ".", "--reason", "another alpha", cwd=study).status == 0
+    page = re.sub(r"<[^>]+>", " ", (study / "editions" / "2" / "report.html").read_text(encoding="utf-8"))
+    assert re.search(r"inference\.alpha\s+(?:\"|&#34;|&quot;)0\.05\S+\s+(?:\"|&#34;|&quot;)0\.01", page)
+    assert "whose results had been seen: section" in page
+    assert here("verify", ".", cwd=study).status == 0
+
+
 def test_a_deleted_edition_is_missed_whichever_is_verified(
     two_editions: Path, here: Callable[..., Ran], tmp_path: Path
 ) -> None:

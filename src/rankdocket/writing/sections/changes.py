@@ -87,7 +87,7 @@ def _plan_table(before: Before) -> tuple[TableBlock, ...]:
             number="13",
             caption=only("Planned keys that differ from those of the edition before"),
             columns=(
-                Column(only("Key"), "key", share=5),
+                Column(only("Key"), "key", share=7),
                 Column(only("Value before"), "value_before", share=5),
                 Column(only("Value now"), "value", share=5),
             ),
