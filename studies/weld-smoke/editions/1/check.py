@@ -3,10 +3,13 @@
 Needs Python 3.9 or later and nothing else.  It holds every file against SHA256SUMS; ranks the values of rows.csv
 anew and holds the worksheets against them; recomputes each coefficient in whole numbers; counts all orderings of
 the rows where there are few enough; derives p, adjusted p and finding from the counts; holds results.csv against
-analysis.json; and looks up every printed number of document.json in analysis.json and in report.html.
+analysis.json; computes the approximate tests of size and of null values again; holds waivers against the plan, levels of
+intervals against their rule and a coverage against its own counts; computes coefficients of groups, of a comparison and
+of a partial correlation again; and looks up every printed number of document.json in analysis.json and in report.html.
 
-It does not read the spec and the data as received, does not recompute intervals, drawn permutations and the bars of a
-null, and does not open the PDF.
+It does not read the spec and the data as received, does not recompute limits of intervals, the whole numbers of a partial
+correlation, tests beyond two variables, drawn permutations, those of a family by step-down maxT, the bars of a null,
+shape, sensitivity and what the rows could have shown, and does not open the PDF.
 """
 
 # ruff: noqa: T201 - it speaks to a person at a terminal
@@ -21,32 +24,30 @@ import re
 import sys
 from collections import Counter, defaultdict
 from collections.abc import Iterator
-from decimal import ROUND_HALF_EVEN, Context, Decimal
+from decimal import ROUND_FLOOR, ROUND_HALF_EVEN, Context, Decimal
 from fractions import Fraction
 from functools import reduce
-from math import comb, factorial, gcd, prod
+from math import atanh, comb, erfc, factorial, gcd, isclose, prod, sqrt
 from operator import add, mul, sub
 from pathlib import Path
 from typing import Any
 
-MOST_ROWS_COUNTED = 14
-"""Up to here counting takes seconds on any machine; more rows are left to the program itself."""
-
-DIGITS = 12
-"""Significant digits of every filed value that is not whole."""
-
+MOST_ROWS_COUNTED = 14  # Up to here counting takes seconds on any machine; more rows are left to the program itself.
+DIGITS = 12  # Significant digits of every filed value that is not whole.
+FLOAT_DIGITS = 40  # Significant digits of a coefficient before it is taken as a double for the tests of size.
+LEAST_P = 1e-300  # A p of the normal law that is smaller is filed as this.
 RHO = "Spearman rho"
+MAX_T = "step-down maxT"
+WAIVED_AS = {
+    "enough_rows": "complete rows", "missing_share": "missing values", "tie_share": "ties",
+    "built_in": "built-in association",
+}  # fmt: skip
 RESULT_ADDRESSES = {
-    "n": "rows/complete",
-    "value": "estimate/value",
-    "interval_low": "interval/low",
-    "interval_high": "interval/high",
-    "interval_by": "interval/by",
-    "p": "test/p",
-    "p_by": "test/method",
-    "p_adjusted": "finding/p_adjusted",
-    "finding": "finding/word",
-}
+    "n": "rows/complete", "value": "estimate/value", "interval_low": "interval/low", "interval_high": "interval/high",
+    "interval_level": "interval/level", "interval_by": "interval/by", "p": "test/p", "p_by": "test/method",
+    "finding_by": "finding/by", "p_of_finding": "finding/p", "p_adjusted": "finding/p_adjusted",
+    "size_verdict": "size/verdict", "finding": "finding/word",
+}  # fmt: skip
 """Column of results.csv → where its value stands below an association of analysis.json, if not under its own name."""
 
 NUMBER_ELEMENT = re.compile(r'data-key="([^"]+)"[^>]*>([^<]*)<')
@@ -56,11 +57,15 @@ def main(folder: Path) -> int:
     """Check the record copy in ``folder``; return the exit status."""
     problems: list[str] = []
     files = check_digests(folder, problems)
-    numbers, left = 0, []
+    numbers, left, together = 0, [], []
     try:
         analysis = json.loads((folder / "analysis.json").read_text(encoding="utf-8"))
         left = check_associations(folder, analysis, problems)
-        check_findings(folder, analysis, problems)
+        check_waivers(folder, analysis, problems)
+        check_sizes(folder, analysis, problems)
+        check_intervals(folder, analysis, problems)
+        check_more_variables(folder, analysis, problems)
+        together = check_findings(folder, analysis, problems)
         check_results(folder, analysis, problems)
         numbers = check_printed(folder, analysis, problems)
     except (OSError, ValueError, KeyError, TypeError, ArithmeticError) as error:
@@ -74,6 +79,8 @@ def main(folder: Path) -> int:
         print(f"Everything agrees ({numbers} numbers, {files} files).")
     if left:
         print(f"Not counted anew (p is no count, or more than {MOST_ROWS_COUNTED} rows): {', '.join(left)}.")
+    if together:
+        print(f"Not made anew by {MAX_T}, only held against its own count: the adjusted p of {', '.join(together)}.")
     return 1 if problems else 0
 
 
@@ -126,7 +133,7 @@ def check_associations(folder: Path, analysis: Any, problems: list[str]) -> list
         y = doubled_midranks([Fraction(row["y_value"]) for row in its_rows])
         check_worksheet(folder, name, (its_rows, x, y), problems)
         if found["estimate"]["state"] == "estimated":
-            check_estimate(name, found, (x, y), problems)
+            check_coefficient(name, found["estimate"], sums_of(found["coefficient"], x, y), problems)
         if found["test"]["state"] == "tested" and not check_test(name, found, (x, y), alpha, problems):
             left.append(name)
     return left
@@ -157,12 +164,11 @@ def check_worksheet(
             hold(f"{file}, line {place + 2}: {column}", row[column], used[place][column], problems)
 
 
-def check_estimate(name: str, found: Any, ranks: tuple[list[int], list[int]], problems: list[str]) -> None:
-    """Compute the coefficient again."""
-    sums = sums_of(found["coefficient"], *ranks)
-    for position, key in enumerate(("numerator", "x_square", "y_square")):
-        hold(f"{name}: {key}", found["estimate"][key], str(sums[position]), problems)
-    hold(f"{name}: the coefficient", Decimal(found["estimate"]["value"]), coefficient(*sums), problems)
+def check_coefficient(what: str, filed: Any, sums: tuple[int, int, int], problems: list[str]) -> None:
+    """Hold a coefficient and its whole numbers against those made anew."""
+    for key, anew in zip(("numerator", "x_square", "y_square"), sums):  # noqa: B905
+        hold(f"{what}: {key}", filed[key], str(anew), problems)
+    hold(f"{what}: the coefficient", Decimal(filed["value"]), coefficient(*sums), problems)
 
 
 def check_test(name: str, found: Any, ranks: tuple[list[int], list[int]], alpha: Fraction, problems: list[str]) -> bool:
@@ -229,8 +235,198 @@ def p_of(test: Any, count: int) -> Fraction:
     return Fraction(count + drawn, int(test["of"]) + drawn)
 
 
-def check_findings(folder: Path, analysis: Any, problems: list[str]) -> None:
-    """Adjust every p again and decide again by the plan."""
+def check_sizes(folder: Path, analysis: Any, problems: list[str]) -> None:
+    """Compute the tests of size and of null values again, and take the verdicts again."""
+    plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))
+    rows = read_csv(folder / "rows.csv")
+    for name, found in sorted(analysis["associations"].items()):
+        hypothesis, size = plan["associations"][name]["hypothesis"], found.get("size", {"state": "none"})
+        asked = hypothesis.get("null_value") is not None or hypothesis["smallest_of_interest"] is not None
+        hold(f"{name}: size", "size" in found, asked and found["test"]["state"] == "tested", problems)
+        if size["state"] != "tested":
+            continue
+        its_rows = [row for row in rows if row["association"] == name]
+        x, y = (doubled_midranks([Fraction(row[key]) for row in its_rows]) for key in ("x_value", "y_value"))
+        r = capped_rho(x, y)
+        hold_near(f"{name}: the coefficient of its tests of size", size["coefficient"], r, problems)
+        what, direction = f"{name}: size", found["test"]["direction"]
+        if hypothesis.get("null_value") is not None:
+            z = z_against(r, len(x), hypothesis["null_value"])
+            hold(f"{what}: null value", Fraction(size["value"]["null"]), Fraction(hypothesis["null_value"]), problems)
+            hold_near(f"{what}: z of the null value", size["value"]["z"], z, problems)
+            hold_near(f"{what}: p of the null value", size["value"]["p"], value_p(z, direction), problems, z * z)
+        if hypothesis["smallest_of_interest"] is not None:
+            check_verdict(what, found, (r, len(x), hypothesis["smallest_of_interest"]), problems)
+            family = analysis["inference"]["family"]
+            shared = name in family and plan["inference"]["several_tests"]["adjust"] != "none"
+            level = Fraction(plan["inference"]["alpha"]) / (len(family) if shared else 1)
+            hold(f"{what}: verdict", size["verdict"], verdict(found, level), problems)
+
+
+def check_verdict(what: str, found: Any, tested: tuple[float, int, str], problems: list[str]) -> None:
+    """Compute both tests of a smallest size of interest again."""
+    size, (r, n, delta) = found["size"], tested
+    hold(f"{what}: delta", Fraction(size["delta"]), Fraction(delta), problems)
+    upper, lower = z_against(r, n, delta), z_against(r, n, f"-{delta}")
+    above = above_p(upper, lower, found["test"]["direction"])
+    anew = {"z_upper": upper, "z_lower": lower, "p_above": above, "p_within": max(tail(lower), tail(-upper))}
+    for key, value in anew.items():
+        hold_near(f"{what}: {key}", size[key], value, problems, max(upper * upper, lower * lower))
+
+
+def verdict(found: Any, level: Fraction) -> str:
+    """Return the first of the four verdicts about size that applies."""
+    size, test = found["size"], found["test"]
+    independence = Fraction(test["p"]) if test["count"] is None else p_of(test, int(test["count"]))
+    if Fraction(size["p_above"]) <= level:
+        return "size above delta shown"
+    if Fraction(size["p_within"]) <= level:
+        return "size below delta shown"
+    return "independence rejected, size above delta not shown" if independence <= level else "undecided"
+
+
+def capped_rho(x: list[int], y: list[int]) -> float:
+    """Return rho, or the cap that the widest tie steps set where it lies beyond."""
+    numerator, x_square, y_square = rho_sums(x, y)
+    steps = [max(high - low for low, high in zip(places, places[1:])) for places in (sorted({*x}), sorted({*y}))]  # noqa: B905, RUF007 - Python 3.9
+    cap = 1 - steps[0] * steps[1] / (2 * sqrt(x_square) * sqrt(y_square))
+    return min(max(float(coefficient(numerator, x_square, y_square, FLOAT_DIGITS)), -cap), cap)
+
+
+def z_against(r: float, n: int, null: str) -> float:
+    """Return z of a coefficient against a null value, with the variance (1 + null²/2)/(n − 3) of atanh r."""
+    value = float(null)
+    return (atanh(r) - atanh(value)) * sqrt((n - 3) / (1 + value * value / 2))
+
+
+def value_p(z: float, side: str) -> float:
+    """Return p of the z of a null value."""
+    return min(1.0, 2 * tail(abs(z))) if side == "two-sided" else tail(z if side == "greater" else -z)
+
+
+def above_p(upper: float, lower: float, side: str) -> float:
+    """Return p of a size no larger than the one of interest from z against it and against its negative."""
+    if side == "two-sided":
+        return tail(max(upper, -lower)) + tail(max(-upper, lower))
+    return tail(upper) if side == "greater" else tail(-lower)
+
+
+def tail(z: float) -> float:
+    """Return the probability that a standard normal value is z or more."""
+    return erfc(z / sqrt(2)) / 2
+
+
+def hold_near(what: str, filed: str, anew: float, problems: list[str], z_square: float = 0.0) -> None:
+    """Note a double that is not the filed one to its digits; a p is as many times less sharp as its z is large."""
+    anew = max(anew, LEAST_P) if ": p" in what else anew
+    if not isclose(float(filed), anew, rel_tol=1e-11 * (1 + z_square), abs_tol=0 if ": p" in what else 1e-11):
+        problems.append(f"{what} is {filed}, made anew {anew:.12g}.")
+
+
+def check_waivers(folder: Path, analysis: Any, problems: list[str]) -> None:
+    """Hold the reasons of waived requirements against the plan; what is waived withholds nothing."""
+    plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))
+    for name, found in sorted(analysis["associations"].items()):
+        reasons = plan["associations"][name].get("waived", {})
+        for key, outcome in sorted(found["checks"].items()):
+            reason = reasons.get(WAIVED_AS.get(key)) if outcome["state"] in ("not met", "doubtful") else None
+            hold(f"{name}: {key}: why it is waived", outcome.get("waived"), reason, problems)
+            if reason is not None:
+                hold(f"{name}: {key}: what it withholds", outcome["withholds"], "nothing", problems)
+
+
+def check_intervals(folder: Path, analysis: Any, problems: list[str]) -> None:
+    """Compute the level of adjusted intervals again, and hold each interval against it or the plan's."""
+    plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))["inference"]
+    adjusted, alone, level = plan["interval"]["adjusted"], Decimal(plan["confidence_level"]), None
+    family, filed = analysis["inference"]["family"], analysis["inference"]["interval"]
+    shown = [name for name in family if analysis["associations"][name]["finding"]["word"].startswith("shown")]
+    selected = len(shown) if adjusted == "after selection" else None
+    members = {"simultaneous": family, "after selection": shown}.get(adjusted, [])
+    if members:
+        error = (1 if selected is None else selected) * (1 - alone)
+        level = 1 - Context(prec=DIGITS, rounding=ROUND_FLOOR).divide(error, Decimal(len(family)))
+    hold("inference: how intervals are adjusted", filed["adjusted"], adjusted, problems)
+    hold("inference: how many are selected", filed.get("selected"), selected, problems)
+    hold("inference: adjusted level", Decimal(filed["level"]) if "level" in filed else None, level, problems)
+    for name, found in sorted(analysis["associations"].items()):
+        is_member, has_two = name in members, "interval_alone" in found
+        if has_two or found["interval"]["state"] == "given":
+            hold(f"{name}: a second interval", has_two, is_member, problems)
+        for which, is_adjusted in (("interval", is_member), ("interval_alone", False)):
+            interval, what = found.get(which, {"state": "none"}), f"{name}: {which}"
+            if interval["state"] == "given":
+                hold(f"{what}: level", Decimal(interval["level"]), level if is_adjusted else alone, problems)
+                hold(f"{what}: holds", interval["holds"], adjusted if is_adjusted else "alone", problems)
+                if not Decimal(interval["low"]) < Decimal(interval["high"]):
+                    problems.append(f"{what}: {interval['low']} is not below {interval['high']}.")
+        if found["interval"].get("coverage", {}).get("state") == "simulated":
+            check_coverage(name, found["interval"]["coverage"], Fraction(found["interval"]["level"]), problems)
+
+
+def check_coverage(name: str, coverage: Any, level: Fraction, problems: list[str]) -> None:
+    """Judge a simulated coverage again by its misses over those that the level allows."""
+    lowest = coverage["lowest"]
+    for what, row in (("coverage", coverage), ("lowest coverage", lowest)):
+        hold(f"{name}: {what}: samples", row["samples"], int(row["share"].split("/")[1]), problems)
+    if Fraction(lowest["share"]) > Fraction(coverage["share"]):
+        problems.append(f"{name}: the lowest coverage {lowest['share']} is above the nearest {coverage['share']}.")
+    misses = (1 - Fraction(coverage["share"])) / (1 - level)
+    judged = "too low" if misses > Fraction(7, 5) else "wide" if misses < Fraction(3, 5) else "near"
+    hold(f"{name}: coverage: judged", coverage["judged"], judged, problems)
+
+
+def check_more_variables(folder: Path, analysis: Any, problems: list[str]) -> None:
+    """Rank again what a partial coefficient, a comparison and groups of rows rest on."""
+    plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))["associations"]
+    cells: Any = defaultdict(lambda: defaultdict(dict))
+    for row in read_csv(folder / "rows.csv"):
+        for axis in "xy":
+            cells[row["association"], ""][axis][row["row"]] = row[f"{axis}_value"]
+    for row in read_csv(folder / "more_rows.csv") if (folder / "more_rows.csv").exists() else ():
+        cells[row["association"], row["used_for"]][row["variable"]][row["row"]] = row["value"]
+    for name, found in sorted(analysis["associations"].items()):
+        for key, asked in (("partial", "covariates"), ("comparison", "compare_with"), ("subgroups", "groups")):
+            hold(f"{name}: {key}", key in found, asked in plan[name], problems)
+        pair, own = (found["x"], found["y"]), {found[axis]: cells[name, ""][axis] for axis in "xy"}
+        for key in sorted({"partial", "comparison"} & found.keys()):
+            filed, what, columns = found[key], f"{name}: {key}", {**cells[name, key], **own}
+            used = filed["variables"] if key == "comparison" else filed["covariates"]
+            lines = [line for line in own[pair[0]] if all(line in columns.get(variable, ()) for variable in used)]
+            hold(f"{what}: rows", filed["n"], len(lines), problems)
+            if filed["state"] == "estimated" and key == "partial":
+                check_coefficient(f"{what}: rho", filed["rho"], ranked(columns, pair, lines, RHO), problems)
+                whole = (int(filed[part]) for part in ("numerator", "x_square", "y_square"))
+                hold(f"{what}: the coefficient", Decimal(filed["value"]), coefficient(*whole), problems)
+            elif filed["state"] == "estimated":
+                other = analysis["associations"][filed["with"]]
+                for which, two in (("first", pair), ("second", (other["x"], other["y"]))):
+                    check_coefficient(f"{what}: {which}", filed[which], ranked(columns, two, lines, RHO), problems)
+        if "subgroups" in found:
+            check_groups(name, found, own, next(iter(cells[name, "groups"].values()), {}), problems)
+
+
+def check_groups(name: str, found: Any, own: Any, label_of: dict[str, str], problems: list[str]) -> None:
+    """Rank each group of rows again; a spreadsheet's apostrophe before a name, or its minus, is not of the name."""
+    hold(f"{name}: rows looked at for groups", len(label_of), len(own[found["x"]]), problems)
+    without = sum(not label for label in label_of.values())
+    hold(f"{name}: rows without a group", found["subgroups"]["without_group"], without, problems)
+    for group in found["subgroups"]["groups"]:
+        label, what = group["label"], f"{name}: group {group['label']}"
+        lines = [row for row, text in label_of.items() if text in (label, f"'{label}", label.replace("\u2212", "-"))]
+        hold(f"{what}: rows", group["n"], len(lines), problems)
+        if group.get("state") == "estimated":
+            sums = ranked(own, (found["x"], found["y"]), lines, found["coefficient"])
+            check_coefficient(what, group, sums, problems)
+
+
+def ranked(columns: Any, pair: tuple[str, str], lines: list[str], name: str) -> tuple[int, int, int]:
+    """Return the whole numbers of a coefficient of these rows, ranked among themselves."""
+    return sums_of(name, *(doubled_midranks([Fraction(columns[one][line]) for line in lines]) for one in pair))
+
+
+def check_findings(folder: Path, analysis: Any, problems: list[str]) -> list[str]:
+    """Adjust every p again and decide again by the plan; return whose adjusted p rests on filed counts."""
     plan = json.loads((folder / "plan.json").read_text(encoding="utf-8"))
     family, alpha = analysis["inference"]["family"], Fraction(plan["inference"]["alpha"])
     p_values = {
@@ -238,29 +434,102 @@ def check_findings(folder: Path, analysis: Any, problems: list[str]) -> None:
         for name, found in analysis["associations"].items()
         if found["test"]["state"] == "tested"
     }
+    for name, found in sorted(analysis["associations"].items()):
+        check_deciding(name, found, plan["associations"][name]["hypothesis"], p_values, problems)
     everybody = {name: p_values.get(name, Fraction(1)) for name in family}
-    adjusted = holm(everybody) if plan["inference"]["several_tests"]["adjust"] == "Holm" else everybody
+    rule = plan["inference"]["several_tests"]["adjust"]
+    hold("inference: adjust", analysis["inference"]["adjust"], rule, problems)
+    hold("inference: error_rate", analysis["inference"]["error_rate"], error_rate(rule, family), problems)
+    together = sorted(p_values.keys() & set(family)) if rule == MAX_T and len(family) > 1 else []
+    adjusted = everybody if rule == MAX_T else adjust(rule, everybody)
+    for name in together:
+        adjusted[name] = p_together(name, analysis, p_values[name], problems)
     for name, found in sorted(analysis["associations"].items()):
         finding = found["finding"]
         if "p_adjusted" in finding:
             hold_p(f"{name}: p_adjusted", finding["p_adjusted"], adjusted[name], problems)
-        if name not in p_values or finding["basis"] == "outside the family":
+        if found["test"]["state"] != "tested" or finding["basis"] == "outside the family":
             continue
         word = "not shown"
-        if (adjusted[name] if finding["basis"] == "family" else p_values[name]) <= alpha:
-            sign = "positive" if int(found["estimate"]["numerator"]) > 0 else "negative"
+        if (adjusted[name] if finding["basis"] == "family" else p_values.get(name, Fraction(1))) <= alpha:
+            by = finding["by"]
+            above = float(found["size"]["value"]["z"]) if by == "null value" else int(found["estimate"]["numerator"])
+            sign = "positive" if above > 0 else "negative"
             expected = plan["associations"][name]["hypothesis"]["expected_sign"]
-            word = "shown" if expected in ("either", sign) else "shown, opposite sign"
+            word = "shown" if by == "within" or expected in ("either", sign) else "shown, opposite sign"
         hold(f"{name}: the finding", finding["word"], word, problems)
+    return together
 
 
-def holm(p_values: dict[str, Fraction]) -> dict[str, Fraction]:
-    """Adjust by Holm's step-down rule."""
-    adjusted, largest = {}, Fraction(0)
-    for smaller, name in enumerate(sorted(p_values, key=lambda name: p_values[name])):
-        largest = max(largest, min(Fraction(1), (len(p_values) - smaller) * p_values[name]))
-        adjusted[name] = largest
+def check_deciding(name: str, found: Any, hypothesis: Any, p_values: dict[str, Fraction], problems: list[str]) -> None:
+    """Put the p that decides a claim in the place of that of independence, and hold the filed one against it."""
+    claim = "null value" if hypothesis.get("null_value") is not None else hypothesis.get("claim", "any")
+    hold(f"{name}: what decided", found["finding"]["by"], "rank test" if claim == "any" else claim, problems)
+    if claim != "any" and name in p_values:
+        size = found["size"]
+        if size["state"] == "tested":
+            filed = size["value"]["p"] if claim == "null value" else size[f"p_{claim}"]
+            p_values[name] = Fraction(filed)
+        else:
+            del p_values[name]
+    if name in p_values:
+        hold_p(f"{name}: p of the finding", found["finding"]["p"], p_values[name], problems)
+
+
+def error_rate(rule: str, family: list[str]) -> str:
+    """Return what alpha bounds."""
+    if not family or rule == "none":
+        return "each test alone"
+    return "share of false findings" if rule.startswith("Benjamini") else "any false finding"
+
+
+def adjust(rule: str, p_values: dict[str, Fraction]) -> dict[str, Fraction]:
+    """Adjust by the rule of the plan.
+
+    Each rule multiplies the smallest, second smallest, ... p by a factor of its own.  Stepping down, an adjusted p is
+    the largest product so far; stepping up, the smallest from there on; never more than 1.
+    """
+    names = sorted(p_values, key=lambda name: p_values[name])
+    products = [factor * p_values[name] for factor, name in zip(factors(rule, len(names)), names)]  # noqa: B905
+    one = Fraction(1)
+    adjusted = {}
+    for place, name in enumerate(names):
+        so_far, from_here = products[: place + 1], products[place:]
+        if rule in ("Hochberg", "Benjamini-Hochberg", "Benjamini-Yekutieli"):
+            adjusted[name] = min(one, *from_here)
+        elif rule == "Holm":
+            adjusted[name] = min(one, max(so_far))
+        else:
+            adjusted[name] = min(one, products[place])
     return adjusted
+
+
+def factors(rule: str, size: int) -> list[Fraction]:
+    """Return the factors of a rule, that of the smallest p first."""
+    places = range(1, size + 1)
+    harmonic = sum((Fraction(1, place) for place in places), Fraction(0))
+    return {
+        "Holm": [Fraction(size - place + 1) for place in places],
+        "Hochberg": [Fraction(size - place + 1) for place in places],
+        "Bonferroni": [Fraction(size)] * size,
+        "Benjamini-Hochberg": [Fraction(size, place) for place in places],
+        "Benjamini-Yekutieli": [harmonic * Fraction(size, place) for place in places],
+        "none": [Fraction(1)] * size,
+    }[rule]
+
+
+def p_together(name: str, analysis: Any, own: Fraction, problems: list[str]) -> Fraction:
+    """Return the adjusted p of a family's permutations from its filed count, never below the association's own p."""
+    filed, family = analysis["associations"][name]["finding"]["max_t"], analysis["inference"]["max_t"]
+    hold(f"{name}: permutations of the family", filed["of"], family["of"], problems)
+    hits, own_hits, of = int(filed["count"]), int(filed["own_count"]), int(filed["of"])
+    if not own_hits <= hits <= of:
+        problems.append(f"{name}: the counts {own_hits}, {hits} and {of} of the family do not rise.")
+    drawn = 0 if family["method"] == "all permutations" else 1
+    share = Fraction(hits + drawn, of + drawn)
+    hold_p(f"{name}: share of the family", filed["share"], share, problems)
+    hold(f"{name}: below its own p", filed["below_own_p"], share < own, problems)
+    return max(share, own)
 
 
 def check_results(folder: Path, analysis: Any, problems: list[str]) -> None:
@@ -271,11 +540,8 @@ def check_results(folder: Path, analysis: Any, problems: list[str]) -> None:
         problems.append(f"results.csv has the associations {', '.join(names)}, analysis.json others.")
         return
     for line, row in enumerate(rows, start=2):
-        its_own = {
-            **analysis["associations"][row["association"]],
-            "association": row["association"],
-            "sidedness": analysis["inference"]["sidedness"],
-        }
+        found, sidedness = analysis["associations"][row["association"]], analysis["inference"]["sidedness"]
+        its_own = {**found, "association": row["association"], "sidedness": sidedness}
         for column, cell in row.items():
             filed = look_up(its_own, RESULT_ADDRESSES.get(column, column))
             if cell != ("" if filed is None else str(filed)):
@@ -316,11 +582,11 @@ def tau_sums(x: list[int], y: list[int]) -> tuple[int, int, int]:
     return numerator, in_x, in_y
 
 
-def coefficient(numerator: int, x_square: int, y_square: int) -> Decimal:
-    """Return the first over the root of the product of the others, 12 significant digits, half to even."""
+def coefficient(numerator: int, x_square: int, y_square: int, digits: int = DIGITS) -> Decimal:
+    """Return the first over the root of the product of the others, to so many significant digits, half to even."""
     wide = Context(prec=80)
     exact = wide.divide(Decimal(numerator), wide.sqrt(Decimal(x_square * y_square)))
-    return Context(prec=DIGITS, rounding=ROUND_HALF_EVEN).plus(exact)
+    return Context(prec=digits, rounding=ROUND_HALF_EVEN).plus(exact)
 
 
 def decimal_text(value: Fraction) -> str:
@@ -400,6 +666,10 @@ def check_printed(folder: Path, analysis: Any, problems: list[str]) -> int:
             problems.append(f"document.json prints {key} as {text}, {in_words} times; report.html {on_page} times.")
         elif in_words < on_page:
             problems.append(f"report.html prints {key} as {text}, {on_page} times; document.json {in_words} times.")
+    for name, found in sorted(analysis["associations"].items()):
+        key = f"associations/{name}/interval/level"
+        if "interval_alone" in found and look_up(analysis, key) and not any(number["key"] == key for number in numbers):
+            problems.append(f"document.json does not print {key}.")
     return len(numbers)
 
 
